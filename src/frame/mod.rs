@@ -1,0 +1,1 @@
+//! How do directions turn into angles, and one frame into another?

@@ -1,0 +1,1 @@
+//! Where does a body move under an inverse-square pull or push?

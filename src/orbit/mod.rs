@@ -1,0 +1,5 @@
+//! What do published elements say, and where does the comet move?
+
+pub mod conic;
+pub mod elements;
+pub mod notation;

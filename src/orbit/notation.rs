@@ -1,0 +1,1 @@
+//! How do the published notations of elements read?

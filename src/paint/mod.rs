@@ -1,0 +1,1 @@
+//! How does a scene become canvas calls or SVG?

@@ -1,0 +1,1 @@
+//! The browser shell: the only file with wasm-bindgen exports.
