@@ -4,8 +4,8 @@ pub mod column;
 
 use crate::body::State;
 use crate::caution::Caution;
+use crate::frame::Axes;
 use crate::time::Instant;
-use nalgebra::Vector3;
 
 /// On which side of the Sun the comet stands.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -56,14 +56,6 @@ pub struct Sky {
     /// Unit vectors at the comet's place on the sky: toward it, east, north.
     pub axes: Axes,
     pub cautions: Vec<Caution>,
-}
-
-/// Unit vectors of the tangent plane at a direction, equatorial.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct Axes {
-    pub sight: Vector3<f64>,
-    pub east: Vector3<f64>,
-    pub north: Vector3<f64>,
 }
 
 /// The parts of a sky that need a horizon. Airless.
