@@ -329,16 +329,20 @@ fn a_code_and_a_name_find_their_site() {
 
 // Sun
 
-/// Source: an ephemeris day near which the Earth stands farthest north of the Sun's equator, 7.25 deg on about September 8
-/// (and south on about March 7), and crosses it on about June 6 and December 7: the almanacs' B0. Tolerance 0.05 deg: dates to a day.
+/// Source: heliographic latitude of the Earth, 1992-10-13.0 in Meeus, Astronomical Algorithms (1998), p. 191; 2013-04-01.0
+/// and 2013-12-01.0 in the Astronomical Almanac for 2013. Tolerance 0.01 deg: printed to 0.01, for the apparent Sun.
 #[test]
-fn the_earth_is_seen_at_the_almanac_s_heliographic_latitudes() {
-    let latitude = |days: f64| heliographic_latitude_rad(&earth(day(days)).unwrap().position_au).to_degrees();
-    let from_2024 = 8_765.5;
-    assert!((latitude(from_2024 + 251.0) - 7.25).abs() < 0.05);
-    assert!((latitude(from_2024 + 66.0) + 7.25).abs() < 0.05);
-    assert!(latitude(from_2024 + 157.0).abs() < 0.3 && latitude(from_2024 + 341.0).abs() < 0.3);
-    assert!(latitude(from_2024 + 157.0 + 40.0) > 1.0, "north in the second half of the year");
+fn the_earth_stands_at_the_almanac_s_heliographic_latitudes() {
+    for (date, published_deg) in [(2_448_908.5, 5.99), (2_456_383.5, -6.54), (2_456_627.5, 0.88)] {
+        let place = earth(julian(date)).unwrap().position_au;
+        let miss = |place: Vector3<f64>| (heliographic_latitude_rad(&place).to_degrees() - published_deg).abs();
+        assert!(miss(place) < 0.01, "{date}: {}", miss(place));
+        assert!(miss(-place) > 0.01, "the Sun from the Earth");
+        assert!(miss(tailvane::frame::equatorial_to_ecliptic(&place)) > 0.01, "ecliptic for equatorial");
+    }
+    let pole = Vector3::new(286.13_f64.to_radians(), 63.87_f64.to_radians(), 0.0);
+    let along = Vector3::new(pole.y.cos() * pole.x.cos(), pole.y.cos() * pole.x.sin(), pole.y.sin());
+    assert!((heliographic_latitude_rad(&(along * 2.0)).to_degrees() - 90.0).abs() < 1e-5);
 }
 
 // Properties
