@@ -83,10 +83,7 @@ impl Phasor {
     }
 
     fn plus(self, other: Phasor) -> Phasor {
-        Phasor {
-            sin: self.sin * other.cos + self.cos * other.sin,
-            cos: self.cos * other.cos - self.sin * other.sin,
-        }
+        Phasor { sin: self.sin * other.cos + self.cos * other.sin, cos: self.cos * other.cos - self.sin * other.sin }
     }
 
     fn less(self, other: Phasor) -> Phasor {
@@ -119,9 +116,8 @@ impl Arguments {
     /// Arguments at `t` Julian centuries from J2000.0; degrees and their powers of the time from Meeus, chapter 47.
     fn at(t: f64) -> Arguments {
         let radians = |c: [f64; 3]| (c[0] + t * (c[1] + t * c[2])).to_radians();
-        let mended = |c: [f64; 3], arcsec: [f64; 3]| {
-            radians(c) + (arcsec[0] + t * (arcsec[1] + t * arcsec[2])) * ARCSEC_RAD
-        };
+        let mended =
+            |c: [f64; 3], arcsec: [f64; 3]| radians(c) + (arcsec[0] + t * (arcsec[1] + t * arcsec[2])) * ARCSEC_RAD;
         let mean_longitude_rad = mended([218.316_447_7, 481_267.881_234_21, -0.001_578_6], MEAN_LONGITUDE_ARCSEC);
         let elongation = Phasor::of(radians([297.850_192_1, 445_267.111_403_4, -0.001_881_9]));
         // The Earth's eccentricity, as a share of that of 2000, scales each multiple of the Sun's anomaly.
