@@ -1,1 +1,0 @@
-//! How do the published notations of elements read?
