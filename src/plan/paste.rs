@@ -7,7 +7,7 @@
 use super::{Plan, json};
 use crate::error::{Error, Kind, Place};
 use crate::orbit::elements::Comet;
-use crate::orbit::notation::{self, MOST_BYTES, Reading};
+use crate::orbit::notation::{self, Entry, MOST_BYTES, Reading};
 use std::ops::Range;
 
 /// The comets that `text` holds, in any notation. Never panics.
@@ -24,7 +24,7 @@ pub fn read(text: &str) -> Reading {
     for object in objects {
         let (line, column) = place.to(object.start);
         match comet(&text[object]) {
-            Ok(comet) => reading.comets.push((line, comet)),
+            Ok(comet) => reading.comets.push(Entry { line, comet }),
             Err(error) => reading.refuse(moved(error, line, column)),
         }
     }
@@ -33,10 +33,19 @@ pub fn read(text: &str) -> Reading {
         let (line, column) = place.to(rest);
         let next: String = text[rest..].trim_start().chars().take(24).collect();
         let found = if next.is_empty() { "the end of the text".into() } else { format!("`{next}`") };
-        let allowed = if closed { "objects of JSON, or one list of them, and nothing after" } else { "`,` or `]` in a list of objects" };
+        let allowed = if closed {
+            "objects of JSON, or one list of them, and nothing after"
+        } else {
+            "`,` or `]` in a list of objects"
+        };
         reading.refuse(Error::new(Kind::Plan, Place::Line { line, column }, found, allowed));
     } else if reading.comets.is_empty() && reading.errors.is_empty() {
-        reading.refuse(Error::new(Kind::Plan, Place::Line { line: 1, column: 1 }, "an empty list", notation::CAN_BE_PASTED));
+        reading.refuse(Error::new(
+            Kind::Plan,
+            Place::Line { line: 1, column: 1 },
+            "an empty list",
+            notation::CAN_BE_PASTED,
+        ));
     }
     reading.name_apart();
     reading
@@ -62,7 +71,9 @@ fn objects(text: &str) -> (Vec<Range<usize>>, Result<usize, usize>) {
 
 fn comet(object: &str) -> Result<Comet, Error> {
     let has = |wanted: &str| {
-        json::children(object, 0).iter().any(|(key, _)| key.clone().is_some_and(|key| object[key].trim_matches('"') == wanted))
+        json::children(object, 0)
+            .iter()
+            .any(|(key, _)| key.clone().is_some_and(|key| object[key].trim_matches('"') == wanted))
     };
     if has("tailvane_plan") || !has("elements") {
         return Plan::parse(object).map(|plan| plan.comet);

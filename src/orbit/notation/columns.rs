@@ -110,7 +110,10 @@ pub(super) fn read(line: &str, number: usize) -> Result<(Comet, Vec<String>), Er
     record.blank(101, 102)?;
     let name = record.name()?;
     if perihelion_time.instant().tdb_days() < FIRST_GREGORIAN_DAYS {
-        notices.push("Dates are read in the Gregorian calendar; before 1582 Oct. 15 they are usually printed in the Julian.".into());
+        notices.push(
+            "Dates are read in the Gregorian calendar; before 1582 Oct. 15 they are usually printed in the Julian."
+                .into(),
+        );
     }
     let elements = Elements {
         perihelion_distance_au,
@@ -146,7 +149,11 @@ impl Record {
         let digits = |first: usize, last: usize| (first..=last).all(|column| self.char(column).is_ascii_digit());
         let wanted = "the one-line form for comets, with T and q";
         if points(&[30, 41, 52, 63]) {
-            return self.refuse(1, "a minor planet's line (mean anomaly and semimajor axis instead of T and q)", wanted);
+            return self.refuse(
+                1,
+                "a minor planet's line (mean anomaly and semimajor axis instead of T and q)",
+                wanted,
+            );
         }
         if digits(16, 19) && self.char(20) == ' ' && digits(21, 22) && self.char(23) == ' ' && self.char(26) == '.' {
             return self.refuse(15, "an observation (a place on the sky), not elements", wanted);
@@ -164,7 +171,11 @@ impl Record {
             None => Ok(()),
             Some(column) => {
                 let found = format!("`{}` in a column that is blank in the one-line form", self.char(column));
-                let columns = if first == last { format!("blank column {first}") } else { format!("blank columns {first}-{last}") };
+                let columns = if first == last {
+                    format!("blank column {first}")
+                } else {
+                    format!("blank columns {first}-{last}")
+                };
                 self.refuse(column, found, format!("{columns}; the line seems shifted, there or before"))
             }
         }
@@ -200,19 +211,27 @@ impl Record {
         let text = self.text(first, last);
         let wanted = format!("{name} in columns {first}-{last}, its decimal point in column {point}");
         if text.trim().is_empty() {
-            let found = if self.chars.len() < first { format!("the end of the line in column {}", self.chars.len() + 1) } else { "blanks".into() };
+            let found = if self.chars.len() < first {
+                format!("the end of the line in column {}", self.chars.len() + 1)
+            } else {
+                "blanks".into()
+            };
             return self.refuse(first.min(self.chars.len() + 1), found, wanted);
         }
         if self.char(point) != '.' {
             let reach = first.saturating_sub(2)..=last + 2;
-            let Some(column) = reach.filter(|&column| self.char(column) == '.').min_by_key(|column| column.abs_diff(point)) else {
+            let Some(column) =
+                reach.filter(|&column| self.char(column) == '.').min_by_key(|column| column.abs_diff(point))
+            else {
                 return self.refuse(first, quote(&text), wanted);
             };
             let found = format!("the decimal point of {name} in column {column}");
             let steps = column.abs_diff(point);
             let side = if column > point { "right" } else { "left" };
             let plural = if steps == 1 { "" } else { "s" };
-            let allowed = format!("it in column {point}; the line seems shifted by {steps} column{plural} to the {side}, there or before");
+            let allowed = format!(
+                "it in column {point}; the line seems shifted by {steps} column{plural} to the {side}, there or before"
+            );
             return self.refuse(column, found, allowed);
         }
         let (before, after) = (self.text(first, point - 1), self.text(point + 1, last));
@@ -317,7 +336,11 @@ impl Record {
         if !shown.is_empty() {
             if name.starts_with(' ') {
                 let column = 103 + name.chars().take_while(|&c| c == ' ').count();
-                return self.refuse(column, quote(shown), "the name from column 103 on; the line seems shifted, there or before");
+                return self.refuse(
+                    column,
+                    quote(shown),
+                    "the name from column 103 on; the line seems shifted, there or before",
+                );
             }
             return Ok(shown.to_string());
         }
@@ -328,9 +351,15 @@ impl Record {
             ("", Some(provisional)) => Ok(format!("{kind}/{provisional}")),
             ("", None) if packed.is_empty() => Ok("Comet without a name".into()),
             (digits, _) if !digits.is_empty() && packed.is_empty() => Ok(format!("{digits}{kind}")),
-            (digits, _) if !digits.is_empty() && is_fragment => Ok(format!("{digits}{kind}-{}", packed.to_ascii_uppercase())),
+            (digits, _) if !digits.is_empty() && is_fragment => {
+                Ok(format!("{digits}{kind}-{}", packed.to_ascii_uppercase()))
+            }
             (digits, Some(provisional)) => Ok(format!("{digits}{kind} ({kind}/{provisional})")),
-            (_, None) => self.refuse(6, quote(packed), "a packed provisional designation such as `K31A010` in columns 6-12, or a name from column 103 on"),
+            (_, None) => self.refuse(
+                6,
+                quote(packed),
+                "a packed provisional designation such as `K31A010` in columns 6-12, or a name from column 103 on",
+            ),
         }
     }
 }

@@ -11,7 +11,18 @@ use crate::time::{Scale, Stamp};
 
 const FORMS: &str = "a date such as `2031 Mar. 4.51732 TT`, `2031-03-04.51732 TT` or `JD 2462930.0 TT`";
 const MONTHS: [&str; 12] = [
-    "january", "february", "march", "april", "may", "june", "july", "august", "september", "october", "november", "december",
+    "january",
+    "february",
+    "march",
+    "april",
+    "may",
+    "june",
+    "july",
+    "august",
+    "september",
+    "october",
+    "november",
+    "december",
 ];
 
 /// The date that begins at `tokens[start]`, and the index of the token after it.
@@ -86,10 +97,12 @@ fn year(word: &str) -> Option<i32> {
 }
 
 fn read_one(line: usize, tokens: &[Token], start: usize) -> Result<(Stamp, usize), Error> {
-    let column = |index: usize| tokens.get(index).map_or_else(
-        || tokens.last().map_or(1, |token| token.column + token.text.chars().count()),
-        |token| token.column,
-    );
+    let column = |index: usize| {
+        tokens.get(index).map_or_else(
+            || tokens.last().map_or(1, |token| token.column + token.text.chars().count()),
+            |token| token.column,
+        )
+    };
     let Some(first) = word(tokens, start) else {
         return Err(refusal(line, column(start), "no date", FORMS));
     };
@@ -108,14 +121,21 @@ fn read_one(line: usize, tokens: &[Token], start: usize) -> Result<(Stamp, usize
             return Err(refusal(line, column(start + 1), "no number", "a number after `JD` or `MJD`"));
         };
         let (scale, next) = scale_at(tokens, start + 2);
-        return stamp_of_number(figure, scale, modified).map(|stamp| (stamp, next)).map_err(|error| placed(error, start + 1));
+        return stamp_of_number(figure, scale, modified)
+            .map(|stamp| (stamp, next))
+            .map_err(|error| placed(error, start + 1));
     }
     // Three words: year, month, day.
     if let (Some(year), Some(month_word)) = (year(first), word(tokens, start + 1)) {
         let month = month_by_name(month_word).or_else(|| month_by_number(month_word));
         if let Some(month) = month {
             let Some(day) = word(tokens, start + 2) else {
-                return Err(refusal(line, column(start + 2), "no day", "the day after year and month, such as `4.51732`"));
+                return Err(refusal(
+                    line,
+                    column(start + 2),
+                    "no day",
+                    "the day after year and month, such as `4.51732`",
+                ));
             };
             let (scale, next) = scale_at(tokens, start + 3);
             let stamp = Stamp::from_parts(year, month, day, scale).map_err(|error| {
@@ -156,7 +176,12 @@ fn read_one(line: usize, tokens: &[Token], start: usize) -> Result<(Stamp, usize
                 (Some(_), Some(_), Some(day)) if day.contains(['T', ':']) => first.parse(),
                 (Some(year), Some(month_word), Some(day)) => {
                     let Some(month) = month_by_name(month_word).or_else(|| month_by_number(month_word)) else {
-                        return Err(refusal(line, column(start), quote(month_word), "a month, by number or English name"));
+                        return Err(refusal(
+                            line,
+                            column(start),
+                            quote(month_word),
+                            "a month, by number or English name",
+                        ));
                     };
                     let year = if unsigned.len() < first.len() { -year } else { year };
                     Stamp::from_parts(year, month, day, scale)
@@ -172,5 +197,9 @@ fn read_one(line: usize, tokens: &[Token], start: usize) -> Result<(Stamp, usize
 }
 
 fn stamp_of_number(figure: &str, scale: Scale, modified: bool) -> Result<Stamp, Error> {
-    if modified { Stamp::from_modified_julian(figure, scale) } else { format!("JD {figure} {scale}").parse::<Stamp>().map_err(|error| error.at(Place::Whole)) }
+    if modified {
+        Stamp::from_modified_julian(figure, scale)
+    } else {
+        format!("JD {figure} {scale}").parse::<Stamp>().map_err(|error| error.at(Place::Whole))
+    }
 }

@@ -79,12 +79,20 @@ mod tests {
     fn packed_designations_unpack() {
         // Forms from the published description of packed designations, with invented or documented examples.
         for (packed, plain) in [
-            ("K31A010", "2031 A1"), ("J95O010", "1995 O1"), ("K19Y04b", "2019 Y4-B"), ("K15E61R", "2015 ER61"),
-            ("J94P01b", "1994 P1-B"), ("K08A10a", "2008 A10-A"), ("K31AA0C", "2031 AC100"), ("I86S00A", "1886 SA"),
+            ("K31A010", "2031 A1"),
+            ("J95O010", "1995 O1"),
+            ("K19Y04b", "2019 Y4-B"),
+            ("K15E61R", "2015 ER61"),
+            ("J94P01b", "1994 P1-B"),
+            ("K08A10a", "2008 A10-A"),
+            ("K31AA0C", "2031 AC100"),
+            ("I86S00A", "1886 SA"),
         ] {
             assert_eq!(unpack(packed).as_deref(), Some(plain), "{packed}");
         }
-        for odd in ["", "K31A01", "K31A0100", "M31A010", "K3xA010", "K31I010", "K31A000", "K31A0x0", "K31A01-", "\u{e9}31A010"] {
+        for odd in
+            ["", "K31A01", "K31A0100", "M31A010", "K3xA010", "K31I010", "K31A000", "K31A0x0", "K31A01-", "\u{e9}31A010"]
+        {
             assert_eq!(unpack(odd), None, "{odd}");
         }
     }
@@ -101,7 +109,20 @@ mod tests {
         ] {
             assert_eq!(title(line).map(|(_, name)| name), Some(name), "{line}");
         }
-        for line in ["", "Comet", "P   6.37", "P = 6.37", "A1 = 0", "C", "C/", "2031 Mar. 4.5", "q 0.5", "12 P", "Peri. 3", "\u{e9}"] {
+        for line in [
+            "",
+            "Comet",
+            "P   6.37",
+            "P = 6.37",
+            "A1 = 0",
+            "C",
+            "C/",
+            "2031 Mar. 4.5",
+            "q 0.5",
+            "12 P",
+            "Peri. 3",
+            "\u{e9}",
+        ] {
             assert_eq!(title(line), None, "{line}");
         }
     }

@@ -7,7 +7,7 @@
 use super::label::{Label, REQUIRED};
 use super::labelled::{Event, Value, What};
 use super::token::Number;
-use super::refusal;
+use super::{Entry, refusal};
 use crate::error::Error;
 use crate::orbit::elements::{Brightness, Comet, Elements, LARGEST_NONGRAVITATIONAL_AU_D2, Nongravitational};
 use crate::time::Stamp;
@@ -60,7 +60,9 @@ impl<'a> Draft<'a> {
                     continue;
                 }
             };
-            let first = values.iter().find(|(other, ..)| other == label && !matches!(label, Label::Brightness | Label::Equinox));
+            let first = values
+                .iter()
+                .find(|(other, ..)| other == label && !matches!(label, Label::Brightness | Label::Equinox));
             match first {
                 Some((_, same, _)) if *same == value => {}
                 Some((_, _, first)) => {
@@ -72,10 +74,12 @@ impl<'a> Draft<'a> {
             }
         }
         let line = events.iter().find(|event| matches!(event.what, What::Value(..))).map_or(1, |event| event.line);
-        if !REQUIRED.iter().any(|label| present.contains(label)) && !present.contains(&Label::Name) && errors.is_empty() {
+        if !REQUIRED.iter().any(|label| present.contains(label)) && !present.contains(&Label::Name) && errors.is_empty()
+        {
             return Ok(None);
         }
-        let missing: Vec<&str> = REQUIRED.iter().filter(|label| !present.contains(label)).map(|label| label.words()).collect();
+        let missing: Vec<&str> =
+            REQUIRED.iter().filter(|label| !present.contains(label)).map(|label| label.words()).collect();
         if !missing.is_empty() {
             let found = format!("elements without {}", missing.join(", "));
             errors.insert(0, refusal(line, 1, found, "T, q, e, Peri., Node and Incl. for each comet"));
@@ -105,11 +109,11 @@ impl<'a> Draft<'a> {
         }
     }
 
-    /// The comet, and the line it begins on. `name` serves if the values name none.
+    /// The comet. `name` serves if the values name none.
     ///
     /// # Errors
     /// Values out of range, or that disagree.
-    pub(super) fn comet(&self, name: &Option<String>, notices: &mut Vec<(usize, String)>) -> Result<(usize, Comet), Vec<Error>> {
+    pub(super) fn comet(&self, name: &Option<String>, notices: &mut Vec<(usize, String)>) -> Result<Entry, Vec<Error>> {
         let mut errors = self.out_of_range();
         if errors.is_empty() {
             errors = self.disagreements();
@@ -142,9 +146,14 @@ impl<'a> Draft<'a> {
         if errors.is_empty()
             && let Err(error) = comet.validate()
         {
-            errors.push(refusal(self.line, 1, format!("{} at {}", error.found, error.place).trim_end_matches([':', ' ']), error.allowed));
+            errors.push(refusal(
+                self.line,
+                1,
+                format!("{} at {}", error.found, error.place).trim_end_matches([':', ' ']),
+                error.allowed,
+            ));
         }
-        if errors.is_empty() { Ok((self.line, comet)) } else { Err(errors) }
+        if errors.is_empty() { Ok(Entry { line: self.line, comet }) } else { Err(errors) }
     }
 
     fn out_of_range(&self) -> Vec<Error> {
@@ -163,7 +172,12 @@ impl<'a> Draft<'a> {
         ];
         let refused = checks.iter().filter_map(|(label, holds, allowed)| {
             let (number, event) = self.number(*label).filter(|(number, _)| !holds(number.value, limit))?;
-            Some(refusal(event.line, event.column, format!("{} {}", label.words(), number.value), format!("it {allowed}")))
+            Some(refusal(
+                event.line,
+                event.column,
+                format!("{} {}", label.words(), number.value),
+                format!("it {allowed}"),
+            ))
         });
         refused.collect()
     }
@@ -187,16 +201,29 @@ impl<'a> Draft<'a> {
     }
 
     /// The refusal of `given`, unless `derived` of q and e gives it within all roundings.
-    fn disagreement(&self, label: Label, given: Number, event: &Event, derived: fn(f64, f64) -> f64, slack: f64) -> Option<Error> {
+    fn disagreement(
+        &self,
+        label: Label,
+        given: Number,
+        event: &Event,
+        derived: fn(f64, f64) -> f64,
+        slack: f64,
+    ) -> Option<Error> {
         let (q, _) = self.number(Label::PerihelionDistance)?;
         let (e, _) = self.number(Label::Eccentricity)?;
         let words = label.words();
         let both = format!("q {} and e {}", q.value, e.value);
         if e.value >= 1.0 && matches!(label, Label::MeanMotion | Label::Period) {
-            return Some(refusal(event.line, event.column, format!("{words} {}", given.value), format!("none, since {both} make no closed orbit")));
+            return Some(refusal(
+                event.line,
+                event.column,
+                format!("{words} {}", given.value),
+                format!("none, since {both} make no closed orbit"),
+            ));
         }
         // Whole units, since some publishers cut instead of rounding.
-        let ends = [-2.0, 2.0].map(|side| [-2.0, 2.0].map(|other| derived(q.value + side * q.half_unit, e.value + other * e.half_unit)));
+        let ends = [-2.0, 2.0]
+            .map(|side| [-2.0, 2.0].map(|other| derived(q.value + side * q.half_unit, e.value + other * e.half_unit)));
         let (mut least, mut most) = (f64::INFINITY, f64::NEG_INFINITY);
         for end in ends.into_iter().flatten() {
             if !end.is_finite() {
@@ -247,7 +274,10 @@ impl<'a> Draft<'a> {
                 branches.insert(0, Brightness { absolute_magnitude, photometric_index_n, from: None, to: None });
             }
             (None, None) => {}
-            _ => notices.push((self.line, "Absolute magnitude and photometric index are used only together; one of them is missing.".into())),
+            _ => notices.push((
+                self.line,
+                "Absolute magnitude and photometric index are used only together; one of them is missing.".into(),
+            )),
         }
         Ok(branches)
     }

@@ -87,7 +87,9 @@ impl Label {
             Label::PerihelionDistance | Label::SemimajorAxis => &["au", "a.u", "a.u."],
             Label::InverseAxis => &["/au", "au^-1", "1/au", "au-1", "au**-1"],
             label if label.is_angle() => &["deg", "deg.", "degrees", "degree", "\u{b0}"],
-            Label::MeanMotion | Label::MeanMotionOrIndex => &["deg/day", "deg/d", "degrees/day", "\u{b0}", "/day", "/d"],
+            Label::MeanMotion | Label::MeanMotionOrIndex => {
+                &["deg/day", "deg/d", "degrees/day", "\u{b0}", "/day", "/d"]
+            }
             Label::Period => &["years", "year", "yr", "yr.", "yrs", "y"],
             Label::AbsoluteMagnitude => &["mag", "mag."],
             Label::A1 | Label::A2 | Label::A3 => &["au/d^2", "au/day^2", "au/d**2", "au/day**2", "au/d2", "au/day2"],
@@ -98,9 +100,8 @@ impl Label {
 }
 
 /// Units that would change the value, whichever it is; refused by name.
-pub(super) const OTHER_UNITS: [&str; 14] = [
-    "km", "m", "rad", "radian", "radians", "arcsec", "arcmin", "gon", "hours", "ly", "pc", "days", "d", "10^-8",
-];
+pub(super) const OTHER_UNITS: [&str; 14] =
+    ["km", "m", "rad", "radian", "radians", "arcsec", "arcmin", "gon", "hours", "ly", "pc", "days", "d", "10^-8"];
 
 /// The label that a symbol names where no `=` follows, as in printed blocks.
 pub(super) fn bare(word: &str) -> Option<Label> {
@@ -142,18 +143,38 @@ pub(super) fn named(words: &str) -> Option<Label> {
         _ => {}
     }
     let plain = words.to_lowercase().replace(['_', '-'], " ").replace('.', "");
-    let plain = plain.trim_end_matches(" deg").trim_end_matches(" au").trim_end_matches(" au d2").trim_end_matches(" days");
+    let plain =
+        plain.trim_end_matches(" deg").trim_end_matches(" au").trim_end_matches(" au d2").trim_end_matches(" days");
     Some(match plain {
         "name" | "comet" | "object" | "designation" => Label::Name,
-        "tp" | "t0" | "perihelion time" | "time of perihelion" | "perihelion date" | "date of perihelion" | "perihelion passage"
-        | "time of perihelion passage" | "perihelion time t" => Label::PerihelionTime,
+        "tp"
+        | "t0"
+        | "perihelion time"
+        | "time of perihelion"
+        | "perihelion date"
+        | "date of perihelion"
+        | "perihelion passage"
+        | "time of perihelion passage"
+        | "perihelion time t" => Label::PerihelionTime,
         "perihelion distance" | "perihelion distance q" => Label::PerihelionDistance,
         "ecc" | "eccentricity" | "eccentricity e" => Label::Eccentricity,
-        "w" | "arg peri" | "arg of peri" | "argument of perihelion" | "perihelion argument" | "arg perihelion" | "arg of perihelion" => {
-            Label::ArgumentOfPerihelion
-        }
-        "om" | "asc node" | "ascending node" | "longitude of node" | "longitude of the node" | "longitude of ascending node"
-        | "longitude of the ascending node" | "long of node" | "long asc node" | "long of asc node" => Label::AscendingNode,
+        "w"
+        | "arg peri"
+        | "arg of peri"
+        | "argument of perihelion"
+        | "perihelion argument"
+        | "arg perihelion"
+        | "arg of perihelion" => Label::ArgumentOfPerihelion,
+        "om"
+        | "asc node"
+        | "ascending node"
+        | "longitude of node"
+        | "longitude of the node"
+        | "longitude of ascending node"
+        | "longitude of the ascending node"
+        | "long of node"
+        | "long asc node"
+        | "long of asc node" => Label::AscendingNode,
         "inclination" | "inclination i" => Label::Inclination,
         "epoch of osculation" | "osculation epoch" | "epoch of elements" => Label::Epoch,
         "semimajor axis" | "semi major axis" | "semimajor axis a" => Label::SemimajorAxis,

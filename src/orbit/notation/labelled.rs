@@ -51,7 +51,10 @@ pub(super) fn read<'a>(lines: &[(usize, &'a str)], reading: &mut Reading) -> Vec
     }
     for event in &events {
         if let What::Unknown(name) = &event.what {
-            reading.notice(event.line, format!("{} is not an element that is used here; it was passed over.", quote(name)));
+            reading.notice(
+                event.line,
+                format!("{} is not an element that is used here; it was passed over.", quote(name)),
+            );
         }
     }
     let starts_comet = |what: &What| matches!(what, What::Title(_) | What::Value(Label::Name, _));
@@ -212,7 +215,8 @@ impl Line<'_> {
         let label = label::bare(self.word(start)?).filter(|_| free)?;
         let follower = self.word(start + 1)?;
         let begins_value = starts_like_number(follower)
-            || label.is_date() && matches!(follower.to_ascii_uppercase().as_str(), "JD" | "JDT" | "JDE" | "MJD" | "JD." | "MJD.");
+            || label.is_date()
+                && matches!(follower.to_ascii_uppercase().as_str(), "JD" | "JDT" | "JDE" | "MJD" | "JD." | "MJD.");
         // Something with a figure in it was meant as a value; so is whatever follows a label that prose does not have.
         let meant = follower.contains(|c: char| c.is_ascii_digit())
             || matches!(label, Label::PerihelionDistance) && start == 0
@@ -225,7 +229,8 @@ impl Line<'_> {
     fn refuse<T>(&self, index: usize, found: Option<String>, allowed: &str) -> Result<T, Error> {
         let end = self.text.trim_end().chars().count() + 1;
         let token = self.tokens.get(index);
-        let found = found.or_else(|| token.map(|token| quote(token.text))).unwrap_or_else(|| "the end of the line".into());
+        let found =
+            found.or_else(|| token.map(|token| quote(token.text))).unwrap_or_else(|| "the end of the line".into());
         Err(refusal(self.number, token.map_or(end, |token| token.column), found, allowed))
     }
 
@@ -234,7 +239,11 @@ impl Line<'_> {
         let start = self.next;
         match label {
             Label::Name | Label::Brightness => {
-                let text = self.tokens.get(start.wrapping_sub(1)).map_or("", |token| &self.text[token.offset + token.text.len()..]).trim();
+                let text = self
+                    .tokens
+                    .get(start.wrapping_sub(1))
+                    .map_or("", |token| &self.text[token.offset + token.text.len()..])
+                    .trim();
                 self.next = self.tokens.len();
                 Ok((label, Value::Text(text.to_string())))
             }
@@ -249,7 +258,9 @@ impl Line<'_> {
                 self.next += 1;
                 match self.word(start) {
                     Some(word) if EQUINOX.contains(&word) || word == "2000" => Ok((label, Value::Text(String::new()))),
-                    Some(word) if OLD_EQUINOX.contains(&word) || word == "1950" => Err(refuse_old_equinox(self.number, &self.tokens[start])),
+                    Some(word) if OLD_EQUINOX.contains(&word) || word == "1950" => {
+                        Err(refuse_old_equinox(self.number, &self.tokens[start]))
+                    }
                     _ => self.refuse(start, None, "the equinox 2000.0"),
                 }
             }
@@ -294,14 +305,23 @@ impl Line<'_> {
                 Sort::Word if label::OTHER_UNITS.contains(&small.as_str()) && !label.units().is_empty() => {
                     let units = label.units().first().copied().unwrap_or("");
                     self.next = self.tokens.len();
-                    return Err(refusal(self.number, token.column, format!("the unit {}", quote(token.text)), format!("{} in {units}", label.words())));
+                    return Err(refusal(
+                        self.number,
+                        token.column,
+                        format!("the unit {}", quote(token.text)),
+                        format!("{} in {units}", label.words()),
+                    ));
                 }
                 Sort::Word if starts_like_number(token.text) => {
                     let component = number(token.text).is_some_and(|number| number.value.abs() <= 1.0);
                     columns += 1;
                     if !(label.is_angle() && component && columns <= 2) {
                         let allowed = format!("one number for {}", label.words());
-                        return self.refuse(self.next, Some(format!("a second number, {}", quote(token.text))), &allowed);
+                        return self.refuse(
+                            self.next,
+                            Some(format!("a second number, {}", quote(token.text))),
+                            &allowed,
+                        );
                     }
                 }
                 _ => break,

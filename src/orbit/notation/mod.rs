@@ -26,7 +26,7 @@ pub use write::write;
 
 use crate::error::{Error, Kind, Place};
 use crate::orbit::elements::Comet;
-use std::collections::HashMap;
+use std::collections::BTreeMap;
 
 /// Longest text read, bytes. Ten times the clearing house's list of all comets; read in about a second.
 pub const MOST_BYTES: usize = 32_000_000;
@@ -40,14 +40,22 @@ pub const CAN_BE_PASTED: &str = "elements of one or more comets: the one-line fo
 /// What pasted text holds.
 #[derive(Clone, Debug, Default, PartialEq)]
 pub struct Reading {
-    /// The comets read, each with the line its elements begin on, in the order of the text. No two share a name.
-    pub comets: Vec<(usize, Comet)>,
+    /// The comets read, in the order of the text. No two share a name.
+    pub comets: Vec<Entry>,
     /// What was refused, at most [`MOST_ERRORS`], in the order of the text.
     pub errors: Vec<Error>,
     /// What was read but deserves a word, at most [`MOST_ERRORS`].
     pub notices: Vec<Notice>,
     /// How many more errors there were.
     pub errors_left_out: usize,
+}
+
+/// A comet that was read.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Entry {
+    /// The line on which its elements begin, from 1.
+    pub line: usize,
+    pub comet: Comet,
 }
 
 /// A word on something that was read.
@@ -82,9 +90,9 @@ impl Reading {
 
     /// Gives comets that share a name names apart, such as `X (2)`, and says so.
     pub fn name_apart(&mut self) {
-        let mut taken: HashMap<String, usize> = HashMap::new();
+        let mut taken: BTreeMap<String, usize> = BTreeMap::new();
         let mut renamed = Vec::new();
-        for (line, comet) in &mut self.comets {
+        for Entry { line, comet } in &mut self.comets {
             let name = comet.name.clone();
             while let Some(count) = taken.get_mut(&comet.name) {
                 *count += 1;
@@ -139,7 +147,7 @@ pub fn read(text: &str) -> Reading {
             match columns::read(line, number) {
                 Ok((comet, notices)) => {
                     notices.into_iter().for_each(|notice| reading.notice(number, notice));
-                    reading.comets.push((number, comet));
+                    reading.comets.push(Entry { line: number, comet });
                 }
                 Err(error) => reading.refuse(error),
             }

@@ -29,7 +29,8 @@ pub fn write(comet: &Comet) -> String {
         line("A3", format!("{:?} au/d^2", push.a3_au_d2));
         line("delay", format!("{:?} days", push.delay_days));
     }
-    if let [Brightness { absolute_magnitude, photometric_index_n, from: None, to: None }] = comet.brightness.as_slice() {
+    if let [Brightness { absolute_magnitude, photometric_index_n, from: None, to: None }] = comet.brightness.as_slice()
+    {
         line("H", format!("{absolute_magnitude:?}"));
         line("photometric index n", format!("{photometric_index_n:?}"));
     } else {
