@@ -8,8 +8,7 @@ use std::io::{self, BufWriter, Read, Write};
 use std::process::ExitCode;
 use tailvane::engine::{Engine, View};
 use tailvane::error::{Error, Kind, Place};
-use tailvane::orbit::notation;
-use tailvane::plan::Plan;
+use tailvane::plan::{Plan, paste};
 use tailvane::sky::column::{COLUMNS, Column, Value};
 use tailvane::time::{Instant, Stamp};
 
@@ -291,7 +290,7 @@ fn elements(mut arguments: lexopt::Parser) -> Result<(), Stop> {
     if let Some(extra) = arguments.next()? {
         return Err(extra.unexpected().into());
     }
-    let reading = notation::read(&read(&path)?);
+    let reading = paste::read(&read(&path)?);
     let mut out = BufWriter::new(io::stdout().lock());
     for entry in &reading.comets {
         writeln!(out, "{}", Plan::from(entry.comet.clone()).print_line())?;
@@ -299,6 +298,9 @@ fn elements(mut arguments: lexopt::Parser) -> Result<(), Stop> {
     out.flush()?;
     for error in &reading.errors {
         eprintln!("tailvane: {error}");
+    }
+    if reading.errors_left_out > 0 {
+        eprintln!("tailvane: {} more refusals", reading.errors_left_out);
     }
     for notice in &reading.notices {
         eprintln!("tailvane: {notice}");

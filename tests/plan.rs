@@ -56,7 +56,9 @@ fn refuses(old: &str, new: &str, parts: &[&str]) {
     let error = refusal(&PLAN.replacen(old, new, 1));
     let line = PLAN[..PLAN.find(old).unwrap()].matches('\n').count() + 1;
     match error.place {
-        Place::Line { line: found, column } => assert!(found.abs_diff(line) <= 1 && column > 0, "{error}, wanted line {line}"),
+        Place::Line { line: found, column } => {
+            assert!(found.abs_diff(line) <= 1 && column > 0, "{error}, wanted line {line}")
+        }
         ref place => panic!("{place:?}"),
     }
     for part in parts {
@@ -82,7 +84,11 @@ fn optional_parts_may_be_absent() {
 
 #[test]
 fn refusals_name_key_line_and_what_is_allowed() {
-    refuses("\"eccentricity\"", "\"ecc\"", &["unknown key `ecc`", "comet.elements", "`eccentricity`", "line 7, column"]);
+    refuses(
+        "\"eccentricity\"",
+        "\"ecc\"",
+        &["unknown key `ecc`", "comet.elements", "`eccentricity`", "line 7, column"],
+    );
     refuses("\"height_m\"", "\"tails\": 1, \"height_m\"", &["unknown key `tails`"]);
     refuses("\"observer\"", "\"camera\": {}, \"observer\"", &["unknown key `camera`"]);
     refuses("0.52", "\"0.52\"", &["string \"0.52\"", "comet.elements.perihelion_distance_au", "a number"]);
@@ -102,7 +108,11 @@ fn refusals_name_key_line_and_what_is_allowed() {
     refuses("\"Invented comet\"", "\"\"", &["comet.name", "a name"]);
     refuses("6.5", "1e3", &["comet.brightness[0].absolute_magnitude", "line 22"]);
     refuses("\"epoch\":", "\"eccentricity\":", &["`eccentricity` twice"]);
-    refuses("\"tailvane_plan\": 1", "\"tailvane_plan\": 2, \"sounds\": 3", &["line 2, column 20", "plan of version 2", "version 1"]);
+    refuses(
+        "\"tailvane_plan\": 1",
+        "\"tailvane_plan\": 2, \"sounds\": 3",
+        &["line 2, column 20", "plan of version 2", "version 1"],
+    );
     refuses("\"tailvane_plan\": 1", "\"tailvane_plan\": \"1\"", &["version \"1\""]);
     refuses("\"tailvane_plan\": 1", "\"tailvane_plan\": 0", &["version 0"]);
 }

@@ -39,7 +39,12 @@ fn truth() -> Vec<Row> {
         .map(|line| {
             let cells: Vec<&str> = line.split(',').collect();
             let number = |cell: &str| cell.parse().unwrap();
-            Row { utc: cells[0] == "UTC", date: cells[1].into(), day: number(cells[2]), offset_seconds: number(cells[3]) }
+            Row {
+                utc: cells[0] == "UTC",
+                date: cells[1].into(),
+                day: number(cells[2]),
+                offset_seconds: number(cells[3]),
+            }
         })
         .collect();
     assert_eq!(rows.len(), 720 + 112);
@@ -123,7 +128,13 @@ fn texts_for_people_round_and_carry() {
 #[test]
 fn one_instant_in_every_form() {
     let instant = days("2031-03-20T06:00:00Z");
-    for same in ["2031-03-20.25 UTC", "JD 2462945.75 UTC", "2031-03-20T06:00Z", " jd 2462945.75  utc ", "2031-03-20t06:00:00.000z"] {
+    for same in [
+        "2031-03-20.25 UTC",
+        "JD 2462945.75 UTC",
+        "2031-03-20T06:00Z",
+        " jd 2462945.75  utc ",
+        "2031-03-20t06:00:00.000z",
+    ] {
         assert!((days(same) - instant).abs() < 1e-11, "{same}");
     }
     assert_eq!(days("2031-03-20.75 TT"), days("JD 2462946.25 TDB"));

@@ -95,7 +95,8 @@ impl Elements {
         check("argument_of_perihelion_deg", peri, peri.abs() <= 360.0, angle)?;
         if let Some(push) = self.nongravitational {
             let allowed = "a parameter in au/day^2, of size below 1e-4 (circulars print it in units of 1e-8 au/day^2)";
-            for (key, value) in [("a1_au_d2", push.a1_au_d2), ("a2_au_d2", push.a2_au_d2), ("a3_au_d2", push.a3_au_d2)] {
+            for (key, value) in [("a1_au_d2", push.a1_au_d2), ("a2_au_d2", push.a2_au_d2), ("a3_au_d2", push.a3_au_d2)]
+            {
                 let holds = value.abs() < LARGEST_NONGRAVITATIONAL_AU_D2;
                 check(&format!("nongravitational.{key}"), value, holds, allowed)?;
             }
@@ -127,7 +128,12 @@ impl Comet {
                 && from.instant() > to.instant()
             {
                 let place = Place::Field(path("to"));
-                return Err(Error::new(Kind::Range, place, to.to_string(), format!("a time not before `from`, {from}")));
+                return Err(Error::new(
+                    Kind::Range,
+                    place,
+                    to.to_string(),
+                    format!("a time not before `from`, {from}"),
+                ));
             }
         }
         Ok(())

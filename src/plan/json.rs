@@ -108,13 +108,14 @@ pub(super) fn children(text: &str, start: usize) -> Vec<(Option<Range<usize>>, R
     children
 }
 
-fn skip_blanks(text: &str, start: usize) -> usize {
+/// The offset of the first character from `start` on that is not blank.
+pub(super) fn skip_blanks(text: &str, start: usize) -> usize {
     start + text.as_bytes()[start..].iter().take_while(|byte| byte.is_ascii_whitespace()).count()
 }
 
 /// Where the value that begins at `start` ends: brackets matched, strings passed over. At least one character on,
 /// unless at the end of the text.
-fn end_of_value(text: &str, start: usize) -> usize {
+pub(super) fn end_of_value(text: &str, start: usize) -> usize {
     let bytes = text.as_bytes();
     let (mut depth, mut in_string, mut escaped) = (0_usize, false, false);
     for (offset, &byte) in bytes.iter().enumerate().skip(start) {

@@ -1,7 +1,8 @@
 //! What did a person set up?
 //!
 //! One JSON object, version 1, keys in the order below. Unknown keys, wrong types and values out of range are refused
-//! by name; a plan printed and read again is the same plan. `json` finds places in the text.
+//! by name; a plan printed and read again is the same plan. `json` finds places in the text; [`paste`]
+//! reads whatever a person pastes: a plan, several, or elements in any published notation.
 //!
 //! | key | what | may be left out |
 //! | --- | --- | --- |
@@ -12,6 +13,7 @@
 //! | `time` | a date in any form of [`Stamp`] | yes |
 
 mod json;
+pub mod paste;
 
 use crate::body::observer::{Observer, Site};
 use crate::error::{Error, Kind, Place};

@@ -135,7 +135,16 @@ mod tests {
 
     #[test]
     fn days_that_a_month_lacks_are_refused() {
-        for (year, month, day) in [(2031, 2, 29), (1900, 2, 29), (2031, 4, 31), (2031, 13, 1), (2031, 0, 1), (2031, 1, 0), (10_000, 1, 1), (-4713, 12, 31)] {
+        for (year, month, day) in [
+            (2031, 2, 29),
+            (1900, 2, 29),
+            (2031, 4, 31),
+            (2031, 13, 1),
+            (2031, 0, 1),
+            (2031, 1, 0),
+            (10_000, 1, 1),
+            (-4713, 12, 31),
+        ] {
             assert!(Date::new(year, month, day).is_err(), "{year} {month} {day}");
         }
         assert!(Date::new(2000, 2, 29).is_ok());

@@ -51,10 +51,23 @@ pub struct Stamp {
 
 #[derive(Clone, Copy, Debug, PartialEq)]
 enum Form {
-    Iso { date: Date, hour: u32, minute: u32, second: Option<(u32, Decimals)> },
-    Day { date: Date, decimals: Decimals, scale: Scale },
+    Iso {
+        date: Date,
+        hour: u32,
+        minute: u32,
+        second: Option<(u32, Decimals)>,
+    },
+    Day {
+        date: Date,
+        decimals: Decimals,
+        scale: Scale,
+    },
     /// Whole days and decimals of the Julian date.
-    Julian { whole: i64, decimals: Decimals, scale: Scale },
+    Julian {
+        whole: i64,
+        decimals: Decimals,
+        scale: Scale,
+    },
 }
 
 /// Julian dates of the first and last midnight of the accepted years, less 2451544.5.
@@ -72,14 +85,20 @@ impl Stamp {
                 let seconds = f64::from(hour * 3600 + minute * 60 + second) + decimals.fraction();
                 Instant::from_utc(date.day_number(), seconds / scale::SECONDS_PER_DAY)
             }
-            Form::Day { date, decimals, scale: Scale::Utc } => Instant::from_utc(date.day_number(), decimals.fraction()),
+            Form::Day { date, decimals, scale: Scale::Utc } => {
+                Instant::from_utc(date.day_number(), decimals.fraction())
+            }
             Form::Day { date, decimals, .. } => {
                 Instant::from_tdb_days((date.day_number() as f64 - 0.5) + decimals.fraction())
             }
             Form::Julian { whole, decimals, scale: Scale::Utc } => {
                 // From noon to midnight: half a day on, with the carry.
                 let (day, fraction) = (whole - 2_451_545, decimals.fraction() + 0.5);
-                if fraction >= 1.0 { Instant::from_utc(day + 1, fraction - 1.0) } else { Instant::from_utc(day, fraction) }
+                if fraction >= 1.0 {
+                    Instant::from_utc(day + 1, fraction - 1.0)
+                } else {
+                    Instant::from_utc(day, fraction)
+                }
             }
             Form::Julian { whole, decimals, .. } => {
                 Instant::from_tdb_days((whole - 2_451_545) as f64 + decimals.fraction())
@@ -198,7 +217,11 @@ fn read_julian(cursor: &mut Cursor) -> Result<Form, Error> {
     let midnight = whole - 2_451_545 + i64::from(decimals.fraction() >= 0.5);
     let (first, last) = julian_span();
     if !(first..=last).contains(&midnight) {
-        let allowed = format!("a Julian date from {}.5 to {}.5 (years {FIRST_YEAR} to {LAST_YEAR})", first + 2_451_544, last + 2_451_545);
+        let allowed = format!(
+            "a Julian date from {}.5 to {}.5 (years {FIRST_YEAR} to {LAST_YEAR})",
+            first + 2_451_544,
+            last + 2_451_545
+        );
         return Err(Error::new(Kind::Time, at(start), format!("Julian date {whole}{decimals}"), allowed));
     }
     Ok(Form::Julian { whole, decimals, scale: read_scale(cursor)? })

@@ -20,12 +20,15 @@ pub fn stamp_texts() -> impl Strategy<Value = String> {
     let scale = prop::sample::select(vec!["UTC", "TT", "TDB"]);
     let decimals = prop_oneof![Just(String::new()), "\\.[0-9]{1,18}"];
     prop_oneof![
-        (dates(), 0..24, 0..60, prop::option::of((0..60, decimals.clone()))).prop_map(|(date, hour, minute, second)| {
-            let second = second.map(|(second, decimals)| format!(":{second:02}{decimals}")).unwrap_or_default();
-            format!("{date}T{hour:02}:{minute:02}{second}Z")
-        }),
+        (dates(), 0..24, 0..60, prop::option::of((0..60, decimals.clone()))).prop_map(
+            |(date, hour, minute, second)| {
+                let second = second.map(|(second, decimals)| format!(":{second:02}{decimals}")).unwrap_or_default();
+                format!("{date}T{hour:02}:{minute:02}{second}Z")
+            }
+        ),
         Just("2016-12-31T23:59:60.5Z".to_string()),
-        (dates(), decimals.clone(), scale.clone()).prop_map(|(date, decimals, scale)| format!("{date}{decimals} {scale}")),
+        (dates(), decimals.clone(), scale.clone())
+            .prop_map(|(date, decimals, scale)| format!("{date}{decimals} {scale}")),
         (40..5_373_484_i32, decimals, scale).prop_map(|(day, decimals, scale)| format!("JD {day}{decimals} {scale}")),
     ]
 }
@@ -36,9 +39,10 @@ pub fn stamps() -> impl Strategy<Value = Stamp> {
 
 /// Names with letters of any script, signs and inner blanks, but none around.
 pub fn names() -> impl Strategy<Value = String> {
-    prop_oneof!["[CPDXI]/20[0-9]{2} [A-Y][1-9] \\([A-Z][a-z]{3,9}\\)", "\\PC{1,30}"].prop_filter("blanks around", |name| {
-        !name.is_empty() && name.trim() == name && !name.chars().any(char::is_control)
-    })
+    prop_oneof!["[CPDXI]/20[0-9]{2} [A-Y][1-9] \\([A-Z][a-z]{3,9}\\)", "\\PC{1,30}"]
+        .prop_filter("blanks around", |name| {
+            !name.is_empty() && name.trim() == name && !name.chars().any(char::is_control)
+        })
 }
 
 /// Numbers with few digits and with all of them.

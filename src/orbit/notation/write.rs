@@ -1,0 +1,48 @@
+//! How is a comet written as lines that people read and edit?
+//!
+//! `name = value` lines, which [`super::read`] reads back to the same comet: every date as it was typed, every number
+//! with as many digits as it needs. The shape of the text is fixed; angles are degrees.
+
+use crate::orbit::elements::{Brightness, Comet};
+use std::fmt::Write;
+
+/// The comet as `name = value` lines. Reading them gives the same comet, if it is valid.
+pub fn write(comet: &Comet) -> String {
+    let elements = &comet.elements;
+    let mut text = format!("name = {}\n", comet.name);
+    let mut line = |label: &str, value: String| {
+        // Writing to a string cannot fail.
+        let _ = writeln!(text, "{label} = {value}");
+    };
+    line("T", elements.perihelion_time.to_string());
+    line("q", format!("{:?} au", elements.perihelion_distance_au));
+    line("e", format!("{:?}", elements.eccentricity));
+    line("peri", format!("{:?} deg", elements.argument_of_perihelion_deg));
+    line("node", format!("{:?} deg", elements.ascending_node_deg));
+    line("i", format!("{:?} deg", elements.inclination_deg));
+    if let Some(epoch) = &elements.epoch {
+        line("epoch", epoch.to_string());
+    }
+    if let Some(push) = elements.nongravitational {
+        line("A1", format!("{:?} au/d^2", push.a1_au_d2));
+        line("A2", format!("{:?} au/d^2", push.a2_au_d2));
+        line("A3", format!("{:?} au/d^2", push.a3_au_d2));
+        line("delay", format!("{:?} days", push.delay_days));
+    }
+    if let [Brightness { absolute_magnitude, photometric_index_n, from: None, to: None }] = comet.brightness.as_slice()
+    {
+        line("H", format!("{absolute_magnitude:?}"));
+        line("photometric index n", format!("{photometric_index_n:?}"));
+    } else {
+        for branch in &comet.brightness {
+            let mut value = format!("H {:?}, n {:?}", branch.absolute_magnitude, branch.photometric_index_n);
+            for (word, limit) in [("from", &branch.from), ("to", &branch.to)] {
+                if let Some(limit) = limit {
+                    let _ = write!(value, ", {word} {limit}");
+                }
+            }
+            line("brightness", value);
+        }
+    }
+    text
+}
