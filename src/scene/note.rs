@@ -8,6 +8,7 @@ use super::lettering::{ABOVE, Anchor, BELOW, LINE, Rect, Text, width_px, wrapped
 use super::quantity;
 use super::view::{Facing, SkyView, Up};
 use super::{Point, Role, Scene, Shape};
+use crate::body::observer::Observer;
 use crate::plan::Plan;
 use crate::sky::Sky;
 
@@ -70,7 +71,18 @@ impl Notes {
             self.put(Role::Title, words, [margin, baseline], title_size, true);
             baseline += LINE * title_size;
         }
+        if sky.antisolar_position_angle_rad.is_some() {
+            let at = [at[0], at[1] + LINE * size];
+            let words = "hatched: sunward half".to_string();
+            self.texts.push((Role::Note, Text { words, at, ..field.clone() }));
+        }
         self.texts.push((Role::Note, field));
+        // On a narrow page these lines stay left of the dial's uppermost letter.
+        let short = (scene.width_px / 2.0 - margin - 14.0 * unit).max(0.0);
+        for words in wrapped(&when_and_where(plan, sky), short, size, false) {
+            self.put(Role::Note, words, [margin, baseline], size, false);
+            baseline += LINE * size;
+        }
 
         let limit = (LONGEST * unit).min(scene.width_px - 2.0 * margin);
         for (role, words) in absences(sky, view) {
@@ -100,15 +112,14 @@ impl Notes {
         }
         let words = match (view.up, zenith_angle(sky)) {
             (Up::Zenith, Some(_)) => {
-                format!("zenith up, at position angle {}", quantity::position_angle(facing.up_position_angle_rad))
+                format!("zenith up, at {}", quantity::position_angle(facing.up_position_angle_rad))
             }
-            (Up::Zenith, None) => "no zenith to turn by: north up, east left".to_string(),
+            (Up::Zenith, None) => "no zenith here: north up, east left".to_string(),
             (Up::North, _) => "north up, east left".to_string(),
         };
-        let right = scene.width_px - margin;
-        let mut text =
-            Text { words, at: [right, foot - BELOW * size], anchor: Anchor::End, size_px: size, strong: false };
-        while self.areas().any(|area| area.grown(6.0).overlaps(&text.area())) && text.at[1] > 0.0 {
+        let at = [scene.width_px - margin, foot - BELOW * size];
+        let mut text = Text { words, at, anchor: Anchor::End, size_px: size, strong: false };
+        while self.areas().any(|area| area.overlaps(&text.area().grown(3.0))) && text.at[1] > 0.0 {
             text.at[1] -= LINE * size;
         }
         self.texts.push((Role::Note, text));
@@ -135,6 +146,16 @@ fn shortened(words: String, limit_px: f64, size_px: f64) -> String {
     String::new()
 }
 
+/// Time and observer of a sky.
+fn when_and_where(plan: &Plan, sky: &Sky) -> String {
+    let time = sky.time.utc_minute();
+    match &plan.observer {
+        Observer::Geocentre => format!("{time}, centre of the Earth"),
+        Observer::Site(site) if site.name.is_empty() => format!("{time}, own site"),
+        Observer::Site(site) => format!("{time}, {}", site.name),
+    }
+}
+
 fn zenith_angle(sky: &Sky) -> Option<f64> {
     sky.site.as_ref().and_then(|site| site.zenith_position_angle_rad)
 }
@@ -153,12 +174,12 @@ fn absences(sky: &Sky, view: &SkyView) -> Vec<(Role, String)> {
     );
     note(
         sky.negative_velocity_position_angle_rad.is_none(),
-        "no negative-velocity direction: the comet moves along the line of sight",
+        "no negative velocity direction: it lies along the line of sight",
     );
-    note(sky.motion_position_angle_rad.is_none(), "no direction of sky motion: the comet stands still");
+    note(sky.motion_position_angle_rad.is_none(), "no sky motion: the comet stands still");
     note(
         sky.site.is_some() && zenith_angle(sky).is_none(),
-        "no zenith direction: the comet stands in the zenith or the nadir",
+        "no zenith direction: comet in the zenith or nadir",
     );
     if let Some(side) = side_of_nucleus(view) {
         found.push((Role::Note, format!("the nucleus lies outside the drawing, {side}")));

@@ -6,11 +6,12 @@
 //! left out where anything else stands.
 
 use super::label::{Placed, Room, Wish};
-use super::lettering::{ABOVE, Anchor, LINE, Rect, Text, width_px};
+use super::lettering::{ABOVE, Anchor, BELOW, LINE, Rect, Text, width_px};
 use super::note::{MARGIN, Notes};
 use super::vane::Vane;
 use super::view::{Facing, SkyView};
 use super::{Direction, Point, Role, Scene, Shape, mark, quantity};
+use crate::caution::Caution;
 use crate::plan::Plan;
 use crate::sky::Sky;
 
@@ -32,6 +33,8 @@ const HAND_START: f64 = 9.0;
 struct Hand {
     direction: Direction,
     position_angle_rad: f64,
+    /// Where the direction lies almost along the line of sight.
+    uncertainty_deg: Option<f64>,
     /// Unit step away from the nucleus.
     step: Point,
     /// Centre of the end mark.
@@ -78,9 +81,30 @@ fn hands(sky: &Sky, facing: &Facing, vane: &Vane) -> Vec<Hand> {
         .filter_map(|direction| {
             let position_angle_rad = angle(direction)?;
             let step = facing.direction(position_angle_rad);
-            Some(Hand { direction, position_angle_rad, step, end: vane.point(step, mark::reach(direction)) })
+            Some(Hand {
+                direction,
+                position_angle_rad,
+                uncertainty_deg: uncertainty_deg(sky, direction),
+                step,
+                end: vane.point(step, mark::reach(direction)),
+            })
         })
         .collect()
+}
+
+/// How loose a position angle is, where the sky cautions about it and a drawing can show it.
+fn uncertainty_deg(sky: &Sky, direction: Direction) -> Option<f64> {
+    let named = match direction {
+        Direction::Antisolar | Direction::Sunward => "antisolar direction",
+        Direction::NegativeVelocity => "negative velocity",
+        Direction::SkyMotion | Direction::Zenith => return None,
+    };
+    sky.cautions.iter().find_map(|caution| match caution {
+        Caution::AngleLoose { quantity, uncertainty_deg } if *quantity == named && *uncertainty_deg >= 0.1 => {
+            Some(uncertainty_deg.min(180.0))
+        }
+        _ => None,
+    })
 }
 
 /// Position angle toward the Sun: opposite to the antisolar direction.
@@ -137,12 +161,16 @@ fn write(scene: &mut Scene, facing: &Facing, vane: &Vane, notes: Notes, hands: &
     room.hands.extend(hands.iter().map(|hand| [vane.center, hand.end]));
 
     notes.draw(scene);
-    let mut labels = Vec::new();
+    // A direction whose mark is off the page keeps its place in the table only.
+    let hands: Vec<&Hand> = hands.iter().filter(|hand| page.grown(-4.0).holds(hand.end)).collect();
+    let wishes: Vec<Wish> = hands.iter().map(|hand| wish(hand, vane, &page, unit)).collect();
+    let placed = room.place(&wishes);
     let mut leaders = Vec::new();
-    for hand in hands.iter().filter(|hand| page.grown(-4.0).holds(hand.end)) {
-        let (lines, leader) = label(&mut room, vane, hand, &page, unit);
-        labels.extend(lines);
-        leaders.extend(leader);
+    let mut labels = Vec::new();
+    for ((hand, wish), placed) in hands.iter().zip(&wishes).zip(placed) {
+        let Some(placed) = placed else { continue };
+        labels.extend(lines_of(hand, &placed, unit));
+        leaders.extend(leader(hand, wish, &placed, unit).map(|line| (Role::Leader(hand.direction), line)));
     }
     for (role, line) in &leaders {
         scene.add(*role, Shape::Polyline(line.clone()));
@@ -163,41 +191,55 @@ fn write(scene: &mut Scene, facing: &Facing, vane: &Vane, notes: Notes, hands: &
     }
 }
 
-/// The label of a hand, line by line, and the leader that ties it to its mark; nothing if the page is full.
-fn label(
-    room: &mut Room,
-    vane: &Vane,
-    hand: &Hand,
-    page: &Rect,
-    unit: f64,
-) -> (Vec<(Role, Text)>, Option<(Role, Vec<Point>)>) {
+/// The label of a hand on one line, and in two parts.
+fn words(hand: &Hand) -> (String, [String; 2]) {
+    let name = mark::words(hand.direction);
+    let mut angle = quantity::position_angle(hand.position_angle_rad);
+    if let Some(uncertainty_deg) = hand.uncertainty_deg {
+        let decimals = if uncertainty_deg < 0.95 { 1 } else { 0 };
+        angle.push_str(&format!("\u{a0}±\u{a0}{uncertainty_deg:.decimals$}°"));
+    }
+    (format!("{name} {angle}"), [name.to_string(), angle])
+}
+
+/// The room that a hand's label asks for, and where its leader starts.
+fn wish(hand: &Hand, vane: &Vane, page: &Rect, unit: f64) -> Wish {
     let size = LABEL_SIZE * unit;
-    let angle = quantity::position_angle(hand.position_angle_rad);
-    let words = mark::words(hand.direction);
-    let whole = format!("{words} {angle}");
+    let (whole, parts) = words(hand);
     let width = |words: &str| width_px(words, size, false);
     let outside = vane.outside(hand.step, unit);
-    // Off the page, the ring gives way to the mark itself.
+    // Where the ring is off the page there, the leader starts at the mark itself.
     let from = if page.grown(-4.0).holds(outside) { outside } else { hand.end };
-    let wish = Wish {
+    Wish {
         from,
         outward: hand.step,
-        one_line: [width(&whole), size * (ABOVE + super::lettering::BELOW)],
-        two_lines: [width(words).max(width(&angle)), size * (ABOVE + super::lettering::BELOW + LINE)],
-    };
-    let Some(Placed { area, lines, leader }) = room.place(&wish) else { return (Vec::new(), None) };
-    let role = Role::Label(hand.direction);
-    let center = area.center()[0];
-    let line = |words: String, row: f64| {
-        let at = [center, area.top + (ABOVE + LINE * row) * size];
-        (role, Text { words, at, anchor: Anchor::Middle, size_px: size, strong: false })
-    };
-    let texts = if lines == 1 { vec![line(whole, 0.0)] } else { vec![line(words.to_string(), 0.0), line(angle, 1.0)] };
-    // From the mark straight out to the ring, so that each hand can be read on the dial, then to the label.
-    let mut path = vec![hand.end];
-    if from != hand.end {
-        path = vec![[hand.end[0] + hand.step[0] * 8.0 * unit, hand.end[1] + hand.step[1] * 8.0 * unit], from];
+        one_line: [width(&whole), size * (ABOVE + BELOW)],
+        two_lines: [width(&parts[0]).max(width(&parts[1])), size * (ABOVE + BELOW + LINE)],
     }
-    path.extend(leader.map(|[_, end]| end));
-    (texts, (path.len() > 1).then_some((Role::Leader(hand.direction), path)))
+}
+
+/// The texts of a placed label.
+fn lines_of(hand: &Hand, placed: &Placed, unit: f64) -> Vec<(Role, Text)> {
+    let size = LABEL_SIZE * unit;
+    let (whole, parts) = words(hand);
+    let rows = if placed.lines == 1 { vec![whole] } else { parts.to_vec() };
+    rows.into_iter()
+        .enumerate()
+        .map(|(row, words)| {
+            let at = [placed.area.center()[0], placed.area.top + (ABOVE + LINE * row as f64) * size];
+            (Role::Label(hand.direction), Text { words, at, anchor: Anchor::Middle, size_px: size, strong: false })
+        })
+        .collect()
+}
+
+/// From the mark straight out across the ring, so that the hand can be read on the dial, then to the label.
+fn leader(hand: &Hand, wish: &Wish, placed: &Placed, unit: f64) -> Option<Vec<Point>> {
+    let to_label = placed.leader.map(|[_, end]| end);
+    if wish.from == hand.end || hand.direction == Direction::Sunward {
+        return to_label.map(|end| vec![wish.from, end]);
+    }
+    let start = 8.0 * unit;
+    let mut line = vec![[hand.end[0] + hand.step[0] * start, hand.end[1] + hand.step[1] * start], wish.from];
+    line.extend(to_label);
+    Some(line)
 }
