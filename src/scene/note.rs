@@ -59,7 +59,15 @@ impl Notes {
         let at = [scene.width_px - margin, margin + ABOVE * title_size];
         let field = Text { words: field, at, anchor: Anchor::End, size_px: size, strong: false };
 
-        let title_limit = field.area().left - 2.0 * margin;
+        let mut corner = vec![field];
+        if sky.antisolar_position_angle_rad.is_some() {
+            let at = [at[0], at[1] + LINE * size];
+            corner.push(Text { words: "hatched: sunward half".to_string(), at, ..corner[0].clone() });
+        }
+        let corner_left = corner.iter().map(|text| text.area().left).fold(scene.width_px, f64::min);
+        let title_limit = corner_left - 2.0 * margin;
+        self.texts.extend(corner.into_iter().map(|text| (Role::Note, text)));
+
         let mut lines = wrapped(&plan.comet.name, title_limit, title_size, true);
         if lines.len() > TITLE_LINES {
             lines.truncate(TITLE_LINES);
@@ -71,12 +79,6 @@ impl Notes {
             self.put(Role::Title, words, [margin, baseline], title_size, true);
             baseline += LINE * title_size;
         }
-        if sky.antisolar_position_angle_rad.is_some() {
-            let at = [at[0], at[1] + LINE * size];
-            let words = "hatched: sunward half".to_string();
-            self.texts.push((Role::Note, Text { words, at, ..field.clone() }));
-        }
-        self.texts.push((Role::Note, field));
         // On a narrow page these lines stay left of the dial's uppermost letter.
         let short = (scene.width_px / 2.0 - margin - 14.0 * unit).max(0.0);
         for words in wrapped(&when_and_where(plan, sky), short, size, false) {
