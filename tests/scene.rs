@@ -2,6 +2,8 @@
 
 #[path = "scene/contrast.rs"]
 mod contrast;
+#[path = "scene/gallery.rs"]
+mod gallery;
 #[path = "scene/labels.rs"]
 mod labels;
 #[path = "scene/painters.rs"]
