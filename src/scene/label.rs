@@ -272,7 +272,8 @@ impl Room {
     fn ring_cost(&self, area: &Rect) -> f64 {
         let away = |point: Point| libm::hypot(point[0] - self.ring_center[0], point[1] - self.ring_center[1]);
         let nearest = away(area.nearest(self.ring_center));
-        let corners = [[area.left, area.top], [area.right, area.top], [area.left, area.bottom], [area.right, area.bottom]];
+        let corners =
+            [[area.left, area.top], [area.right, area.top], [area.left, area.bottom], [area.right, area.bottom]];
         let farthest = corners.into_iter().map(away).fold(0.0, f64::max);
         if nearest > self.ring_radius_px {
             0.0

@@ -157,12 +157,7 @@ impl Rect {
     }
 
     pub fn moved(&self, right: f64, down: f64) -> Self {
-        Rect {
-            left: self.left + right,
-            top: self.top + down,
-            right: self.right + right,
-            bottom: self.bottom + down,
-        }
+        Rect { left: self.left + right, top: self.top + down, right: self.right + right, bottom: self.bottom + down }
     }
 
     /// True when the two share more than an edge.

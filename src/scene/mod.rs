@@ -51,9 +51,15 @@ pub enum Shape {
     Polygon(Vec<Point>),
     /// An open line through the points.
     Polyline(Vec<Point>),
-    Circle { center: Point, radius_px: f64 },
+    Circle {
+        center: Point,
+        radius_px: f64,
+    },
     /// Parallel rising diagonals, `gap_px` apart, inside a convex outline.
-    Hatch { outline: Vec<Point>, gap_px: f64 },
+    Hatch {
+        outline: Vec<Point>,
+        gap_px: f64,
+    },
     Text(Text),
 }
 

@@ -152,7 +152,7 @@ fn shortened(words: String, limit_px: f64, size_px: f64) -> String {
 fn when_and_where(plan: &Plan, sky: &Sky) -> String {
     let time = sky.time.utc_minute();
     match &plan.observer {
-        Observer::Geocentre => format!("{time}, centre of the Earth"),
+        Observer::Geocentre => format!("{time}, geocentre"),
         Observer::Site(site) if site.name.is_empty() => format!("{time}, own site"),
         Observer::Site(site) => format!("{time}, {}", site.name),
     }
@@ -170,19 +170,13 @@ fn absences(sky: &Sky, view: &SkyView) -> Vec<(Role, String)> {
             found.push((Role::Caution, words.to_string()));
         }
     };
-    note(
-        sky.antisolar_position_angle_rad.is_none(),
-        "no antisolar direction: comet, Sun and observer in line",
-    );
+    note(sky.antisolar_position_angle_rad.is_none(), "no antisolar direction: comet, Sun and observer in line");
     note(
         sky.negative_velocity_position_angle_rad.is_none(),
         "no negative velocity direction: it lies along the line of sight",
     );
     note(sky.motion_position_angle_rad.is_none(), "no sky motion: the comet stands still");
-    note(
-        sky.site.is_some() && zenith_angle(sky).is_none(),
-        "no zenith direction: comet in the zenith or nadir",
-    );
+    note(sky.site.is_some() && zenith_angle(sky).is_none(), "no zenith direction: comet in the zenith or nadir");
     if let Some(side) = side_of_nucleus(view) {
         found.push((Role::Note, format!("the nucleus lies outside the drawing, {side}")));
     }
@@ -192,8 +186,20 @@ fn absences(sky: &Sky, view: &SkyView) -> Vec<(Role, String)> {
 /// Where the nucleus lies when it is not on the page.
 fn side_of_nucleus(view: &SkyView) -> Option<String> {
     let [x, y] = view.nucleus();
-    let side = if x < 0.0 { "left" } else if x > view.width_px { "right" } else { "" };
-    let level = if y < 0.0 { "above" } else if y > view.height_px { "below" } else { "" };
+    let side = if x < 0.0 {
+        "left"
+    } else if x > view.width_px {
+        "right"
+    } else {
+        ""
+    };
+    let level = if y < 0.0 {
+        "above"
+    } else if y > view.height_px {
+        "below"
+    } else {
+        ""
+    };
     match (level, side) {
         ("", "") => None,
         ("", side) => Some(format!("to the {side}")),

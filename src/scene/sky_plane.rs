@@ -16,13 +16,8 @@ use crate::plan::Plan;
 use crate::sky::Sky;
 
 /// Order of labels: the first keep the better places.
-const RANK: [Direction; 5] = [
-    Direction::Antisolar,
-    Direction::NegativeVelocity,
-    Direction::Sunward,
-    Direction::SkyMotion,
-    Direction::Zenith,
-];
+const RANK: [Direction; 5] =
+    [Direction::Antisolar, Direction::NegativeVelocity, Direction::Sunward, Direction::SkyMotion, Direction::Zenith];
 const LABEL_SIZE: f64 = 13.5;
 /// Between the diagonals of the sunward half, in drawing units.
 const HATCH_GAP: f64 = 9.0;

@@ -96,7 +96,7 @@ const RED: Palette = Palette {
     caution: rgb(0xff0000),
     focus: rgb(0xff0000),
     dial: rgb(0xb80000),
-    hatch: rgb(0x4c0000),
+    hatch: rgb(0x5a0000),
     antisolar: rgb(0xff0000),
     negative_velocity: rgb(0xff0000),
     sky_motion: rgb(0xff0000),
@@ -207,25 +207,16 @@ impl Theme {
     /// The look of a role.
     pub fn look(self, role: Role) -> Look {
         let p = self.palette();
-        let line = |color, width| Look {
-            fill: None,
-            pen: Some(Pen { color, width, dashes: &[] }),
-            halo: None,
-        };
-        let letters = |color| Look {
-            fill: Some(color),
-            pen: None,
-            halo: Some(Pen { color: p.ground, width: 4.0, dashes: &[] }),
-        };
+        let line = |color, width| Look { fill: None, pen: Some(Pen { color, width, dashes: &[] }), halo: None };
+        let letters =
+            |color| Look { fill: Some(color), pen: None, halo: Some(Pen { color: p.ground, width: 4.0, dashes: &[] }) };
         match role {
             Role::Ground => Look { fill: Some(p.ground), pen: None, halo: None },
             Role::SunwardHalf => line(p.hatch, 1.0),
             Role::SunwardEdge => line(p.hatch, 1.4),
-            Role::Nucleus => Look {
-                fill: Some(p.text),
-                pen: Some(Pen { color: p.ground, width: 2.0, dashes: &[] }),
-                halo: None,
-            },
+            Role::Nucleus => {
+                Look { fill: Some(p.text), pen: Some(Pen { color: p.ground, width: 2.0, dashes: &[] }), halo: None }
+            }
             Role::Ring => line(p.dial, 1.0),
             Role::TickShort => line(p.dial, 1.0),
             Role::TickLong => line(p.dial, 1.6),

@@ -82,13 +82,7 @@ impl SkyView {
             Up::Zenith => sky.site.as_ref().and_then(|site| site.zenith_position_angle_rad).unwrap_or(0.0),
         };
         let (sin_up, cos_up) = libm::sincos(up_position_angle_rad);
-        Facing {
-            nucleus: self.nucleus(),
-            pixel_scale_rad: self.pixel_scale_rad,
-            up_position_angle_rad,
-            sin_up,
-            cos_up,
-        }
+        Facing { nucleus: self.nucleus(), pixel_scale_rad: self.pixel_scale_rad, up_position_angle_rad, sin_up, cos_up }
     }
 
     /// Where a tangent-plane offset falls on the page for `sky`.

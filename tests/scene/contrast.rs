@@ -6,13 +6,8 @@ use std::collections::BTreeMap;
 use tailvane::scene::theme::{Color, Theme};
 use tailvane::scene::{Direction, Role};
 
-const DIRECTIONS: [Direction; 5] = [
-    Direction::Antisolar,
-    Direction::NegativeVelocity,
-    Direction::SkyMotion,
-    Direction::Zenith,
-    Direction::Sunward,
-];
+const DIRECTIONS: [Direction; 5] =
+    [Direction::Antisolar, Direction::NegativeVelocity, Direction::SkyMotion, Direction::Zenith, Direction::Sunward];
 
 fn luminance(css: &str) -> f64 {
     let part = |at: usize| {
@@ -100,7 +95,9 @@ fn the_red_theme_emits_red_light_only_and_writes_in_full_red() {
     for (name, value) in Theme::Red.css_variables().iter().filter(|(name, _)| *name != "--color-scheme") {
         assert!(value.ends_with("0000"), "{name} {value}");
     }
-    for role in DIRECTIONS.map(Role::Label).into_iter().chain([Role::DialNumber, Role::Cardinal, Role::Note, Role::Caution]) {
+    for role in
+        DIRECTIONS.map(Role::Label).into_iter().chain([Role::DialNumber, Role::Cardinal, Role::Note, Role::Caution])
+    {
         assert_eq!(Theme::Red.look(role).fill, Some(full));
     }
     for role in [Role::Ground, Role::SunwardHalf, Role::Ring, Role::Nucleus] {

@@ -41,8 +41,14 @@ fn extent(shape: &Shape) -> Rect {
     match shape {
         Shape::Circle { center, radius_px } => Rect::around(*center, *radius_px, *radius_px),
         Shape::Polygon(points) | Shape::Polyline(points) => {
-            let over = |axis: usize, pick: fn(f64, f64) -> f64| points.iter().map(|p| p[axis]).reduce(pick).expect("a point");
-            Rect { left: over(0, f64::min), top: over(1, f64::min), right: over(0, f64::max), bottom: over(1, f64::max) }
+            let over =
+                |axis: usize, pick: fn(f64, f64) -> f64| points.iter().map(|p| p[axis]).reduce(pick).expect("a point");
+            Rect {
+                left: over(0, f64::min),
+                top: over(1, f64::min),
+                right: over(0, f64::max),
+                bottom: over(1, f64::max),
+            }
         }
         other => panic!("a mark has no such shape: {other:?}"),
     }
@@ -54,7 +60,9 @@ pub fn faults(scene: &Scene) -> Vec<String> {
     let mut found = overlaps(&texts);
     found.extend(on_marks(scene));
     let page = Rect { left: 0.0, top: 0.0, right: scene.width_px, bottom: scene.height_px };
-    found.extend(texts.iter().filter(|text| !page.contains(&text.area())).map(|t| format!("{:?} leaves the page", t.words)));
+    found.extend(
+        texts.iter().filter(|text| !page.contains(&text.area())).map(|t| format!("{:?} leaves the page", t.words)),
+    );
     let mut recorder = Recorder::default();
     tailvane::paint::paint(scene, Theme::Dark, &mut recorder);
     let filled: Vec<&Text> = recorder
@@ -166,7 +174,12 @@ fn an_absent_direction_has_no_hand_and_says_why() {
         let cautions: Vec<&str> =
             scene.texts().filter(|(role, _)| *role == Role::Caution).map(|(_, text)| text.words.as_str()).collect();
         let cautions = cautions.join(" ");
-        for words in ["no antisolar direction: comet, Sun and observer in line", "no negative velocity", "no sky motion", "no zenith"] {
+        for words in [
+            "no antisolar direction: comet, Sun and observer in line",
+            "no negative velocity",
+            "no sky motion",
+            "no zenith",
+        ] {
             assert!(cautions.contains(words), "{words} is not in {cautions:?}");
         }
         assert!(faults(&scene).is_empty(), "{:?}", faults(&scene));

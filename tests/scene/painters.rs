@@ -49,8 +49,12 @@ fn a_theme_moves_nothing() {
             .into_iter()
             .map(|call| match call {
                 Call::Surface { width_px, height_px, .. } => format!("{width_px} {height_px}"),
-                Call::Lines { lines, closed, ink } => format!("{lines:?} {closed} {:?}", ink.stroke.map(|s| (s.width_px, s.dashes_px))),
-                Call::Circle { center, radius_px, ink } => format!("{center:?} {radius_px} {:?}", ink.stroke.map(|s| (s.width_px, s.dashes_px))),
+                Call::Lines { lines, closed, ink } => {
+                    format!("{lines:?} {closed} {:?}", ink.stroke.map(|s| (s.width_px, s.dashes_px)))
+                }
+                Call::Circle { center, radius_px, ink } => {
+                    format!("{center:?} {radius_px} {:?}", ink.stroke.map(|s| (s.width_px, s.dashes_px)))
+                }
                 Call::Text { text, .. } => format!("{text:?}"),
             })
             .collect()
@@ -75,8 +79,26 @@ fn an_svg_holds_shapes_texts_and_presentation_attributes_only() {
     let file = svg::write(&scene, Theme::Dark, "a <b> & \"c\"", "d > e \u{0}");
     let document = roxmltree::Document::parse(&file).expect("well-formed XML");
     let allowed = [
-        "width", "height", "viewBox", "role", "font-family", "stroke-linecap", "stroke-linejoin", "fill", "stroke",
-        "stroke-width", "stroke-dasharray", "d", "cx", "cy", "r", "x", "y", "font-size", "font-weight", "text-anchor",
+        "width",
+        "height",
+        "viewBox",
+        "role",
+        "font-family",
+        "stroke-linecap",
+        "stroke-linejoin",
+        "fill",
+        "stroke",
+        "stroke-width",
+        "stroke-dasharray",
+        "d",
+        "cx",
+        "cy",
+        "r",
+        "x",
+        "y",
+        "font-size",
+        "font-weight",
+        "text-anchor",
     ];
     for node in document.descendants().filter(roxmltree::Node::is_element) {
         let name = node.tag_name().name();

@@ -91,7 +91,13 @@ fn bar_angle(text: &Text) -> f64 {
     let arc = text.words.split(" = ").next().expect("an arc");
     let sign = arc.chars().last().expect("a unit");
     let value: f64 = arc.trim_end_matches(sign).parse().expect("a number");
-    (value / match sign { '°' => 1.0, '′' => 60.0, _ => 3600.0 }).to_radians()
+    (value
+        / match sign {
+            '°' => 1.0,
+            '′' => 60.0,
+            _ => 3600.0,
+        })
+    .to_radians()
 }
 
 #[test]

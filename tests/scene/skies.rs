@@ -7,7 +7,7 @@ use tailvane::orbit::conic::Orbit;
 use tailvane::orbit::elements::{Comet, Elements};
 use tailvane::plan::Plan;
 use tailvane::sky::viewpoint::Viewpoint;
-use tailvane::sky::{Sky, SiteSky};
+use tailvane::sky::{SiteSky, Sky};
 use tailvane::time::Stamp;
 
 /// Position angles of the four hands, degrees; None where the direction is absent.
