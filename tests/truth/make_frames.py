@@ -95,7 +95,7 @@ def make_tangent(folder):
             "Gnomonic coordinates xi (east), eta (north) of (lon, lat) about the tangent point (lon0, lat0).",
             "Source: " + table.versions("pyerfa", "astropy") + " (tpxes, tpsts; wcslib's TAN agrees to 1e-11), make_frames.py. ERFA's unit test prints",
             "xi -0.01753200983236980595, eta 0.05962940005778712891 for its first row; lon 0.7596127167359629775, lat 1.540864645109263028 for its second.",
-            "Units: radians; tangent values. Tolerance: 1e-12 absolute and relative. Of the regeneration: 1e-12.",
+            "Units: radians; tangent values. Tolerance: 1e-12 times (1 + xi^2 + eta^2), the magnification there. Of the regeneration: 1e-12.",
         ],
         ["why", "lon_rad", "lat_rad", "lon0_rad", "lat0_rad", "xi", "eta"],
         rows,
