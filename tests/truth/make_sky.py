@@ -126,6 +126,13 @@ def motion(case):
     return east, north, math.hypot(east, north), math.atan2(east, north) * DEG % 360.0
 
 
+def observer_velocity(case):
+    """The observer's heliocentric velocity, au/day, by a five-point derivative."""
+    h = 120.0
+    place = {k: case.body("EARTH", k * h) - case.body("SUN", k * h) + case.observer_offset(k * h) for k in (-2, -1, 1, 2)}
+    return (8 * (place[1] - place[-1]) - (place[2] - place[-2])) / (12 * h) * DAY_S
+
+
 def side(sun, comet):
     """Evening if the comet is east of the Sun; None where east by right ascension and east by ecliptic longitude disagree."""
     said = set()
@@ -145,7 +152,8 @@ def row(case):
     here, sun_here = coord(rho), coord(-observer)
     normal = spice.vcrss(r, v)
     phase = spice.vsep(r, rho)
-    elements = spice.oscltx(np.concatenate([r, v]), 0.0, MU)
+    perihelion = case.heliocentric(case.perihelion)[0]
+    anomaly = math.copysign(spice.vsep(perihelion, r), float(np.dot(r, v)))
     pv = np.zeros((), dtype=erfa.dt_pv)
     pv["p"], pv["v"] = r, v
     radial = float(erfa.pv2s(pv)[5]) * AU_KM / DAY_S
@@ -162,8 +170,8 @@ def row(case):
         float(np.linalg.norm(r)), float(np.linalg.norm(rho)), phase * DEG, here.separation(sun_here).deg, side(-observer, rho),
         90.0 - spice.vsep(normal, -rho) * DEG, antisolar, displacement_angle(rho, -v), sight_angle * DEG,
         total, motion_angle, east, north, case.days - tau - case.perihelion,
-        elements[8] * DEG % 360.0, radial, float(erfa.c2s(solar)[1]) * DEG,
-        math.sin(phase), math.sin(sight_angle), tau,
+        anomaly * DEG % 360.0, radial, float(erfa.c2s(solar)[1]) * DEG,
+        math.sin(phase), math.sin(sight_angle), tau, *map(float, observer), *map(float, observer_velocity(case)),
     ]
     if case.site is None:
         return values + [None] * 8
@@ -191,7 +199,8 @@ COLUMNS = ["case", "right_ascension_deg", "declination_deg", "right_ascension_su
            "observer_distance_au", "phase_angle_deg", "elongation_deg", "elongation_side", "observer_from_orbit_plane_deg", "antisolar_position_angle_deg",
            "negative_velocity_position_angle_deg", "negative_velocity_sight_angle_deg", "motion_arcsec_per_minute", "motion_position_angle_deg",
            "motion_east_arcsec_per_minute", "motion_north_arcsec_per_minute", "days_from_perihelion", "true_anomaly_deg", "sun_distance_rate_km_s",
-           "heliographic_latitude_deg", "sine_of_antisolar_to_sight", "sine_of_velocity_to_sight", "light_time_days", "altitude_deg", "azimuth_deg",
+           "heliographic_latitude_deg", "sine_of_antisolar_to_sight", "sine_of_velocity_to_sight", "light_time_days", "observer_x_au", "observer_y_au", "observer_z_au", "observer_vx_au_d",
+           "observer_vy_au_d", "observer_vz_au_d", "altitude_deg", "azimuth_deg",
            "sun_altitude_deg", "moon_separation_deg", "moon_lit_fraction", "zenith_position_angle_deg", "sine_of_zenith_distance", "moon_altitude_deg"]
 
 HEADER = [
@@ -201,7 +210,7 @@ HEADER = [
     "Angles at the comet use the comet at emission and the observer at observation. heliographic_latitude: of the comet, pole of the",
     "IAU 2015 report (286.13, 63.87). moon_* and altitudes: from the site, airless, light time corrected, UT1 = UTC, no polar motion.",
     "elongation_side is empty where east by right ascension, by ecliptic longitude and by position angle do not agree.",
-    "Units: in the names; sines have none; light time in days.",
+    "observer_*: heliocentric, J2000 equatorial, with the site. Units: in the names; sines have none.",
     "Tolerances of the comparison stand with their reasons in tests/sky.rs. Of the regeneration: 1e-9 relative, 2e-8 in the column's unit",
     "(differences of nearby directions carry the rounding of doubles).",
 ]
