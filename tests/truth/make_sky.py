@@ -146,7 +146,7 @@ def side(sun, comet):
 
 def row(case):
     rho, observer, r, v, tau = case.sight()
-    still = case.sight(sun_moves=False)[0]
+    still, _, r_still, _, _ = case.sight(sun_moves=False)
     ra, dec = erfa.c2s(rho)
     ra_still, dec_still = erfa.c2s(still)
     here, sun_here = coord(rho), coord(-observer)
@@ -162,7 +162,7 @@ def row(case):
     antisolar = displacement_angle(rho, r)
     # The same angle a second way, by astropy: away from the Sun along the great circle. They must agree (Sun at rest).
     by_circle = coord(still).position_angle(sun_here).deg + 180.0
-    by_step = displacement_angle(still, r)
+    by_step = displacement_angle(still, r_still)
     assert abs(math.remainder(by_circle - by_step, 360.0)) * math.sin(phase) < 1e-7, (case.row["case"], by_circle, by_step)
     east, north, total, motion_angle = motion(case)
     values = [
