@@ -76,24 +76,18 @@ def place_angle(sp, sight, vector):
 
 
 def sky(rows):
-    import pandas  # noqa: F401  (skyfield's orbits want it importable)
-    from skyfield.api import Loader, load_file
-    from skyfield.data.mpc import comet_orbit  # noqa: F401
-    from skyfield.keplerlib import _KeplerOrbit
-    from skyfield.units import Angle, Distance  # noqa: F401
-    load = Loader("/nonexistent", verbose=False)
-    ts = load.timescale(builtin=True)
-    eph = load_file(kernel())
-    sun, earth = eph["sun"], eph["earth"]
+    from skyfield.api import load, load_file
     from skyfield.data.spice import inertial_frames
-    rotation = inertial_frames["ECLIPJ2000"].T
-    comet = sun + _KeplerOrbit._from_periapsis(Q * (1 + E), E, INC, NODE, PERI, ts.tt_jd(T_JD),
-                                               K * K * AU_KM**3 / 86400.0**2, 10, "comet")
-    comet.positives[-1]._rotation = rotation if hasattr(comet, "positives") else None
-    t = ts.tt_jd(JD[:rows])
-    place = earth.at(t).observe(comet)
+    from skyfield.keplerlib import _KeplerOrbit
+    times = load.timescale(builtin=True)
+    eph = load_file(kernel())
+    orbit = _KeplerOrbit._from_periapsis(Q * (1 + E), E, INC, NODE, PERI, times.tt_jd(T_JD),
+                                         K * K * AU_KM**3 / 86400.0**2, 10, "comet")
+    orbit._rotation = inertial_frames["ECLIPJ2000"].T
+    here = eph["earth"].at(times.tdb_jd(JD[:rows]))
+    place = here.observe(eph["sun"] + orbit)
     place.radec()
-    place.separation_from(earth.at(t).observe(sun))
+    place.separation_from(here.observe(eph["sun"]))
 
 
 def astro(rows):
