@@ -118,7 +118,7 @@ impl Case {
             _ => Observer::Geocentre,
         };
         let late = if fault == Fault::TimeScale { 69.184 / 86_400.0 } else { 0.0 };
-        let engine = Engine::new(plan(elements, observer)).unwrap_or_else(|error| panic!("{}: {error}", self.name()));
+        let mut engine = Engine::new(plan(elements, observer)).unwrap_or_else(|error| panic!("{}: {error}", self.name()));
         engine.sky_at(self.instant().plus_days(late)).unwrap_or_else(|error| panic!("{}: {error}", self.name()))
     }
 }
@@ -395,8 +395,8 @@ fn the_worked_examples_of_a_comets_place_are_met() {
 
 /// When the observer's angle from the orbit plane passes zero within two days of `near`, by bisection.
 fn crossing(elements: Elements, near: Instant) -> Instant {
-    let engine = Engine::new(plan(elements, Observer::Geocentre)).expect("a sound plan");
-    let above = |time: Instant| engine.sky_at(time).expect("within the span").observer_from_orbit_plane_rad > 0.0;
+    let mut engine = Engine::new(plan(elements, Observer::Geocentre)).expect("a sound plan");
+    let mut above = |time: Instant| engine.sky_at(time).expect("within the span").observer_from_orbit_plane_rad > 0.0;
     let (mut early, mut late) = (near.plus_days(-2.0), near.plus_days(2.0));
     let rising = above(late);
     assert_ne!(above(early), rising, "no crossing within two days of {near:?}");
