@@ -59,7 +59,7 @@ impl Tally {
     fn add(&mut self, miss: f64, which: impl Fn() -> String) {
         self.rows += 1;
         self.worst = self.worst.max(miss);
-        if !(miss <= 1.0) {
+        if miss > 1.0 || miss.is_nan() {
             self.beyond.push(format!("{miss:.3e} times the bar: {}", which()));
         }
     }

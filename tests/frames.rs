@@ -32,7 +32,7 @@ fn position_angle_misses(angle: impl Fn(&Vector3<f64>, &Axes) -> Option<f64>) ->
     let miss = |row: &&Row| {
         let (a, b) = ends(row);
         let got = angle(&b, &Axes::at(&a)).expect("two different points");
-        between(got, row.number("position_angle_rad")) > 1e-12_f64.max(1e-15 / row.number("separation_rad").sin().abs())
+        between(got, row.number("position_angle_rad")) > 1e-12_f64.max(1e-15 / libm::sin(row.number("separation_rad")).abs())
     };
     table("position_angles.csv").iter().filter(miss).count()
 }

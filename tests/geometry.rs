@@ -113,6 +113,25 @@ fn the_true_anomaly_belongs_to_the_place_shown() {
     }
 }
 
+#[test]
+fn an_answer_does_not_depend_on_what_was_asked_before() {
+    // A row of a series, a scrubbed date and a single question must print the same digits: to the last bit.
+    let mut differing = Vec::new();
+    for case in cases() {
+        let ready = || Engine::new(plan(elements(&case.orbit), Observer::Geocentre)).expect("a sound plan");
+        let mut engine = ready();
+        // Steps of 1.37 days, wrapped, so that the dates come in no order.
+        for time in (0..30).map(|step| case.instant().plus_days((f64::from(step) * 1.37) % 4.1 - 2.0)) {
+            if let (Ok(asked_before), Ok(fresh)) = (engine.sky_at(time), ready().sky_at(time))
+                && (asked_before.right_ascension_rad, asked_before.declination_rad) != (fresh.right_ascension_rad, fresh.declination_rad)
+            {
+                differing.push(format!("{} at {}", case.name(), time.utc_iso_ms()));
+            }
+        }
+    }
+    assert!(differing.is_empty(), "{} differ, the first: {}", differing.len(), differing[0]);
+}
+
 fn is_undefined(sky: &Sky, quantity: &str) -> bool {
     sky.cautions.iter().any(|caution| matches!(caution, Caution::AngleUndefined { quantity: named } if *named == quantity))
 }

@@ -15,7 +15,8 @@ fn instant(text: &str) -> Instant {
 /// Rows of utc.csv at which a reading of the date is off by more than 1e-10 day (9 microseconds).
 fn utc_misses(tdb_days: impl Fn(&str) -> f64) -> Vec<String> {
     let rows = table("utc.csv");
-    let off = rows.iter().filter(|row| !((tdb_days(row.text("utc")) - row.number("tt_days")).abs() <= 1e-10));
+    let miss = |row: &rows::Row| (tdb_days(row.text("utc")) - row.number("tt_days")).abs();
+    let off = rows.iter().filter(|row| miss(row) > 1e-10 || miss(row).is_nan());
     off.map(|row| row.text("utc").to_owned()).collect()
 }
 
