@@ -3,3 +3,5 @@
 pub mod conic;
 pub mod elements;
 pub mod notation;
+mod stumpff;
+pub mod universal;

@@ -1,0 +1,100 @@
+//! When, around this time, does the comet stand up in a dark sky?
+//!
+//! Dark means the Sun below -9 degrees and the comet above 5 degrees: this project's default, chosen because
+//! nights with a sunward tail often fall in twilight. Windows are found on a five-minute grid and their ends
+//! by bisection to a second; one shorter than five minutes may be missed. Airless.
+
+use crate::time::Instant;
+
+/// The Sun must be below this, degrees.
+pub const SUN_BELOW_DEG: f64 = -9.0;
+/// The comet must be above this, degrees.
+pub const COMET_ABOVE_DEG: f64 = 5.0;
+
+/// Step of the search, days: five minutes.
+const STEP: f64 = 5.0 / 1440.0;
+/// The search runs this far to each side, days.
+const REACH: f64 = 0.5;
+/// Ends are found to this, days: a second.
+const SECOND: f64 = 1.0 / 86_400.0;
+
+/// A stretch of time with the comet up in a dark sky. An end that lies beyond half a day is cut there.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Window {
+    pub begin: Instant,
+    pub end: Instant,
+    /// Highest altitude of the comet on the grid, degrees, and when.
+    pub highest_deg: f64,
+    pub highest_at: Instant,
+}
+
+/// Windows that touch the half day before or after `middle`, in order. `altitudes_deg` gives comet and Sun
+/// at a time; None where the ephemeris ends.
+pub fn windows(middle: Instant, altitudes_deg: impl Fn(Instant) -> Option<[f64; 2]>) -> Vec<Window> {
+    let dark = |time: Instant| {
+        altitudes_deg(time).filter(|[comet, sun]| *comet > COMET_ABOVE_DEG && *sun < SUN_BELOW_DEG).map(|both| both[0])
+    };
+    let count = (2.0 * REACH / STEP).round() as i32;
+    let mut found: Vec<Window> = Vec::new();
+    let mut inside = false;
+    for k in 0..=count {
+        let time = middle.plus_days(f64::from(k) * STEP - REACH);
+        let altitude = dark(time);
+        match (altitude, inside) {
+            (Some(altitude_deg), false) => {
+                let begin = if k == 0 { time } else { edge(time, time.plus_days(-STEP), &dark) };
+                found.push(Window { begin, end: time, highest_deg: altitude_deg, highest_at: time });
+            }
+            (Some(altitude_deg), true) => {
+                if let Some(window) = found.last_mut() {
+                    window.end = time;
+                    if altitude_deg > window.highest_deg {
+                        (window.highest_deg, window.highest_at) = (altitude_deg, time);
+                    }
+                }
+            }
+            (None, true) => {
+                if let Some(window) = found.last_mut() {
+                    window.end = edge(window.end, time, &dark);
+                }
+            }
+            (None, false) => {}
+        }
+        inside = altitude.is_some();
+    }
+    found
+}
+
+/// The time between a dark one and another that is not at which darkness ends, to a second.
+fn edge(mut within: Instant, mut without: Instant, dark: &impl Fn(Instant) -> Option<f64>) -> Instant {
+    while (within.tdb_days() - without.tdb_days()).abs() > SECOND {
+        let middle = Instant::from_tdb_days(0.5 * (within.tdb_days() + without.tdb_days()));
+        if dark(middle).is_some() {
+            within = middle;
+        } else {
+            without = middle;
+        }
+    }
+    within
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn ends_are_found_to_a_second_and_a_cut_window_ends_at_the_reach() {
+        let middle = Instant::from_tdb_days(0.0);
+        // A comet that stays up; the Sun is low from -0.1 d to 0.2 d, and again from 0.4 d on.
+        let altitudes = |time: Instant| {
+            let t = time.tdb_days();
+            let low = (t > -0.1 && t < 0.2) || t > 0.4;
+            Some([30.0 - 100.0 * t * t, if low { -20.0 } else { 20.0 }])
+        };
+        let found = windows(middle, altitudes);
+        assert_eq!(found.len(), 2);
+        assert!((found[0].begin.tdb_days() + 0.1).abs() <= SECOND && (found[0].end.tdb_days() - 0.2).abs() <= SECOND);
+        assert!(found[0].highest_at.tdb_days().abs() < STEP);
+        assert!((found[1].end.tdb_days() - REACH).abs() < 1e-9);
+    }
+}
