@@ -1,1 +1,303 @@
 //! The browser shell: the only file with wasm-bindgen exports.
+//!
+//! One [`Desk`] holds what a person set up and what is shown of it. Calls are few and coarse: the page says what was
+//! done, asks once per frame for everything it shows, and lets the core draw. A refusal is thrown as an object
+//! with `refused: true`, a message and the place; after a panic the page throws this core away and makes a new one.
+
+mod answer;
+mod examples;
+mod season;
+mod typed;
+
+use crate::body::observer::Observer;
+use crate::engine::Engine;
+use crate::error::{Error, Kind, Place};
+use crate::orbit::elements::Comet;
+use crate::orbit::notation;
+use crate::paint::canvas::CanvasPainter;
+use crate::paint::{paint, svg};
+use crate::plan::Plan;
+use crate::scene::theme::Theme;
+use crate::scene::view::{SkyView, Up};
+use crate::scene::{pointer, sky_plane};
+use crate::sky::Sky;
+use crate::time::{Instant, Stamp};
+use answer::{Refusal, refusal, to_js};
+use season::Season;
+use std::sync::Mutex;
+use wasm_bindgen::prelude::wasm_bindgen;
+use wasm_bindgen::{JsError, JsValue};
+use web_sys::CanvasRenderingContext2d;
+
+/// What the last panic said, for the page to show.
+static LAST_PANIC: Mutex<String> = Mutex::new(String::new());
+
+/// A comet read without a time takes the desk's time when that lies this near its perihelion, days.
+const NEAR_PERIHELION_DAYS: f64 = 400.0;
+/// Otherwise it takes the present when that lies this near, days; else its perihelion.
+const STILL_OF_USE_DAYS: f64 = 1100.0;
+
+/// Makes panics readable; called once for each new core.
+#[wasm_bindgen]
+pub fn start() {
+    std::panic::set_hook(Box::new(|panic| {
+        if let Ok(mut last) = LAST_PANIC.lock() {
+            *last = panic.to_string();
+        }
+    }));
+}
+
+/// What the last panic said, or nothing.
+#[wasm_bindgen]
+pub fn last_panic() -> String {
+    LAST_PANIC.lock().map(|last| last.clone()).unwrap_or_default()
+}
+
+/// The custom properties of a theme, as pairs of name and value.
+#[wasm_bindgen]
+pub fn theme_variables(theme: &str) -> JsValue {
+    to_js(&named_theme(theme).css_variables())
+}
+
+/// The invented comets that come with the page.
+#[wasm_bindgen]
+pub fn examples() -> JsValue {
+    to_js(&examples::list())
+}
+
+/// The comet's name in a plan.
+#[wasm_bindgen]
+pub fn plan_name(plan: &str) -> Result<String, JsValue> {
+    Ok(Plan::read(plan).map_err(refusal)?.comet.name)
+}
+
+/// The sites of the packed table whose code or name holds the words, best first.
+#[wasm_bindgen]
+pub fn find_sites(table: &str, words: &str) -> JsValue {
+    to_js(&answer::sites(table, words))
+}
+
+fn named_theme(name: &str) -> Theme {
+    Theme::named(name).unwrap_or(Theme::Dark)
+}
+
+/// Everything on the desk: the plan, its sky at the chosen time, the view of the sky plane, the season.
+#[wasm_bindgen]
+pub struct Desk {
+    engine: Engine,
+    time: Stamp,
+    sky: Sky,
+    view: SkyView,
+    season: Option<Season>,
+    read: Vec<Comet>,
+}
+
+#[wasm_bindgen]
+impl Desk {
+    /// A desk with a plan on it. A plan without a time opens at its comet's perihelion.
+    #[wasm_bindgen(constructor)]
+    pub fn new(plan: &str) -> Result<Desk, JsValue> {
+        let (engine, time, sky) = prepared(Plan::read(plan).map_err(refusal)?).map_err(refusal)?;
+        Ok(Desk { engine, time, sky, view: SkyView::start(800.0, 600.0), season: None, read: Vec::new() })
+    }
+
+    /// Puts another plan on the desk.
+    pub fn set_plan(&mut self, plan: &str) -> Result<JsValue, JsValue> {
+        let plan = Plan::read(plan).map_err(refusal)?;
+        self.take(plan)
+    }
+
+    /// Puts the comet of a plan on the desk; observer and time stay where they serve it.
+    pub fn set_comet(&mut self, plan: &str, now_ms: f64) -> Result<JsValue, JsValue> {
+        let comet = Plan::read(plan).map_err(refusal)?.comet;
+        self.take_comet(comet, now_ms)
+    }
+
+    /// Reads pasted text: the first comet of it comes onto the desk, all of it is kept for [`Desk::pick_read`].
+    /// Refused only when nothing could be read.
+    pub fn read_text(&mut self, text: &str, now_ms: f64) -> Result<JsValue, JsValue> {
+        if text.trim_start().starts_with('{')
+            && let Ok(plan) = Plan::read(text)
+        {
+            let first = plan.comet.name.clone();
+            self.read = Vec::new();
+            if plan.time.is_some() {
+                self.take(plan)?;
+            } else {
+                self.take_comet(plan.comet, now_ms)?;
+            }
+            return Ok(to_js(&answer::Read { count: 1, first, errors: Vec::new() }));
+        }
+        let found = notation::read(text);
+        let errors: Vec<Refusal> = found.errors.iter().map(Refusal::of).collect();
+        let Some(first) = found.comets.first().cloned() else {
+            let nothing = Error::new(Kind::Notation, Place::Whole, "no elements", "the elements of a comet");
+            return Err(refusal(found.errors.into_iter().next().unwrap_or(nothing)));
+        };
+        let name = first.name.clone();
+        self.take_comet(first, now_ms)?;
+        self.read = found.comets;
+        Ok(to_js(&answer::Read { count: self.read.len(), first: name, errors }))
+    }
+
+    /// Those comets of the last text read whose name holds the words, at most `most` of them.
+    pub fn find_read(&self, words: &str, most: usize) -> JsValue {
+        to_js(&answer::found(&self.read, words, most))
+    }
+
+    /// Puts a comet of the last text read on the desk, by its number there.
+    pub fn pick_read(&mut self, number: usize, now_ms: f64) -> Result<JsValue, JsValue> {
+        match self.read.get(number).cloned() {
+            Some(comet) => self.take_comet(comet, now_ms),
+            None => Ok(JsValue::NULL),
+        }
+    }
+
+    /// Takes typed elements, field by field.
+    pub fn set_elements(&mut self, fields: JsValue) -> Result<JsValue, JsValue> {
+        let fields: typed::ElementFields = typed::from_js(fields)?;
+        let comet = fields.comet(&self.engine.plan().comet).map_err(refusal)?;
+        self.take(Plan { comet, ..self.plan() })
+    }
+
+    /// Looks from the centre of the Earth.
+    pub fn set_geocentre(&mut self) -> Result<JsValue, JsValue> {
+        self.take(Plan { observer: Observer::Geocentre, ..self.plan() })
+    }
+
+    /// Looks from a typed site.
+    pub fn set_site(&mut self, fields: JsValue) -> Result<JsValue, JsValue> {
+        let fields: typed::SiteFields = typed::from_js(fields)?;
+        let site = fields.site().map_err(refusal)?;
+        self.take(Plan { observer: Observer::Site(site), ..self.plan() })
+    }
+
+    /// The plan as it stands, time included.
+    pub fn plan_json(&self) -> String {
+        self.plan().print()
+    }
+
+    /// Goes to a time in days of TDB from J2000, rounded to a second of UTC; gives the time it went to.
+    pub fn scrub(&mut self, tdb_days: f64) -> Result<f64, JsValue> {
+        let time = Stamp::utc_seconds(Instant::from_tdb_days(tdb_days)).map_err(refusal)?;
+        self.go(time)
+    }
+
+    /// Goes to a typed time, in any form a plan takes; gives the time it went to.
+    pub fn scrub_to_text(&mut self, text: &str) -> Result<f64, JsValue> {
+        let time: Stamp = text.trim().parse().map_err(refusal)?;
+        self.go(time)
+    }
+
+    /// Everything the page shows beside the drawings.
+    pub fn reading(&self) -> JsValue {
+        to_js(&answer::reading(&self.engine, &self.time, &self.sky))
+    }
+
+    /// The read-out table as tabulated text.
+    pub fn table_text(&self) -> String {
+        answer::table_text(&self.engine, &self.time, &self.sky)
+    }
+
+    /// The stretch of time that the slider covers, with ticks and events for a track of this width.
+    pub fn season(&mut self, months: f64, width_px: f64) -> JsValue {
+        let perihelion = self.engine.plan().comet.elements.perihelion_time.instant();
+        let season = Season::around(self.season.take(), perihelion, self.sky.time, months);
+        let answer = season.answer(width_px, perihelion);
+        self.season = Some(season);
+        to_js(&answer)
+    }
+
+    /// Gives the sky plane its size in CSS pixels; the nucleus stays where it is and so does the scale.
+    pub fn resize(&mut self, width_px: f64, height_px: f64) {
+        self.view = SkyView { width_px, height_px, ..self.view };
+    }
+
+    /// Draws the sky plane; the context's transform carries the device's pixel ratio.
+    pub fn draw(&self, context: &CanvasRenderingContext2d, theme: &str) {
+        let scene = sky_plane::compose(self.engine.plan(), &self.sky, &self.view);
+        paint(&scene, named_theme(theme), &mut CanvasPainter::new(context));
+    }
+
+    /// The sky plane as an SVG file, as it stands.
+    pub fn svg(&self, theme: &str) -> String {
+        let scene = sky_plane::compose(self.engine.plan(), &self.sky, &self.view);
+        let saying = crate::say::say(self.engine.plan(), &self.sky);
+        let title = format!("{}, {}", self.engine.plan().comet.name, self.sky.time.utc_minute());
+        svg::write(&scene, named_theme(theme), &title, &saying.sentence)
+    }
+
+    /// What lies under the pointer, in words, one fact to a line.
+    pub fn hover(&self, x_px: f64, y_px: f64) -> String {
+        pointer::hover(&self.sky, &self.view, x_px, y_px).words()
+    }
+
+    pub fn zoom(&mut self, factor: f64, x_px: f64, y_px: f64) {
+        self.view = self.view.zoomed(factor, [x_px, y_px]);
+    }
+
+    pub fn pan(&mut self, right_px: f64, down_px: f64) {
+        self.view.offset_px = [self.view.offset_px[0] + right_px, self.view.offset_px[1] + down_px];
+    }
+
+    pub fn reset_view(&mut self) {
+        self.view = SkyView { up: self.view.up, ..SkyView::start(self.view.width_px, self.view.height_px) };
+    }
+
+    pub fn zenith_up(&self) -> bool {
+        self.view.up == Up::Zenith
+    }
+
+    pub fn set_zenith_up(&mut self, zenith: bool) {
+        self.view.up = if zenith { Up::Zenith } else { Up::North };
+    }
+}
+
+impl Desk {
+    /// The plan with the chosen time in it.
+    fn plan(&self) -> Plan {
+        Plan { time: Some(self.time.clone()), ..self.engine.plan().clone() }
+    }
+
+    fn take(&mut self, plan: Plan) -> Result<JsValue, JsValue> {
+        let (engine, time, sky) = prepared(plan).map_err(refusal)?;
+        self.season = None;
+        (self.engine, self.time, self.sky) = (engine, time, sky);
+        Ok(JsValue::TRUE)
+    }
+
+    /// Takes a comet that came without observer and time. An invented observer goes with the invented comets.
+    fn take_comet(&mut self, comet: Comet, now_ms: f64) -> Result<JsValue, JsValue> {
+        let perihelion = comet.elements.perihelion_time.instant();
+        // 10957.5 days from the Unix epoch to 2000-01-01 12:00.
+        let now = Instant::from_ut1_days((now_ms / 86_400_000.0).max(-3e6).min(3e6) - 10_957.5);
+        let away = |time: Instant| (time.tdb_days() - perihelion.tdb_days()).abs();
+        let time = if away(self.sky.time) <= NEAR_PERIHELION_DAYS {
+            self.time.clone()
+        } else if away(now) <= STILL_OF_USE_DAYS {
+            Stamp::utc_seconds(now).map_err(refusal)?
+        } else {
+            Stamp::utc_seconds(perihelion).map_err(refusal)?
+        };
+        let observer = self.engine.plan().observer.clone();
+        let observer = if examples::is_invented(&observer) { Observer::Geocentre } else { observer };
+        self.take(Plan { comet, observer, time: Some(time), ..self.plan() })
+    }
+
+    fn go(&mut self, time: Stamp) -> Result<f64, JsValue> {
+        self.sky = self.engine.sky_at(time.instant()).map_err(refusal)?;
+        self.time = time;
+        Ok(self.sky.time.tdb_days())
+    }
+}
+
+/// A plan made ready, with the time it opens at and its sky there.
+fn prepared(plan: Plan) -> Result<(Engine, Stamp, Sky), Error> {
+    let time = match &plan.time {
+        Some(time) => time.clone(),
+        None => Stamp::utc_seconds(plan.comet.elements.perihelion_time.instant())?,
+    };
+    let engine = Engine::new(plan)?;
+    let sky = engine.sky_at(time.instant())?;
+    Ok((engine, time, sky))
+}

@@ -24,7 +24,7 @@ Tailvane.comet = (function () {
   function read(text) {
     clearTimeout(readTimer);
     lastRead = text;
-    const result = Tailvane.desk.change((desk) => desk.read_text(text));
+    const result = Tailvane.desk.change((desk) => desk.read_text(text, Date.now()));
     if (!result) {
       box.setAttribute("aria-invalid", "true");
       Tailvane.write(found, "Nothing was changed; the text is kept.");
@@ -55,7 +55,7 @@ Tailvane.comet = (function () {
     }
     const more = hits.total > hits.list.length ? ", the first " + hits.list.length + " shown" : "";
     Tailvane.write(Tailvane.find("show", "read-count"), "Find among those read (" + hits.total + more + ")");
-    readList.replaceChildren(...hits.list.map((hit) => pick(hit.name, "", () => Tailvane.desk.change((desk) => desk.pick_read(hit.number)))));
+    readList.replaceChildren(...hits.list.map((hit) => pick(hit.name, "", () => Tailvane.desk.change((desk) => desk.pick_read(hit.number, Date.now())))));
   }
 
   /** A list item with a button that takes a comet, and optionally one that forgets it. */
@@ -116,7 +116,7 @@ Tailvane.comet = (function () {
   /** Takes only the comet of a plan; observer and time stay. */
   function takeComet(plan) {
     Tailvane.season.pause();
-    Tailvane.desk.change((desk) => desk.set_comet(plan));
+    Tailvane.desk.change((desk) => desk.set_comet(plan, Date.now()));
   }
 
   function keep() {
