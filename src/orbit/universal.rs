@@ -8,8 +8,8 @@
 //! t(s) = r0 G1 + eta0 G2 + mu G3,    eta0 = r0 . v0
 //! ```
 //!
-//! which never decreases. Nothing divides by mu or by 1 - e. Two solvers: [`Start::anomaly`] steps to
-//! fourth order from a good guess and gives way, when a step does not settle, to [`Start::anomaly_bracketed`],
+//! which never decreases. Nothing divides by mu or by 1 - e. Two solvers: [`Start::anomaly`] steps
+//! from a guess, the last time to fourth order, and gives way, when a step does not settle, to [`Start::anomaly_bracketed`],
 //! a bracketed Newton search that cannot fail. They agree to 1e-13 of s or better wherever both answer
 //! (tests/conic.rs). Times longer than half a revolution are first reduced by whole revolutions.
 //! Sources: Battin, An Introduction to the Mathematics and Methods of Astrodynamics, ch. 4; Danby, ch. 6.
@@ -42,8 +42,8 @@ pub struct Anomaly {
 /// The G functions at one anomaly: G0 to G3.
 pub type Universal = [f64; 4];
 
-/// Fourth-order steps before the bracketed search takes over.
-const MOST_STEPS: u32 = 8;
+/// Steps before the bracketed search takes over.
+const MOST_STEPS: u32 = 12;
 
 impl Start {
     /// G0 to G3 at `s`.
@@ -96,7 +96,7 @@ impl Start {
         }
     }
 
-    /// The anomaly after `days` (negative: before), by fourth-order steps from a guess.
+    /// The anomaly after `days` (negative: before), by steps from a guess.
     pub fn anomaly(&self, days: f64) -> Anomaly {
         let (revolutions, rest) = self.reduce(days);
         self.anomaly_from(self.first_guess(rest), revolutions, rest)
@@ -112,7 +112,7 @@ impl Start {
     fn anomaly_from(&self, guess: f64, revolutions: f64, rest: f64) -> Anomaly {
         let mut s = guess;
         for _ in 0..MOST_STEPS {
-            let step = self.quartic_step(&self.universal(s), rest);
+            let step = self.step(&self.universal(s), rest, s);
             s += step;
             // The error left behind is of the order of (step / s)^4 s, times at most some 1e5 where the
             // time span holds a grazing perihelion: below rounding.
@@ -152,15 +152,19 @@ impl Start {
         if u == 0.0 { -shift } else { u - p / (3.0 * u) - shift }
     }
 
-    /// Correction to s of fourth order (Danby's nested form of Householder's method).
-    fn quartic_step(&self, g: &Universal, days: f64) -> f64 {
+    /// Correction to s: Laguerre's, which comes home from far, until Newton's is a hundredth of s; then of
+    /// fourth order (Danby's nested form of Householder's method).
+    fn step(&self, g: &Universal, days: f64, s: f64) -> f64 {
         let miss = self.time(g) - days;
         let r = self.distance_at(g);
         let eta = self.eta * g[0] + (self.mu - self.binding * self.distance) * g[1];
+        let newton = -miss / r;
+        if newton.abs() > 1e-2 * s.abs() {
+            return -5.0 * miss / (r + (16.0 * r * r - 20.0 * miss * eta).abs().sqrt());
+        }
         let third = self.mu - self.binding * r;
         let fourth = -self.binding * eta;
-        let d1 = -miss / r;
-        let d2 = -miss / (r + d1 * eta / 2.0);
+        let d2 = -miss / (r + newton * eta / 2.0);
         let d3 = -miss / (r + d2 * (eta / 2.0 + d2 * third / 6.0));
         -miss / (r + d3 * (eta / 2.0 + d3 * (third / 6.0 + d3 * fourth / 24.0)))
     }
@@ -172,6 +176,7 @@ impl Start {
         }
         let (mut low, mut high) = self.bracket(days);
         let mut s = 0.5 * (low + high);
+        let mut last_step = high - low;
         for _ in 0..200 {
             let g = self.universal(s);
             let miss = self.time(&g) - days;
@@ -182,12 +187,15 @@ impl Start {
             } else {
                 low = s;
             }
+            // Newton where it stays inside and at least halves the step; the middle otherwise.
             let newton = s - miss / self.distance_at(&g);
-            let next = if newton > low && newton < high { newton } else { 0.5 * (low + high) };
-            if next == s || (next - s).abs() <= 2e-16 * s.abs() {
-                return next;
-            }
+            let trusted = newton > low && newton < high && (newton - s).abs() < 0.5 * last_step.abs();
+            let next = if trusted { newton } else { 0.5 * (low + high) };
+            last_step = next - s;
             s = next;
+            if last_step.abs() <= 2e-16 * s.abs() {
+                break;
+            }
         }
         s
     }
