@@ -1,8 +1,10 @@
 //! Dates as text and time scales, against ERFA and skyfield (tests/truth/time.csv) and as properties.
 
+mod common;
+
+use common::stamp_texts;
 use proptest::prelude::*;
 use tailvane::error::Place;
-use tailvane::time::civil::{Date, month_length};
 use tailvane::time::{Instant, Scale, Stamp};
 
 fn stamp(text: &str) -> Stamp {
@@ -182,27 +184,6 @@ fn printed_notations_give_stamps_with_the_same_digits() {
     for text in ["", "-5.0", "99999999", "NaN", "5e4"] {
         assert!(Stamp::from_modified_julian(text, Scale::Tt).is_err(), "{text}");
     }
-}
-
-prop_compose! {
-    fn dates()(year in -4712..=9999_i32, month in 1..=12_u32, part in 0.0..1.0_f64) -> Date {
-        let day = 1 + (part * f64::from(month_length(year, month))) as u32;
-        Date::new(year, month, day).unwrap()
-    }
-}
-
-/// Texts of every form, as the plan prints them.
-fn stamp_texts() -> impl Strategy<Value = String> {
-    let scale = prop::sample::select(vec!["UTC", "TT", "TDB"]);
-    let decimals = prop_oneof![Just(String::new()), "\\.[0-9]{1,18}"];
-    prop_oneof![
-        (dates(), 0..24, 0..60, prop::option::of((0..60, decimals.clone()))).prop_map(|(date, hour, minute, second)| {
-            let second = second.map(|(second, decimals)| format!(":{second:02}{decimals}")).unwrap_or_default();
-            format!("{date}T{hour:02}:{minute:02}{second}Z")
-        }),
-        (dates(), decimals.clone(), scale.clone()).prop_map(|(date, decimals, scale)| format!("{date}{decimals} {scale}")),
-        (40..5_373_484_i32, decimals, scale).prop_map(|(day, decimals, scale)| format!("JD {day}{decimals} {scale}")),
-    ]
 }
 
 proptest! {

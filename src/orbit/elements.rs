@@ -2,12 +2,15 @@
 //!
 //! Heliocentric osculating elements as they are printed: ecliptic and equinox J2000 with obliquity
 //! 84381.448 arcsec, degrees, au. This is text made typed, hence degrees; [`super::conic::Orbit`] is
-//! the same orbit ready to compute with.
+//! the same orbit ready to compute with. Field names are the keys of the plan file.
 
+use crate::error::{Error, Kind, Place};
 use crate::time::Stamp;
+use serde::{Deserialize, Serialize};
 
 /// Published heliocentric elements, ecliptic and equinox J2000.
-#[derive(Clone, Debug, PartialEq)]
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
+#[serde(deny_unknown_fields, expecting = "an object with the elements of a comet")]
 pub struct Elements {
     /// Perihelion distance, au, > 0.
     pub perihelion_distance_au: f64,
@@ -22,13 +25,16 @@ pub struct Elements {
     /// Time of perihelion.
     pub perihelion_time: Stamp,
     /// Epoch at which the elements osculate.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
     pub epoch: Option<Stamp>,
     /// Non-gravitational parameters, kept and printed back; not used by two-body motion.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
     pub nongravitational: Option<Nongravitational>,
 }
 
 /// Non-gravitational acceleration parameters of the standard model (Marsden, Sekanina & Yeomans 1973, AJ 78, 211).
-#[derive(Clone, Copy, Debug, PartialEq)]
+#[derive(Clone, Copy, Debug, Default, PartialEq, Serialize, Deserialize)]
+#[serde(deny_unknown_fields, default, expecting = "an object with non-gravitational parameters")]
 pub struct Nongravitational {
     pub a1_au_d2: f64,
     pub a2_au_d2: f64,
@@ -37,26 +43,93 @@ pub struct Nongravitational {
 }
 
 /// One branch of the total-magnitude law m = H + 5 log10 Delta + 2.5 n log10 r.
-#[derive(Clone, Debug, PartialEq)]
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
+#[serde(deny_unknown_fields, expecting = "an object with one branch of the brightness law")]
 pub struct Brightness {
     pub absolute_magnitude: f64,
     pub photometric_index_n: f64,
+    #[serde(default, skip_serializing_if = "Option::is_none")]
     pub from: Option<Stamp>,
+    #[serde(default, skip_serializing_if = "Option::is_none")]
     pub to: Option<Stamp>,
 }
 
 /// A comet as published: its name and elements, and its brightness law if one was given.
-#[derive(Clone, Debug, PartialEq)]
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
+#[serde(deny_unknown_fields, expecting = "an object with a comet's `name`, `elements` and perhaps `brightness`")]
 pub struct Comet {
     pub name: String,
     pub elements: Elements,
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
     pub brightness: Vec<Brightness>,
+}
+
+/// Above this A1, A2 and A3 cannot be au/day^2: circulars print them in units of 1e-8 au/day^2.
+pub const LARGEST_NONGRAVITATIONAL_AU_D2: f64 = 1e-4;
+
+/// The longest name kept, in characters.
+pub const LONGEST_NAME: usize = 200;
+
+/// Refuses `value` at `path` unless `holds`; not-a-number and infinities never hold.
+fn require(path: &str, value: f64, holds: bool, allowed: &str) -> Result<(), Error> {
+    if holds && value.is_finite() {
+        return Ok(());
+    }
+    Err(Error::new(Kind::Range, Place::Field(path.into()), value.to_string(), allowed))
 }
 
 impl Elements {
     /// # Errors
-    /// A value outside its range.
-    pub fn validate(&self) -> Result<(), crate::error::Error> {
+    /// The first element outside its range, at its path `comet.elements...`.
+    pub fn validate(&self) -> Result<(), Error> {
+        let check = |key: &str, value: f64, holds: bool, allowed: &str| {
+            require(&format!("comet.elements.{key}"), value, holds, allowed)
+        };
+        let (q, e, i) = (self.perihelion_distance_au, self.eccentricity, self.inclination_deg);
+        check("perihelion_distance_au", q, q > 0.0, "a perihelion distance above 0 au")?;
+        check("eccentricity", e, e >= 0.0, "an eccentricity of 0 or more")?;
+        check("inclination_deg", i, (0.0..=180.0).contains(&i), "an inclination from 0 to 180 degrees")?;
+        let angle = "an angle from -360 to 360 degrees";
+        let (node, peri) = (self.ascending_node_deg, self.argument_of_perihelion_deg);
+        check("ascending_node_deg", node, node.abs() <= 360.0, angle)?;
+        check("argument_of_perihelion_deg", peri, peri.abs() <= 360.0, angle)?;
+        if let Some(push) = self.nongravitational {
+            let allowed = "a parameter in au/day^2, of size below 1e-4 (circulars print it in units of 1e-8 au/day^2)";
+            for (key, value) in [("a1_au_d2", push.a1_au_d2), ("a2_au_d2", push.a2_au_d2), ("a3_au_d2", push.a3_au_d2)] {
+                let holds = value.abs() < LARGEST_NONGRAVITATIONAL_AU_D2;
+                check(&format!("nongravitational.{key}"), value, holds, allowed)?;
+            }
+            let delay = push.delay_days;
+            check("nongravitational.delay_days", delay, delay.abs() <= 1000.0, "a delay from -1000 to 1000 days")?;
+        }
+        Ok(())
+    }
+}
+
+impl Comet {
+    /// # Errors
+    /// The first part outside its range, at its path `comet...`.
+    pub fn validate(&self) -> Result<(), Error> {
+        let length = self.name.chars().count();
+        let plain = self.name.trim() == self.name && !self.name.chars().any(char::is_control);
+        if length == 0 || length > LONGEST_NAME || !plain {
+            let found: String = self.name.chars().take(40).collect();
+            let allowed = format!("a name of 1 to {LONGEST_NAME} characters on one line, without blanks around it");
+            return Err(Error::new(Kind::Range, Place::Field("comet.name".into()), format!("{found:?}"), allowed));
+        }
+        self.elements.validate()?;
+        for (index, branch) in self.brightness.iter().enumerate() {
+            let path = |key: &str| format!("comet.brightness[{index}].{key}");
+            let (magnitude, n) = (branch.absolute_magnitude, branch.photometric_index_n);
+            require(&path("absolute_magnitude"), magnitude, magnitude.abs() <= 100.0, "a magnitude from -100 to 100")?;
+            require(&path("photometric_index_n"), n, n.abs() <= 100.0, "an index n from -100 to 100, in 2.5 n log r")?;
+            if let (Some(from), Some(to)) = (&branch.from, &branch.to)
+                && from.instant() > to.instant()
+            {
+                let place = Place::Field(path("to"));
+                return Err(Error::new(Kind::Range, place, to.to_string(), format!("a time not before `from`, {from}")));
+            }
+        }
         Ok(())
     }
 }

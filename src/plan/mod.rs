@@ -1,0 +1,132 @@
+//! What did a person set up?
+//!
+//! One JSON object, version 1, keys in the order below. Unknown keys, wrong types and values out of range are refused
+//! by name; a plan printed and read again is the same plan. `json` finds places in the text.
+//!
+//! | key | what | may be left out |
+//! | --- | --- | --- |
+//! | `tailvane_plan` | the version, 1 | no |
+//! | `comet` | [`Comet`]: `name`, `elements`, `brightness` | no |
+//! | `observer` | a [`Site`]: `name`, `longitude_deg`, `latitude_deg`, `height_m` | yes: the geocentre |
+//! | `sites` | more sites | yes |
+//! | `time` | a date in any form of [`Stamp`] | yes |
+
+mod json;
+
+use crate::body::observer::{Observer, Site};
+use crate::error::{Error, Kind, Place};
+use crate::orbit::elements::Comet;
+use crate::time::Stamp;
+use serde::{Deserialize, Serialize};
+
+/// The version this program writes and reads.
+pub const VERSION: u32 = 1;
+
+/// Everything a person set up; one JSON file.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Plan {
+    pub comet: Comet,
+    pub observer: Observer,
+    /// More observers the person keeps.
+    pub sites: Vec<Site>,
+    pub time: Option<Stamp>,
+}
+
+/// The plan as its JSON lies; later sections become fields here and in [`Plan`].
+#[derive(Serialize, Deserialize)]
+#[serde(deny_unknown_fields, expecting = "a plan: a JSON object with `tailvane_plan` and `comet`")]
+struct Text {
+    tailvane_plan: u32,
+    comet: Comet,
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    observer: Option<Site>,
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    sites: Vec<Site>,
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    time: Option<Stamp>,
+}
+
+/// The version alone, so that a newer plan is refused as newer and not for its new keys.
+#[derive(Deserialize)]
+#[serde(expecting = "a plan: a JSON object with `tailvane_plan` and `comet`")]
+struct Header {
+    tailvane_plan: Option<serde_json::Value>,
+}
+
+impl Plan {
+    /// The plan that `text` holds.
+    ///
+    /// # Errors
+    /// [`Kind::Plan`] with line and column for what is no plan of this version; [`Kind::Range`] with line and column, and
+    /// the path in `found`, for values out of range.
+    pub fn parse(text: &str) -> Result<Plan, Error> {
+        let text = text.strip_prefix('\u{feff}').unwrap_or(text);
+        if text.trim().is_empty() {
+            let allowed = "a plan: a JSON object with `tailvane_plan` and `comet`";
+            return Err(Error::new(Kind::Plan, Place::Line { line: 1, column: 1 }, "nothing", allowed));
+        }
+        let header: Header = json::read(text)?;
+        check_version(header.tailvane_plan.as_ref()).map_err(|error| error.at(json::place(text, "tailvane_plan")))?;
+        let read: Text = json::read(text)?;
+        let plan = Plan {
+            comet: read.comet,
+            observer: read.observer.map_or(Observer::Geocentre, Observer::Site),
+            sites: read.sites,
+            time: read.time,
+        };
+        plan.validate().map_err(|error| json::located(text, "", error))?;
+        Ok(plan)
+    }
+
+    /// The plan as indented JSON with a line end, keys in the module's order. Reading it gives this plan back, if it is
+    /// valid.
+    pub fn print(&self) -> String {
+        let mut text = serde_json::to_string_pretty(&self.text()).unwrap_or_default();
+        text.push('\n');
+        text
+    }
+
+    /// The plan as JSON on one line, without a line end.
+    pub fn print_line(&self) -> String {
+        serde_json::to_string(&self.text()).unwrap_or_default()
+    }
+
+    fn text(&self) -> Text {
+        Text {
+            tailvane_plan: VERSION,
+            comet: self.comet.clone(),
+            observer: match &self.observer {
+                Observer::Geocentre => None,
+                Observer::Site(site) => Some(site.clone()),
+            },
+            sites: self.sites.clone(),
+            time: self.time.clone(),
+        }
+    }
+
+    /// # Errors
+    /// The first value outside its range, at its path.
+    pub fn validate(&self) -> Result<(), Error> {
+        self.comet.validate()?;
+        if let Observer::Site(site) = &self.observer {
+            site.validate("observer")?;
+        }
+        for (index, site) in self.sites.iter().enumerate() {
+            site.validate(&format!("sites[{index}]"))?;
+        }
+        Ok(())
+    }
+}
+
+fn check_version(version: Option<&serde_json::Value>) -> Result<(), Error> {
+    let refuse = |found: String, allowed: String| Err(Error::new(Kind::Plan, Place::Whole, found, allowed));
+    match version {
+        None => refuse("no `tailvane_plan`".into(), format!("`\"tailvane_plan\": {VERSION}`, the version of the plan")),
+        Some(version) if version.as_u64() == Some(u64::from(VERSION)) => Ok(()),
+        Some(version) if version.as_f64().is_some_and(|version| version > f64::from(VERSION)) => refuse(
+            format!("a plan of version {version}"),
+            format!("version {VERSION}, the newest that this Tailvane reads; a newer Tailvane wrote the plan"),
+        ),
+        Some(version) => refuse(format!("version {version}"), format!("version {VERSION}")),
+    }
+}

@@ -1,0 +1,147 @@
+//! The plan file: print and read are inverse; what is not a plan is refused with its place.
+
+mod common;
+
+use common::plans;
+use proptest::prelude::*;
+use tailvane::error::{Error, Place};
+use tailvane::plan::Plan;
+
+const PLAN: &str = r#"{
+  "tailvane_plan": 1,
+  "comet": {
+    "name": "Invented comet",
+    "elements": {
+      "perihelion_distance_au": 0.52,
+      "eccentricity": 1.0003,
+      "inclination_deg": 61.2,
+      "ascending_node_deg": 201.9,
+      "argument_of_perihelion_deg": 33.4,
+      "perihelion_time": "2031-03-04.51732 TT",
+      "epoch": "2031-02-20.0 TT",
+      "nongravitational": {
+        "a1_au_d2": 1.2e-8,
+        "a2_au_d2": -3e-10,
+        "a3_au_d2": 0.0,
+        "delay_days": 0.0
+      }
+    },
+    "brightness": [
+      {
+        "absolute_magnitude": 6.5,
+        "photometric_index_n": 4.0
+      }
+    ]
+  },
+  "observer": {
+    "name": "Invented hill",
+    "longitude_deg": 23.4,
+    "latitude_deg": 37.1,
+    "height_m": 640.0
+  },
+  "time": "2031-03-20T05:30:00Z"
+}
+"#;
+
+fn refusal(text: &str) -> Error {
+    match Plan::parse(text) {
+        Ok(plan) => panic!("read as {}", plan.print()),
+        Err(error) => error,
+    }
+}
+
+/// Refuses the plan with `old` replaced by `new`, at the line of `old`, saying every one of `parts`.
+fn refuses(old: &str, new: &str, parts: &[&str]) {
+    assert!(PLAN.contains(old), "{old}");
+    let error = refusal(&PLAN.replacen(old, new, 1));
+    let line = PLAN[..PLAN.find(old).unwrap()].matches('\n').count() + 1;
+    match error.place {
+        Place::Line { line: found, column } => assert!(found.abs_diff(line) <= 1 && column > 0, "{error}, wanted line {line}"),
+        ref place => panic!("{place:?}"),
+    }
+    for part in parts {
+        assert!(error.to_string().contains(part), "{error}: wanted {part}");
+    }
+}
+
+#[test]
+fn the_printed_plan_is_the_plan_as_documented() {
+    assert_eq!(Plan::parse(PLAN).unwrap().print(), PLAN);
+    assert_eq!(Plan::parse(&format!("\u{feff}\r\n{}", PLAN.replace('\n', "\r\n"))).unwrap().print(), PLAN);
+}
+
+#[test]
+fn optional_parts_may_be_absent() {
+    let short = r#"{"tailvane_plan":1,"comet":{"name":"A","elements":{"perihelion_distance_au":1,"eccentricity":1,"inclination_deg":0,
+        "ascending_node_deg":0,"argument_of_perihelion_deg":0,"perihelion_time":"JD 2460000.5 TT"}}}"#;
+    let plan = Plan::parse(short).unwrap();
+    assert!(plan.time.is_none() && plan.sites.is_empty() && plan.comet.brightness.is_empty());
+    assert!(!plan.print().contains("epoch") && !plan.print().contains("observer"));
+    assert_eq!(Plan::parse(&plan.print_line()).unwrap(), plan);
+}
+
+#[test]
+fn refusals_name_key_line_and_what_is_allowed() {
+    refuses("\"eccentricity\"", "\"ecc\"", &["unknown key `ecc`", "comet.elements", "`eccentricity`", "line 7, column"]);
+    refuses("\"height_m\"", "\"tails\": 1, \"height_m\"", &["unknown key `tails`"]);
+    refuses("\"observer\"", "\"camera\": {}, \"observer\"", &["unknown key `camera`"]);
+    refuses("0.52", "\"0.52\"", &["string \"0.52\"", "comet.elements.perihelion_distance_au", "a number"]);
+    refuses("0.52", "-0.52", &["line 6, column 33", "-0.52", "comet.elements.perihelion_distance_au", "above 0"]);
+    refuses("0.52", "0", &["above 0"]);
+    refuses("0.52", "1e999", &["line 6", "number out of range"]);
+    refuses("0.52", "NaN", &["line 6", "JSON"]);
+    refuses("1.0003", "-0.1", &["line 7, column 23", "eccentricity of 0 or more"]);
+    refuses("61.2", "180.1", &["0 to 180"]);
+    refuses("201.9", "null", &["ascending_node_deg", "a number"]);
+    refuses("201.9", "-361", &["-360 to 360"]);
+    refuses("2031-03-04.51732 TT", "2031-03-32.5 TT", &["day 32", "1 to 31", "comet.elements.perihelion_time"]);
+    refuses("2031-03-20T05:30:00Z", "2031-03-20T05:30:00", &["`Z`", "at time"]);
+    refuses("\"2031-03-20T05:30:00Z\"", "2460000.5", &["a date such as", "at time"]);
+    refuses("1.2e-8", "1.2", &["nongravitational.a1_au_d2", "1e-8 au/day^2"]);
+    refuses("37.1", "97.1", &["observer.latitude_deg", "-90 to 90"]);
+    refuses("\"Invented comet\"", "\"\"", &["comet.name", "a name"]);
+    refuses("6.5", "1e3", &["comet.brightness[0].absolute_magnitude", "line 22"]);
+    refuses("\"epoch\":", "\"eccentricity\":", &["`eccentricity` twice"]);
+    refuses("\"tailvane_plan\": 1", "\"tailvane_plan\": 2, \"sounds\": 3", &["line 2, column 20", "plan of version 2", "version 1"]);
+    refuses("\"tailvane_plan\": 1", "\"tailvane_plan\": \"1\"", &["version \"1\""]);
+    refuses("\"tailvane_plan\": 1", "\"tailvane_plan\": 0", &["version 0"]);
+}
+
+#[test]
+fn a_missing_key_is_named() {
+    let error = refusal(&PLAN.replace("      \"eccentricity\": 1.0003,\n", ""));
+    assert!(error.to_string().contains("no `eccentricity` at comet.elements"), "{error}");
+    assert!(refusal("{}").to_string().contains("no `tailvane_plan`"));
+    for text in ["", "  \n", "5", "null", "[]", "{", "{\"tailvane_plan\": 1", "\u{0}", "tailvane"] {
+        let error = refusal(text);
+        assert!(matches!(error.place, Place::Line { line: 1.., column: 1.. }), "{text}: {error}");
+    }
+    assert!(refusal(&format!("{PLAN} x")).to_string().contains("line 35, column 2"));
+}
+
+proptest! {
+    #![proptest_config(ProptestConfig::with_cases(2000))]
+
+    #[test]
+    fn a_plan_printed_and_read_is_the_same_plan(plan in plans()) {
+        let text = plan.print();
+        prop_assert_eq!(&Plan::parse(&text).unwrap(), &plan);
+        prop_assert_eq!(&Plan::parse(&plan.print_line()).unwrap(), &plan);
+        prop_assert_eq!(Plan::parse(&text).unwrap().print(), text);
+    }
+
+    #[test]
+    fn a_changed_plan_never_panics(place in 0..PLAN.len(), cut in 0..20_usize, new in "[\\PC\u{0}\n]{0,3}") {
+        let mut text = PLAN.to_string();
+        let end = (place + cut).min(text.len());
+        text.replace_range(place..end, &new);
+        if let Ok(plan) = Plan::parse(&text) {
+            prop_assert_eq!(&Plan::parse(&plan.print()).unwrap(), &plan);
+        }
+    }
+
+    #[test]
+    fn any_text_never_panics(text in "[\\PC\n\\[\\]{}:,\"]{0,80}") {
+        let _ = Plan::parse(&text);
+    }
+}
