@@ -5,8 +5,8 @@
 //! | module | the question it answers |
 //! | --- | --- |
 //! | [`error`] | what was refused, where, and what is allowed? |
-//! | [`caution`] | what was computed but is doubtful, and why? |
 //! | [`time`] | which instant does a typed date mean? |
+//! | [`caution`] | what was computed but is doubtful, and why? |
 //! | [`frame`] | how do directions turn into angles, and one frame into another? |
 //! | [`body`] | where are the Earth, the Moon and the observer? |
 //! | [`orbit`] | what do published elements say, and where does the comet move? |
@@ -19,8 +19,8 @@
 #![forbid(unsafe_code)]
 
 pub mod error;
-pub mod caution;
 pub mod time;
+pub mod caution;
 pub mod frame;
 pub mod body;
 pub mod orbit;

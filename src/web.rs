@@ -68,7 +68,7 @@ pub fn examples() -> JsValue {
 /// The comet's name in a plan.
 #[wasm_bindgen]
 pub fn plan_name(plan: &str) -> Result<String, JsValue> {
-    Ok(Plan::read(plan).map_err(refusal)?.comet.name)
+    Ok(Plan::parse(plan).map_err(refusal)?.comet.name)
 }
 
 /// The sites of the packed table whose code or name holds the words, best first.
@@ -97,19 +97,19 @@ impl Desk {
     /// A desk with a plan on it. A plan without a time opens at its comet's perihelion.
     #[wasm_bindgen(constructor)]
     pub fn new(plan: &str) -> Result<Desk, JsValue> {
-        let (engine, time, sky) = prepared(Plan::read(plan).map_err(refusal)?).map_err(refusal)?;
+        let (engine, time, sky) = prepared(Plan::parse(plan).map_err(refusal)?).map_err(refusal)?;
         Ok(Desk { engine, time, sky, view: SkyView::start(800.0, 600.0), season: None, read: Vec::new() })
     }
 
     /// Puts another plan on the desk.
     pub fn set_plan(&mut self, plan: &str) -> Result<JsValue, JsValue> {
-        let plan = Plan::read(plan).map_err(refusal)?;
+        let plan = Plan::parse(plan).map_err(refusal)?;
         self.take(plan)
     }
 
     /// Puts the comet of a plan on the desk; observer and time stay where they serve it.
     pub fn set_comet(&mut self, plan: &str, now_ms: f64) -> Result<JsValue, JsValue> {
-        let comet = Plan::read(plan).map_err(refusal)?.comet;
+        let comet = Plan::parse(plan).map_err(refusal)?.comet;
         self.take_comet(comet, now_ms)
     }
 
@@ -117,7 +117,7 @@ impl Desk {
     /// Refused only when nothing could be read.
     pub fn read_text(&mut self, text: &str, now_ms: f64) -> Result<JsValue, JsValue> {
         if text.trim_start().starts_with('{')
-            && let Ok(plan) = Plan::read(text)
+            && let Ok(plan) = Plan::parse(text)
         {
             let first = plan.comet.name.clone();
             self.read = Vec::new();

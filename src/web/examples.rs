@@ -27,7 +27,7 @@ pub struct Example {
 pub fn list() -> Vec<Example> {
     PLANS
         .into_iter()
-        .filter_map(|(plan, about)| Plan::read(plan).ok().map(|read| Example { name: read.comet.name, about, plan }))
+        .filter_map(|(plan, about)| Plan::parse(plan).ok().map(|read| Example { name: read.comet.name, about, plan }))
         .collect()
 }
 
