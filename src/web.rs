@@ -10,23 +10,24 @@ mod season;
 mod typed;
 
 use crate::body::observer::Observer;
-use crate::engine::Engine;
+use crate::engine::{Engine, View};
 use crate::error::{Error, Kind, Place};
 use crate::orbit::elements::Comet;
-use crate::orbit::notation;
+use crate::orbit::notation::{self, Entry};
 use crate::paint::canvas::CanvasPainter;
 use crate::paint::{paint, svg};
 use crate::plan::Plan;
 use crate::scene::theme::Theme;
 use crate::scene::view::{SkyView, Up};
 use crate::scene::{pointer, sky_plane};
-use crate::sky::Sky;
+use crate::say;
 use crate::time::{Instant, Stamp};
-use answer::{Refusal, refusal, to_js};
+use answer::Refusal;
 use season::Season;
+use serde::{Deserialize, Serialize};
 use std::sync::Mutex;
 use wasm_bindgen::prelude::wasm_bindgen;
-use wasm_bindgen::{JsError, JsValue};
+use wasm_bindgen::JsValue;
 use web_sys::CanvasRenderingContext2d;
 
 /// What the last panic said, for the page to show.
@@ -77,6 +78,22 @@ pub fn find_sites(table: &str, words: &str) -> JsValue {
     to_js(&answer::sites(table, words))
 }
 
+/// A plain object of the page; the answers hold only text, numbers and lists of them, which always convert.
+fn to_js(value: &impl Serialize) -> JsValue {
+    serde_wasm_bindgen::to_value(value).unwrap_or(JsValue::UNDEFINED)
+}
+
+/// A refusal, ready to be thrown.
+fn refusal(error: Error) -> JsValue {
+    to_js(&Refusal::of(&error))
+}
+
+/// The fields of a form, as the page sends them.
+fn from_js<T: for<'a> Deserialize<'a>>(fields: JsValue) -> Result<T, JsValue> {
+    serde_wasm_bindgen::from_value(fields)
+        .map_err(|e| refusal(Error::new(Kind::Usage, Place::Whole, e.to_string(), "the fields of the form")))
+}
+
 fn named_theme(name: &str) -> Theme {
     Theme::named(name).unwrap_or(Theme::Dark)
 }
@@ -86,10 +103,11 @@ fn named_theme(name: &str) -> Theme {
 pub struct Desk {
     engine: Engine,
     time: Stamp,
-    sky: Sky,
+    /// What is seen at `time`.
+    seen: View,
     view: SkyView,
     season: Option<Season>,
-    read: Vec<Comet>,
+    read: Vec<Entry>,
 }
 
 #[wasm_bindgen]
@@ -97,8 +115,8 @@ impl Desk {
     /// A desk with a plan on it. A plan without a time opens at its comet's perihelion.
     #[wasm_bindgen(constructor)]
     pub fn new(plan: &str) -> Result<Desk, JsValue> {
-        let (engine, time, sky) = prepared(Plan::parse(plan).map_err(refusal)?).map_err(refusal)?;
-        Ok(Desk { engine, time, sky, view: SkyView::start(800.0, 600.0), season: None, read: Vec::new() })
+        let (engine, time, seen) = prepared(Plan::parse(plan).map_err(refusal)?).map_err(refusal)?;
+        Ok(Desk { engine, time, seen, view: SkyView::start(800.0, 600.0), season: None, read: Vec::new() })
     }
 
     /// Puts another plan on the desk.
@@ -126,18 +144,19 @@ impl Desk {
             } else {
                 self.take_comet(plan.comet, now_ms)?;
             }
-            return Ok(to_js(&answer::Read { count: 1, first, errors: Vec::new() }));
+            return Ok(to_js(&answer::Read { count: 1, first, errors: Vec::new(), notices: Vec::new() }));
         }
         let found = notation::read(text);
         let errors: Vec<Refusal> = found.errors.iter().map(Refusal::of).collect();
-        let Some(first) = found.comets.first().cloned() else {
+        let Some(first) = found.comets.first().map(|entry| entry.comet.clone()) else {
             let nothing = Error::new(Kind::Notation, Place::Whole, "no elements", "the elements of a comet");
             return Err(refusal(found.errors.into_iter().next().unwrap_or(nothing)));
         };
         let name = first.name.clone();
         self.take_comet(first, now_ms)?;
         self.read = found.comets;
-        Ok(to_js(&answer::Read { count: self.read.len(), first: name, errors }))
+        let notices = found.notices.iter().map(ToString::to_string).collect();
+        Ok(to_js(&answer::Read { count: self.read.len(), first: name, errors, notices }))
     }
 
     /// Those comets of the last text read whose name holds the words, at most `most` of them.
@@ -147,15 +166,15 @@ impl Desk {
 
     /// Puts a comet of the last text read on the desk, by its number there.
     pub fn pick_read(&mut self, number: usize, now_ms: f64) -> Result<JsValue, JsValue> {
-        match self.read.get(number).cloned() {
-            Some(comet) => self.take_comet(comet, now_ms),
+        match self.read.get(number) {
+            Some(entry) => self.take_comet(entry.comet.clone(), now_ms),
             None => Ok(JsValue::NULL),
         }
     }
 
     /// Takes typed elements, field by field.
     pub fn set_elements(&mut self, fields: JsValue) -> Result<JsValue, JsValue> {
-        let fields: typed::ElementFields = typed::from_js(fields)?;
+        let fields: typed::ElementFields = from_js(fields)?;
         let comet = fields.comet(&self.engine.plan().comet).map_err(refusal)?;
         self.take(Plan { comet, ..self.plan() })
     }
@@ -167,7 +186,7 @@ impl Desk {
 
     /// Looks from a typed site.
     pub fn set_site(&mut self, fields: JsValue) -> Result<JsValue, JsValue> {
-        let fields: typed::SiteFields = typed::from_js(fields)?;
+        let fields: typed::SiteFields = from_js(fields)?;
         let site = fields.site().map_err(refusal)?;
         self.take(Plan { observer: Observer::Site(site), ..self.plan() })
     }
@@ -190,19 +209,20 @@ impl Desk {
     }
 
     /// Everything the page shows beside the drawings.
-    pub fn reading(&self) -> JsValue {
-        to_js(&answer::reading(&self.engine, &self.time, &self.sky))
+    pub fn reading(&mut self) -> JsValue {
+        let visibility = self.engine.dark_windows(self.seen.sky.time).map(|windows| say::when_up(&windows)).unwrap_or_default();
+        to_js(&answer::reading(&self.engine, &self.time, &self.seen, visibility))
     }
 
     /// The read-out table as tabulated text.
     pub fn table_text(&self) -> String {
-        answer::table_text(&self.engine, &self.time, &self.sky)
+        answer::table_text(&self.engine, &self.time, &self.seen.sky)
     }
 
     /// The stretch of time that the slider covers, with ticks and events for a track of this width.
     pub fn season(&mut self, months: f64, width_px: f64) -> JsValue {
         let perihelion = self.engine.plan().comet.elements.perihelion_time.instant();
-        let season = Season::around(self.season.take(), perihelion, self.sky.time, months);
+        let season = Season::around(self.season.take(), perihelion, self.seen.sky.time, months);
         let answer = season.answer(width_px, perihelion);
         self.season = Some(season);
         to_js(&answer)
@@ -215,21 +235,21 @@ impl Desk {
 
     /// Draws the sky plane; the context's transform carries the device's pixel ratio.
     pub fn draw(&self, context: &CanvasRenderingContext2d, theme: &str) {
-        let scene = sky_plane::compose(self.engine.plan(), &self.sky, &self.view);
+        let scene = sky_plane::compose(self.engine.plan(), &self.seen.sky, &self.view);
         paint(&scene, named_theme(theme), &mut CanvasPainter::new(context));
     }
 
     /// The sky plane as an SVG file, as it stands.
     pub fn svg(&self, theme: &str) -> String {
-        let scene = sky_plane::compose(self.engine.plan(), &self.sky, &self.view);
-        let saying = crate::say::say(self.engine.plan(), &self.sky);
-        let title = format!("{}, {}", self.engine.plan().comet.name, self.sky.time.utc_minute());
+        let scene = sky_plane::compose(self.engine.plan(), &self.seen.sky, &self.view);
+        let saying = say::say(self.engine.plan(), &self.seen.sky);
+        let title = format!("{}, {}", self.engine.plan().comet.name, self.seen.sky.time.utc_minute());
         svg::write(&scene, named_theme(theme), &title, &saying.sentence)
     }
 
     /// What lies under the pointer, in words, one fact to a line.
     pub fn hover(&self, x_px: f64, y_px: f64) -> String {
-        pointer::hover(&self.sky, &self.view, x_px, y_px).words()
+        pointer::hover(&self.seen.sky, &self.view, x_px, y_px).words()
     }
 
     pub fn zoom(&mut self, factor: f64, x_px: f64, y_px: f64) {
@@ -260,9 +280,9 @@ impl Desk {
     }
 
     fn take(&mut self, plan: Plan) -> Result<JsValue, JsValue> {
-        let (engine, time, sky) = prepared(plan).map_err(refusal)?;
+        let (engine, time, seen) = prepared(plan).map_err(refusal)?;
         self.season = None;
-        (self.engine, self.time, self.sky) = (engine, time, sky);
+        (self.engine, self.time, self.seen) = (engine, time, seen);
         Ok(JsValue::TRUE)
     }
 
@@ -272,7 +292,7 @@ impl Desk {
         // 10957.5 days from the Unix epoch to 2000-01-01 12:00.
         let now = Instant::from_ut1_days((now_ms / 86_400_000.0).max(-3e6).min(3e6) - 10_957.5);
         let away = |time: Instant| (time.tdb_days() - perihelion.tdb_days()).abs();
-        let time = if away(self.sky.time) <= NEAR_PERIHELION_DAYS {
+        let time = if away(self.seen.sky.time) <= NEAR_PERIHELION_DAYS {
             self.time.clone()
         } else if away(now) <= STILL_OF_USE_DAYS {
             Stamp::utc_seconds(now).map_err(refusal)?
@@ -285,19 +305,19 @@ impl Desk {
     }
 
     fn go(&mut self, time: Stamp) -> Result<f64, JsValue> {
-        self.sky = self.engine.sky_at(time.instant()).map_err(refusal)?;
+        self.seen = self.engine.view_at(time.instant()).map_err(refusal)?;
         self.time = time;
-        Ok(self.sky.time.tdb_days())
+        Ok(self.seen.sky.time.tdb_days())
     }
 }
 
 /// A plan made ready, with the time it opens at and its sky there.
-fn prepared(plan: Plan) -> Result<(Engine, Stamp, Sky), Error> {
+fn prepared(plan: Plan) -> Result<(Engine, Stamp, View), Error> {
     let time = match &plan.time {
         Some(time) => time.clone(),
         None => Stamp::utc_seconds(plan.comet.elements.perihelion_time.instant())?,
     };
-    let engine = Engine::new(plan)?;
-    let sky = engine.sky_at(time.instant())?;
-    Ok((engine, time, sky))
+    let mut engine = Engine::new(plan)?;
+    let seen = engine.view_at(time.instant())?;
+    Ok((engine, time, seen))
 }

@@ -2,16 +2,15 @@
 
 use crate::body::observer::Observer;
 use crate::caution::Weight;
-use crate::engine::Engine;
+use crate::engine::{Engine, View};
 use crate::error::{Error, Place};
-use crate::orbit::elements::Comet;
+use crate::orbit::notation::Entry;
 use crate::say;
 use crate::sky::Sky;
 use crate::sky::column::{COLUMNS, Column, Value};
 use crate::time::Stamp;
 use crate::web::typed::{ElementFields, SiteFields};
 use serde::Serialize;
-use wasm_bindgen::JsValue;
 
 /// A refused input as the page gets it.
 #[derive(Serialize)]
@@ -38,22 +37,13 @@ impl Refusal {
     }
 }
 
-/// A refusal, ready to be thrown.
-pub fn refusal(error: Error) -> JsValue {
-    to_js(&Refusal::of(&error))
-}
-
-/// A plain object of the page; these types hold only text, numbers and lists of them, which always convert.
-pub fn to_js(value: &impl Serialize) -> JsValue {
-    serde_wasm_bindgen::to_value(value).unwrap_or(JsValue::UNDEFINED)
-}
-
 /// What a text held.
 #[derive(Serialize)]
 pub struct Read {
     pub count: usize,
     pub first: String,
     pub errors: Vec<Refusal>,
+    pub notices: Vec<String>,
 }
 
 #[derive(Serialize)]
@@ -70,10 +60,10 @@ pub struct Found {
 }
 
 /// The comets whose name holds the words, capitals aside, at most `most` of them.
-pub fn found(comets: &[Comet], words: &str, most: usize) -> Found {
+pub fn found(entries: &[Entry], words: &str, most: usize) -> Found {
     let words = words.trim().to_lowercase();
-    let hits = || comets.iter().enumerate().filter(|(_, comet)| comet.name.to_lowercase().contains(&words));
-    let list = hits().take(most).map(|(number, comet)| Hit { number, name: comet.name.clone() }).collect();
+    let hits = || entries.iter().enumerate().filter(|(_, entry)| entry.comet.name.to_lowercase().contains(&words));
+    let list = hits().take(most).map(|(number, entry)| Hit { number, name: entry.comet.name.clone() }).collect();
     Found { total: hits().count(), list }
 }
 
@@ -111,7 +101,9 @@ pub struct Reading {
     cautions: Vec<Mind>,
 }
 
-pub fn reading(engine: &Engine, time: &Stamp, sky: &Sky) -> Reading {
+/// The reading of a view; `visibility` says when the comet is up.
+pub fn reading(engine: &Engine, time: &Stamp, view: &View, visibility: String) -> Reading {
+    let sky = &view.sky;
     let plan = engine.plan();
     let saying = say::say(plan, sky);
     let site = match &plan.observer {
@@ -135,8 +127,8 @@ pub fn reading(engine: &Engine, time: &Stamp, sky: &Sky) -> Reading {
         rows: shown(sky).map(|column| row(column, sky)).collect(),
         headline: saying.headline,
         sentence: saying.sentence,
-        visibility: engine.dark_windows(time.instant()).map(|windows| say::when_up(&windows)).unwrap_or_default(),
-        cautions: sky.cautions.iter().map(|caution| Mind { weight: weight(caution.weight()), words: caution.sentence() }).collect(),
+        visibility,
+        cautions: view.cautions.iter().map(|caution| Mind { weight: weight(caution.weight()), words: caution.sentence() }).collect(),
     }
 }
 

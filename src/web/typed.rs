@@ -4,15 +4,7 @@ use crate::body::observer::Site;
 use crate::error::{Error, Kind, Place};
 use crate::orbit::elements::{Comet, Elements};
 use crate::time::Stamp;
-use crate::web::answer::refusal;
 use serde::{Deserialize, Serialize};
-use wasm_bindgen::JsValue;
-
-/// The fields of a form, as the page sends them.
-pub fn from_js<T: for<'a> Deserialize<'a>>(fields: JsValue) -> Result<T, JsValue> {
-    serde_wasm_bindgen::from_value(fields)
-        .map_err(|e| refusal(Error::new(Kind::Usage, Place::Whole, e.to_string(), "the fields of the form")))
-}
 
 /// The elements of a comet as texts.
 #[derive(Serialize, Deserialize)]
