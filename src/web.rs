@@ -72,12 +72,6 @@ pub fn plan_name(plan: &str) -> Result<String, JsValue> {
     Ok(Plan::parse(plan).map_err(refusal)?.comet.name)
 }
 
-/// The sites of the packed table whose code or name holds the words, best first.
-#[wasm_bindgen]
-pub fn find_sites(table: &str, words: &str) -> JsValue {
-    to_js(&answer::sites(table, words))
-}
-
 /// A plain object of the page; the answers hold only text, numbers and lists of them, which always convert.
 fn to_js(value: &impl Serialize) -> JsValue {
     serde_wasm_bindgen::to_value(value).unwrap_or(JsValue::UNDEFINED)

@@ -62,6 +62,8 @@ fn data_block(name: &str, bytes: &[u8]) -> String {
 
 const STYLE_OPEN: &str = "<link rel=\"stylesheet\" href=\"";
 const SCRIPT_OPEN: &str = "<script src=\"";
+/// Keeps browsers from asking the server for an icon.
+const NO_ICON: &str = "<link rel=\"icon\" href=\"data:,\">";
 const CHARSET: &str = "<meta charset=\"utf-8\">";
 
 /// The one file: styles and scripts inline in their order, the data blocks before the first script, the policy on top.
@@ -84,6 +86,9 @@ fn assemble(index: &str, text_of: impl Fn(&str) -> Result<String, String>, block
             }
             script_hashes.push(hash(&text));
             body.push_str(&format!("<script>{text}</script>\n"));
+        } else if trimmed == NO_ICON {
+            body.push_str(line);
+            body.push('\n');
         } else if trimmed.contains("<script") || trimmed.contains("<link") || trimmed.contains("<style") {
             return Err(format!("www/index.html: found {trimmed}; expected each style sheet and script alone on its line, with nothing but its address"));
         } else {
