@@ -75,7 +75,19 @@ Tailvane.sky = (function () {
     hover.hidden = !words;
     if (words) {
       Tailvane.write(hover, words);
+      placeHover();
     }
+  }
+
+  /** Beside the pointer, on the side that has room. */
+  function placeHover() {
+    const gap = 14;
+    const [x, y] = hoverAt;
+    const right = x + gap + hover.offsetWidth <= size.width;
+    const below = y + gap + hover.offsetHeight <= size.height;
+    const left = right ? x + gap : Math.max(0, x - gap - hover.offsetWidth);
+    const top = below ? y + gap : Math.max(0, y - gap - hover.offsetHeight);
+    hover.style.transform = "translate(" + Math.round(left) + "px, " + Math.round(top) + "px)";
   }
 
   function place(event) {

@@ -43,7 +43,8 @@ fn wish(mut arguments: impl Iterator<Item = String>) -> Result<Option<Wish>, Str
             "--open" => wish.open = true,
             "--port" => {
                 let text = arguments.next().unwrap_or_default();
-                let port = text.parse().map_err(|_| format!("--port: found \"{text}\"; expected a number from 0 to 65535"))?;
+                let port =
+                    text.parse().map_err(|_| format!("--port: found \"{text}\"; expected a number from 0 to 65535"))?;
                 wish.port = Some(port);
             }
             "--help" | "-h" => return Ok(None),
@@ -55,7 +56,11 @@ fn wish(mut arguments: impl Iterator<Item = String>) -> Result<Option<Wish>, Str
 
 /// The folder of the whole project; this crate lies two folders below it.
 fn project_root() -> PathBuf {
-    Path::new(env!("CARGO_MANIFEST_DIR")).ancestors().nth(2).expect("www/pack lies two folders below the project").to_path_buf()
+    Path::new(env!("CARGO_MANIFEST_DIR"))
+        .ancestors()
+        .nth(2)
+        .expect("www/pack lies two folders below the project")
+        .to_path_buf()
 }
 
 fn run(wish: &Wish) -> Result<(), String> {

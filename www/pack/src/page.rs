@@ -30,7 +30,9 @@ pub fn site_table(root: &Path) -> Result<Option<Vec<u8>>, String> {
     let mut found: Vec<PathBuf> = fs::read_dir(&folder)
         .map_err(|e| format!("{}: {e}", folder.display()))?
         .filter_map(|entry| entry.ok().map(|entry| entry.path()))
-        .filter(|path| path.file_stem().is_some_and(|stem| stem == "site_codes") && path.extension().is_some_and(|e| e != "rs"))
+        .filter(|path| {
+            path.file_stem().is_some_and(|stem| stem == "site_codes") && path.extension().is_some_and(|e| e != "rs")
+        })
         .collect();
     found.sort();
     found.first().map(|path| fs::read(path).map_err(|e| format!("{}: {e}", path.display()))).transpose()
@@ -47,7 +49,8 @@ pub fn pack(root: &Path, build: &Build) -> Result<Packed, String> {
     if let Some(table) = site_table(root)? {
         blocks.push_str(&data_block(SITES, &table));
     }
-    let html = assemble(&read("index.html")?, |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) }, &blocks)?;
+    let html =
+        assemble(&read("index.html")?, |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) }, &blocks)?;
     let path = root.join("target/page/tailvane.html");
     fs::create_dir_all(path.parent().expect("the page lies in a folder")).map_err(|e| format!("target/page: {e}"))?;
     fs::write(&path, &html).map_err(|e| format!("{}: {e}", path.display()))?;
@@ -90,7 +93,9 @@ fn assemble(index: &str, text_of: impl Fn(&str) -> Result<String, String>, block
             body.push_str(line);
             body.push('\n');
         } else if trimmed.contains("<script") || trimmed.contains("<link") || trimmed.contains("<style") {
-            return Err(format!("www/index.html: found {trimmed}; expected each style sheet and script alone on its line, with nothing but its address"));
+            return Err(format!(
+                "www/index.html: found {trimmed}; expected each style sheet and script alone on its line, with nothing but its address"
+            ));
         } else {
             body.push_str(line);
             body.push('\n');
@@ -113,7 +118,11 @@ fn between<'a>(line: &'a str, open: &str, close: &str) -> Option<&'a str> {
 }
 
 fn refuse_end_tag(name: &str, text: &str, tag: &str) -> Result<(), String> {
-    if text.to_ascii_lowercase().contains(tag) { Err(format!("www/{name}: holds {tag}, which would end its block")) } else { Ok(()) }
+    if text.to_ascii_lowercase().contains(tag) {
+        Err(format!("www/{name}: holds {tag}, which would end its block"))
+    } else {
+        Ok(())
+    }
 }
 
 /// The hash of a block's exact text, as the policy names it.
@@ -136,7 +145,11 @@ mod tests {
         let html = assemble(INDEX, text_of, "BLOCK\n").unwrap();
         assert!(html.contains("<style>/* a.css */</style>"));
         assert!(html.contains("BLOCK\n<script>/* a.js */</script>"));
-        assert!(html.contains(&format!("script-src {} 'wasm-unsafe-eval'; style-src {};", hash("/* a.js */"), hash("/* a.css */"))));
+        assert!(html.contains(&format!(
+            "script-src {} 'wasm-unsafe-eval'; style-src {};",
+            hash("/* a.js */"),
+            hash("/* a.css */")
+        )));
     }
 
     #[test]

@@ -23,7 +23,9 @@ const LONGEST_REQUEST_BYTES: u64 = 65_536;
 /// A port that cannot be had.
 pub fn serve(root: &Path, build: &Build, page: &Path, port: Option<u16>, open_it: bool) -> Result<(), String> {
     let listener = match port {
-        Some(port) => TcpListener::bind((Ipv4Addr::LOCALHOST, port)).map_err(|e| format!("port {port} cannot be had: {e}"))?,
+        Some(port) => {
+            TcpListener::bind((Ipv4Addr::LOCALHOST, port)).map_err(|e| format!("port {port} cannot be had: {e}"))?
+        }
         None => TcpListener::bind((Ipv4Addr::LOCALHOST, USUAL_PORT))
             .or_else(|_| TcpListener::bind((Ipv4Addr::LOCALHOST, 0)))
             .map_err(|e| format!("no port can be had on loopback: {e}"))?,
@@ -68,7 +70,11 @@ fn answer(mut stream: TcpStream, root: &Path, build: &Build, page: &Path, port: 
         Some((kind, body)) => ("200 OK", kind, body),
         None => ("404 Not Found", "text/plain", b"not here\n".to_vec()),
     };
-    write!(stream, "HTTP/1.1 {status}\r\nContent-Type: {kind}; charset=utf-8\r\nContent-Length: {}\r\nCache-Control: no-store\r\nConnection: close\r\n\r\n", body.len())?;
+    write!(
+        stream,
+        "HTTP/1.1 {status}\r\nContent-Type: {kind}; charset=utf-8\r\nContent-Length: {}\r\nCache-Control: no-store\r\nConnection: close\r\n\r\n",
+        body.len()
+    )?;
     if method != "HEAD" {
         stream.write_all(&body)?;
     }

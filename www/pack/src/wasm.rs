@@ -45,12 +45,14 @@ fn cargo() -> String {
 /// A cargo setting that replaces machine paths in the output; it is added to the flags of .cargo/config.toml.
 fn remapped_paths(root: &Path) -> String {
     let mut flags = vec![format!("--remap-path-prefix={}=", root.display())];
-    let cargo_home = std::env::var("CARGO_HOME").ok().or_else(|| std::env::var("HOME").ok().map(|home| home + "/.cargo"));
+    let cargo_home =
+        std::env::var("CARGO_HOME").ok().or_else(|| std::env::var("HOME").ok().map(|home| home + "/.cargo"));
     if let Some(home) = cargo_home {
         flags.push(format!("--remap-path-prefix={home}=cargo"));
     }
     // TOML literal strings need no escapes, except that they cannot hold a single quote.
-    let quoted: Vec<String> = flags.iter().filter(|flag| !flag.contains('\'')).map(|flag| format!("'{flag}'")).collect();
+    let quoted: Vec<String> =
+        flags.iter().filter(|flag| !flag.contains('\'')).map(|flag| format!("'{flag}'")).collect();
     format!("target.{TARGET}.rustflags=[{}]", quoted.join(","))
 }
 
@@ -58,8 +60,11 @@ fn remapped_paths(root: &Path) -> String {
 fn install_target(root: &Path) -> Result<(), String> {
     let rustc = std::env::var("RUSTC").unwrap_or_else(|_| "rustc".into());
     let present = || {
-        let asked = Command::new(&rustc).current_dir(root).args(["--print", "target-libdir", "--target", TARGET]).output();
-        asked.is_ok_and(|answer| answer.status.success() && Path::new(String::from_utf8_lossy(&answer.stdout).trim()).is_dir())
+        let asked =
+            Command::new(&rustc).current_dir(root).args(["--print", "target-libdir", "--target", TARGET]).output();
+        asked.is_ok_and(|answer| {
+            answer.status.success() && Path::new(String::from_utf8_lossy(&answer.stdout).trim()).is_dir()
+        })
     };
     if present() {
         return Ok(());
