@@ -2,6 +2,7 @@
 //!
 //! Exit codes: 0 done, 1 refused input (standard error says where and what is allowed), 2 wrong usage.
 
+use lexopt::ValueExt;
 use serde::ser::{SerializeMap, SerializeSeq, Serializer};
 use std::io::{self, BufWriter, Read, Write};
 use std::process::ExitCode;
@@ -167,7 +168,7 @@ fn steps(from: Instant, to: Instant, step: f64) -> Result<Vec<Instant>, Stop> {
 }
 
 fn text(arguments: &mut lexopt::Parser) -> Result<String, Stop> {
-    use lexopt::ValueExt;
+
     Ok(arguments.value()?.string()?)
 }
 
@@ -207,7 +208,7 @@ fn read(path: &str) -> Result<String, Error> {
 }
 
 fn sky(call: SkyCall) -> Result<(), Stop> {
-    let plan = Plan::from_json(&read(&call.plan)?)?;
+    let plan = Plan::parse(&read(&call.plan)?)?;
     let times = call.times(&plan)?;
     let mut engine = Engine::new(plan)?;
     let columns: Vec<&Column> = COLUMNS.iter().filter(|column| !column.site_only || engine.has_site()).collect();
@@ -249,7 +250,7 @@ fn sky_json(engine: &mut Engine, times: &[Instant], columns: &[&Column], mut out
     for &time in times {
         rows.serialize_element(&JsonRow { time, view: engine.view_at(time)?, columns })?;
     }
-    rows.end()?;
+    SerializeSeq::end(rows)?;
     writeln!(out)?;
     Ok(out.flush()?)
 }
@@ -281,7 +282,7 @@ impl serde::Serialize for JsonRow<'_> {
 fn elements(mut arguments: lexopt::Parser) -> Result<(), Stop> {
     let path = match arguments.next()? {
         Some(lexopt::Arg::Value(path)) => {
-            use lexopt::ValueExt;
+
             path.string()?
         }
         Some(other) => return Err(other.unexpected().into()),
@@ -293,7 +294,7 @@ fn elements(mut arguments: lexopt::Parser) -> Result<(), Stop> {
     let reading = notation::read(&read(&path)?);
     let mut out = BufWriter::new(io::stdout().lock());
     for entry in &reading.comets {
-        writeln!(out, "{}", Plan::of(entry.comet.clone()).to_json_line())?;
+        writeln!(out, "{}", Plan::of(entry.comet.clone()).print_line())?;
     }
     out.flush()?;
     for error in &reading.errors {

@@ -2,8 +2,11 @@
 
 use nalgebra::Vector3;
 
-/// Latitude over the Sun's equator of a heliocentric equatorial place, [-pi/2, pi/2].
+/// The Sun's north pole of rotation, equatorial: right ascension 286.13 deg, declination 63.87 deg (Archinal et al.
+/// 2018, report of the IAU working group on cartographic coordinates and rotational elements 2015).
+const POLE: Vector3<f64> = Vector3::new(0.122_353_493_472_327_8, -0.423_072_083_647_643_2, 0.897_797_101_060_790_2);
+
+/// Latitude over the Sun's equator of a heliocentric equatorial place of any length but zero, [-pi/2, pi/2].
 pub fn heliographic_latitude_rad(position: &Vector3<f64>) -> f64 {
-    let pole = Vector3::new(0.122, -0.423, 0.898).normalize();
-    libm::asin(position.dot(&pole) / position.norm())
+    libm::asin((position.dot(&POLE) / position.norm()).clamp(-1.0, 1.0))
 }

@@ -18,6 +18,7 @@
 //! Left out: frame bias between J2000 and ICRF (0.042 arcsec in all), precession of the ecliptic.
 //! Sources: IAU 1976 obliquity; spherical formulas as in any textbook, checked against ERFA's unit tests.
 
+pub mod earth_rotation;
 pub mod horizon;
 pub mod tangent;
 

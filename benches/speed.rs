@@ -1,0 +1,80 @@
+//! How long do the core's steps take, each the median of several whole repeats?
+//!
+//! `cargo bench` prints one line a step: its name and nanoseconds. `python benches/peers.py` runs this and
+//! general-purpose libraries on the same work in one go and prints the ratios; trust those more than the times.
+
+use std::hint::black_box;
+use std::time::Instant as Clock;
+use tailvane::body::State;
+use tailvane::engine::Engine;
+use tailvane::orbit::conic::{SUN_GM_AU3_D2, propagate, propagate_bracketed};
+use tailvane::plan::Plan;
+use tailvane::time::Instant;
+
+/// An invented hyperbolic comet, seen from the geocentre. `peers.py` holds the same elements.
+const PLAN: &str = r#"{ "tailvane_plan": 1, "comet": { "name": "Invented comet Alder", "elements": {
+    "perihelion_distance_au": 0.62, "eccentricity": 1.0003, "inclination_deg": 63.0, "ascending_node_deg": 62.0,
+    "argument_of_perihelion_deg": 118.0, "perihelion_time": "2031-02-22.18374 TT", "epoch": "2031-02-10.0 TT" } } }"#;
+
+const ROWS: u32 = 10_000;
+const STEP_DAYS: f64 = 0.2;
+/// 2028-05-28 TT, so that the rows lie about perihelion.
+const FIRST_TDB_DAYS: f64 = 10_375.0;
+const REPEATS: usize = 9;
+
+fn main() {
+    report("sky_row_10000_rows", rows);
+    let grains = grains();
+    report("conic_fast", || conics(&grains, propagate));
+    report("conic_bracketed", || conics(&grains, propagate_bracketed));
+}
+
+/// Prints the median nanoseconds that one unit of `work` takes; `work` returns how many it did.
+fn report(name: &str, mut work: impl FnMut() -> u32) {
+    work();
+    let mut times: Vec<f64> = (0..REPEATS)
+        .map(|_| {
+            let begin = Clock::now();
+            let done = work();
+            begin.elapsed().as_nanos() as f64 / f64::from(done)
+        })
+        .collect();
+    times.sort_by(f64::total_cmp);
+    println!("{name} {:.1}", times[REPEATS / 2]);
+}
+
+/// Ten thousand rows of one season, everything included: plan, orbit, Earth.
+fn rows() -> u32 {
+    let mut engine = Engine::new(Plan::parse(PLAN).expect("the plan above")).expect("its orbit");
+    for k in 0..ROWS {
+        let time = Instant::from_tdb_days(FIRST_TDB_DAYS + f64::from(k) * STEP_DAYS);
+        black_box(engine.sky_at(time).expect("a date in the span"));
+    }
+    ROWS
+}
+
+/// Heliocentric states with every sign of force and times to 400 days, from a fixed seed.
+fn grains() -> Vec<(f64, State, f64)> {
+    let mut seed = 0x1234_5678_9abc_def1_u64;
+    let mut uniform = move || {
+        seed ^= seed << 13;
+        seed ^= seed >> 7;
+        seed ^= seed << 17;
+        (seed >> 11) as f64 / (1_u64 << 53) as f64
+    };
+    let mut triple = |scale: f64| nalgebra::Vector3::from_fn(|_, _| (uniform() - 0.5) * scale);
+    (0..20_000)
+        .map(|_| {
+            let state = State { position_au: triple(4.0), velocity_au_d: triple(0.04) };
+            let free = triple(1.0);
+            (SUN_GM_AU3_D2 * (1.0 - 2.0 * (free.x + 0.5)), state, free.y * 800.0)
+        })
+        .collect()
+}
+
+fn conics(grains: &[(f64, State, f64)], solver: impl Fn(f64, &State, f64) -> State) -> u32 {
+    for (mu, state, days) in grains {
+        black_box(solver(*mu, state, *days));
+    }
+    grains.len() as u32
+}

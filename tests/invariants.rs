@@ -1,0 +1,127 @@
+//! Do the laws that every two-body motion obeys hold for ours?
+//!
+//! Properties over random states, not numbers: they need no outside truth. Units au and days.
+
+use nalgebra::Vector3;
+use proptest::prelude::*;
+use tailvane::body::State;
+use tailvane::orbit::conic::{
+    Orbit, SUN_GM_AU3_D2, propagate, propagate_bracketed, propagate_with_response,
+};
+use tailvane::orbit::elements::Elements;
+use tailvane::time::{Instant, Stamp};
+
+/// Components of a place between 0.02 and 5 au.
+fn position() -> impl Strategy<Value = Vector3<f64>> {
+    (0.02..5.0_f64, -1.0..1.0_f64, 0.0..std::f64::consts::TAU).prop_map(|(r, z, angle)| {
+        let level = (1.0 - z * z).sqrt();
+        Vector3::new(level * libm::cos(angle), level * libm::sin(angle), z) * r
+    })
+}
+
+/// Up to 1.5 times the escape speed, in any direction.
+fn state() -> impl Strategy<Value = State> {
+    (position(), position(), 0.05..1.5_f64).prop_map(|(position_au, direction, share)| State {
+        position_au,
+        velocity_au_d: direction.normalize() * (share * (2.0 * SUN_GM_AU3_D2 / position_au.norm()).sqrt()),
+    })
+}
+
+fn mu() -> impl Strategy<Value = f64> {
+    prop_oneof![
+        8 => (0.0..2.5_f64).prop_map(|beta| SUN_GM_AU3_D2 * (1.0 - beta)),
+        1 => Just(0.0),
+        1 => Just(SUN_GM_AU3_D2),
+    ]
+}
+
+fn energy(mu: f64, state: &State) -> f64 {
+    0.5 * state.velocity_au_d.norm_squared() - mu / state.position_au.norm()
+}
+
+/// What rounding of the two parts of the energy can leave, at both ends.
+fn energy_scale(mu: f64, a: &State, b: &State) -> f64 {
+    [a, b].iter().map(|s| 0.5 * s.velocity_au_d.norm_squared() + mu.abs() / s.position_au.norm()).sum()
+}
+
+fn elements(q: f64, e: f64) -> Elements {
+    Elements {
+        perihelion_distance_au: q,
+        eccentricity: e,
+        inclination_deg: 77.0,
+        ascending_node_deg: 201.0,
+        argument_of_perihelion_deg: 33.0,
+        perihelion_time: "2031-03-04.5 TT".parse::<Stamp>().expect("a date"),
+        epoch: None,
+        nongravitational: None,
+    }
+}
+
+proptest! {
+    #![proptest_config(ProptestConfig::with_cases(2000))]
+
+    #[test]
+    fn energy_and_angular_momentum_are_kept(start in state(), mu in mu(), days in -2000.0..2000.0_f64) {
+        let end = propagate(mu, &start, days);
+        let drift = (energy(mu, &end) - energy(mu, &start)).abs();
+        prop_assert!(drift <= 1e-11 * energy_scale(mu, &start, &end), "{drift:e}");
+        let spin = |s: &State| s.position_au.cross(&s.velocity_au_d);
+        let scale = start.position_au.norm() * start.velocity_au_d.norm() + end.position_au.norm() * end.velocity_au_d.norm();
+        prop_assert!((spin(&end) - spin(&start)).norm() <= 1e-12 * scale);
+    }
+
+    #[test]
+    fn reversed_velocity_retraces_the_path(start in state(), mu in mu(), days in 0.01..1000.0_f64) {
+        let end = propagate(mu, &start, days);
+        let turned = State { position_au: end.position_au, velocity_au_d: -end.velocity_au_d };
+        let back = propagate(mu, &turned, days);
+        // The way back amplifies the rounding of the middle state by the response of the motion.
+        let (_, response) = propagate_with_response(mu, &turned, days);
+        let allowed = 1e-13 * (1.0 + end.position_au.norm() + response.position.norm() * end.velocity_au_d.norm() * 10.0
+            + response.velocity.norm() * end.position_au.norm() * 10.0);
+        prop_assert!((back.position_au - start.position_au).norm() <= allowed,
+            "{:e} {allowed:e}", (back.position_au - start.position_au).norm());
+    }
+
+    #[test]
+    fn the_fast_and_the_bracketed_solver_agree(start in state(), mu in mu(), days in -5000.0..5000.0_f64) {
+        let (fast, slow) = (propagate(mu, &start, days), propagate_bracketed(mu, &start, days));
+        let miss = (fast.position_au - slow.position_au).norm();
+        prop_assert!(miss <= 1e-10 * slow.position_au.norm(), "{miss:e}");
+    }
+
+    #[test]
+    fn two_legs_are_one(start in state(), mu in mu(), first in -300.0..300.0_f64, second in -300.0..300.0_f64) {
+        let middle = propagate(mu, &start, first);
+        let two = propagate(mu, &middle, second);
+        let one = propagate(mu, &start, first + second);
+        let (_, response) = propagate_with_response(mu, &middle, second);
+        let allowed = 1e-13 * (1.0 + one.position_au.norm() + response.position.norm() * middle.velocity_au_d.norm() * 10.0
+            + response.velocity.norm() * middle.position_au.norm() * 10.0);
+        prop_assert!((two.position_au - one.position_au).norm() <= allowed);
+    }
+
+    #[test]
+    fn motion_runs_smoothly_through_the_parabola(q in 0.005..5.0_f64, days in -3000.0..3000.0_f64) {
+        let time = Instant::from_tdb_days(elements(q, 1.0).perihelion_time.instant().tdb_days() + days);
+        let at = |e: f64| Orbit::new(&elements(q, e)).expect("an orbit").place_at(time).state.position_au;
+        // Central second difference in e: what a jump at e = 1 would leave.
+        let step = 1e-9;
+        let jump = (at(1.0 + step) - at(1.0) * 2.0 + at(1.0 - step)).norm();
+        prop_assert!(jump <= 2e-13 * at(1.0).norm(), "{jump:e}");
+        let slope = (at(1.0 + step) - at(1.0 - step)).norm();
+        prop_assert!(slope <= 1e-4 * at(1.0).norm());
+    }
+
+    #[test]
+    fn no_orbit_and_no_time_span_gives_a_number_that_is_not_one(
+        q in 0.001..100.0_f64, e in 0.0..10.0_f64, exponent in -6.0..9.0_f64, sign in prop::bool::ANY
+    ) {
+        let days = libm::pow(10.0, exponent) * if sign { 1.0 } else { -1.0 };
+        let orbit = Orbit::new(&elements(q, e)).expect("an orbit");
+        let place = orbit.place_at(orbit.perihelion_time().plus_days(days));
+        prop_assert!(place.state.position_au.iter().chain(place.state.velocity_au_d.iter()).all(|x| x.is_finite()));
+        prop_assert!(place.state.position_au.norm() >= q * (1.0 - 1e-12));
+        prop_assert!(place.true_anomaly_rad.abs() <= std::f64::consts::PI);
+    }
+}
