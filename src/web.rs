@@ -10,6 +10,7 @@ mod season;
 mod typed;
 
 use crate::body::observer::Observer;
+use crate::body::site_code;
 use crate::engine::{Engine, View};
 use crate::error::{Error, Kind, Place};
 use crate::orbit::elements::Comet;
@@ -70,6 +71,12 @@ pub fn examples() -> JsValue {
 #[wasm_bindgen]
 pub fn plan_name(plan: &str) -> Result<String, JsValue> {
     Ok(Plan::parse(plan).map_err(refusal)?.comet.name)
+}
+
+/// The observatories of the packed table with this code, or whose name holds these words.
+#[wasm_bindgen]
+pub fn find_sites(table: &str, words: &str) -> JsValue {
+    to_js(&answer::sites(table, words))
 }
 
 /// A plain object of the page; the answers hold only text, numbers and lists of them, which always convert.
@@ -183,6 +190,14 @@ impl Desk {
         let fields: typed::SiteFields = from_js(fields)?;
         let site = fields.site().map_err(refusal)?;
         self.take(Plan { observer: Observer::Site(site), ..self.plan() })
+    }
+
+    /// Looks from an observatory of the packed table, by its code.
+    pub fn set_site_code(&mut self, table: &str, code: &str) -> Result<JsValue, JsValue> {
+        match site_code::find(table, code) {
+            Some(site) => self.take(Plan { observer: Observer::Site(site), ..self.plan() }),
+            None => Ok(JsValue::NULL),
+        }
     }
 
     /// The plan as it stands, time included.

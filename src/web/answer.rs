@@ -1,6 +1,7 @@
 //! What does the page show, as plain objects?
 
 use crate::body::observer::Observer;
+use crate::body::site_code;
 use crate::caution::Weight;
 use crate::engine::{Engine, View};
 use crate::error::{Error, Place};
@@ -65,6 +66,24 @@ pub fn found(entries: &[Entry], words: &str, most: usize) -> Found {
     let hits = || entries.iter().enumerate().filter(|(_, entry)| entry.comet.name.to_lowercase().contains(&words));
     let list = hits().take(most).map(|(number, entry)| Hit { number, name: entry.comet.name.clone() }).collect();
     Found { total: hits().count(), list }
+}
+
+/// An observatory that was looked for.
+#[derive(Serialize)]
+pub struct SiteHit {
+    code: String,
+    words: String,
+}
+
+/// Observatories shown at most for one search.
+const MOST_SITES: usize = 30;
+
+/// The observatory of this very code first, then those whose name holds the words.
+pub fn sites(table: &str, words: &str) -> Vec<SiteHit> {
+    let code = words.trim().to_uppercase();
+    let exact = site_code::find(table, &code).map(|site| (code, site.name));
+    let named = site_code::search(table, words, MOST_SITES).into_iter().map(|coded| (coded.code, coded.site.name));
+    exact.into_iter().chain(named).map(|(code, name)| SiteHit { words: format!("{code}  {name}"), code }).collect()
 }
 
 #[derive(Serialize)]

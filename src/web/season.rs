@@ -3,7 +3,7 @@
 //! Months before to months after perihelion; where the chosen time lies outside, the same length about that time.
 //! The stretch stays put while one scrubs within it. It begins on a whole hour of UTC.
 
-use crate::engine::SPAN;
+use crate::body::SPAN;
 use crate::time::Instant;
 use crate::time::civil::{Date, MONTHS_SHORT};
 use serde::Serialize;
@@ -49,8 +49,8 @@ impl Season {
         }
         let half = months * MONTH_DAYS;
         let about = |middle: Instant| Season {
-            from: whole_hour(later(middle.plus_days(-half), SPAN.0)),
-            to: whole_hour(earlier(middle.plus_days(half), SPAN.1)),
+            from: whole_hour(later(middle.plus_days(-half), SPAN.first)),
+            to: whole_hour(earlier(middle.plus_days(half), SPAN.last)),
             months,
         };
         let usual = about(perihelion);
@@ -130,7 +130,7 @@ fn day_of(time: Instant) -> i64 {
 /// The whole hour of UTC at or before a time, but not outside the span.
 fn whole_hour(time: Instant) -> Instant {
     let hour = Instant::from_ut1_days((time.ut1_days() * 24.0).floor() / 24.0);
-    if hour < SPAN.0 { time } else { hour }
+    if hour < SPAN.first { time } else { hour }
 }
 
 fn later(a: Instant, b: Instant) -> Instant {
