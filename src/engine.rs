@@ -1,26 +1,36 @@
 //! The one surface that both shells use: plain data in, plain data out.
 //!
 //! Holds a plan made ready to compute with, and recomputes only what changed: the orbit once per plan, the
-//! Earth once per season ([`crate::body::earth::Window`]), each sky from the anomaly of the one before it.
+//! Earth's path once per 16 days ([`Track`]), each sky from the anomaly of the one before it. None of that
+//! changes an answer by more than rounding, whatever was asked before.
 
-use crate::body::observer::Observer;
+use crate::body::SPAN;
+use crate::body::earth::Track;
+use crate::body::observer::{Observer, Site};
+use crate::body::moon;
 use crate::caution::Caution;
 use crate::error::Error;
+use crate::frame::earth_rotation::celestial_to_terrestrial;
+use crate::frame::horizon::Horizon;
 use crate::orbit::conic::Orbit;
 use crate::plan::Plan;
 use crate::sky::avoidance;
 use crate::sky::dark::{self, Window};
-use crate::sky::viewpoint::Viewpoint;
+use crate::sky::viewpoint::{Ground, Viewpoint};
 use crate::sky::Sky;
 use crate::time::Instant;
 
 /// Two-body motion is doubted this many days from the elements' epoch.
 const OLD_ELEMENTS_DAYS: f64 = 100.0;
 
+/// A neighbouring sky serves as a guess up to this many days away.
+const NEIGHBOUR_DAYS: f64 = 2.0;
+
 /// A plan made ready to compute with.
 pub struct Engine {
     plan: Plan,
     orbit: Orbit,
+    track: Track,
     last: Option<Sky>,
 }
 
@@ -28,6 +38,7 @@ pub struct Engine {
 #[derive(Clone, Debug, PartialEq)]
 pub struct View {
     pub sky: Sky,
+    /// The heaviest first.
     pub cautions: Vec<Caution>,
 }
 
@@ -37,7 +48,7 @@ impl Engine {
     pub fn new(plan: Plan) -> Result<Self, Error> {
         plan.validate()?;
         let orbit = Orbit::new(&plan.comet.elements)?;
-        Ok(Engine { plan, orbit, last: None })
+        Ok(Engine { plan, orbit, track: Track::new(), last: None })
     }
 
     pub fn plan(&self) -> &Plan {
@@ -50,5 +61,100 @@ impl Engine {
 
     pub fn has_site(&self) -> bool {
         matches!(self.plan.observer, Observer::Site(_))
+    }
+
+    /// # Errors
+    /// A time outside the span of the ephemeris.
+    pub fn check_span(&self, time: Instant) -> Result<(), Error> {
+        SPAN.check(time)
+    }
+
+    /// What the plan's observer sees of its comet at `time`.
+    ///
+    /// # Errors
+    /// A time outside the span of the ephemeris.
+    pub fn sky_at(&mut self, time: Instant) -> Result<Sky, Error> {
+        let viewpoint = self.viewpoint(time)?;
+        let near = |sky: &&Sky| (sky.time.tdb_days() - time.tdb_days()).abs() < NEIGHBOUR_DAYS;
+        let sky = Sky::of(&self.orbit, &viewpoint, self.last.as_ref().filter(near));
+        self.last = Some(sky.clone());
+        Ok(sky)
+    }
+
+    /// The sky and everything doubtful about it: the elements, the directions, the Sun.
+    ///
+    /// # Errors
+    /// A time outside the span of the ephemeris.
+    pub fn view_at(&mut self, time: Instant) -> Result<View, Error> {
+        let sky = self.sky_at(time)?;
+        let mut cautions = self.cautions_of_elements(time);
+        cautions.extend(sky.cautions.iter().cloned());
+        let site = match &self.plan.observer {
+            Observer::Site(site) => Some(site.clone()),
+            Observer::Geocentre => None,
+        };
+        cautions.extend(avoidance::cautions(&sky, |time| self.sun_altitude_deg(site.as_ref()?, time)));
+        cautions.sort_by_key(|caution| std::cmp::Reverse(caution.weight()));
+        Ok(View { sky, cautions })
+    }
+
+    /// When the comet is up in a dark sky within half a day of `time`; None for the geocentre.
+    pub fn dark_windows(&mut self, time: Instant) -> Option<Vec<Window>> {
+        let Observer::Site(_) = &self.plan.observer else { return None };
+        Some(dark::windows(time, |time| {
+            let site = self.sky_at(time).ok()?.site?;
+            Some([site.altitude_rad.to_degrees(), site.sun_altitude_rad.to_degrees()])
+        }))
+    }
+
+    fn cautions_of_elements(&self, time: Instant) -> Vec<Caution> {
+        let elements = &self.plan.comet.elements;
+        let mut found = Vec::new();
+        match &elements.epoch {
+            Some(epoch) => {
+                let days = time.tdb_days() - epoch.instant().tdb_days();
+                if days.abs() > OLD_ELEMENTS_DAYS {
+                    found.push(Caution::OldElements { days });
+                }
+            }
+            None => found.push(Caution::NoEpoch),
+        }
+        if elements.eccentricity == 1.0 {
+            found.push(Caution::Parabola);
+        }
+        if elements.nongravitational.is_some() {
+            found.push(Caution::NongravitationalUnused);
+        }
+        found
+    }
+
+    /// The observer at a time: the Earth, and for a site its place on the turning globe, horizon and Moon.
+    fn viewpoint(&mut self, time: Instant) -> Result<Viewpoint, Error> {
+        let mut observer = self.track.state(time)?;
+        let ground = match &self.plan.observer {
+            Observer::Geocentre => None,
+            Observer::Site(site) => {
+                let rotation = celestial_to_terrestrial(time.tdb_days(), time.ut1_days());
+                let from_centre = site.geocentric(&rotation);
+                observer.position_au += from_centre.position_au;
+                observer.velocity_au_d += from_centre.velocity_au_d;
+                let geodetic = site.geodetic();
+                Some(Ground {
+                    horizon: Horizon::at(geodetic.longitude_rad, geodetic.latitude_rad, &rotation),
+                    moon_au: moon::geocentric_au(time)? - from_centre.position_au,
+                })
+            }
+        };
+        Ok(Viewpoint { time, observer, ground })
+    }
+
+    /// Altitude of the Sun's centre at a site, degrees; None outside the span of the ephemeris.
+    fn sun_altitude_deg(&mut self, site: &Site, time: Instant) -> Option<f64> {
+        let earth = self.track.state(time).ok()?;
+        let rotation = celestial_to_terrestrial(time.tdb_days(), time.ut1_days());
+        let geodetic = site.geodetic();
+        let horizon = Horizon::at(geodetic.longitude_rad, geodetic.latitude_rad, &rotation);
+        let to_sun = -(earth.position_au + site.geocentric(&rotation).position_au);
+        Some(horizon.altitude_rad(&to_sun).to_degrees())
     }
 }

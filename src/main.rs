@@ -294,7 +294,7 @@ fn elements(mut arguments: lexopt::Parser) -> Result<(), Stop> {
     let reading = notation::read(&read(&path)?);
     let mut out = BufWriter::new(io::stdout().lock());
     for entry in &reading.comets {
-        writeln!(out, "{}", Plan::of(entry.comet.clone()).print_line())?;
+        writeln!(out, "{}", Plan::from(entry.comet.clone()).print_line())?;
     }
     out.flush()?;
     for error in &reading.errors {

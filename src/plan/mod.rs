@@ -53,6 +53,13 @@ struct Header {
     tailvane_plan: Option<serde_json::Value>,
 }
 
+impl From<Comet> for Plan {
+    /// A comet seen from the geocentre, without a time.
+    fn from(comet: Comet) -> Self {
+        Plan { comet, observer: Observer::Geocentre, sites: Vec::new(), time: None }
+    }
+}
+
 impl Plan {
     /// The plan that `text` holds.
     ///

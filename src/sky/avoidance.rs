@@ -23,13 +23,13 @@ const STEP: f64 = 10.0 / 1440.0;
 
 /// What the Sun makes doubtful or dangerous about `sky`. `sun_altitude_deg` gives the Sun's altitude at the
 /// observer's site at a time, or None where it cannot be known.
-pub fn cautions(sky: &Sky, sun_altitude_deg: impl Fn(Instant) -> Option<f64>) -> Vec<Caution> {
+pub fn cautions(sky: &Sky, mut sun_altitude_deg: impl FnMut(Instant) -> Option<f64>) -> Vec<Caution> {
     let elongation_deg = sky.elongation_rad.to_degrees();
     let near = elongation_deg < NEAR_SUN_DEG;
     let Some(site) = &sky.site else {
         return if near { vec![Caution::NearSunNoHorizon { elongation_deg }] } else { Vec::new() };
     };
-    let up = |time: Instant| sun_altitude_deg(time).is_some_and(|altitude| altitude > RISING_DEG);
+    let mut up = |time: Instant| sun_altitude_deg(time).is_some_and(|altitude| altitude > RISING_DEG);
     let altitude_deg = site.altitude_rad.to_degrees();
     let mut found = Vec::new();
     if near {
@@ -49,7 +49,7 @@ pub fn cautions(sky: &Sky, sun_altitude_deg: impl Fn(Instant) -> Option<f64>) ->
 }
 
 /// First time within a day after `from` at which the Sun comes up, to a second; None if it does not.
-fn next_rise(from: Instant, up: impl Fn(Instant) -> bool) -> Option<Instant> {
+fn next_rise(from: Instant, mut up: impl FnMut(Instant) -> bool) -> Option<Instant> {
     let steps = (1.0 / STEP) as usize;
     let first = (1..=steps).find(|&step| up(from.plus_days(step as f64 * STEP)))?;
     let (mut down, mut risen) = ((first - 1) as f64 * STEP, first as f64 * STEP);

@@ -30,8 +30,8 @@ pub struct Window {
 
 /// Windows that touch the half day before or after `middle`, in order. `altitudes_deg` gives comet and Sun
 /// at a time; None where the ephemeris ends.
-pub fn windows(middle: Instant, altitudes_deg: impl Fn(Instant) -> Option<[f64; 2]>) -> Vec<Window> {
-    let dark = |time: Instant| {
+pub fn windows(middle: Instant, mut altitudes_deg: impl FnMut(Instant) -> Option<[f64; 2]>) -> Vec<Window> {
+    let mut dark = |time: Instant| {
         altitudes_deg(time).filter(|[comet, sun]| *comet > COMET_ABOVE_DEG && *sun < SUN_BELOW_DEG).map(|both| both[0])
     };
     let count = (2.0 * REACH / STEP).round() as i32;
@@ -42,7 +42,7 @@ pub fn windows(middle: Instant, altitudes_deg: impl Fn(Instant) -> Option<[f64; 
         let altitude = dark(time);
         match (altitude, inside) {
             (Some(altitude_deg), false) => {
-                let begin = if k == 0 { time } else { edge(time, time.plus_days(-STEP), &dark) };
+                let begin = if k == 0 { time } else { edge(time, time.plus_days(-STEP), &mut dark) };
                 found.push(Window { begin, end: time, highest_deg: altitude_deg, highest_at: time });
             }
             (Some(altitude_deg), true) => {
@@ -55,7 +55,7 @@ pub fn windows(middle: Instant, altitudes_deg: impl Fn(Instant) -> Option<[f64; 
             }
             (None, true) => {
                 if let Some(window) = found.last_mut() {
-                    window.end = edge(window.end, time, &dark);
+                    window.end = edge(window.end, time, &mut dark);
                 }
             }
             (None, false) => {}
@@ -66,7 +66,7 @@ pub fn windows(middle: Instant, altitudes_deg: impl Fn(Instant) -> Option<[f64; 
 }
 
 /// The time between a dark one and another that is not at which darkness ends, to a second.
-fn edge(mut within: Instant, mut without: Instant, dark: &impl Fn(Instant) -> Option<f64>) -> Instant {
+fn edge(mut within: Instant, mut without: Instant, dark: &mut impl FnMut(Instant) -> Option<f64>) -> Instant {
     while (within.tdb_days() - without.tdb_days()).abs() > SECOND {
         let middle = Instant::from_tdb_days(0.5 * (within.tdb_days() + without.tdb_days()));
         if dark(middle).is_some() {
