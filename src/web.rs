@@ -107,6 +107,8 @@ pub struct Desk {
     /// What is seen at `time`.
     seen: View,
     view: SkyView,
+    /// Whether a person zoomed or panned; until then the view follows the size of the drawing.
+    view_chosen: bool,
     season: Option<Season>,
     read: Vec<Entry>,
 }
@@ -117,7 +119,7 @@ impl Desk {
     #[wasm_bindgen(constructor)]
     pub fn new(plan: &str) -> Result<Desk, JsValue> {
         let (engine, time, seen) = prepared(Plan::parse(plan).map_err(refusal)?).map_err(refusal)?;
-        Ok(Desk { engine, time, seen, view: SkyView::start(800.0, 600.0), season: None, read: Vec::new() })
+        Ok(Desk { engine, time, seen, view: SkyView::start(800.0, 600.0), view_chosen: false, season: None, read: Vec::new() })
     }
 
     /// Puts another plan on the desk.
@@ -237,9 +239,13 @@ impl Desk {
         to_js(&answer)
     }
 
-    /// Gives the sky plane its size in CSS pixels; the nucleus stays where it is and so does the scale.
+    /// Gives the sky plane its size in CSS pixels. A chosen scale and place stay; others follow the size.
     pub fn resize(&mut self, width_px: f64, height_px: f64) {
-        self.view = SkyView { width_px, height_px, ..self.view };
+        if self.view_chosen {
+            self.view = SkyView { width_px, height_px, ..self.view };
+        } else {
+            self.view = SkyView { up: self.view.up, ..SkyView::start(width_px, height_px) };
+        }
     }
 
     /// Draws the sky plane; the context's transform carries the device's pixel ratio.
@@ -262,15 +268,18 @@ impl Desk {
     }
 
     pub fn zoom(&mut self, factor: f64, x_px: f64, y_px: f64) {
+        self.view_chosen = true;
         self.view = self.view.zoomed(factor, [x_px, y_px]);
     }
 
     pub fn pan(&mut self, right_px: f64, down_px: f64) {
+        self.view_chosen = true;
         self.view.offset_px = [self.view.offset_px[0] + right_px, self.view.offset_px[1] + down_px];
     }
 
     pub fn reset_view(&mut self) {
-        self.view = SkyView { up: self.view.up, ..SkyView::start(self.view.width_px, self.view.height_px) };
+        self.view_chosen = false;
+        self.resize(self.view.width_px, self.view.height_px);
     }
 
     pub fn zenith_up(&self) -> bool {

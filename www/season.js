@@ -31,7 +31,7 @@ Tailvane.season = (function () {
 
   function frame(reading, desk) {
     now = reading.tdb_days;
-    season = desk.season(Number(months.value), Math.max(track.clientWidth, 100));
+    season = desk.season(Number(months.value), trackRoom());
     slider.max = String(Math.round((season.to_days - season.from_days) * 24));
     slider.value = String(Math.round((now - season.from_days) * 24));
     slider.setAttribute("aria-valuetext", reading.time_words);
@@ -42,6 +42,12 @@ Tailvane.season = (function () {
     }
     Tailvane.write(Tailvane.find("show", "decimal-day"), reading.time_decimal);
     drawTrack();
+  }
+
+  /** Width of the track in pixels of ordinary text, so that enlarged labels get the room they need. */
+  function trackRoom() {
+    const ordinary = 15;
+    return (Math.max(track.clientWidth, 100) * ordinary) / parseFloat(getComputedStyle(document.documentElement).fontSize);
   }
 
   function drawTrack() {

@@ -77,12 +77,12 @@ fn assemble(index: &str, text_of: impl Fn(&str) -> Result<String, String>, block
     for line in index.lines() {
         let trimmed = line.trim();
         if let Some(name) = between(trimmed, STYLE_OPEN, "\">") {
-            let text = text_of(name)?;
+            let text = bare(&text_of(name)?);
             refuse_end_tag(name, &text, "</style")?;
             style_hashes.push(hash(&text));
             body.push_str(&format!("<style>{text}</style>\n"));
         } else if let Some(name) = between(trimmed, SCRIPT_OPEN, "\"></script>") {
-            let text = text_of(name)?;
+            let text = bare(&text_of(name)?);
             refuse_end_tag(name, &text, "</script")?;
             if script_hashes.is_empty() {
                 body.push_str(blocks);
@@ -113,6 +113,23 @@ fn assemble(index: &str, text_of: impl Fn(&str) -> Result<String, String>, block
     Ok(body.replacen(CHARSET, &policy, 1))
 }
 
+/// A script or style sheet without indentation, empty lines and comments that fill their lines. No source of the
+/// page has a text that runs over several lines, so nothing else changes.
+fn bare(text: &str) -> String {
+    let mut kept = String::with_capacity(text.len());
+    let mut inside_comment = false;
+    for line in text.lines().map(str::trim) {
+        let opens = !inside_comment && line.starts_with("/*");
+        if opens || inside_comment {
+            inside_comment = !line.ends_with("*/");
+        } else if !line.is_empty() && !line.starts_with("//") {
+            kept.push_str(line);
+            kept.push('\n');
+        }
+    }
+    kept
+}
+
 fn between<'a>(line: &'a str, open: &str, close: &str) -> Option<&'a str> {
     line.strip_prefix(open)?.strip_suffix(close).filter(|name| !name.contains('"'))
 }
@@ -132,24 +149,31 @@ fn hash(text: &str) -> String {
 
 #[cfg(test)]
 mod tests {
-    use super::{assemble, data_block, hash};
+    use super::{assemble, bare, data_block, hash};
 
     const INDEX: &str = "<head>\n<meta charset=\"utf-8\">\n<link rel=\"stylesheet\" href=\"a.css\">\n</head>\n<script src=\"a.js\"></script>\n";
 
     fn text_of(name: &str) -> Result<String, String> {
-        Ok(format!("/* {name} */"))
+        Ok(format!("{{{name}}}\n"))
     }
 
     #[test]
     fn every_inline_block_is_named_in_the_policy_by_its_hash() {
         let html = assemble(INDEX, text_of, "BLOCK\n").unwrap();
-        assert!(html.contains("<style>/* a.css */</style>"));
-        assert!(html.contains("BLOCK\n<script>/* a.js */</script>"));
+        assert!(html.contains("<style>{a.css}\n</style>"));
+        assert!(html.contains("BLOCK\n<script>{a.js}\n</script>"));
         assert!(html.contains(&format!(
             "script-src {} 'wasm-unsafe-eval'; style-src {};",
             hash("/* a.js */"),
             hash("/* a.css */")
         )));
+    }
+
+    #[test]
+    fn comments_that_fill_their_lines_are_left_out_and_nothing_else() {
+        let text =
+            "/*\n * Words.\n */\n  let a = 1; // kept\n\n  // gone\n  /** gone */\n  let b = a /* kept */ * 2;\n";
+        assert_eq!(bare(text), "let a = 1; // kept\nlet b = a /* kept */ * 2;\n");
     }
 
     #[test]
