@@ -6,8 +6,8 @@
 
 use crate::body::SPAN;
 use crate::body::earth::Track;
-use crate::body::observer::{Observer, Site};
 use crate::body::moon;
+use crate::body::observer::{Observer, Site};
 use crate::caution::Caution;
 use crate::error::Error;
 use crate::frame::earth_rotation::celestial_to_terrestrial;

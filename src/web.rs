@@ -18,17 +18,17 @@ use crate::orbit::notation::{self, Entry};
 use crate::paint::canvas::CanvasPainter;
 use crate::paint::{paint, svg};
 use crate::plan::Plan;
+use crate::say;
 use crate::scene::theme::Theme;
 use crate::scene::view::{SkyView, Up};
 use crate::scene::{pointer, sky_plane};
-use crate::say;
 use crate::time::{Instant, Stamp};
 use answer::Refusal;
 use season::Season;
 use serde::{Deserialize, Serialize};
 use std::sync::Mutex;
-use wasm_bindgen::prelude::wasm_bindgen;
 use wasm_bindgen::JsValue;
+use wasm_bindgen::prelude::wasm_bindgen;
 use web_sys::CanvasRenderingContext2d;
 
 /// What the last panic said, for the page to show.
@@ -119,7 +119,15 @@ impl Desk {
     #[wasm_bindgen(constructor)]
     pub fn new(plan: &str) -> Result<Desk, JsValue> {
         let (engine, time, seen) = prepared(Plan::parse(plan).map_err(refusal)?).map_err(refusal)?;
-        Ok(Desk { engine, time, seen, view: SkyView::start(800.0, 600.0), view_chosen: false, season: None, read: Vec::new() })
+        Ok(Desk {
+            engine,
+            time,
+            seen,
+            view: SkyView::start(800.0, 600.0),
+            view_chosen: false,
+            season: None,
+            read: Vec::new(),
+        })
     }
 
     /// Puts another plan on the desk.
@@ -221,7 +229,8 @@ impl Desk {
 
     /// Everything the page shows beside the drawings.
     pub fn reading(&mut self) -> JsValue {
-        let visibility = self.engine.dark_windows(self.seen.sky.time).map(|windows| say::when_up(&windows)).unwrap_or_default();
+        let visibility =
+            self.engine.dark_windows(self.seen.sky.time).map(|windows| say::when_up(&windows)).unwrap_or_default();
         to_js(&answer::reading(&self.engine, &self.time, &self.seen, visibility))
     }
 

@@ -30,7 +30,11 @@ fn plain_orbit(q_au: f64, e: f64) -> Orbit {
 /// Place and velocity in ecliptic axes, and the true anomaly, `dt_days` after perihelion.
 fn perifocal(q_au: f64, e: f64, dt_days: f64) -> (Vector3<f64>, Vector3<f64>, f64) {
     let place = plain_orbit(q_au, e).place_at(Instant::from_tdb_days(dt_days));
-    (equatorial_to_ecliptic(&place.state.position_au), equatorial_to_ecliptic(&place.state.velocity_au_d), place.true_anomaly_rad)
+    (
+        equatorial_to_ecliptic(&place.state.position_au),
+        equatorial_to_ecliptic(&place.state.velocity_au_d),
+        place.true_anomaly_rad,
+    )
 }
 
 fn relative(got: &Vector3<f64>, wanted: &Vector3<f64>) -> f64 {
@@ -92,7 +96,9 @@ fn perihelion_inputs(row: &Row) -> [f64; 3] {
 fn motion_from_perihelion_equals_fifty_digits_for_every_eccentricity() {
     let mut tally = Tally::default();
     for row in table("conic_perihelion.csv") {
-        tally.add(perihelion_miss(&row, perihelion_inputs(&row)), || format!("q, e, dt = {:?}", perihelion_inputs(&row)));
+        tally.add(perihelion_miss(&row, perihelion_inputs(&row)), || {
+            format!("q, e, dt = {:?}", perihelion_inputs(&row))
+        });
     }
     tally.settle("conic_perihelion.csv");
 }
@@ -137,7 +143,8 @@ fn motion_under_pull_push_and_neither_equals_fifty_digits() {
     let mut tally = Tally::default();
     for row in table("conic_state.csv") {
         let (from, mu, days) = start_state(&row);
-        for (solver, end) in [("fast", propagate(mu, &from, days)), ("bracketed", propagate_bracketed(mu, &from, days))] {
+        for (solver, end) in [("fast", propagate(mu, &from, days)), ("bracketed", propagate_bracketed(mu, &from, days))]
+        {
             tally.add(state_miss(&row, &end), || format!("{solver}, {from:?}, beta {}, {days} d", row.text("beta")));
         }
     }

@@ -7,7 +7,9 @@ use nalgebra::{Matrix3, Vector3};
 use rows::{Row, table};
 use std::f64::consts::{PI, TAU};
 use tailvane::frame::horizon::Horizon;
-use tailvane::frame::{Axes, ecliptic_to_equatorial, equatorial_to_ecliptic, position_angle_rad, separation_rad, tangent};
+use tailvane::frame::{
+    Axes, ecliptic_to_equatorial, equatorial_to_ecliptic, position_angle_rad, separation_rad, tangent,
+};
 
 /// Unit vector toward longitude and latitude; a latitude beyond the pole goes over it, as in ERFA.
 fn toward(lon_rad: f64, lat_rad: f64) -> Vector3<f64> {
@@ -32,7 +34,8 @@ fn position_angle_misses(angle: impl Fn(&Vector3<f64>, &Axes) -> Option<f64>) ->
     let miss = |row: &&Row| {
         let (a, b) = ends(row);
         let got = angle(&b, &Axes::at(&a)).expect("two different points");
-        between(got, row.number("position_angle_rad")) > 1e-12_f64.max(1e-15 / libm::sin(row.number("separation_rad")).abs())
+        between(got, row.number("position_angle_rad"))
+            > 1e-12_f64.max(1e-15 / libm::sin(row.number("separation_rad")).abs())
     };
     table("position_angles.csv").iter().filter(miss).count()
 }
@@ -60,7 +63,10 @@ fn separations_equal_erfa() {
 }
 
 /// Rows of tangent.csv at which the projection, or the way back, is off.
-fn tangent_misses(project: impl Fn(&Vector3<f64>, &Axes) -> [f64; 2], unproject: impl Fn(f64, f64, &Axes) -> Vector3<f64>) -> usize {
+fn tangent_misses(
+    project: impl Fn(&Vector3<f64>, &Axes) -> [f64; 2],
+    unproject: impl Fn(f64, f64, &Axes) -> Vector3<f64>,
+) -> usize {
     let miss = |row: &&Row| {
         let [lon, lat, lon0, lat0, xi, eta] = row.numbers(["lon_rad", "lat_rad", "lon0_rad", "lat0_rad", "xi", "eta"]);
         // At the pole itself the axes are those of right ascension zero; the row asks for that.
@@ -85,7 +91,13 @@ fn a_mirrored_tangent_plane_would_be_seen() {
     let mirrored = |v: &Vector3<f64>, axes: &Axes| tangent::project(v, axes).map(|[x, y]| [-x, y]).expect("in front");
     // One point lies due south of its tangent point, where a mirror changes nothing.
     assert_eq!(tangent_misses(mirrored, tangent::unproject), table("tangent.csv").len() - 1);
-    assert_eq!(tangent_misses(|v, axes| tangent::project(v, axes).expect("in front"), |xi, eta, axes| tangent::unproject(-xi, eta, axes)), table("tangent.csv").len() - 1);
+    assert_eq!(
+        tangent_misses(
+            |v, axes| tangent::project(v, axes).expect("in front"),
+            |xi, eta, axes| tangent::unproject(-xi, eta, axes)
+        ),
+        table("tangent.csv").len() - 1
+    );
 }
 
 /// Rows of ecliptic.csv at which a rotation to equatorial axes is off by more than the rounding of two products.
@@ -103,7 +115,9 @@ fn ecliptic_to_equatorial_equals_spice_and_returns() {
     assert_eq!(rotation_misses(ecliptic_to_equatorial), 0);
     for row in table("ecliptic.csv") {
         let ecliptic = Vector3::from(row.numbers(["x_ecliptic", "y_ecliptic", "z_ecliptic"]));
-        assert!((equatorial_to_ecliptic(&ecliptic_to_equatorial(&ecliptic)) - ecliptic).norm() <= 1e-15 * ecliptic.norm());
+        assert!(
+            (equatorial_to_ecliptic(&ecliptic_to_equatorial(&ecliptic)) - ecliptic).norm() <= 1e-15 * ecliptic.norm()
+        );
     }
 }
 
@@ -129,7 +143,10 @@ fn horizon_misses(longitude_sign: f64) -> usize {
         let direction = toward(longitude - hour_angle, declination);
         let altitude = (horizon.altitude_rad(&direction) - row.number("altitude_rad")).abs();
         let azimuth = between(horizon.azimuth_rad(&direction).expect("not at the zenith"), row.number("azimuth_rad"));
-        let zenith = between(position_angle_rad(&horizon.up, &Axes::at(&direction)).expect("not at the zenith"), row.number("zenith_position_angle_rad"));
+        let zenith = between(
+            position_angle_rad(&horizon.up, &Axes::at(&direction)).expect("not at the zenith"),
+            row.number("zenith_position_angle_rad"),
+        );
         altitude > 1e-12 || azimuth > 1e-12 || zenith > 1e-12
     };
     table("horizon.csv").iter().filter(miss).count()

@@ -28,20 +28,44 @@ fn the_worked_examples_of_a_comets_place_are_met() {
     let cases = cases();
     for row in table("worked_sky.csv") {
         let case = cases.iter().find(|case| case.orbit.text("case") == row.text("case")).expect("the case exists");
-        let sky = case.sky(if row.text("example").contains("without light time") { Fault::NoLightTime } else { Fault::None });
+        let sky =
+            case.sky(if row.text("example").contains("without light time") { Fault::NoLightTime } else { Fault::None });
         let [ra, dec] = row.numbers(["right_ascension_deg", "declination_deg"]);
-        let off_deg = libm::hypot((sky.right_ascension_rad.to_degrees() - ra) * libm::cos(dec.to_radians()), sky.declination_rad.to_degrees() - dec);
-        assert!(off_deg * 3600.0 <= row.number("tolerance_arcsec"), "{}: {} arcsec", row.text("example"), off_deg * 3600.0);
-        assert!((sky.elongation_rad.to_degrees() - row.number("elongation_deg")).abs() <= 0.006, "{}", row.text("example"));
+        let off_deg = libm::hypot(
+            (sky.right_ascension_rad.to_degrees() - ra) * libm::cos(dec.to_radians()),
+            sky.declination_rad.to_degrees() - dec,
+        );
+        assert!(
+            off_deg * 3600.0 <= row.number("tolerance_arcsec"),
+            "{}: {} arcsec",
+            row.text("example"),
+            off_deg * 3600.0
+        );
+        assert!(
+            (sky.elongation_rad.to_degrees() - row.number("elongation_deg")).abs() <= 0.006,
+            "{}",
+            row.text("example")
+        );
 
         let place = Orbit::new(&elements(&case.orbit)).expect("a sound orbit").place_at(case.instant());
         let ecliptic = equatorial_to_ecliptic(&place.state.position_au);
         for (got, key) in ecliptic.iter().zip(["x_au", "y_au", "z_au"]) {
-            assert!(row.number_if_any(key).is_none_or(|wanted| (got - wanted).abs() <= 1e-7), "{}: {key} {got}", row.text("example"));
+            assert!(
+                row.number_if_any(key).is_none_or(|wanted| (got - wanted).abs() <= 1e-7),
+                "{}: {key} {got}",
+                row.text("example")
+            );
         }
         let anomaly_deg = place.true_anomaly_rad.to_degrees();
-        assert!(row.number_if_any("true_anomaly_deg").is_none_or(|wanted| (anomaly_deg - wanted).abs() <= 1e-6), "{anomaly_deg}");
-        assert!(row.number_if_any("sun_distance_au").is_none_or(|wanted| (ecliptic.norm() - wanted).abs() <= 1e-7), "{}", ecliptic.norm());
+        assert!(
+            row.number_if_any("true_anomaly_deg").is_none_or(|wanted| (anomaly_deg - wanted).abs() <= 1e-6),
+            "{anomaly_deg}"
+        );
+        assert!(
+            row.number_if_any("sun_distance_au").is_none_or(|wanted| (ecliptic.norm() - wanted).abs() <= 1e-7),
+            "{}",
+            ecliptic.norm()
+        );
     }
 }
 
@@ -69,7 +93,12 @@ fn the_earth_passes_the_orbit_planes_of_published_comets_when_it_was_seen_to() {
         let published = Instant::from_tdb_days(row.number("jd_tt") - 2_451_545.0);
         let off_days = (crossing(elements(&row), published).tdb_days() - published.tdb_days()).abs();
         println!("{} ({}): {off_days:.4} d", row.text("comet"), row.text("source"));
-        assert!(off_days <= row.number("tolerance_days"), "{} ({}): {off_days} d", row.text("comet"), row.text("source"));
+        assert!(
+            off_days <= row.number("tolerance_days"),
+            "{} ({}): {off_days} d",
+            row.text("comet"),
+            row.text("source")
+        );
     }
 }
 
@@ -82,7 +111,9 @@ fn a_node_a_tenth_of_a_degree_off_would_move_the_crossings() {
         let published = Instant::from_tdb_days(row.number("jd_tt") - 2_451_545.0);
         let mut elements = elements(row);
         elements.ascending_node_deg += 0.1;
-        seen += usize::from((crossing(elements, published).tdb_days() - published.tdb_days()).abs() > row.number("tolerance_days"));
+        seen += usize::from(
+            (crossing(elements, published).tdb_days() - published.tdb_days()).abs() > row.number("tolerance_days"),
+        );
     }
     assert_eq!(seen, sharp.len());
 }
@@ -109,7 +140,11 @@ fn the_true_anomaly_belongs_to_the_place_shown() {
     for step in -200..200 {
         let sky = engine.sky_at(case.instant().plus_days(f64::from(step) * 1e-3)).expect("within the span");
         let shown = libm::atan2(along.dot(&sky.comet.position_au), perihelion.dot(&sky.comet.position_au));
-        assert!((shown - sky.true_anomaly_rad).to_degrees().abs() <= 1e-8, "step {step}: {shown} {}", sky.true_anomaly_rad);
+        assert!(
+            (shown - sky.true_anomaly_rad).to_degrees().abs() <= 1e-8,
+            "step {step}: {shown} {}",
+            sky.true_anomaly_rad
+        );
     }
 }
 
@@ -123,7 +158,8 @@ fn an_answer_does_not_depend_on_what_was_asked_before() {
         // Steps of 1.37 days, wrapped, so that the dates come in no order.
         for time in (0..30).map(|step| case.instant().plus_days((f64::from(step) * 1.37) % 4.1 - 2.0)) {
             if let (Ok(asked_before), Ok(fresh)) = (engine.sky_at(time), ready().sky_at(time))
-                && (asked_before.right_ascension_rad, asked_before.declination_rad) != (fresh.right_ascension_rad, fresh.declination_rad)
+                && (asked_before.right_ascension_rad, asked_before.declination_rad)
+                    != (fresh.right_ascension_rad, fresh.declination_rad)
             {
                 differing.push(format!("{} at {}", case.name(), time.utc_iso_ms()));
             }
@@ -133,7 +169,9 @@ fn an_answer_does_not_depend_on_what_was_asked_before() {
 }
 
 fn is_undefined(sky: &Sky, quantity: &str) -> bool {
-    sky.cautions.iter().any(|caution| matches!(caution, Caution::AngleUndefined { quantity: named } if *named == quantity))
+    sky.cautions
+        .iter()
+        .any(|caution| matches!(caution, Caution::AngleUndefined { quantity: named } if *named == quantity))
 }
 
 #[test]
@@ -144,7 +182,10 @@ fn the_antisolar_angle_is_undefined_at_opposition_and_behind_the_sun() {
         assert_eq!(sky.antisolar_position_angle_rad, None);
         assert!(is_undefined(&sky, "antisolar direction"));
         assert_eq!(sky.elongation_side, None);
-        assert!((sky.elongation_rad.to_degrees() - elongation_deg).abs() < 1e-6 && (sky.phase_angle_rad.to_degrees() - phase_deg).abs() < 1e-6);
+        assert!(
+            (sky.elongation_rad.to_degrees() - elongation_deg).abs() < 1e-6
+                && (sky.phase_angle_rad.to_degrees() - phase_deg).abs() < 1e-6
+        );
         assert!(sky.negative_velocity_position_angle_rad.is_some());
     }
 }

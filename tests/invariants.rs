@@ -5,10 +5,8 @@
 use nalgebra::Vector3;
 use proptest::prelude::*;
 use tailvane::body::State;
-use tailvane::orbit::conic::{
-    Orbit, SUN_GM_AU3_D2, propagate, propagate_bracketed, propagate_with_response,
-};
 use tailvane::engine::Engine;
+use tailvane::orbit::conic::{Orbit, SUN_GM_AU3_D2, propagate, propagate_bracketed, propagate_with_response};
 use tailvane::orbit::elements::{Comet, Elements};
 use tailvane::plan::Plan;
 use tailvane::sky::LIGHT_AU_D;

@@ -65,7 +65,8 @@ fn bars(Case { orbit, truth }: &Case) -> Vec<Bar> {
     // TDB and TT are taken as equal, at perihelion and at the date: 2 ms each, 5e-8 d together.
     bar("days_from_perihelion", false, 5e-8);
     // What those 4 ms are to this comet: its speed of anomaly (second law) and its pull toward the Sun; a sungrazer turns 5000 deg/d.
-    let anomaly_rate = libm::sqrt(2.0 * SUN_GM_AU3_D2 * orbit.number("perihelion_distance_au")) / (t("sun_distance_au") * t("sun_distance_au"));
+    let anomaly_rate = libm::sqrt(2.0 * SUN_GM_AU3_D2 * orbit.number("perihelion_distance_au"))
+        / (t("sun_distance_au") * t("sun_distance_au"));
     let pull_km_s_d = SUN_GM_AU3_D2 / (t("sun_distance_au") * t("sun_distance_au")) * 1731.5;
     bar("true_anomaly_deg", true, 1e-5 + 5e-8 * anomaly_rate.to_degrees());
     bar("sun_distance_rate_km_s", false, 1e-6 + 5e-8 * pull_km_s_d);
@@ -152,7 +153,13 @@ fn every_column_lies_within_its_bar_of_spice_de440_and_astropy() {
     for (key, (off, of_bar, name)) in &outcome.worst {
         println!("{key:42} worst {off:9.2e}, {of_bar:6.3} of its bar: {name}");
     }
-    assert!(outcome.beyond.is_empty(), "{} of {} rows\n{}", outcome.rows_beyond, outcome.rows, outcome.beyond.join("\n"));
+    assert!(
+        outcome.beyond.is_empty(),
+        "{} of {} rows\n{}",
+        outcome.rows_beyond,
+        outcome.rows,
+        outcome.beyond.join("\n")
+    );
 }
 
 #[test]
@@ -172,8 +179,12 @@ fn the_place_with_the_sun_at_rest_agrees_to_a_hundredth_of_an_arcsecond() {
     for case in cases() {
         let sky = case.sky(Fault::None);
         let [ra, dec] = case.truth.numbers(["right_ascension_sun_at_rest_deg", "declination_sun_at_rest_deg"]);
-        let along = ((sky.right_ascension_rad.to_degrees() - ra + 540.0).rem_euclid(360.0) - 180.0) * libm::cos(dec.to_radians());
-        let arcsec = 3600.0 * libm::hypot(along, sky.declination_rad.to_degrees() - dec) * case.truth.number("observer_distance_au").min(0.1) / 0.1;
+        let along = ((sky.right_ascension_rad.to_degrees() - ra + 540.0).rem_euclid(360.0) - 180.0)
+            * libm::cos(dec.to_radians());
+        let arcsec = 3600.0
+            * libm::hypot(along, sky.declination_rad.to_degrees() - dec)
+            * case.truth.number("observer_distance_au").min(0.1)
+            / 0.1;
         if arcsec > worst.0 || arcsec.is_nan() {
             worst = (arcsec, case.name());
         }
@@ -189,7 +200,10 @@ fn the_observers_place_and_velocity_are_those_of_de440_and_erfa() {
         let sky = case.sky(Fault::None);
         let place: [f64; 3] = case.truth.numbers(["observer_x_au", "observer_y_au", "observer_z_au"]);
         let velocity: [f64; 3] = case.truth.numbers(["observer_vx_au_d", "observer_vy_au_d", "observer_vz_au_d"]);
-        let off = [(sky.observer.position_au - Vector3::from(place)).norm(), (sky.observer.velocity_au_d - Vector3::from(velocity)).norm()];
+        let off = [
+            (sky.observer.position_au - Vector3::from(place)).norm(),
+            (sky.observer.velocity_au_d - Vector3::from(velocity)).norm(),
+        ];
         for (worst, off) in worst.iter_mut().zip(off) {
             if off > worst.0 || off.is_nan() {
                 *worst = (off, case.name());
@@ -208,7 +222,12 @@ fn assert_seen(fault: Fault, of: impl Fn(&Case) -> bool, share: f64) {
     let outcome = compare(fault, of);
     println!("{fault:?}: seen in {} of {} rows", outcome.rows_beyond, outcome.rows);
     assert!(outcome.rows >= 30, "{fault:?}: only {} rows can show it", outcome.rows);
-    assert!(outcome.rows_beyond as f64 >= share * outcome.rows as f64, "{fault:?} shows in only {} of {} rows", outcome.rows_beyond, outcome.rows);
+    assert!(
+        outcome.rows_beyond as f64 >= share * outcome.rows as f64,
+        "{fault:?} shows in only {} of {} rows",
+        outcome.rows_beyond,
+        outcome.rows
+    );
 }
 
 #[test]
@@ -236,7 +255,9 @@ fn the_centre_of_the_earth_in_place_of_a_site_would_be_seen() {
 fn a_longitude_of_the_wrong_sign_would_be_seen() {
     let tells = |case: &Case| {
         // At longitudes 0 and 180, and at a pole, the sign changes nothing.
-        case.is_site() && libm::sin(case.orbit.number("longitude_deg").to_radians()).abs() > 0.001 && case.orbit.number("latitude_deg").abs() < 89.0
+        case.is_site()
+            && libm::sin(case.orbit.number("longitude_deg").to_radians()).abs() > 0.001
+            && case.orbit.number("latitude_deg").abs() < 89.0
     };
     assert_seen(Fault::LongitudeSign, tells, 1.0);
 }

@@ -49,11 +49,7 @@ impl Axes {
     pub fn at(direction: &Vector3<f64>) -> Self {
         let sight = direction / direction.norm();
         let from_axis = (sight.x * sight.x + sight.y * sight.y).sqrt();
-        let (cos_ra, sin_ra) = if from_axis > 0.0 {
-            (sight.x / from_axis, sight.y / from_axis)
-        } else {
-            (1.0, 0.0)
-        };
+        let (cos_ra, sin_ra) = if from_axis > 0.0 { (sight.x / from_axis, sight.y / from_axis) } else { (1.0, 0.0) };
         Axes {
             sight,
             east: Vector3::new(-sin_ra, cos_ra, 0.0),

@@ -20,9 +20,7 @@ pub mod viewpoint;
 use crate::body::State;
 use crate::body::sun::heliographic_latitude_rad;
 use crate::caution::Caution;
-use crate::frame::{
-    Axes, declination_rad, position_angle_rad, right_ascension_rad, separation_rad, sine_to_sight,
-};
+use crate::frame::{Axes, declination_rad, position_angle_rad, right_ascension_rad, separation_rad, sine_to_sight};
 use crate::orbit::conic::{Anomaly, Orbit, Place, SUN_GM_AU3_D2};
 use crate::time::Instant;
 use nalgebra::Vector3;

@@ -147,7 +147,11 @@ pub fn reading(engine: &Engine, time: &Stamp, view: &View, visibility: String) -
         headline: saying.headline,
         sentence: saying.sentence,
         visibility,
-        cautions: view.cautions.iter().map(|caution| Mind { weight: weight(caution.weight()), words: caution.sentence() }).collect(),
+        cautions: view
+            .cautions
+            .iter()
+            .map(|caution| Mind { weight: weight(caution.weight()), words: caution.sentence() })
+            .collect(),
     }
 }
 

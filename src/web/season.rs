@@ -62,7 +62,8 @@ impl Season {
     }
 
     pub fn answer(&self, width_px: f64, perihelion: Instant) -> Answer {
-        let events = if self.holds(perihelion) { vec![self.mark(perihelion, "perihelion".to_owned())] } else { Vec::new() };
+        let events =
+            if self.holds(perihelion) { vec![self.mark(perihelion, "perihelion".to_owned())] } else { Vec::new() };
         Answer { from_days: self.from.tdb_days(), to_days: self.to.tdb_days(), ticks: self.ticks(width_px), events }
     }
 

@@ -98,7 +98,11 @@ fn number(text: &str, field: &str) -> Result<f64, Error> {
     // A typographic minus is what this page itself prints.
     let plain = text.trim().replace('\u{2212}', "-");
     plain.parse::<f64>().ok().filter(|number| number.is_finite()).ok_or_else(|| {
-        let found = if plain.is_empty() { "nothing".to_owned() } else { format!("\"{}\"", plain.chars().take(40).collect::<String>()) };
+        let found = if plain.is_empty() {
+            "nothing".to_owned()
+        } else {
+            format!("\"{}\"", plain.chars().take(40).collect::<String>())
+        };
         Error::new(Kind::Range, Place::Field(field.to_owned()), found, "a number such as 12.5")
     })
 }

@@ -86,21 +86,27 @@ impl Case {
             // A perihelion earlier by the light time puts the comet where it is at the date itself.
             Fault::NoLightTime => {
                 let earlier = elements.perihelion_time.instant().plus_days(-self.truth.number("light_time_days"));
-                elements.perihelion_time = format!("JD {:.9} TT", 2_451_545.0 + earlier.tdb_days()).parse().expect("a date");
+                elements.perihelion_time =
+                    format!("JD {:.9} TT", 2_451_545.0 + earlier.tdb_days()).parse().expect("a date");
             }
             _ => {}
         }
         let observer = match self.orbit.number_if_any("longitude_deg") {
             Some(longitude_deg) if fault != Fault::Geocentre => Observer::Site(Site {
                 name: "A row of truth".into(),
-                longitude_deg: if fault == Fault::LongitudeSign { (360.0 - longitude_deg) % 360.0 } else { longitude_deg },
+                longitude_deg: if fault == Fault::LongitudeSign {
+                    (360.0 - longitude_deg) % 360.0
+                } else {
+                    longitude_deg
+                },
                 latitude_deg: self.orbit.number("latitude_deg"),
                 height_m: self.orbit.number("height_m"),
             }),
             _ => Observer::Geocentre,
         };
         let late = if fault == Fault::TimeScale { 69.184 / 86_400.0 } else { 0.0 };
-        let mut engine = Engine::new(plan(elements, observer)).unwrap_or_else(|error| panic!("{}: {error}", self.name()));
+        let mut engine =
+            Engine::new(plan(elements, observer)).unwrap_or_else(|error| panic!("{}: {error}", self.name()));
         engine.sky_at(self.instant().plus_days(late)).unwrap_or_else(|error| panic!("{}: {error}", self.name()))
     }
 }

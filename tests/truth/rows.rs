@@ -42,7 +42,9 @@ pub fn table(name: &str) -> Vec<Row> {
         .map(|line| {
             let fields: Vec<&str> = line.split(',').collect();
             assert_eq!(fields.len(), columns.len(), "{name}: {line}");
-            Row { fields: columns.iter().zip(fields).map(|(key, field)| (key.to_string(), field.to_string())).collect() }
+            Row {
+                fields: columns.iter().zip(fields).map(|(key, field)| (key.to_string(), field.to_string())).collect(),
+            }
         })
         .collect();
     assert!(!rows.is_empty(), "{name} has no rows");
