@@ -80,9 +80,9 @@ impl Caution {
             Caution::NongravitationalUnused => {
                 "The non-gravitational parameters are kept but not used: motion is the two-body conic.".to_owned()
             }
-            Caution::AngleUndefined { quantity } => format!(
-                "No position angle exists for the {quantity}: it lies along the line of sight."
-            ),
+            Caution::AngleUndefined { quantity } => {
+                format!("No position angle exists for the {quantity}: it lies along the line of sight.")
+            }
             Caution::AngleLoose { quantity, uncertainty_deg } => format!(
                 "The {quantity} lies almost along the line of sight; its position angle is uncertain by {}.",
                 degrees(*uncertainty_deg)

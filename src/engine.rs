@@ -6,8 +6,8 @@
 
 use crate::body::SPAN;
 use crate::body::earth::Track;
-use crate::body::observer::{Observer, Site};
 use crate::body::moon;
+use crate::body::observer::{Observer, Site};
 use crate::caution::Caution;
 use crate::error::Error;
 use crate::frame::earth_rotation::celestial_to_terrestrial;
@@ -17,21 +17,18 @@ use crate::plan::Plan;
 use crate::sky::avoidance;
 use crate::sky::dark::{self, Window};
 use crate::sky::viewpoint::{Ground, Viewpoint};
-use crate::sky::Sky;
+use crate::sky::{Sky, Trail};
 use crate::time::Instant;
 
 /// Two-body motion is doubted this many days from the elements' epoch.
 const OLD_ELEMENTS_DAYS: f64 = 100.0;
-
-/// A neighbouring sky serves as a guess up to this many days away.
-const NEIGHBOUR_DAYS: f64 = 2.0;
 
 /// A plan made ready to compute with.
 pub struct Engine {
     plan: Plan,
     orbit: Orbit,
     track: Track,
-    last: Option<Sky>,
+    trail: Trail,
 }
 
 /// A sky and all that is doubtful about it.
@@ -48,7 +45,7 @@ impl Engine {
     pub fn new(plan: Plan) -> Result<Self, Error> {
         plan.validate()?;
         let orbit = Orbit::new(&plan.comet.elements)?;
-        Ok(Engine { plan, orbit, track: Track::new(), last: None })
+        Ok(Engine { plan, orbit, track: Track::new(), trail: Trail::default() })
     }
 
     pub fn plan(&self) -> &Plan {
@@ -75,10 +72,7 @@ impl Engine {
     /// A time outside the span of the ephemeris.
     pub fn sky_at(&mut self, time: Instant) -> Result<Sky, Error> {
         let viewpoint = self.viewpoint(time)?;
-        let near = |sky: &&Sky| (sky.time.tdb_days() - time.tdb_days()).abs() < NEIGHBOUR_DAYS;
-        let sky = Sky::of(&self.orbit, &viewpoint, self.last.as_ref().filter(near));
-        self.last = Some(sky.clone());
-        Ok(sky)
+        Ok(Sky::of(&self.orbit, &viewpoint, &mut self.trail))
     }
 
     /// The sky and everything doubtful about it: the elements, the directions, the Sun.

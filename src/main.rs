@@ -167,7 +167,6 @@ fn steps(from: Instant, to: Instant, step: f64) -> Result<Vec<Instant>, Stop> {
 }
 
 fn text(arguments: &mut lexopt::Parser) -> Result<String, Stop> {
-
     Ok(arguments.value()?.string()?)
 }
 
@@ -178,7 +177,8 @@ fn time(arguments: &mut lexopt::Parser, option: &str) -> Result<Stamp, Stop> {
 
 /// A step such as 6h in days.
 fn step_days(typed: &str) -> Result<f64, Stop> {
-    let wrong = || Stop::Usage(format!("--step: found '{typed}'; expected a positive number with d, h, m or s, such as 6h"));
+    let wrong =
+        || Stop::Usage(format!("--step: found '{typed}'; expected a positive number with d, h, m or s, such as 6h"));
     let unit = typed.chars().last().ok_or_else(wrong)?;
     let per_day = match unit {
         'd' => 1.0,
@@ -194,7 +194,12 @@ fn step_days(typed: &str) -> Result<f64, Stop> {
 /// The text of a file, or of standard input for `-`.
 fn read(path: &str) -> Result<String, Error> {
     let refused = |error: io::Error| {
-        Error::new(Kind::File, Place::Field(path.to_owned()), error.to_string(), "a file that can be read as UTF-8 text")
+        Error::new(
+            Kind::File,
+            Place::Field(path.to_owned()),
+            error.to_string(),
+            "a file that can be read as UTF-8 text",
+        )
     };
     let mut bytes = Vec::new();
     if path == "-" {
@@ -216,11 +221,7 @@ fn sky(call: SkyCall) -> Result<(), Stop> {
         engine.check_span(time)?;
     }
     let out = BufWriter::new(io::stdout().lock());
-    if call.json {
-        sky_json(&mut engine, &times, &columns, out)
-    } else {
-        sky_csv(&mut engine, &times, &columns, out)
-    }
+    if call.json { sky_json(&mut engine, &times, &columns, out) } else { sky_csv(&mut engine, &times, &columns, out) }
 }
 
 fn sky_csv(engine: &mut Engine, times: &[Instant], columns: &[&Column], out: impl Write) -> Result<(), Stop> {
@@ -280,10 +281,7 @@ impl serde::Serialize for JsonRow<'_> {
 
 fn elements(mut arguments: lexopt::Parser) -> Result<(), Stop> {
     let path = match arguments.next()? {
-        Some(lexopt::Arg::Value(path)) => {
-
-            path.string()?
-        }
+        Some(lexopt::Arg::Value(path)) => path.string()?,
         Some(other) => return Err(other.unexpected().into()),
         None => return Err(Stop::Usage("elements needs a file, or - for standard input".to_owned())),
     };

@@ -85,7 +85,11 @@ fn plane(sky: &Sky) -> String {
     let size = latitude.to_degrees().abs();
     let place = match size {
         s if s < 0.05 => "in the comet's orbit plane: dust that spreads in it is seen edge-on".to_owned(),
-        s if s < 5.0 => format!("{} {} the comet's orbit plane, which is seen nearly edge-on", tenth(latitude.abs()), over(latitude)),
+        s if s < 5.0 => format!(
+            "{} {} the comet's orbit plane, which is seen nearly edge-on",
+            tenth(latitude.abs()),
+            over(latitude)
+        ),
         _ => format!("{} {} the comet's orbit plane", whole(latitude.abs()), over(latitude)),
     };
     format!("The observer stands {place}, at phase angle {}.", whole(sky.phase_angle_rad))

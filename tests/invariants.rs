@@ -5,10 +5,11 @@
 use nalgebra::Vector3;
 use proptest::prelude::*;
 use tailvane::body::State;
-use tailvane::orbit::conic::{
-    Orbit, SUN_GM_AU3_D2, propagate, propagate_bracketed, propagate_with_response,
-};
-use tailvane::orbit::elements::Elements;
+use tailvane::engine::Engine;
+use tailvane::orbit::conic::{Orbit, SUN_GM_AU3_D2, propagate, propagate_bracketed, propagate_with_response};
+use tailvane::orbit::elements::{Comet, Elements};
+use tailvane::plan::Plan;
+use tailvane::sky::LIGHT_AU_D;
 use tailvane::time::{Instant, Stamp};
 
 /// Components of a place between 0.02 and 5 au.
@@ -122,6 +123,37 @@ proptest! {
         let place = orbit.place_at(orbit.perihelion_time().plus_days(days));
         prop_assert!(place.state.position_au.iter().chain(place.state.velocity_au_d.iter()).all(|x| x.is_finite()));
         prop_assert!(place.state.position_au.norm() >= q * (1.0 - 1e-12));
-        prop_assert!(place.true_anomaly_rad.abs() <= std::f64::consts::PI);
+        prop_assert!(orbit.true_anomaly_rad(&place.state.position_au).abs() <= std::f64::consts::PI);
+    }
+}
+
+/// An invented comet near the Earth and the Sun, seen from the geocentre.
+fn engine() -> Engine {
+    let comet = Comet { name: "Invented".into(), elements: elements(0.3, 1.0002), brightness: Vec::new() };
+    Engine::new(Plan::from(comet)).expect("a plan")
+}
+
+proptest! {
+    #[test]
+    fn the_light_seen_left_the_comet_one_light_time_ago(days in 11_000.0..11_800.0_f64) {
+        let mut engine = engine();
+        let sky = engine.sky_at(Instant::from_tdb_days(days)).expect("a date in the span");
+        let there = engine.orbit().place_at(sky.time.plus_days(-sky.light_time_days)).state;
+        // A time held to 2e-12 d (TDB days from J2000) leaves a comet of 0.1 au/d that far off.
+        prop_assert!((there.position_au - sky.comet.position_au).norm() < 1e-12);
+        prop_assert!((there.velocity_au_d - sky.comet.velocity_au_d).norm() < 1e-13);
+        let distance = (sky.comet.position_au - sky.observer.position_au).norm();
+        prop_assert!((distance / LIGHT_AU_D - sky.light_time_days).abs() < 1e-15);
+    }
+
+    #[test]
+    fn a_date_gives_the_same_sky_whatever_was_asked_before(days in 11_000.0..11_800.0_f64, step in -3.0..3.0_f64) {
+        let time = Instant::from_tdb_days(days);
+        let fresh = engine().sky_at(time).expect("a date in the span");
+        let mut engine = engine();
+        engine.sky_at(time.plus_days(step)).expect("a date in the span");
+        let after = engine.sky_at(time).expect("a date in the span");
+        prop_assert!((fresh.comet.position_au - after.comet.position_au).norm() < 2e-12);
+        prop_assert!((fresh.right_ascension_rad - after.right_ascension_rad).abs() < 1e-11);
     }
 }

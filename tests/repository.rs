@@ -45,9 +45,7 @@ fn sources(folder: &str, endings: &[&str]) -> Vec<Source> {
 
 /// The modules of src/lib.rs in the order in which they are declared: the layer order.
 fn layers(lib: &str) -> Vec<String> {
-    lib.lines()
-        .filter_map(|line| line.strip_prefix("pub mod ")?.strip_suffix(';').map(str::to_owned))
-        .collect()
+    lib.lines().filter_map(|line| line.strip_prefix("pub mod ")?.strip_suffix(';').map(str::to_owned)).collect()
 }
 
 /// Uses of a module that stands later in the layer order, as "path: line".
@@ -75,8 +73,7 @@ fn a_layer_uses_only_those_above_it() {
     let lib = fs::read_to_string(root().join("src/lib.rs")).expect("src/lib.rs");
     let layers = layers(&lib);
     assert!(layers.len() > 10, "the layer order was not read: {layers:?}");
-    let found: Vec<String> =
-        sources("src", &[".rs"]).iter().flat_map(|source| upward_uses(source, &layers)).collect();
+    let found: Vec<String> = sources("src", &[".rs"]).iter().flat_map(|source| upward_uses(source, &layers)).collect();
     assert!(found.is_empty(), "{found:#?}");
     let planted = Source { path: "src/time/scale.rs".into(), text: "use crate::sky::Sky;\n".into() };
     assert_eq!(upward_uses(&planted, &layers).len(), 1, "the check does not see a planted upward use");
@@ -125,8 +122,21 @@ fn the_core_has_no_clock_file_environment_print_or_chance() {
         .filter(|source| !["src/main.rs", "src/web.rs"].contains(&source.path.as_str()))
         .collect();
     let words = [
-        "println!", "print!(", "eprintln!", "dbg!", "std::fs", "std::env", "std::net", "std::process", "SystemTime",
-        "Instant::now", "thread_rng", "HashMap", "HashSet", "static mut", "thread_local",
+        "println!",
+        "print!(",
+        "eprintln!",
+        "dbg!",
+        "std::fs",
+        "std::env",
+        "std::net",
+        "std::process",
+        "SystemTime",
+        "Instant::now",
+        "thread_rng",
+        "HashMap",
+        "HashSet",
+        "static mut",
+        "thread_local",
     ];
     let found = lines_with(&core, &words);
     assert!(found.is_empty(), "{found:#?}");
@@ -189,7 +199,18 @@ fn position_angles_are_made_in_one_place() {
 
 #[test]
 fn the_visible_top_level_is_the_agreed_one() {
-    let agreed = ["Cargo.toml", "Cargo.lock", "README.md", "DEVELOPERS.md", "LICENSE", "src", "www", "tests", "benches", "target"];
+    let agreed = [
+        "Cargo.toml",
+        "Cargo.lock",
+        "README.md",
+        "DEVELOPERS.md",
+        "LICENSE",
+        "src",
+        "www",
+        "tests",
+        "benches",
+        "target",
+    ];
     let found: Vec<String> = fs::read_dir(root())
         .expect("the root")
         .map(|entry| entry.expect("a readable entry").file_name().to_string_lossy().into_owned())

@@ -1,9 +1,11 @@
 //! Where is the centre of the Earth?
 //!
 //! Heliocentric, ICRF/J2000 equatorial, au and au/day, geometric. The Earth-Moon barycentre comes from a
-//! table fitted to JPL DE440, the Earth's distance from it (4300 to 4950 km) from the leading terms of the lunar series.
+//! table fitted to JPL DE440, the Earth's distance from it (4330 to 4942 km) from the leading terms of the lunar
+//! series.
 //!
-//! Span: [`super::SPAN`]. Against DE440 there, at 36768 evenly spaced times: within ACCURACY.
+//! Span: [`super::SPAN`]. Against DE440 there, at 60000 evenly spaced times: within 7.7e-9 au (1.1 km; 2.1e-9 au rms)
+//! and 5e-9 au/day (9 mm/s). At a joint of the table, every 96 days, the place steps by up to 7e-9 au.
 //! Left out: the Sun's motion about the barycentre of the solar system during a light time (0.009 arcsec).
 
 use super::moon::{Detail, series_au};
@@ -59,8 +61,8 @@ const NODES: usize = 12;
 /// The path of the Earth for many times: the same states as [`earth`], from polynomials of 16 days and 12 terms, each
 /// fitted when a time in it is first asked for.
 ///
-/// Its pieces lie on a fixed grid, so an answer does not depend on what was asked before. Within 3e-10 au and
-/// 5e-9 au/day of [`earth`].
+/// Its pieces lie on a fixed grid, so an answer does not depend on what was asked before. Within 2.1e-10 au and
+/// 2.7e-9 au/day of [`earth`] at 60000 evenly spaced times.
 #[derive(Clone, Debug)]
 pub struct Track {
     fit: Fit,
@@ -132,12 +134,11 @@ impl Fit {
             }
         }
         let mut powers_of_values = [[0.0; NODES]; NODES];
-        for n in 0..NODES {
+        for (n, polynomial) in chebyshev.iter().enumerate() {
             let share = if n == 0 { 1.0 } else { 2.0 } / NODES as f64;
-            for node in 0..NODES {
-                let weight = share * libm::cos(n as f64 * angle(node));
-                for power in 0..=n {
-                    powers_of_values[power][node] += chebyshev[n][power] * weight;
+            for (row, coefficient) in powers_of_values.iter_mut().zip(polynomial) {
+                for (node, cell) in row.iter_mut().enumerate() {
+                    *cell += coefficient * share * libm::cos(n as f64 * angle(node));
                 }
             }
         }

@@ -28,11 +28,7 @@ pub fn terrestrial_m(place: &Geodetic) -> Vector3<f64> {
     let (sin_lat, cos_lat) = libm::sincos(place.latitude_rad);
     let normal = RADIUS_M / (1.0 - ECCENTRICITY_2 * sin_lat * sin_lat).sqrt();
     let from_axis = (normal + place.height_m) * cos_lat;
-    Vector3::new(
-        from_axis * cos_lon,
-        from_axis * sin_lon,
-        (normal * (1.0 - ECCENTRICITY_2) + place.height_m) * sin_lat,
-    )
+    Vector3::new(from_axis * cos_lon, from_axis * sin_lon, (normal * (1.0 - ECCENTRICITY_2) + place.height_m) * sin_lat)
 }
 
 /// Geodetic place of a terrestrial one, by Bowring's formula (1985, Survey Review 28, 202): within 1e-10 rad and
@@ -43,18 +39,16 @@ pub fn geodetic(place: &Vector3<f64>) -> Geodetic {
     let polar_m = RADIUS_M * (1.0 - FLATTENING);
     let second_eccentricity_2 = ECCENTRICITY_2 / (1.0 - ECCENTRICITY_2);
     // Reduced latitude of the point below, and from it the latitude of the normal.
-    let reduced = libm::atan2(
-        polar_m * place.z * (1.0 + second_eccentricity_2 * polar_m / from_centre),
-        RADIUS_M * from_axis,
-    );
+    let reduced =
+        libm::atan2(polar_m * place.z * (1.0 + second_eccentricity_2 * polar_m / from_centre), RADIUS_M * from_axis);
     let (sin_u, cos_u) = libm::sincos(reduced);
     let latitude_rad = libm::atan2(
         place.z + second_eccentricity_2 * polar_m * sin_u * sin_u * sin_u,
         from_axis - ECCENTRICITY_2 * RADIUS_M * cos_u * cos_u * cos_u,
     );
     let (sin_lat, cos_lat) = libm::sincos(latitude_rad);
-    let height_m = from_axis * cos_lat + place.z * sin_lat
-        - RADIUS_M * (1.0 - ECCENTRICITY_2 * sin_lat * sin_lat).sqrt();
+    let height_m =
+        from_axis * cos_lat + place.z * sin_lat - RADIUS_M * (1.0 - ECCENTRICITY_2 * sin_lat * sin_lat).sqrt();
     let longitude_rad = if from_axis == 0.0 { 0.0 } else { libm::atan2(place.y, place.x) };
     Geodetic { longitude_rad, latitude_rad, height_m }
 }

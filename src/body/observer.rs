@@ -1,7 +1,8 @@
 //! Where does the observer stand?
 //!
-//! A site is WGS84; its place turns with the Earth by [`crate::frame::earth_rotation`]. Accuracy of that place: UT1 taken as
-//! UTC costs up to 0.42 km (2.8e-9 au) at the equator, polar motion 13 m.
+//! A site is WGS84; its place turns with the Earth by [`crate::frame::earth_rotation`]. Accuracy against astropy, 48
+//! rows in 1973-2025: 14 m, most of it the polar motion that is left out, and 1 mm/s. UT1 taken as UTC costs up to
+//! 0.42 km (2.8e-9 au) at the equator.
 
 use super::ellipsoid::{Geodetic, terrestrial_m};
 use super::{AU_KM, State};

@@ -4,9 +4,9 @@
 //! separated by tabs (code, east longitude in degrees, rho cos phi', rho sin phi', name); a line that begins with `#`
 //! is a remark. Codes without a place on the ground (spacecraft, roving observers, the Earth's centre) are not in it.
 //!
-//! A place is as good as its published constants: 6 m for six decimals, 6 km for three. Its height is that
-//! of the constants, and has no meaning of its own where they have fewer than five decimals.
-//! Source: the Minor Planet Center's list of observatory codes; tests/truth/ephemeris/make_site_codes.py makes the table.
+//! A place is as good as its published constants: 6 m for six decimals, 6 km for three. Its height is that of the
+//! constants, and has no meaning of its own where they have fewer than five decimals. Source: the Minor Planet
+//! Center's list of observatory codes; tests/truth/ephemeris/make_site_codes.py makes the table.
 
 use super::ellipsoid::from_parallax_constants;
 use super::observer::Site;

@@ -5,7 +5,8 @@
 //! Wallace & Chapront 2003; Hilton et al. 2006), nutation by the ten largest terms of IAU 2000B (McCarthy & Luzum
 //! 2003), sidereal time by the earth rotation angle of IAU 2000 and the polynomial of IAU 2006.
 //!
-//! Measured against ERFA's c2t06a (IAU 2006/2000A) without polar motion, 1900-2100: within 0.07 arcsec.
+//! Measured against ERFA's c2t06a and gst06a (IAU 2006/2000A) without polar motion, at 120 times in 1900-2100: rotation
+//! within 0.031 arcsec, sidereal time within 0.061 arcsec.
 //! Left out: polar motion (0.4 arcsec), UT1 - UTC where the caller takes them as equal (0.9 s, 14 arcsec of
 //! turn), the terms of sidereal time below 0.003 arcsec.
 

@@ -48,12 +48,8 @@ impl Axes {
     /// free, right ascension counts as zero.
     pub fn at(direction: &Vector3<f64>) -> Self {
         let sight = direction / direction.norm();
-        let from_axis = libm::hypot(sight.x, sight.y);
-        let (cos_ra, sin_ra) = if from_axis > 0.0 {
-            (sight.x / from_axis, sight.y / from_axis)
-        } else {
-            (1.0, 0.0)
-        };
+        let from_axis = (sight.x * sight.x + sight.y * sight.y).sqrt();
+        let (cos_ra, sin_ra) = if from_axis > 0.0 { (sight.x / from_axis, sight.y / from_axis) } else { (1.0, 0.0) };
         Axes {
             sight,
             east: Vector3::new(-sin_ra, cos_ra, 0.0),
@@ -79,7 +75,7 @@ pub fn right_ascension_rad(v: &Vector3<f64>) -> f64 {
 
 /// Declination of an equatorial vector, [-pi/2, pi/2]; zero for a zero vector.
 pub fn declination_rad(v: &Vector3<f64>) -> f64 {
-    libm::atan2(v.z, libm::hypot(v.x, v.y))
+    libm::atan2(v.z, (v.x * v.x + v.y * v.y).sqrt())
 }
 
 /// Angle between two vectors, [0, pi], without loss near 0 and pi; zero if either has no length.
@@ -89,8 +85,9 @@ pub fn separation_rad(a: &Vector3<f64>, b: &Vector3<f64>) -> f64 {
 
 /// Sine of the angle between a vector and the line of sight, [0, 1]; zero for a zero vector.
 pub fn sine_to_sight(v: &Vector3<f64>, axes: &Axes) -> f64 {
+    let (east, north) = (v.dot(&axes.east), v.dot(&axes.north));
     let length = v.norm();
-    if length > 0.0 { libm::hypot(v.dot(&axes.east), v.dot(&axes.north)) / length } else { 0.0 }
+    if length > 0.0 { (east * east + north * north).sqrt() / length } else { 0.0 }
 }
 
 /// Position angle of a small displacement along `v` at the place of `axes`: north through east, [0, 2 pi).

@@ -10,7 +10,7 @@
 //! Left out: perturbations, non-gravitational force, relativity.
 
 use super::elements::Elements;
-use super::universal::{Anomaly, Start};
+use super::universal::{Reached, Start};
 use crate::body::State;
 use crate::error::Error;
 use crate::frame::{ecliptic_to_equatorial, half_turn};
@@ -42,10 +42,16 @@ pub struct Orbit {
 pub struct Place {
     /// Heliocentric, equatorial.
     pub state: State,
-    /// Angle from perihelion as seen from the Sun, (-pi, pi], negative before perihelion.
-    pub true_anomaly_rad: f64,
-    /// Universal anomaly, a guess for a neighbouring date.
+    /// Universal anomaly and whole revolutions, from which a neighbouring date is found sooner.
     pub anomaly: Anomaly,
+}
+
+/// Universal anomaly on an orbit, counted from its perihelion.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Anomaly {
+    /// Of the part that is less than a revolution, d/au; a day adds 1/r.
+    pub s: f64,
+    pub revolutions: f64,
 }
 
 impl Orbit {
@@ -100,13 +106,18 @@ impl Orbit {
     /// The comet at an instant.
     pub fn place_at(&self, time: Instant) -> Place {
         let days = self.days_from_perihelion(time);
-        self.place(self.start.anomaly(days))
+        self.place(&self.start.after(days))
     }
 
-    /// The comet at an instant, quicker: with the anomaly of a neighbouring date.
-    pub fn place_near(&self, time: Instant, neighbour: &Anomaly) -> Place {
+    /// The comet at an instant, quicker: with a guess of its anomaly there.
+    pub fn place_near(&self, time: Instant, guess: &Anomaly) -> Place {
         let days = self.days_from_perihelion(time);
-        self.place(self.start.anomaly_near(neighbour, days))
+        self.place(&self.start.after_near(guess.s, guess.revolutions, days))
+    }
+
+    /// Angle from perihelion to a place on the orbit, seen from the Sun: (-pi, pi], negative before perihelion.
+    pub fn true_anomaly_rad(&self, position_au: &Vector3<f64>) -> f64 {
+        half_turn(libm::atan2(position_au.dot(&self.along_perihelion), position_au.dot(&self.toward_perihelion)))
     }
 
     /// Days from the elements' perihelion, negative before it.
@@ -115,11 +126,10 @@ impl Orbit {
     }
 
     /// In the perifocal plane x = q - mu G2, y = h G1, with r = q + e mu G2.
-    fn place(&self, anomaly: Anomaly) -> Place {
-        let g = self.start.universal(anomaly.s);
-        let r = self.start.distance_at(&g);
-        let q = self.perihelion_distance_au;
-        let x = q - SUN_GM_AU3_D2 * g[2];
+    fn place(&self, reached: &Reached) -> Place {
+        let g = &reached.g;
+        let r = self.start.distance_at(g);
+        let x = self.perihelion_distance_au - SUN_GM_AU3_D2 * g[2];
         let y = self.angular_momentum * g[1];
         let vx = -SUN_GM_AU3_D2 * g[1] / r;
         let vy = self.angular_momentum * g[0] / r;
@@ -128,8 +138,7 @@ impl Orbit {
                 position_au: self.toward_perihelion * x + self.along_perihelion * y,
                 velocity_au_d: self.toward_perihelion * vx + self.along_perihelion * vy,
             },
-            true_anomaly_rad: half_turn(libm::atan2(y, x)),
-            anomaly,
+            anomaly: Anomaly { s: reached.s, revolutions: reached.revolutions },
         }
     }
 }
@@ -148,15 +157,13 @@ pub struct Response {
 /// `mu` may be negative (a push) or zero; the start must not lie at the centre.
 pub fn propagate(mu_au3_d2: f64, from: &State, days: f64) -> State {
     let start = start_of(mu_au3_d2, from);
-    let anomaly = start.anomaly(days);
-    finish(&start, from, &start.universal(anomaly.s))
+    Lagrange::of(&start, &start.after(days)).apply(from)
 }
 
 /// The same by the slow solver alone, which brackets the root and cannot fail; the two are compared in tests.
 pub fn propagate_bracketed(mu_au3_d2: f64, from: &State, days: f64) -> State {
     let start = start_of(mu_au3_d2, from);
-    let anomaly = start.anomaly_bracketed(days);
-    finish(&start, from, &start.universal(anomaly.s))
+    Lagrange::of(&start, &start.after_bracketed(days)).apply(from)
 }
 
 /// The state `days` later and its derivative with respect to the start velocity.
@@ -165,13 +172,13 @@ pub fn propagate_bracketed(mu_au3_d2: f64, from: &State, days: f64) -> State {
 pub fn propagate_with_response(mu_au3_d2: f64, from: &State, days: f64) -> (State, Response) {
     let start = start_of(mu_au3_d2, from);
     let Start { mu, distance: r0, eta: eta0, binding } = start;
-    let anomaly = start.anomaly(days);
-    let g = start.universal(anomaly.s);
+    let reached = start.after(days);
+    let g = reached.g;
     let (r0_vec, v0_vec) = (from.position_au, from.velocity_au_d);
 
     // G3, G4 and G5 grow with the whole anomaly, revolutions included; G0 to G2 repeat.
-    let whole = start.whole_anomaly(&anomaly);
-    let g3 = if anomaly.revolutions == 0.0 { g[3] } else { (whole - g[1]) / binding };
+    let whole = start.whole_anomaly(&reached);
+    let g3 = if reached.revolutions == 0.0 { g[3] } else { (whole - g[1]) / binding };
     let [g4, g5] = start.universal_high(whole, &[g[0], g[1], g[2], g3]);
     let slope_1 = 0.5 * (g3 - whole * g[2]);
     let slope_2 = 0.5 * (2.0 * g4 - whole * g3);
@@ -193,7 +200,7 @@ pub fn propagate_with_response(mu_au3_d2: f64, from: &State, days: f64) -> (Stat
     let f_rate_by_v = g1_by_v * (-mu / (r * r0)) + r_by_v * (mu * g[1] / (r * r * r0));
     let g_rate_by_v = g2_by_v * (-mu / r) + r_by_v * (mu * g[2] / (r * r));
 
-    let lagrange = Lagrange::of(&start, &g);
+    let lagrange = Lagrange::of(&start, &reached);
     let identity = Matrix3::identity();
     let response = Response {
         position: identity * lagrange.g + r0_vec * f_by_v.transpose() + v0_vec * g_by_v.transpose(),
@@ -212,10 +219,6 @@ fn start_of(mu: f64, from: &State) -> Start {
     }
 }
 
-fn finish(start: &Start, from: &State, g: &[f64; 4]) -> State {
-    Lagrange::of(start, g).apply(from)
-}
-
 /// Lagrange's coefficients: r = f r0 + g v0, v = f_rate r0 + g_rate v0.
 struct Lagrange {
     f: f64,
@@ -225,12 +228,17 @@ struct Lagrange {
 }
 
 impl Lagrange {
-    fn of(start: &Start, g: &[f64; 4]) -> Self {
+    fn of(start: &Start, reached: &Reached) -> Self {
+        let g = &reached.g;
         let r = start.distance_at(g);
+        // Two forms of g that are equal; each cancels where the other does not (over long times on an
+        // ellipse, and past the centre on a fast fly-by).
+        let (near, turned) = (start.distance * g[1], start.eta * g[2]);
+        let fallen = start.mu * g[3];
+        let by_time = reached.rest_days.abs() + fallen.abs() < near.abs() + turned.abs();
         Lagrange {
             f: 1.0 - start.mu * g[2] / start.distance,
-            // Not days - mu G3, which cancels over long times.
-            g: start.distance * g[1] + start.eta * g[2],
+            g: if by_time { reached.rest_days - fallen } else { near + turned },
             f_rate: -start.mu * g[1] / (r * start.distance),
             g_rate: 1.0 - start.mu * g[2] / r,
         }

@@ -26,11 +26,7 @@ pub fn c0_to_c3(z: f64) -> [f64; 4] {
 
 /// c4 and c5 of z, given c2 and c3 of the same z.
 pub fn c4_c5(z: f64, c2: f64, c3: f64) -> [f64; 2] {
-    if z.abs() < 1.0 {
-        [series(z, 4), series(z, 5)]
-    } else {
-        [(0.5 - c2) / z, (1.0 / 6.0 - c3) / z]
-    }
+    if z.abs() < 1.0 { [series(z, 4), series(z, 5)] } else { [(0.5 - c2) / z, (1.0 / 6.0 - c3) / z] }
 }
 
 /// The defining series, for |z| < 1.
@@ -50,11 +46,8 @@ fn doubled([c0, c1, c2, c3]: [f64; 4]) -> [f64; 4] {
 /// Trigonometric and hyperbolic forms, for |z| well above zero.
 fn closed(z: f64) -> [f64; 4] {
     let x = z.abs().sqrt();
-    let (sine, sine_half) = if z > 0.0 {
-        (libm::sin(x), libm::sin(0.5 * x))
-    } else {
-        (libm::sinh(x), libm::sinh(0.5 * x))
-    };
+    let (sine, sine_half) =
+        if z > 0.0 { (libm::sin(x), libm::sin(0.5 * x)) } else { (libm::sinh(x), libm::sinh(0.5 * x)) };
     let c2 = 2.0 * sine_half * sine_half / z.abs();
     [1.0 - z * c2, sine / x, c2, (x - sine) / (x * z)]
 }

@@ -8,8 +8,8 @@
 //! t(s) = r0 G1 + eta0 G2 + mu G3,    eta0 = r0 . v0
 //! ```
 //!
-//! which never decreases. Nothing divides by mu or by 1 - e. Two solvers: [`Start::anomaly`] steps
-//! from a guess, the last time to fourth order, and gives way, when a step does not settle, to [`Start::anomaly_bracketed`],
+//! which never decreases. Nothing divides by mu or by 1 - e. Two solvers: [`Start::after`] steps
+//! from a guess, the last time to fourth order, and gives way, when a step does not settle, to [`Start::after_bracketed`],
 //! a bracketed Newton search that cannot fail. They agree to 1e-13 of s or better wherever both answer
 //! (tests/conic.rs). Times longer than half a revolution are first reduced by whole revolutions.
 //! Sources: Battin, An Introduction to the Mathematics and Methods of Astrodynamics, ch. 4; Danby, ch. 6.
@@ -30,13 +30,17 @@ pub struct Start {
     pub binding: f64,
 }
 
-/// The anomaly reached: within the last half revolution, and whole revolutions before it.
+/// What a body has reached after a time.
 #[derive(Clone, Copy, Debug, PartialEq)]
-pub struct Anomaly {
+pub struct Reached {
     /// Universal anomaly of the part that is less than a revolution, d/au.
     pub s: f64,
     /// Whole revolutions taken off (0 unless the orbit is an ellipse).
     pub revolutions: f64,
+    /// The time that is left without them, days.
+    pub rest_days: f64,
+    /// G0 to G3 at `s`.
+    pub g: Universal,
 }
 
 /// The G functions at one anomaly: G0 to G3.
@@ -76,8 +80,8 @@ impl Start {
     }
 
     /// The universal anomaly with its whole revolutions.
-    pub fn whole_anomaly(&self, anomaly: &Anomaly) -> f64 {
-        if anomaly.revolutions == 0.0 { anomaly.s } else { anomaly.s + anomaly.revolutions * TAU / self.binding.sqrt() }
+    pub fn whole_anomaly(&self, reached: &Reached) -> f64 {
+        if reached.revolutions == 0.0 { reached.s } else { reached.s + reached.revolutions * TAU / self.binding.sqrt() }
     }
 
     /// Period of revolution, days; None unless the orbit is an ellipse.
@@ -96,37 +100,55 @@ impl Start {
         }
     }
 
-    /// The anomaly after `days` (negative: before), by steps from a guess.
-    pub fn anomaly(&self, days: f64) -> Anomaly {
+    /// What is reached after `days` (negative: before), by steps from a guess.
+    pub fn after(&self, days: f64) -> Reached {
         let (revolutions, rest) = self.reduce(days);
-        self.anomaly_from(self.first_guess(rest), revolutions, rest)
+        self.step_from(self.first_guess(rest), revolutions, rest)
     }
 
-    /// The same, quicker, from the anomaly of a neighbouring time.
-    pub fn anomaly_near(&self, neighbour: &Anomaly, days: f64) -> Anomaly {
+    /// The same, quicker, from what was reached at a neighbouring time: its universal anomaly, carried over as well
+    /// as the caller can, and its revolutions.
+    pub fn after_near(&self, guess: f64, revolutions_there: f64, days: f64) -> Reached {
         let (revolutions, rest) = self.reduce(days);
-        let guess = if revolutions == neighbour.revolutions { neighbour.s } else { self.first_guess(rest) };
-        self.anomaly_from(guess, revolutions, rest)
+        let guess = if revolutions == revolutions_there { guess } else { self.first_guess(rest) };
+        self.step_from(guess, revolutions, rest)
     }
 
-    fn anomaly_from(&self, guess: f64, revolutions: f64, rest: f64) -> Anomaly {
+    /// The same by a bracketed search alone: slower, and it cannot fail.
+    pub fn after_bracketed(&self, days: f64) -> Reached {
+        let (revolutions, rest_days) = self.reduce(days);
+        let s = self.bracketed(rest_days);
+        Reached { s, revolutions, rest_days, g: self.universal(s) }
+    }
+
+    fn step_from(&self, guess: f64, revolutions: f64, rest_days: f64) -> Reached {
         let mut s = guess;
         for _ in 0..MOST_STEPS {
-            let step = self.step(&self.universal(s), rest, s);
+            let g = self.universal(s);
+            let step = self.step(&g, rest_days, s);
             s += step;
             // The error left behind is of the order of (step / s)^4 s, times at most some 1e5 where the
             // time span holds a grazing perihelion: below rounding.
             if step.abs() <= 1e-5 * s.abs() {
-                return Anomaly { s, revolutions };
+                return Reached { s, revolutions, rest_days, g: self.shifted(&g, step) };
             }
         }
-        Anomaly { s: self.bracketed(rest), revolutions }
+        let s = self.bracketed(rest_days);
+        Reached { s, revolutions, rest_days, g: self.universal(s) }
     }
 
-    /// The anomaly after `days` by a bracketed search alone: slower, and it cannot fail.
-    pub fn anomaly_bracketed(&self, days: f64) -> Anomaly {
-        let (revolutions, rest) = self.reduce(days);
-        Anomaly { s: self.bracketed(rest), revolutions }
+    /// G0 to G3 a small step further, by the addition theorem with the first terms of the step's own series.
+    fn shifted(&self, g: &Universal, step: f64) -> Universal {
+        let square = step * step;
+        let bend = self.binding * square;
+        let (h0, h1) = (1.0 - bend / 2.0, step * (1.0 - bend / 6.0));
+        let (h2, h3) = (square / 2.0, square * step / 6.0);
+        [
+            g[0] * h0 - self.binding * g[1] * h1,
+            g[1] * h0 + g[0] * h1,
+            g[2] + g[1] * h1 + g[0] * h2,
+            g[3] + g[2] * h1 + g[1] * h2 + g[0] * h3,
+        ]
     }
 
     /// A guess of s: the real root of the cubic days = r0 s + eta0 s^2 / 2 + (r0 v0^2 - mu) s^3 / 6, the

@@ -1,0 +1,94 @@
+//! How does a scene become calls to a browser's canvas?
+//!
+//! Coordinates are CSS pixels: the caller sets the context's transform for the device's pixel ratio, and
+//! clears what the ground does not cover (it covers everything). Texts are held to the width that the
+//! scene reckoned with, whatever face the system has.
+
+use super::{Ink, Painter, Stroke};
+use crate::scene::Point;
+use crate::scene::lettering::{Anchor, Text};
+use crate::scene::theme::Color;
+use std::f64::consts::TAU;
+use wasm_bindgen::JsValue;
+use web_sys::CanvasRenderingContext2d;
+
+/// Paints on a two-dimensional canvas context.
+pub struct CanvasPainter<'a> {
+    context: &'a CanvasRenderingContext2d,
+}
+
+impl<'a> CanvasPainter<'a> {
+    pub fn new(context: &'a CanvasRenderingContext2d) -> Self {
+        context.set_line_cap("round");
+        context.set_line_join("round");
+        context.set_text_baseline("alphabetic");
+        CanvasPainter { context }
+    }
+
+    fn pen(&self, stroke: &Stroke) {
+        self.context.set_stroke_style_str(&stroke.color.css());
+        self.context.set_line_width(stroke.width_px);
+        let dashes: js_sys::Array = stroke.dashes_px.iter().map(|&dash| JsValue::from_f64(dash)).collect();
+        // Refused only for values that are not finite or negative, which no pen holds; the line is solid then.
+        let _ = self.context.set_line_dash(&dashes);
+    }
+
+    /// Fills and strokes the current path.
+    fn finish(&self, ink: &Ink) {
+        if let Some(color) = ink.fill {
+            self.context.set_fill_style_str(&color.css());
+            self.context.fill();
+        }
+        if let Some(stroke) = &ink.stroke {
+            self.pen(stroke);
+            self.context.stroke();
+        }
+    }
+}
+
+impl Painter for CanvasPainter<'_> {
+    fn surface(&mut self, width_px: f64, height_px: f64, fill: Color) {
+        self.context.set_fill_style_str(&fill.css());
+        self.context.fill_rect(0.0, 0.0, width_px, height_px);
+    }
+
+    fn lines(&mut self, lines: &[Vec<Point>], closed: bool, ink: &Ink) {
+        self.context.begin_path();
+        for line in lines {
+            for (i, &[x, y]) in line.iter().enumerate() {
+                if i == 0 { self.context.move_to(x, y) } else { self.context.line_to(x, y) }
+            }
+            if closed {
+                self.context.close_path();
+            }
+        }
+        self.finish(ink);
+    }
+
+    fn circle(&mut self, center: Point, radius_px: f64, ink: &Ink) {
+        self.context.begin_path();
+        // Refused only for a negative radius; then there is nothing to draw.
+        let _ = self.context.arc(center[0], center[1], radius_px, 0.0, TAU);
+        self.finish(ink);
+    }
+
+    fn text(&mut self, text: &Text, ink: &Ink) {
+        let weight = if text.strong { "bold " } else { "" };
+        self.context.set_font(&format!("{weight}{}px system-ui, sans-serif", text.size_px));
+        self.context.set_text_align(match text.anchor {
+            Anchor::Start => "left",
+            Anchor::Middle => "center",
+            Anchor::End => "right",
+        });
+        let ([x, y], width) = (text.at, text.width_px());
+        // Text calls fail only on a lost context; the next frame draws again.
+        if let Some(color) = ink.fill {
+            self.context.set_fill_style_str(&color.css());
+            let _ = self.context.fill_text_with_max_width(&text.words, x, y, width);
+        }
+        if let Some(stroke) = &ink.stroke {
+            self.pen(stroke);
+            let _ = self.context.stroke_text_with_max_width(&text.words, x, y, width);
+        }
+    }
+}

@@ -1,0 +1,42 @@
+/*
+ * Does the page keep its promises in real browsers?
+ *
+ * Every part below runs in Chromium and Firefox. Checks that assert an absence have a planted fault beside them that they must find.
+ */
+import { after, before, describe } from "node:test";
+import { existsSync } from "node:fs";
+import { BROWSERS, PAGE_FILE, serve } from "./browsers.mjs";
+import access from "./access.mjs";
+import gallery from "./gallery.mjs";
+import input from "./input.mjs";
+import layout from "./layout.mjs";
+import numbers from "./numbers.mjs";
+import quiet from "./quiet.mjs";
+import time from "./time.mjs";
+
+if (!existsSync(PAGE_FILE)) {
+  throw new Error("the page is not built; run cargo page");
+}
+
+const wanted = (process.env.TAILVANE_BROWSERS || "chromium,firefox").split(",");
+
+for (const name of wanted) {
+  describe(name, () => {
+    const context = { name, browser: null, server: null };
+    before(async () => {
+      context.server = await serve();
+      context.browser = await BROWSERS[name]();
+    });
+    after(async () => {
+      if (context.browser) {
+        await context.browser.close();
+      }
+      if (context.server) {
+        context.server.stop();
+      }
+    });
+    for (const part of [quiet, numbers, time, input, access, layout, gallery]) {
+      part(context);
+    }
+  });
+}

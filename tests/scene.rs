@@ -1,0 +1,16 @@
+//! Is what is drawn readable, true to the sky, and the same every time?
+
+#[path = "scene/contrast.rs"]
+mod contrast;
+#[path = "scene/gallery.rs"]
+mod gallery;
+#[path = "scene/labels.rs"]
+mod labels;
+#[path = "scene/painters.rs"]
+mod painters;
+#[path = "scene/place.rs"]
+mod place;
+#[path = "scene/pointer.rs"]
+mod pointer;
+#[path = "scene/skies.rs"]
+mod skies;

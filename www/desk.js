@@ -1,0 +1,151 @@
+/*
+ * What is on the desk, and when is it drawn again?
+ *
+ * Holds the one `Desk` of the core (plan, time, view). Everything that changes it goes through `change`; at most one
+ * redraw happens per animation frame. Listeners hear each frame's reading; `onRest` listeners hear it when
+ * nothing has changed for a moment (speech, link, storage).
+ */
+Tailvane.desk = (function () {
+  const REST_MS = 500;
+  const frameListeners = [];
+  const restListeners = [];
+  let desk = null;
+  let lastPlan = null;
+  let asked = false;
+  let restTimer = 0;
+
+  function start(plan) {
+    desk = new (Tailvane.core.exports().Desk)(plan);
+    lastPlan = plan;
+    redraw();
+  }
+
+  /**
+   * Runs `act(desk)` and redraws. A refusal of the core is shown and changes nothing; a panic costs the core, which
+   * is replaced with the last good plan. Returns what `act` returned, or undefined after a failure.
+   */
+  function change(act) {
+    try {
+      const result = act(desk);
+      Tailvane.say.clearError();
+      redraw();
+      return result;
+    } catch (failure) {
+      fail(failure);
+      return undefined;
+    }
+  }
+
+  /** Asks the core without changing anything; failures are shown as in `change`. */
+  function ask(act) {
+    try {
+      return act(desk);
+    } catch (failure) {
+      fail(failure);
+      return undefined;
+    }
+  }
+
+  function fail(failure) {
+    if (failure && typeof failure.message === "string" && failure.refused) {
+      Tailvane.say.error(failure.message, failure);
+      return;
+    }
+    const words = Tailvane.core.lastWords() || String((failure && failure.message) || failure);
+    Tailvane.say.error("Something in the page failed and was started anew from the last good plan: " + words);
+    try {
+      Tailvane.core.fresh();
+      start(lastPlan);
+    } catch (again) {
+      Tailvane.say.error("The page failed and could not start anew: " + words + ". Reload it.");
+    }
+  }
+
+  function redraw() {
+    if (!asked) {
+      asked = true;
+      requestAnimationFrame(frame);
+    }
+  }
+
+  function frame() {
+    asked = false;
+    let reading;
+    try {
+      reading = desk.reading();
+      for (const listener of frameListeners) {
+        listener(reading, desk);
+      }
+    } catch (failure) {
+      fail(failure);
+      return;
+    }
+    clearTimeout(restTimer);
+    restTimer = setTimeout(rest, REST_MS, reading);
+  }
+
+  function rest(reading) {
+    if (asked) {
+      return;
+    }
+    lastPlan = ask((d) => d.plan_json()) || lastPlan;
+    for (const listener of restListeners) {
+      listener(reading, lastPlan);
+    }
+  }
+
+  return {
+    start,
+    change,
+    ask,
+    redraw,
+    onFrame: (listener) => frameListeners.push(listener),
+    onRest: (listener) => restListeners.push(listener),
+  };
+})();
+
+/** The element that carries a hook such as `data-show="comet"`. */
+Tailvane.find = (hook, name) => document.querySelector("[data-" + hook + '="' + name + '"]');
+
+/** Runs `then` when the button of this act is pressed. */
+Tailvane.onAct = (name, then) => Tailvane.find("act", name).addEventListener("click", then);
+
+/** Writes text only where it differs, so that nothing is laid out or read aloud again in vain. */
+Tailvane.write = (element, text) => {
+  if (element.textContent !== text) {
+    element.textContent = text;
+  }
+};
+
+/** Offers `text` as a file to save. */
+Tailvane.save = (name, type, text) => {
+  const address = URL.createObjectURL(new Blob([text], { type }));
+  const link = document.createElement("a");
+  link.href = address;
+  link.download = name;
+  document.body.append(link);
+  link.click();
+  link.remove();
+  setTimeout(() => URL.revokeObjectURL(address), 10000);
+};
+
+/** Copies `text` and tells `said` whether that worked; falls back to a selection where the clipboard is refused. */
+Tailvane.copy = async (text, said) => {
+  try {
+    await navigator.clipboard.writeText(text);
+    said("Copied.");
+  } catch (refused) {
+    const box = document.createElement("textarea");
+    box.value = text;
+    box.className = "unseen";
+    document.body.append(box);
+    const focused = document.activeElement;
+    box.select();
+    const copied = document.execCommand("copy");
+    box.remove();
+    if (focused) {
+      focused.focus();
+    }
+    said(copied ? "Copied." : "The browser does not allow copying here.");
+  }
+};
