@@ -18,13 +18,16 @@ fn record(periodic: bool) -> Vec<char> {
 
 #[test]
 fn any_shift_by_one_column_within_the_orbit_is_refused() {
-    for periodic in [false, true] {
-        let good = record(periodic);
+    for (periodic, columns) in [(false, 168), (true, 168), (false, 79), (true, 89), (false, 100)] {
+        let good: Vec<char> = record(periodic).into_iter().take(columns).collect();
         for place in 14..79 {
             let mut shorter = good.clone();
             shorter.remove(place);
             let text: String = shorter.iter().collect();
-            assert!(notation::read(&text).comets.is_empty(), "without column {}: {text}", place + 1);
+            // Without anything after it, an inclination of fewer decimals is a good one.
+            if columns > 79 || place < 75 {
+                assert!(notation::read(&text).comets.is_empty(), "without column {}: {text}", place + 1);
+            }
             for new in [' ', '0', '7', '.', '-', 'x'] {
                 let mut longer = good.clone();
                 longer.insert(place, new);
