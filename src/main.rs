@@ -36,6 +36,8 @@ enum Stop {
     Usage(String),
     /// The input was refused.
     Refused(Error),
+    /// The input was refused, and that has been said.
+    Said,
     /// Standard output went away or could not be written.
     Output(io::Error),
 }
@@ -81,6 +83,7 @@ fn main() -> ExitCode {
             eprintln!("tailvane: {error}");
             ExitCode::FAILURE
         }
+        Err(Stop::Said) => ExitCode::FAILURE,
         // A reader such as `head` that has seen enough is no failure.
         Err(Stop::Output(error)) if error.kind() == io::ErrorKind::BrokenPipe => ExitCode::SUCCESS,
         Err(Stop::Output(error)) => {
@@ -303,8 +306,5 @@ fn elements(mut arguments: lexopt::Parser) -> Result<(), Stop> {
     for notice in &reading.notices {
         eprintln!("tailvane: {notice}");
     }
-    match reading.errors.into_iter().next() {
-        Some(first) if reading.comets.is_empty() => Err(Stop::Refused(first)),
-        _ => Ok(()),
-    }
+    if reading.comets.is_empty() { Err(Stop::Said) } else { Ok(()) }
 }

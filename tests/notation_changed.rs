@@ -54,7 +54,7 @@ fn figures(comet: &Comet) -> Vec<String> {
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig::with_cases(2000))]
+    #![proptest_config(ProptestConfig { cases: 2000, failure_persistence: None, ..ProptestConfig::default() })]
 
     #[test]
     fn a_written_comet_reads_back_as_itself(comet in comets()) {

@@ -212,6 +212,9 @@ impl FromStr for Stamp {
 fn read_julian(cursor: &mut Cursor) -> Result<Form, Error> {
     cursor.blanks();
     let start = cursor.column();
+    if cursor.peek() == Some('0') {
+        return Err(cursor.unexpected("a Julian date without zeros in front, such as `2460000.5`"));
+    }
     let (whole, decimals) = cursor.decimal(1, 7, "a Julian date such as `2460000.5`")?;
     let whole = whole as i64;
     let midnight = whole - 2_451_545 + i64::from(decimals.fraction() >= 0.5);
