@@ -332,6 +332,8 @@ impl Desk {
     }
 
     fn go(&mut self, time: Stamp) -> Result<f64, JsValue> {
+        // The same plan and time give the same digits, however one came there.
+        self.engine.forget_neighbour();
         self.seen = self.engine.view_at(time.instant()).map_err(refusal)?;
         self.time = time;
         Ok(self.seen.sky.time.tdb_days())
