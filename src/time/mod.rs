@@ -2,7 +2,7 @@
 //!
 //! Inside the crate there is one time scale, TDB, held as days from J2000.0 (2000-01-01 12:00 TDB), which
 //! keeps better than a microsecond over 1900-2100. TT and TDB differ by less than 2 ms and are taken as equal.
-//! [`civil`] counts days, [`scale`] goes from UTC and UT to TT, [`stamp`] reads and prints typed dates.
+//! [`civil`] counts days, `scale` goes from UTC and UT to TT, `stamp` reads and prints typed dates.
 
 pub mod civil;
 mod cursor;
@@ -63,7 +63,7 @@ impl Instant {
     /// UTC (before 1972: UT) rounded to whole units of 1/`per_second` s: the date and the units since its midnight.
     /// None outside the calendar. The units reach the 86401st second only on a day with a leap second.
     fn utc_units(self, per_second: i64) -> Option<(Date, i64)> {
-        if !(self.tdb_days.abs() < 4e6) {
+        if self.tdb_days.is_nan() || self.tdb_days.abs() > 4e6 {
             return None;
         }
         let (mut day, second) = scale::utc_of_tt(self.tdb_days);
@@ -79,7 +79,7 @@ impl Instant {
     /// UTC (before 1972: UT) rounded to a fraction 1/`parts` of a day, a leap second counting to the day after:
     /// the date and the parts since its midnight. None outside the calendar.
     fn utc_parts(self, parts: i64) -> Option<(Date, i64)> {
-        if !(self.tdb_days.abs() < 4e6) {
+        if self.tdb_days.is_nan() || self.tdb_days.abs() > 4e6 {
             return None;
         }
         let (day, second) = scale::utc_of_tt(self.tdb_days);

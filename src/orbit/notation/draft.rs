@@ -17,6 +17,12 @@ const MOTION_DEG_D: f64 = 0.985_607_668_601_425;
 /// Period at a = 1 au in Julian years: 360 / MOTION_DEG_D / 365.25.
 const PERIOD_YEARS: f64 = 1.000_018_88;
 
+/// Whether a value, beside the largest non-gravitational parameter, is in range.
+type Holds = fn(f64, f64) -> bool;
+
+/// Errors of one comet beyond this many are dropped: the rest follow from them.
+const MOST_ERRORS_OF_ONE: usize = 50;
+
 /// The labelled values of one comet.
 pub(super) struct Draft<'a> {
     values: Vec<(Label, &'a Value, &'a Event)>,
@@ -51,6 +57,9 @@ impl<'a> Draft<'a> {
         let mut errors = Vec::new();
         let mut present = Vec::new();
         for event in events {
+            if errors.len() >= MOST_ERRORS_OF_ONE {
+                return Err(errors);
+            }
             let What::Value(label, value) = &event.what else { continue };
             present.push(*label);
             let value = match value {
@@ -159,7 +168,7 @@ impl<'a> Draft<'a> {
     fn out_of_range(&self) -> Vec<Error> {
         let limit = LARGEST_NONGRAVITATIONAL_AU_D2;
         let push = "below 1e-4 au/day^2 in size; circulars print it in units of 1e-8 au/day^2, so write the power too";
-        let checks: [(Label, fn(f64, f64) -> bool, &str); 9] = [
+        let checks: [(Label, Holds, &str); 9] = [
             (Label::PerihelionDistance, |q, _| q > 0.0, "above 0 au"),
             (Label::Eccentricity, |e, _| e >= 0.0, "of 0 or more"),
             (Label::Inclination, |i, _| (0.0..=180.0).contains(&i), "from 0 to 180 degrees"),
