@@ -60,12 +60,6 @@ impl Engine {
         matches!(self.plan.observer, Observer::Site(_))
     }
 
-    /// Forgets the sky before. A neighbouring sky is a guess that saves time but moves the answer by rounding; after
-    /// this the next answer is the one a new engine gives, to the last bit.
-    pub fn forget_neighbour(&mut self) {
-        self.last = None;
-    }
-
     /// # Errors
     /// A time outside the span of the ephemeris.
     pub fn check_span(&self, time: Instant) -> Result<(), Error> {

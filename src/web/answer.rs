@@ -44,6 +44,8 @@ pub struct Read {
     pub count: usize,
     pub first: String,
     pub errors: Vec<Refusal>,
+    /// Errors beyond those listed.
+    pub left_out: usize,
     pub notices: Vec<String>,
 }
 
