@@ -1,8 +1,8 @@
 //! The one surface that both shells use: plain data in, plain data out.
 //!
 //! Holds a plan made ready to compute with, and recomputes only what changed: the orbit once per plan, the
-//! Earth's path once per 16 days ([`Track`]), each sky from the anomaly of the one before it. None of that
-//! changes an answer by more than rounding, whatever was asked before.
+//! Earth's path once per 16 days ([`Track`]), the comet from the nearest of its anchors ([`Trail`]). None of that
+//! changes an answer by a single bit, whatever was asked before.
 
 use crate::body::SPAN;
 use crate::body::earth::Track;
@@ -17,7 +17,8 @@ use crate::plan::Plan;
 use crate::sky::avoidance;
 use crate::sky::dark::{self, Window};
 use crate::sky::viewpoint::{Ground, Viewpoint};
-use crate::sky::{Sky, Trail};
+use crate::sky::Sky;
+use crate::sky::trail::Trail;
 use crate::time::Instant;
 
 /// Two-body motion is doubted this many days from the elements' epoch.

@@ -29,11 +29,12 @@ fn plain_orbit(q_au: f64, e: f64) -> Orbit {
 
 /// Place and velocity in ecliptic axes, and the true anomaly, `dt_days` after perihelion.
 fn perifocal(q_au: f64, e: f64, dt_days: f64) -> (Vector3<f64>, Vector3<f64>, f64) {
-    let place = plain_orbit(q_au, e).place_at(Instant::from_tdb_days(dt_days));
+    let orbit = plain_orbit(q_au, e);
+    let place = orbit.place_at(Instant::from_tdb_days(dt_days));
     (
         equatorial_to_ecliptic(&place.state.position_au),
         equatorial_to_ecliptic(&place.state.velocity_au_d),
-        place.true_anomaly_rad,
+        orbit.true_anomaly_rad(&place.state.position_au),
     )
 }
 

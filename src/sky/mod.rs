@@ -15,15 +15,17 @@
 pub mod avoidance;
 pub mod column;
 pub mod dark;
+pub mod trail;
 pub mod viewpoint;
 
 use crate::body::State;
 use crate::body::sun::heliographic_latitude_rad;
 use crate::caution::Caution;
 use crate::frame::{Axes, declination_rad, position_angle_rad, right_ascension_rad, separation_rad, sine_to_sight};
-use crate::orbit::conic::{Anomaly, Orbit, Place, SUN_GM_AU3_D2};
+use crate::orbit::conic::Orbit;
 use crate::time::Instant;
 use nalgebra::Vector3;
+use trail::Trail;
 use viewpoint::{Ground, Viewpoint};
 
 /// Speed of light, au per day: 299 792 458 m/s with the au of IAU 2012 (149 597 870 700 m).
@@ -97,10 +99,10 @@ pub struct SiteSky {
 }
 
 impl Sky {
-    /// What is seen of a comet on `orbit` from `viewpoint`. `trail` remembers where the comet was found for the
-    /// date before, which saves time and changes nothing; a fresh one serves for a single date.
+    /// What is seen of a comet on `orbit` from `viewpoint`. `trail` is the orbit's own: it finds the
+    /// comet sooner near a date that was asked for before, and answers the same bits whatever that was.
     pub fn of(orbit: &Orbit, viewpoint: &Viewpoint, trail: &mut Trail) -> Sky {
-        let (comet, light_time_days) = trail.retard(orbit, viewpoint);
+        let (comet, light_time_days) = trail.retarded(orbit, viewpoint);
         let (r, v) = (comet.position_au, comet.velocity_au_d);
         let observer = viewpoint.observer;
         let sight_line = r - observer.position_au;
@@ -152,95 +154,6 @@ impl Sky {
             cautions,
         }
     }
-}
-
-/// Where the comet was found for the last date, from which a near one is found sooner.
-#[derive(Clone, Debug, Default)]
-pub struct Trail {
-    last: Option<Found>,
-}
-
-/// The comet when its light left, with the guess that finds it again.
-#[derive(Clone, Debug)]
-struct Found {
-    time: Instant,
-    light_time_days: f64,
-    light_time_rate: f64,
-    anomaly: Anomaly,
-    sun_distance_au: f64,
-    /// r . v, au^2/d.
-    eta: f64,
-}
-
-/// A neighbour serves as a guess up to this many days away.
-const NEAR_DAYS: f64 = 2.0;
-
-impl Trail {
-    /// Solves t' = t - |r(t') - observer| / c, and returns the state at t' and the light time, days.
-    ///
-    /// A solution by the conic is good to the last few minutes of light time; a Taylor step makes up for those.
-    fn retard(&mut self, orbit: &Orbit, viewpoint: &Viewpoint) -> (State, f64) {
-        let seen_from = &viewpoint.observer;
-        let (mut place, mut light_time_days) = self.guess(orbit, viewpoint);
-        loop {
-            let sight_line = place.state.position_au - seen_from.position_au;
-            let distance = sight_line.norm();
-            // Newton on light_time - distance / c, whose derivative is 1 + (line-of-sight speed) / c.
-            let speed = sight_line.dot(&place.state.velocity_au_d) / distance;
-            let later = (light_time_days - distance / LIGHT_AU_D) / (1.0 + speed / LIGHT_AU_D);
-            light_time_days -= later;
-            let r = place.state.position_au.norm();
-            place.anomaly.s += later / r;
-            // Relative to the time scale of the motion, r^1.5 / k, this leaves less than 1e-13 of the velocity.
-            if later.abs() < 1e-5 * r * r.sqrt() {
-                shift(&mut place.state, later);
-                self.last = Some(Found::of(&place, viewpoint, light_time_days));
-                return (place.state, light_time_days);
-            }
-            place = orbit.place_near(viewpoint.time.plus_days(-light_time_days), &place.anomaly);
-        }
-    }
-
-    /// The comet at some time near t', and that time as a light time.
-    fn guess(&self, orbit: &Orbit, viewpoint: &Viewpoint) -> (Place, f64) {
-        let time = viewpoint.time;
-        if let Some(found) = &self.last {
-            let days = time.tdb_days() - found.time.tdb_days();
-            if days.abs() < NEAR_DAYS {
-                let light_time_days = found.light_time_days + found.light_time_rate * days;
-                let past = days * (1.0 - found.light_time_rate);
-                let r = found.sun_distance_au;
-                let ahead = past / r * (1.0 - 0.5 * found.eta * past / (r * r));
-                let anomaly = Anomaly { s: found.anomaly.s + ahead, ..found.anomaly };
-                return (orbit.place_near(time.plus_days(-light_time_days), &anomaly), light_time_days);
-            }
-        }
-        (orbit.place_at(time), 0.0)
-    }
-}
-
-impl Found {
-    fn of(place: &Place, viewpoint: &Viewpoint, light_time_days: f64) -> Self {
-        let State { position_au, velocity_au_d } = place.state;
-        let sight_line = position_au - viewpoint.observer.position_au;
-        let rate = sight_line.dot(&(velocity_au_d - viewpoint.observer.velocity_au_d)) / sight_line.norm();
-        Found {
-            time: viewpoint.time,
-            light_time_days,
-            light_time_rate: rate / LIGHT_AU_D,
-            anomaly: place.anomaly,
-            sun_distance_au: position_au.norm(),
-            eta: position_au.dot(&velocity_au_d),
-        }
-    }
-}
-
-/// Moves a state by a short time under the Sun's pull, to second order.
-fn shift(state: &mut State, days: f64) {
-    let r = state.position_au;
-    let pull = r * (-SUN_GM_AU3_D2 / (r.norm_squared() * r.norm()));
-    state.position_au += (state.velocity_au_d + pull * (0.5 * days)) * days;
-    state.velocity_au_d += pull * days;
 }
 
 /// Rates of the astrometric direction, radians per day.

@@ -6,6 +6,7 @@ use tailvane::body::observer::{Observer, Site};
 use tailvane::orbit::conic::Orbit;
 use tailvane::orbit::elements::{Comet, Elements};
 use tailvane::plan::Plan;
+use tailvane::sky::trail::Trail;
 use tailvane::sky::viewpoint::Viewpoint;
 use tailvane::sky::{SiteSky, Sky};
 use tailvane::time::Stamp;
@@ -54,7 +55,7 @@ pub fn sky() -> Sky {
         velocity_au_d: Vector3::new(-sine, cosine * 0.9175, cosine * 0.3978) * 0.0172,
     };
     let orbit = Orbit::new(&plan.comet.elements).expect("elements in range");
-    Sky::of(&orbit, &Viewpoint { time: time.instant(), observer, ground: None }, None)
+    Sky::of(&orbit, &Viewpoint { time: time.instant(), observer, ground: None }, &mut Trail::default())
 }
 
 /// That sky with its directions turned to `hands`, as a site sees it.
