@@ -14,11 +14,11 @@ use crate::frame::earth_rotation::celestial_to_terrestrial;
 use crate::frame::horizon::Horizon;
 use crate::orbit::conic::Orbit;
 use crate::plan::Plan;
+use crate::sky::Sky;
 use crate::sky::avoidance;
 use crate::sky::dark::{self, Window};
-use crate::sky::viewpoint::{Ground, Viewpoint};
-use crate::sky::Sky;
 use crate::sky::trail::Trail;
+use crate::sky::viewpoint::{Ground, Viewpoint};
 use crate::time::Instant;
 
 /// Two-body motion is doubted this many days from the elements' epoch.

@@ -14,10 +14,10 @@ use crate::body::site_code;
 use crate::engine::{Engine, View};
 use crate::error::{Error, Kind, Place};
 use crate::orbit::elements::Comet;
-use crate::orbit::notation::{self, Entry};
+use crate::orbit::notation::Entry;
 use crate::paint::canvas::CanvasPainter;
 use crate::paint::{paint, svg};
-use crate::plan::Plan;
+use crate::plan::{Plan, paste};
 use crate::say;
 use crate::scene::theme::Theme;
 use crate::scene::view::{SkyView, Up};
@@ -155,10 +155,11 @@ impl Desk {
             } else {
                 self.take_comet(plan.comet, now_ms)?;
             }
-            return Ok(to_js(&answer::Read { count: 1, first, errors: Vec::new(), notices: Vec::new() }));
+            return Ok(to_js(&answer::Read { count: 1, first, errors: Vec::new(), left_out: 0, notices: Vec::new() }));
         }
-        let found = notation::read(text);
+        let found = paste::read(text);
         let errors: Vec<Refusal> = found.errors.iter().map(Refusal::of).collect();
+        let left_out = found.errors_left_out;
         let Some(first) = found.comets.first().map(|entry| entry.comet.clone()) else {
             let nothing = Error::new(Kind::Notation, Place::Whole, "no elements", "the elements of a comet");
             return Err(refusal(found.errors.into_iter().next().unwrap_or(nothing)));
@@ -167,7 +168,7 @@ impl Desk {
         self.take_comet(first, now_ms)?;
         self.read = found.comets;
         let notices = found.notices.iter().map(ToString::to_string).collect();
-        Ok(to_js(&answer::Read { count: self.read.len(), first: name, errors, notices }))
+        Ok(to_js(&answer::Read { count: self.read.len(), first: name, errors, left_out, notices }))
     }
 
     /// Those comets of the last text read whose name holds the words, at most `most` of them.

@@ -127,7 +127,11 @@ fn sky_from(days: f64, offset_au: impl Fn(&State) -> Vector3<f64>) -> Sky {
     let comet = orbit.place_at(left).state;
     let offset = offset_au(&comet);
     let observer = State { position_au: comet.position_au + offset, velocity_au_d: Vector3::new(0.0, 0.017, 0.0) };
-    Sky::of(&orbit, &Viewpoint { time: left.plus_days(offset.norm() / LIGHT_AU_D), observer, ground: None }, &mut Trail::default())
+    Sky::of(
+        &orbit,
+        &Viewpoint { time: left.plus_days(offset.norm() / LIGHT_AU_D), observer, ground: None },
+        &mut Trail::default(),
+    )
 }
 
 #[test]

@@ -31,15 +31,16 @@ Tailvane.comet = (function () {
       readBox.hidden = true;
       return;
     }
-    const faults = result.errors;
-    box.setAttribute("aria-invalid", String(faults.length > 0));
-    if (faults.length > 0) {
-      const rest = faults.length > 1 ? " " + (faults.length - 1) + " more such " + (faults.length > 2 ? "lines" : "line") + " could not be read." : "";
-      Tailvane.say.error(faults[0].message + "." + rest);
+    const faults = result.errors.length + result.left_out;
+    box.setAttribute("aria-invalid", String(faults > 0));
+    if (faults > 0) {
+      const more = faults > 1 ? "\n" + (faults - 1) + " more could not be read." : "";
+      Tailvane.say.error(result.errors[0].message + "." + more);
     }
     const count = result.count;
-    const passed = faults.length ? ", " + faults.length + " not read" : "";
-    Tailvane.write(found, count === 1 ? result.first + " was read" + passed + "." : count + " comets were read" + passed + "; shown is " + result.first + ".");
+    const read = count === 1 ? result.first + " was read" : count + " comets were read, shown is " + result.first;
+    const notices = result.notices.length ? " " + result.notices[0] + (result.notices.length > 1 ? " And " + (result.notices.length - 1) + " more notices." : "") : "";
+    Tailvane.write(found, read + (faults ? "; " + faults + " could not be read." : ".") + notices);
     Tailvane.season.pause();
     readBox.hidden = count < 2;
     if (count > 1) {

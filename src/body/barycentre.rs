@@ -40,8 +40,8 @@ pub(super) fn state(days: f64) -> State {
 /// The counts of one term of one piece, by axis.
 fn coefficients(term: usize, row: usize) -> Vector3<f64> {
     Vector3::from_fn(|axis, _| {
-        let at = 4 * ((term * 3 + axis) * PIECES + row);
-        let bytes = [TABLE[at], TABLE[at + 1], TABLE[at + 2], TABLE[at + 3]];
-        f64::from(i32::from_le_bytes(bytes))
+        let at = (term * 3 + axis) * PIECES + row;
+        let plane = |n: usize| TABLE[n * TERMS * 3 * PIECES + at];
+        f64::from(i32::from_le_bytes([plane(0), plane(1), plane(2), plane(3)]))
     })
 }

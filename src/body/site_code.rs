@@ -32,13 +32,13 @@ pub fn find(table: &str, code: &str) -> Option<Site> {
 /// Up to `limit` observatories, in the order of the table, whose name holds every word of `words`, in any case.
 /// No word gives no observatory.
 pub fn search(table: &str, words: &str, limit: usize) -> Vec<Coded> {
-    let words: Vec<String> = words.split_whitespace().map(str::to_lowercase).collect();
+    let words: Vec<String> = words.split_whitespace().map(str::to_ascii_lowercase).collect();
     if words.is_empty() {
         return Vec::new();
     }
     rows(table)
         .filter(|row| {
-            let name = row.name.to_lowercase();
+            let name = row.name.to_ascii_lowercase();
             words.iter().all(|word| name.contains(word.as_str()))
         })
         .filter_map(|row| row.coded())

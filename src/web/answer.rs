@@ -44,6 +44,8 @@ pub struct Read {
     pub count: usize,
     pub first: String,
     pub errors: Vec<Refusal>,
+    /// Errors beyond those listed.
+    pub left_out: usize,
     pub notices: Vec<String>,
 }
 
@@ -62,8 +64,9 @@ pub struct Found {
 
 /// The comets whose name holds the words, capitals aside, at most `most` of them.
 pub fn found(entries: &[Entry], words: &str, most: usize) -> Found {
-    let words = words.trim().to_lowercase();
-    let hits = || entries.iter().enumerate().filter(|(_, entry)| entry.comet.name.to_lowercase().contains(&words));
+    let words = words.trim().to_ascii_lowercase();
+    let hits =
+        || entries.iter().enumerate().filter(|(_, entry)| entry.comet.name.to_ascii_lowercase().contains(&words));
     let list = hits().take(most).map(|(number, entry)| Hit { number, name: entry.comet.name.clone() }).collect();
     Found { total: hits().count(), list }
 }
@@ -80,7 +83,7 @@ const MOST_SITES: usize = 30;
 
 /// The observatory of this very code first, then those whose name holds the words.
 pub fn sites(table: &str, words: &str) -> Vec<SiteHit> {
-    let code = words.trim().to_uppercase();
+    let code = words.trim().to_ascii_uppercase();
     let exact = site_code::find(table, &code).map(|site| (code, site.name));
     let named = site_code::search(table, words, MOST_SITES).into_iter().map(|coded| (coded.code, coded.site.name));
     exact.into_iter().chain(named).map(|(code, name)| SiteHit { words: format!("{code}  {name}"), code }).collect()

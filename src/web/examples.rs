@@ -8,9 +8,9 @@ use crate::plan::Plan;
 use serde::Serialize;
 
 const PLANS: [(&str, &str); 3] = [
-    (include_str!("../../www/examples/alder.plan.json"), "an orbit-plane crossing"),
-    (include_str!("../../www/examples/rowan.plan.json"), "a hyperbolic orbit"),
-    (include_str!("../../www/examples/hazel.plan.json"), "a short period"),
+    (include_str!("../../www/examples/alder.plan.json"), "orbit-plane crossing"),
+    (include_str!("../../www/examples/rowan.plan.json"), "hyperbolic"),
+    (include_str!("../../www/examples/hazel.plan.json"), "short period"),
 ];
 
 /// Where the invented comets are seen from.

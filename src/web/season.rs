@@ -10,6 +10,8 @@ use serde::Serialize;
 
 /// Mean length of a month, days.
 const MONTH_DAYS: f64 = 365.25 / 12.0;
+/// A second, in days.
+const SECOND: f64 = 1.0 / 86_400.0;
 /// A label of a day or a year needs this room, pixels; one of a month less.
 const LABEL_PX: f64 = 64.0;
 const MONTH_LABEL_PX: f64 = 44.0;
@@ -57,8 +59,9 @@ impl Season {
         if usual.holds(time) { usual } else { about(time) }
     }
 
+    /// Whether a time lies within, to a second: the ends themselves are reached in rounded seconds.
     fn holds(&self, time: Instant) -> bool {
-        self.from <= time && time <= self.to
+        self.from.plus_days(-SECOND) <= time && time <= self.to.plus_days(SECOND)
     }
 
     pub fn answer(&self, width_px: f64, perihelion: Instant) -> Answer {

@@ -38,7 +38,7 @@ pub(super) fn name(events: &[Event]) -> Option<String> {
             What::Title(name) => return Some(name.clone()),
             What::Value(..) => break,
             What::Other(text) => {
-                let sentence = text.ends_with(['.', ':', ';']) || text.to_lowercase().contains("element");
+                let sentence = text.ends_with(['.', ':', ';']) || text.to_ascii_lowercase().contains("element");
                 before = (!sentence && text.chars().count() <= 60 && !text.starts_with('#')).then(|| text.clone());
             }
             What::Blank | What::Unknown(_) => {}

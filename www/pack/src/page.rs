@@ -9,6 +9,7 @@ use base64::Engine;
 use base64::engine::general_purpose::STANDARD;
 use sha2::{Digest, Sha256};
 use std::fs;
+use std::num::NonZeroU64;
 use std::path::{Path, PathBuf};
 
 /// The packed page.
@@ -24,8 +25,29 @@ pub const WASM: &str = "core.wasm";
 /// The site table of the unpacked page, and the name of its data block in the packed one.
 pub const SITES: &str = "sites.data";
 
+/// The site table column by column, which packs a fifth smaller than line by line: each column on a line, its fields
+/// separated by tabs. Remarks are left out; the page puts the lines together again.
+///
+/// # Errors
+/// A table that cannot be read, or whose lines differ in their number of fields.
+pub fn site_columns(root: &Path) -> Result<Option<Vec<u8>>, String> {
+    let Some(table) = site_table(root)? else { return Ok(None) };
+    let text = String::from_utf8(table).map_err(|e| format!("the site table: {e}"))?;
+    let rows: Vec<Vec<&str>> = text
+        .lines()
+        .filter(|line| !line.is_empty() && !line.starts_with('#'))
+        .map(|line| line.split('\t').collect())
+        .collect();
+    let count = rows.first().map_or(0, Vec::len);
+    if rows.iter().any(|row| row.len() != count) {
+        return Err("the site table: its lines differ in their number of fields".into());
+    }
+    let column = |at: usize| rows.iter().map(|row| row[at]).collect::<Vec<_>>().join("\t");
+    Ok(Some((0..count).map(column).collect::<Vec<_>>().join("\n").into_bytes()))
+}
+
 /// The site table, when the project has one.
-pub fn site_table(root: &Path) -> Result<Option<Vec<u8>>, String> {
+fn site_table(root: &Path) -> Result<Option<Vec<u8>>, String> {
     let folder = root.join("src/body");
     let mut found: Vec<PathBuf> = fs::read_dir(&folder)
         .map_err(|e| format!("{}: {e}", folder.display()))?
@@ -45,9 +67,9 @@ pub fn site_table(root: &Path) -> Result<Option<Vec<u8>>, String> {
 pub fn pack(root: &Path, build: &Build) -> Result<Packed, String> {
     let www = root.join("www");
     let read = |name: &str| fs::read_to_string(www.join(name)).map_err(|e| format!("www/{name}: {e}"));
-    let mut blocks = data_block(WASM, &build.wasm);
-    if let Some(table) = site_table(root)? {
-        blocks.push_str(&data_block(SITES, &table));
+    let mut blocks = data_block(WASM, &build.wasm)?;
+    if let Some(table) = site_columns(root)? {
+        blocks.push_str(&data_block(SITES, &table)?);
     }
     let html =
         assemble(&read("index.html")?, |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) }, &blocks)?;
@@ -58,9 +80,15 @@ pub fn pack(root: &Path, build: &Build) -> Result<Packed, String> {
 }
 
 /// An inert block that carries bytes: deflate without a header, base64.
-fn data_block(name: &str, bytes: &[u8]) -> String {
-    let packed = miniz_oxide::deflate::compress_to_vec(bytes, 10);
-    format!("<script type=\"application/octet-stream\" data-block=\"{name}\">{}</script>\n", STANDARD.encode(packed))
+fn data_block(name: &str, bytes: &[u8]) -> Result<String, String> {
+    let mut packed = Vec::new();
+    // One round: more gain a thousandth.
+    let options = zopfli::Options { iteration_count: NonZeroU64::MIN, ..zopfli::Options::default() };
+    zopfli::compress(options, zopfli::Format::Deflate, bytes, &mut packed).map_err(|e| format!("{name}: {e}"))?;
+    Ok(format!(
+        "<script type=\"application/octet-stream\" data-block=\"{name}\">{}</script>\n",
+        STANDARD.encode(packed)
+    ))
 }
 
 const STYLE_OPEN: &str = "<link rel=\"stylesheet\" href=\"";
@@ -192,7 +220,7 @@ mod tests {
     fn a_data_block_inflates_to_the_same_bytes() {
         use base64::Engine;
         let bytes: Vec<u8> = (0..5000u32).map(|i| (i * i % 251) as u8).collect();
-        let block = data_block("x", &bytes);
+        let block = data_block("x", &bytes).unwrap();
         let text = block.split('>').nth(1).unwrap().split('<').next().unwrap();
         let packed = base64::engine::general_purpose::STANDARD.decode(text).unwrap();
         assert_eq!(miniz_oxide::inflate::decompress_to_vec(&packed).unwrap(), bytes);
