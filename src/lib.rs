@@ -11,6 +11,7 @@
 //! | [`body`] | where are the Earth, the Moon and the observer? |
 //! | [`orbit`] | what do published elements say, and where does the comet move? |
 //! | [`sky`] | what does the observer see: place, angles, directions, motion? |
+//! | [`tail`] | where does what leaves the nucleus lie on the sky? |
 //! | [`plan`] | what did a person set up? |
 //! | [`say`] | what do the numbers mean, in words? |
 //! | [`scene`] | what is drawn, fully resolved? |
@@ -25,6 +26,7 @@ pub mod frame;
 pub mod body;
 pub mod orbit;
 pub mod sky;
+pub mod tail;
 pub mod plan;
 pub mod say;
 pub mod scene;

@@ -365,12 +365,7 @@ fn ten_million_bytes_are_read_or_refused_without_a_heap_of_errors() {
 #[test]
 fn plans_and_lists_of_them_are_read_as_pastes() {
     let comet = comet(PAIRS);
-    let plan = Plan {
-        comet: comet.clone(),
-        observer: tailvane::body::observer::Observer::Geocentre,
-        sites: vec![],
-        time: None,
-    };
+    let plan = Plan::from(comet.clone());
     let (one, bare) = (plan.print(), serde_json::to_string(&comet).unwrap());
     for (text, count) in [
         (one.clone(), 1),

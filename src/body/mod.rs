@@ -19,6 +19,9 @@ use nalgebra::Vector3;
 /// Kilometres in the astronomical unit (IAU 2012 resolution B2, exact).
 pub const AU_KM: f64 = 149_597_870.7;
 
+/// Kilometres per second in one au per day.
+pub const KM_S_PER_AU_D: f64 = AU_KM / 86_400.0;
+
 /// Place and velocity, heliocentric (unless a function says otherwise), ICRF/J2000 equatorial, au and au/day.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct State {

@@ -11,6 +11,7 @@
 //! | `observer` | a [`Site`]: `name`, `longitude_deg`, `latitude_deg`, `height_m` | yes: the geocentre |
 //! | `sites` | more sites | yes |
 //! | `time` | a date in any form of [`Stamp`] | yes |
+//! | `tails` | [`Tails`]: winds, dust, activity, ejection | yes, and any key in it |
 
 mod json;
 pub mod paste;
@@ -18,6 +19,7 @@ pub mod paste;
 use crate::body::observer::{Observer, Site};
 use crate::error::{Error, Kind, Place};
 use crate::orbit::elements::Comet;
+use crate::tail::law::Tails;
 use crate::time::Stamp;
 use serde::{Deserialize, Serialize};
 
@@ -32,6 +34,8 @@ pub struct Plan {
     /// More observers the person keeps.
     pub sites: Vec<Site>,
     pub time: Option<Stamp>,
+    /// Which tails are drawn, and what the dust is assumed to be.
+    pub tails: Tails,
 }
 
 /// The plan as its JSON lies; later sections become fields here and in [`Plan`].
@@ -46,6 +50,8 @@ struct Text {
     sites: Vec<Site>,
     #[serde(default, skip_serializing_if = "Option::is_none")]
     time: Option<Stamp>,
+    #[serde(default, skip_serializing_if = "Tails::is_default")]
+    tails: Tails,
 }
 
 /// The version alone, so that a newer plan is refused as newer and not for its new keys.
@@ -58,7 +64,7 @@ struct Header {
 impl From<Comet> for Plan {
     /// A comet seen from the geocentre, without a time.
     fn from(comet: Comet) -> Self {
-        Plan { comet, observer: Observer::Geocentre, sites: Vec::new(), time: None }
+        Plan { comet, observer: Observer::Geocentre, sites: Vec::new(), time: None, tails: Tails::default() }
     }
 }
 
@@ -82,6 +88,7 @@ impl Plan {
             observer: read.observer.map_or(Observer::Geocentre, Observer::Site),
             sites: read.sites,
             time: read.time,
+            tails: read.tails,
         };
         plan.validate().map_err(|error| json::located(text, "", error))?;
         Ok(plan)
@@ -110,6 +117,7 @@ impl Plan {
             },
             sites: self.sites.clone(),
             time: self.time.clone(),
+            tails: self.tails.clone(),
         }
     }
 
@@ -123,7 +131,7 @@ impl Plan {
         for (index, site) in self.sites.iter().enumerate() {
             site.validate(&format!("sites[{index}]"))?;
         }
-        Ok(())
+        self.tails.validate()
     }
 }
 

@@ -3,10 +3,8 @@
 //! One list serves the command line's columns and the page's table, so that the two cannot differ.
 
 use super::{Side, SiteSky, Sky};
+use crate::body::KM_S_PER_AU_D;
 use std::f64::consts::TAU;
-
-/// Kilometres per second in one au per day.
-const KM_S_PER_AU_D: f64 = 149_597_870.7 / 86_400.0;
 
 /// Minutes in a day.
 const MINUTES_PER_DAY: f64 = 1440.0;

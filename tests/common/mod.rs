@@ -100,6 +100,6 @@ prop_compose! {
 
 prop_compose! {
     pub fn plans()(comet in comets(), observer in prop::option::of(sites()), sites in prop::collection::vec(sites(), 0..3), time in prop::option::of(stamps())) -> Plan {
-        Plan { comet, observer: observer.map_or(Observer::Geocentre, Observer::Site), sites, time }
+        Plan { observer: observer.map_or(Observer::Geocentre, Observer::Site), sites, time, ..Plan::from(comet) }
     }
 }

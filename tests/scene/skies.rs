@@ -32,16 +32,16 @@ pub fn plan() -> Plan {
         epoch: None,
         nongravitational: None,
     };
+    let comet = Comet { name: "Invented comet Alder".into(), elements, brightness: Vec::new() };
     Plan {
-        comet: Comet { name: "Invented comet Alder".into(), elements, brightness: Vec::new() },
         observer: Observer::Site(Site {
             name: "Invented hill".into(),
             longitude_deg: 23.0,
             latitude_deg: 37.0,
             height_m: 640.0,
         }),
-        sites: Vec::new(),
         time: Some("2031-03-28T04:40:00Z".parse().expect("a date")),
+        ..Plan::from(comet)
     }
 }
 

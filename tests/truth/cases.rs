@@ -59,7 +59,7 @@ pub fn elements(row: &Row) -> Elements {
 
 pub fn plan(elements: Elements, observer: Observer) -> Plan {
     let comet = Comet { name: "A row of truth".into(), elements, brightness: Vec::new() };
-    Plan { comet, observer, sites: Vec::new(), time: None }
+    Plan { observer, ..Plan::from(comet) }
 }
 
 impl Case {
