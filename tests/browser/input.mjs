@@ -36,6 +36,18 @@ const BAD = [
   ["an unknown plan key", '{"tailvane_plan": 1, "komet": {}}', /komet/],
 ];
 
+/** Pastes a long text, made in the page from a piece, through a true paste event. */
+const pasteLong = (page, piece, times) =>
+  page.evaluate(
+    (text, count) => {
+      const data = new DataTransfer();
+      data.setData("text/plain", text.repeat(count));
+      document.querySelector('[data-input="elements"]').dispatchEvent(new ClipboardEvent("paste", { clipboardData: data, cancelable: true }));
+    },
+    piece,
+    times
+  );
+
 export default (context) =>
   describe("input", () => {
     test("name = value lines, the circular block and a plan are read when pasted", async () => {
@@ -70,24 +82,28 @@ export default (context) =>
         // A text box keeps everything but the zero bytes and line ends that no text box holds.
         assert.equal((await box(page)).replace(/\u0000/g, ""), text.replace(/\u0000/g, ""), what);
       }
+      await paste(page, LINES.replace("58.2", "190"));
+      const marked = await page.$eval('[data-input="elements"]', (element) => element.value.slice(element.selectionStart, element.selectionEnd));
+      assert.equal(marked, "i = 190", "the faulty line is marked");
       await paste(page, LINES);
       assert.equal(await error(page), "");
       assert.deepEqual(noise, []);
       await page.close();
     });
 
-    test("ten megabytes of text are answered and lose nothing", async () => {
+    test("ten megabytes of text are answered and lose nothing, good or bad", async () => {
       const { page, noise } = await open(context.browser, PAGE_ADDRESS);
       const name = await comet(page);
-      await page.evaluate(() => {
-        const element = document.querySelector('[data-input="elements"]');
-        element.value = "no elements in this line of text at all ......................\n".repeat(160000);
-        element.dispatchEvent(new Event("paste"));
-      });
+      await pasteLong(page, "no elements in this line of text at all ......................\n", 160000);
       await page.waitForFunction(() => !document.querySelector('[data-say="error"]').hidden, { timeout: 30000 });
       assert.match(await error(page), /line 1/);
       assert.ok((await error(page)).length < 1000);
       assert.equal(await comet(page), name);
+      assert.match(await textOf(page, '[data-show="found"]'), /kept.*10[0-9]{3} kB/);
+      await pasteLong(page, LINES + "\n\n", 90000);
+      await page.waitForFunction((before) => document.querySelector('[data-show="comet"]').textContent !== before, { timeout: 30000 }, name);
+      assert.equal(await error(page), "");
+      assert.match(await textOf(page, '[data-show="found"]'), /^90000 comets were read/);
       assert.deepEqual(noise, []);
       await page.close();
     });
