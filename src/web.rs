@@ -230,8 +230,10 @@ impl Desk {
 
     /// Everything the page shows beside the drawings.
     pub fn reading(&mut self) -> JsValue {
-        let visibility =
-            self.engine.dark_windows(self.seen.sky.time).map(|windows| say::when_up(&windows)).unwrap_or_default();
+        let visibility = match self.engine.dark_windows(self.seen.sky.time) {
+            Some(windows) => say::when_up(&windows),
+            None => "Give a site under Observer to see when the comet is up in a dark sky.".to_owned(),
+        };
         to_js(&answer::reading(&self.engine, &self.time, &self.seen, visibility))
     }
 

@@ -186,6 +186,66 @@ export default (context) =>
       await page.close();
     });
 
+    test("an observatory is found by its code and by its name", async () => {
+      const { page, noise } = await open(context.browser, PAGE_ADDRESS);
+      await page.click('[data-bench="observer"] > summary');
+      for (const words of ["568", "mauna kea"]) {
+        await page.$eval('[data-input="code-search"]', (field) => (field.value = ""));
+        await page.type('[data-input="code-search"]', words);
+        await page.waitForSelector('[data-list="codes"] button');
+        const first = await page.$eval('[data-list="codes"] button', (button) => button.textContent);
+        assert.match(first, /^568 .*Mauna ?kea/i);
+        await page.click('[data-list="codes"] button');
+        await settled(page);
+        const [row] = commandLineRows(await planOf(page));
+        assert.equal((await numbersOf(page)).altitude_deg, row.altitude_deg);
+      }
+      // 155.47 degrees west, 19.83 north: a published place of the mountain, to a tenth of a degree.
+      const { observer } = JSON.parse(await planOf(page));
+      assert.ok(Math.abs(((observer.longitude_deg + 360) % 360) - 204.53) < 0.1 && Math.abs(observer.latitude_deg - 19.83) < 0.1);
+      assert.deepEqual(noise, []);
+      await page.close();
+    });
+
+    test("the saved plan is the plan of the address, and the saved drawing is SVG without scripts or addresses", async () => {
+      const { page } = await open(context.browser, PAGE_ADDRESS);
+      await page.evaluate(() => {
+        window.saved = [];
+        URL.createObjectURL = (blob) => {
+          window.saved.push(blob);
+          return "#";
+        };
+        // Nothing is to land in anyone's download folder.
+        HTMLAnchorElement.prototype.click = () => {};
+      });
+      await page.click('[data-bench="plan"] > summary');
+      await page.click('[data-act="save-plan"]');
+      await page.click('[data-act="save-svg"]');
+      const [plan, svg] = await page.evaluate(() => Promise.all(window.saved.map((blob) => blob.text())));
+      assert.deepEqual(JSON.parse(plan), JSON.parse(await planOf(page)));
+      assert.match(svg, /^(<\?xml[^>]*>\s*)?<svg /);
+      assert.doesNotMatch(svg.replaceAll("http://www.w3.org/2000/svg", ""), /<script|<style|<foreignObject|https?:/);
+      await page.close();
+    });
+
+    test("a core that fails is replaced, and the page goes on from the last good plan", async () => {
+      const { page } = await open(context.browser, PAGE_ADDRESS);
+      await rested(page);
+      const name = await comet(page);
+      await page.evaluate(() =>
+        Tailvane.desk.change(() => {
+          throw new WebAssembly.RuntimeError("unreachable");
+        })
+      );
+      await settled(page);
+      assert.match(await error(page), /started anew/);
+      assert.equal(await comet(page), name);
+      await paste(page, LINES);
+      assert.equal(await comet(page), "Invented comet Elm");
+      assert.equal(await error(page), "");
+      await page.close();
+    });
+
     test("a bad plan in the address is said, and the invented comet is shown", async () => {
       for (const hash of ["#plan=%7Bbroken", "#plan=%E0%A4%A", addressOf("", '{"tailvane_plan":1,"comet":{"name":"x"}}')]) {
         const { page } = await open(context.browser, PAGE_ADDRESS + hash);
