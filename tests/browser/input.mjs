@@ -42,7 +42,9 @@ const pasteLong = (page, piece, times) =>
     (text, count) => {
       const data = new DataTransfer();
       data.setData("text/plain", text.repeat(count));
-      document.querySelector('[data-input="elements"]').dispatchEvent(new ClipboardEvent("paste", { clipboardData: data, cancelable: true }));
+      // Chromium takes the transfer, Firefox the text.
+      const init = { clipboardData: data, dataType: "text/plain", data: text.repeat(count), cancelable: true };
+      document.querySelector('[data-input="elements"]').dispatchEvent(new ClipboardEvent("paste", init));
     },
     piece,
     times
