@@ -320,7 +320,7 @@ impl Desk {
     fn take_comet(&mut self, comet: Comet, now_ms: f64) -> Result<JsValue, JsValue> {
         let perihelion = comet.elements.perihelion_time.instant();
         // 10957.5 days from the Unix epoch to 2000-01-01 12:00.
-        let now = Instant::from_ut1_days((now_ms / 86_400_000.0).max(-3e6).min(3e6) - 10_957.5);
+        let now = Instant::from_ut1_days((now_ms / 86_400_000.0).clamp(-3e6, 3e6) - 10_957.5);
         let away = |time: Instant| (time.tdb_days() - perihelion.tdb_days()).abs();
         let time = if away(self.seen.sky.time) <= NEAR_PERIHELION_DAYS {
             self.time.clone()
