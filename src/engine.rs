@@ -19,6 +19,7 @@ use crate::sky::avoidance;
 use crate::sky::dark::{self, Window};
 use crate::sky::trail::Trail;
 use crate::sky::viewpoint::{Ground, Viewpoint};
+use crate::tail::grain::Vista;
 use crate::time::Instant;
 
 /// Two-body motion is doubted this many days from the elements' epoch.
@@ -91,6 +92,11 @@ impl Engine {
         cautions.extend(avoidance::cautions(&sky, |time| self.sun_altitude_deg(site.as_ref()?, time)));
         cautions.sort_by_key(|caution| std::cmp::Reverse(caution.weight()));
         Ok(View { sky, cautions })
+    }
+
+    /// The plan's comet as a sky of it shows it, from which ions and dust are computed.
+    pub fn vista(&self, sky: &Sky) -> Vista<'_> {
+        Vista::of(&self.orbit, sky)
     }
 
     /// When the comet is up in a dark sky within half a day of `time`; None for the geocentre.
