@@ -10,3 +10,4 @@
 pub mod law;
 pub mod grain;
 pub mod weight;
+pub mod cloud;
