@@ -4,6 +4,8 @@
 //! level whose cells are as wide as the points are sparse; at the end each level is spread smoothly onto the next
 //! finer one (weights 3/4 and 1/4, in the limit a quadratic B-spline). The sum over a grid is the weight it was given.
 
+use wide::f32x8;
+
 /// Cells around the picture that catch what belongs partly to its edge.
 pub const MARGIN: usize = 2;
 
@@ -41,30 +43,34 @@ impl Grid {
         &self.cells[from..from + self.width]
     }
 
-    /// Adds weights at points, in cells: 0 is the middle of the first cell. What falls outside is left out.
+    /// Adds weights at points, in cells: 0 is the middle of the first cell. What falls outside, or is no number, is
+    /// left out.
     #[inline(always)]
-    pub fn add(&mut self, x: [f32; 8], y: [f32; 8], weight: [f32; 8]) {
+    pub fn add(&mut self, x: f32x8, y: f32x8, weight: f32x8) {
         let stride = self.stride();
-        let margin = MARGIN as f32;
-        let right = (self.width + 2 * MARGIN - 1) as f32;
-        let low = (self.height + 2 * MARGIN - 1) as f32;
+        let margin = f32x8::splat(MARGIN as f32);
+        let (x, y) = (x + margin, y + margin);
+        let right = f32x8::splat((stride - 1) as f32);
+        let low = f32x8::splat((self.height + 2 * MARGIN - 1) as f32);
+        let inside = x.simd_ge(f32x8::ZERO) & x.simd_lt(right) & y.simd_ge(f32x8::ZERO) & y.simd_lt(low);
+        // What is outside adds nothing to the first cell.
+        let (x, y, weight) = (x & inside, y & inside, weight & inside);
+        let (column, line) = (x.fast_trunc_int(), y.fast_trunc_int());
+        let across = x - f32x8::from_i32x8(column);
+        let down = y - f32x8::from_i32x8(line);
+        let lower = weight * down;
+        let upper = weight - lower;
+        let (lower_right, upper_right) = (lower * across, upper * across);
+        let (lower_left, upper_left) = ((lower - lower_right).to_array(), (upper - upper_right).to_array());
+        let (lower_right, upper_right) = (lower_right.to_array(), upper_right.to_array());
+        let (column, line) = (column.to_array(), line.to_array());
         for k in 0..8 {
-            let (x, y) = (x[k] + margin, y[k] + margin);
-            // Also false where a coordinate is not a number.
-            if x >= 0.0 && x < right && y >= 0.0 && y < low {
-                let (column, line) = (x as u32, y as u32);
-                let (across, down) = (x - column as f32, y - line as f32);
-                let lower = weight[k] * down;
-                let upper = weight[k] - lower;
-                let at = line as usize * stride + column as usize;
-                if let Some(pair) = self.cells.get_mut(at..at + 2) {
-                    pair[0] += upper - upper * across;
-                    pair[1] += upper * across;
-                }
-                if let Some(pair) = self.cells.get_mut(at + stride..at + stride + 2) {
-                    pair[0] += lower - lower * across;
-                    pair[1] += lower * across;
-                }
+            let at = line[k] as usize * stride + column[k] as usize;
+            if let Some(four) = self.cells.get_mut(at..at + stride + 2) {
+                four[0] += upper_left[k];
+                four[1] += upper_right[k];
+                four[stride] += lower_left[k];
+                four[stride + 1] += lower_right[k];
             }
         }
     }

@@ -117,7 +117,8 @@ impl Orbit {
 
     /// The comet where its universal anomaly, whole revolutions included, has that value, and days from perihelion.
     pub fn at_anomaly(&self, whole: f64) -> (State, f64) {
-        let turn = if self.start.binding > 0.0 { std::f64::consts::TAU / self.start.binding.sqrt() } else { f64::INFINITY };
+        let turn =
+            if self.start.binding > 0.0 { std::f64::consts::TAU / self.start.binding.sqrt() } else { f64::INFINITY };
         let revolutions = (whole / turn).round();
         let s = if revolutions == 0.0 { whole } else { whole - revolutions * turn };
         let g = self.start.universal(s);

@@ -16,15 +16,16 @@
 mod cell;
 pub mod patch;
 mod picture;
+mod sample;
 
 pub use picture::{Picture, Stretch};
 
 use crate::error::Error;
 use crate::tail::grain::Vista;
 use crate::tail::weight::Weights;
-use cell::Sampler;
 use nalgebra::Matrix3;
 use patch::{Fitter, Patch, Subject};
+use sample::Sampler;
 use tailvane_lanes::row::{FUNCTIONS, S_TERMS, T_TERMS};
 
 /// The picture's frame: how a gnomonic offset from the nucleus (xi east, eta north, tangent values) falls on it.
@@ -83,7 +84,13 @@ impl Cloud {
     ///
     /// # Errors
     /// The laws release nothing in the chosen ages.
-    pub fn render(&mut self, vista: &Vista, weights: &Weights, raster: &Raster, quality: Quality) -> Result<&Picture, Error> {
+    pub fn render(
+        &mut self,
+        vista: &Vista,
+        weights: &Weights,
+        raster: &Raster,
+        quality: Quality,
+    ) -> Result<&Picture, Error> {
         let spans = weights.release_spans(vista)?;
         let raster = raster.coarser(quality.cell_px());
         let subject = Subject { vista, weights, raster: &raster };

@@ -15,7 +15,7 @@ use crate::tail::grain::Vista;
 use crate::tail::weight::Weights;
 use nalgebra::{Matrix3, Vector3};
 use std::f64::consts::PI;
-use tailvane_lanes::row::{FUNCTIONS, ROW, Row, S_TERMS, T_TERMS};
+use tailvane_lanes::row::{self, FUNCTIONS, ROW, Row, S_TERMS, T_TERMS};
 
 /// Error of a place that is let stand, pixels, and of the spread by ejection.
 const PLACE_TOLERANCE_PX: f64 = 0.1;
@@ -41,6 +41,27 @@ pub struct Patch {
     pub light: [f32; T_TERMS],
     /// All that it releases times all its light.
     pub whole: f64,
+}
+
+impl Patch {
+    /// Release per unit of anomaly, >= 0.
+    pub fn release_at(&self, s: f32) -> f32 {
+        let terms = row::chebyshev(s);
+        self.release.iter().zip(terms).map(|(c, term)| c * term).sum::<f32>().max(0.0)
+    }
+
+    /// What leaves over a part of it: the release integrated along anomaly, by Simpson's rule.
+    pub fn released(&self, [middle, half]: [f32; 2]) -> f64 {
+        let at = |a: f32| f64::from(self.release_at(middle + a * half));
+        self.anomaly[1] * f64::from(half) * (at(-1.0) + 4.0 * at(0.0) + at(1.0)) / 3.0
+    }
+
+    /// Share of the light of the betas in a part of it.
+    pub fn lit(&self, weights: &Weights, [middle, half]: [f32; 2]) -> f64 {
+        let root = |b: f32| self.root_beta[0] + self.root_beta[1] * f64::from(middle + b * half);
+        let [low, high] = [root(-1.0), root(1.0)];
+        weights.light_between(low * low, high * high)
+    }
 }
 
 /// What the patches cost and left.
@@ -139,8 +160,7 @@ impl Fitter {
                 let speed = speed_by_beta[j] * slowing;
                 let mut thrown = start;
                 thrown.velocity_au_d += out * (mean * speed);
-                let (end, response) =
-                    propagate_with_response(SUN_GM_AU3_D2 * (1.0 - u * u), &thrown, seen_days - days);
+                let (end, response) = propagate_with_response(SUN_GM_AU3_D2 * (1.0 - u * u), &thrown, seen_days - days);
                 let place: Vector3<f64> = camera.turn * (end.position_au - vista.nucleus.position_au);
                 let slopes = camera.turn * response.position * axes * speed;
                 values[0][k][j] = place.x;
@@ -214,7 +234,8 @@ impl Fitter {
             let slopes = last[3..9].iter().sum::<f64>() + reach * last[9..].iter().sum::<f64>();
             place.max(factor * slopes * scale / SPREAD_TOLERANCE_PX)
         };
-        let rate = |terms: &[f64]| last(terms) / terms.iter().fold(0.0_f64, |sum, term| sum.max(term.abs())) / RATE_TOLERANCE;
+        let rate =
+            |terms: &[f64]| last(terms) / terms.iter().fold(0.0_f64, |sum, term| sum.max(term.abs())) / RATE_TOLERANCE;
         let s_excess = excess(&s_last).max(rate(&release));
         let t_excess = excess(&t_last).max(rate(&light_terms));
         let verdict = if s_excess <= 1.0 && t_excess <= 1.0 {
@@ -276,7 +297,11 @@ fn first_rectangles(subject: &Subject, spans: &[[f64; 2]]) -> Vec<Rectangle> {
         ages.sort_by(f64::total_cmp);
         let edges: Vec<f64> = ages.into_iter().map(anomaly).collect();
         for pair in edges.windows(2) {
-            found.push(Rectangle { anomaly: middle_and_half(pair[1], pair[0]), root_beta: middle_and_half(roots[0], roots[1]), halvings: 0 });
+            found.push(Rectangle {
+                anomaly: middle_and_half(pair[1], pair[0]),
+                root_beta: middle_and_half(roots[0], roots[1]),
+                halvings: 0,
+            });
         }
     }
     found

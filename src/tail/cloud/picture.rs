@@ -15,7 +15,6 @@ pub struct Picture {
     whole: f64,
     effort: Effort,
     spare: Vec<f32>,
-    pub(super) stats: (usize, usize),
 }
 
 /// How density turns into brightness.
@@ -72,7 +71,6 @@ impl Picture {
         self.whole
     }
 
-    pub fn cells(&self) -> (usize, usize) { self.stats }
     pub fn effort(&self) -> Effort {
         self.effort
     }
