@@ -6,5 +6,6 @@
 //! and grids, no comets: `tail::kernel` and `tail::cloud` of the main crate give the numbers their meaning.
 #![forbid(unsafe_code)]
 
-pub mod row;
 pub mod grid;
+pub mod row;
+pub mod tone;

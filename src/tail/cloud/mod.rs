@@ -3,7 +3,7 @@
 //! ```text
 //! let weights = Weights::of(&plan.tails);              // once for each change of the laws
 //! let mut cloud = Cloud::new();                        // holds the buffers
-//! let picture = cloud.render(&vista, &weights, &raster, Quality::Dragging)?;
+//! let picture = cloud.render(&vista, &weights, &raster, Quality::DRAGGING)?;
 //! picture.tone(&stops, Tone { .. }, &mut rgba);
 //! ```
 //!
@@ -14,11 +14,12 @@
 //! Surface density of cross section only: illumination and phase at the grain's own place are left out.
 
 mod cell;
+mod isophote;
 pub mod patch;
 mod picture;
 mod sample;
 
-pub use picture::{Picture, Stretch};
+pub use picture::{Picture, Stretch, Tone};
 
 use crate::error::Error;
 use crate::tail::grain::Vista;
@@ -42,28 +43,18 @@ pub struct Raster {
 
 /// How fine a picture is made.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum Quality {
-    /// Cells of two by two pixels, 200,000 samples.
-    Dragging,
-    /// Every pixel, 1,000,000 samples.
-    Still,
+pub struct Quality {
+    /// Samples in the picture, about.
+    pub samples: usize,
+    /// Pixels along the side of a cell of its grid.
+    pub cell_px: usize,
 }
 
 impl Quality {
-    fn samples(self) -> usize {
-        match self {
-            Quality::Dragging => 200_000,
-            Quality::Still => 1_000_000,
-        }
-    }
-
-    /// Pixels along the side of a cell of the picture.
-    fn cell_px(self) -> usize {
-        match self {
-            Quality::Dragging => 2,
-            Quality::Still => 1,
-        }
-    }
+    /// While something is dragged.
+    pub const DRAGGING: Quality = Quality { samples: 200_000, cell_px: 2 };
+    /// When all is still.
+    pub const STILL: Quality = Quality { samples: 1_000_000, cell_px: 1 };
 }
 
 /// Makes pictures; holds what one picture can hand on to the next.
@@ -92,11 +83,11 @@ impl Cloud {
         quality: Quality,
     ) -> Result<&Picture, Error> {
         let spans = weights.release_spans(vista)?;
-        let raster = raster.coarser(quality.cell_px());
+        let raster = raster.coarser(quality.cell_px);
         let subject = Subject { vista, weights, raster: &raster };
         let (whole, effort) = self.fitter.cover(&subject, &spans, &mut self.patches);
-        self.picture.begin(raster.width, raster.height, quality.cell_px(), whole, effort);
-        self.sampler.fill(&subject, &self.patches, quality.samples(), &mut self.picture);
+        self.picture.begin(raster.width, raster.height, quality.cell_px, whole, effort);
+        self.sampler.fill(&subject, &self.patches, quality.samples, &mut self.picture);
         self.picture.finish();
         Ok(&self.picture)
     }

@@ -1,7 +1,7 @@
 //! How many samples does a cell get, where, and into which level of the pyramid?
 //!
-//! By the square root of its weight times the picture it covers: faint wide parts need more than their weight says,
-//! bright ones less. They stand in rows of equal anomaly, evenly along root beta, each row shifted against the last by
+//! By a power of its weight and one of the picture it covers: faint wide parts need more than their weight says, bright
+//! ones less. They stand in rows of equal anomaly, evenly along root beta, each row shifted against the last by
 //! the golden section; the ejection runs through a three-dimensional Kronecker sequence. They go into the finest level
 //! at which they lie close enough, or into a coarser one whose cells are still small against the smear by ejection, so
 //! that what is smooth on the sky is smooth in the picture.
@@ -15,11 +15,14 @@ use tailvane_lanes::row::{self, Ejections, LANES, Samples};
 /// Fewest samples of a cell in the picture.
 const FEWEST: f32 = 32.0;
 /// Samples that a cell of the grid shall get at least: of even rows, and of rows that ejection has mixed.
-const EVEN_ENOUGH: f32 = 1.5;
-const MIXED_ENOUGH: f32 = 12.0;
+const EVEN_ENOUGH: f32 = 3.0;
+const MIXED_ENOUGH: f32 = 40.0;
 /// Width of the grid's cells over the smear's standard deviation: where there are samples enough, and at most.
-const FINE_SHARE: f32 = 0.4;
-const COARSE_SHARE: f32 = 0.9;
+const FINE_SHARE: f32 = 0.45;
+const COARSE_SHARE: f32 = 1.5;
+/// Samples go as this power of the weight, and the rest to 1 of the area. These five were tuned on the eight scenes of
+/// benches/grains.rs for the least noise at both qualities.
+const WEIGHT_POWER: f64 = 0.6;
 /// Most a shortened polynomial may miss, in cells of the grid.
 const CUT_TOLERANCE: f32 = 0.05;
 /// Length of the table of ejections.
@@ -32,8 +35,6 @@ pub struct Sampler {
     law: Option<[f64; 2]>,
     ejections: Ejections,
     cells: Vec<Cell>,
-    /// Where in the table the next row goes on.
-    next: usize,
 }
 
 impl Sampler {
@@ -43,14 +44,13 @@ impl Sampler {
         cell::cut(subject, patches, &mut self.cells);
         let claim = |cell: &Cell| {
             let grain = (FINE_SHARE * cell.smear).max(1.0);
-            (cell.weight * f64::from((cell.smeared_area / (grain * grain)).max(1.0))).sqrt()
+            let covered = f64::from((cell.smeared_area / (grain * grain)).max(1.0));
+            covered * libm::pow(cell.weight / covered, WEIGHT_POWER)
         };
         let claims: f64 = self.cells.iter().map(claim).sum();
-        self.next = 0;
-        for at in 0..self.cells.len() {
-            let cell = self.cells[at];
-            let wanted = (samples as f64 * claim(&cell) / claims) as f32;
-            self.sample(subject, &patches[cell.patch], &cell, wanted, picture);
+        for cell in &self.cells {
+            let wanted = (samples as f64 * claim(cell) / claims) as f32;
+            self.sample(subject, &patches[cell.patch], cell, wanted, picture);
         }
     }
 
@@ -79,16 +79,14 @@ impl Sampler {
         self.law = Some(law);
     }
 
-    fn sample(&mut self, subject: &Subject, patch: &Patch, cell: &Cell, wanted: f32, picture: &mut Picture) {
+    fn sample(&self, subject: &Subject, patch: &Patch, cell: &Cell, wanted: f32, picture: &mut Picture) {
         let layout = Layout::of(subject, patch, cell, wanted);
         if subject.weights.laws().ejection_speed_km_s == 0.0 {
             let part = row::Cell::<6, 0>::of(&patch.map, cell.t);
             return self.add(&layout, patch, &part, picture);
         }
         let short = row::Cell::<4, 3>::of(&patch.map, cell.t);
-        let farthest = subject.raster.reach_px() as f32;
-        let miss = short.cut[0] + short.cut[1];
-        if miss * (1.0 + farthest * 0.0) <= CUT_TOLERANCE * layout.nearest_z {
+        if short.cut[0] + short.cut[1] <= CUT_TOLERANCE * layout.nearest_z {
             self.add(&layout, patch, &short, picture);
         } else {
             self.add(&layout, patch, &row::Cell::<6, 6>::of(&patch.map, cell.t), picture);
@@ -96,7 +94,7 @@ impl Sampler {
     }
 
     fn add<const P: usize, const J: usize>(
-        &mut self,
+        &self,
         layout: &Layout,
         patch: &Patch,
         part: &row::Cell<P, J>,
@@ -108,25 +106,27 @@ impl Sampler {
             // Even rows, each shifted by the golden section.
             let shift = (line as f32 + 0.5) * 0.618_034;
             let shift = shift - shift.floor();
+            // A hop of its own for each row, so that neighbouring rows do not share a pattern.
+            let mut next = (line * 20_251 + layout.columns * 77) % (TABLE - LANES);
             let mut done = 0;
             while done < layout.columns {
-                if self.next + LANES > TABLE {
-                    self.next = 0;
+                if next + LANES > TABLE {
+                    next = 0;
                 }
-                let count = (layout.columns - done).min((TABLE - self.next) / LANES * LANES);
+                let count = (layout.columns - done).min((TABLE - next) / LANES * LANES);
                 let samples = Samples {
                     first: (done as f32 + shift) * layout.step - 1.0,
                     step: layout.step,
                     count,
                     weight: patch.release_at(s) * layout.weight,
                     light: layout.light,
-                    ejection: self.next,
+                    ejection: next,
                     scale: layout.scale,
                     offset: layout.offset,
                     nearest: NEAREST_AU as f32,
                 };
                 row::add_strip(&part.strip_at(s), &samples, &self.ejections, grid);
-                self.next += count;
+                next += count;
                 done += count;
             }
         }
