@@ -19,6 +19,8 @@ use crate::sky::avoidance;
 use crate::sky::dark::{self, Window};
 use crate::sky::trail::Trail;
 use crate::sky::viewpoint::{Ground, Viewpoint};
+use crate::tail::grain::Vista;
+use crate::tail::perspective::{self, Perspective};
 use crate::time::Instant;
 
 /// Two-body motion is doubted this many days from the elements' epoch.
@@ -91,6 +93,11 @@ impl Engine {
         cautions.extend(avoidance::cautions(&sky, |time| self.sun_altitude_deg(site.as_ref()?, time)));
         cautions.sort_by_key(|caution| std::cmp::Reverse(caution.weight()));
         Ok(View { sky, cautions })
+    }
+
+    /// Which dust of the plan projects where in a sky of its comet.
+    pub fn perspective(&self, sky: &Sky) -> Perspective {
+        perspective::assess(&Vista::of(&self.orbit, sky), sky, &self.plan.tails)
     }
 
     /// When the comet is up in a dark sky within half a day of `time`; None for the geocentre.

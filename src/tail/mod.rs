@@ -7,5 +7,6 @@
 //! Conventions: beta is the ratio of radiation pressure to solar gravity; an age counts back from the observation
 //! time less the nucleus light time, and that one light time serves all grains.
 
-pub mod grain;
 pub mod law;
+pub mod grain;
+pub mod perspective;

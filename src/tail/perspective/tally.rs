@@ -1,0 +1,192 @@
+//! How is the light of many weighted grains spread over sides, distances, directions, sizes and ages?
+//!
+//! Grains come as places in the axes of [`super::sheet::Frame`]. Distances fall into rings, directions into sectors
+//! counted from the antisolar direction. Light is relative throughout.
+
+use std::f64::consts::PI;
+
+/// Sectors of the whole circle, 5 degrees each; the first is centred on the antisolar direction.
+pub const SECTORS: usize = 72;
+/// Fine rings: quarter octaves of the squared distance, from 2^-32 (3 arcsec) on. 46 octaves reach 2^14 (89.5 deg).
+const FINE_RINGS: usize = 184;
+const FIRST_OCTAVE: i64 = -32;
+/// Fine rings in one coarse ring: a factor of two in distance.
+const FINE_IN_COARSE: usize = 8;
+const COARSE_RINGS: usize = FINE_RINGS / FINE_IN_COARSE;
+/// A fan reaches as far as its light is at least this part of the brightest at the same distance.
+const FAN_FLOOR: f64 = 0.05;
+/// Rings with less than this part of all light do not widen the fan.
+const RING_FLOOR: f64 = 0.02;
+
+/// Where a grain falls.
+#[derive(Clone, Copy, Debug)]
+pub struct Fallen {
+    pub column: usize,
+    pub row: usize,
+    /// Relative light.
+    pub weight: f64,
+    /// Position angle less the antisolar one, (-pi, pi].
+    pub offset_rad: f64,
+    ring: usize,
+}
+
+impl Fallen {
+    /// None inside the coma: where the squared tangent of the distance is below `coma_squared`.
+    pub fn of(place: &[f64; 3], coma_squared: f64, column: usize, row: usize, weight: f64) -> Option<Self> {
+        let [along, away, aside] = *place;
+        let across = away * away + aside * aside;
+        // Beyond 89.5 degrees, or behind the observer, everything counts as the last ring.
+        let squared = if along > 0.0 { across / (along * along) } else { f64::INFINITY };
+        if squared < coma_squared {
+            return None;
+        }
+        let offset_rad = f64::from(libm::atan2f(aside as f32, away as f32));
+        Some(Fallen { column, row, weight, offset_rad, ring: ring(squared) })
+    }
+}
+
+/// The fine ring of a squared tangent of a distance: exponent and the first two bits behind the point.
+fn ring(squared: f64) -> usize {
+    let quarter = (squared.to_bits() >> 50) as i64 - (1023 << 2);
+    (quarter - FIRST_OCTAVE * 4).clamp(0, FINE_RINGS as i64 - 1) as usize
+}
+
+/// Distance at which a fine ring begins, radians.
+fn ring_begin_rad(ring: usize) -> f64 {
+    let quarter = ring as i64 + FIRST_OCTAVE * 4;
+    let squared = f64::from_bits(((quarter + (1023 << 2)) as u64) << 50);
+    libm::atan(squared.sqrt())
+}
+
+/// Sums over one class of grains.
+#[derive(Clone, Debug)]
+pub struct Tally {
+    pub light: f64,
+    cos_sum: f64,
+    sin_sum: f64,
+    least_offset_rad: f64,
+    greatest_offset_rad: f64,
+    rings: [f64; FINE_RINGS],
+    /// Coarse ring by sector.
+    polar: Vec<[f64; SECTORS]>,
+    columns: Vec<f64>,
+    rows: Vec<f64>,
+}
+
+impl Tally {
+    pub fn new(columns: usize, rows: usize) -> Self {
+        Tally {
+            light: 0.0,
+            cos_sum: 0.0,
+            sin_sum: 0.0,
+            least_offset_rad: f64::INFINITY,
+            greatest_offset_rad: f64::NEG_INFINITY,
+            rings: [0.0; FINE_RINGS],
+            polar: vec![[0.0; SECTORS]; COARSE_RINGS],
+            columns: vec![0.0; columns],
+            rows: vec![0.0; rows],
+        }
+    }
+
+    pub fn add(&mut self, grain: &Fallen, cos_offset: f64, sin_offset: f64) {
+        let Fallen { column, row, weight, offset_rad, ring } = *grain;
+        self.light += weight;
+        self.cos_sum += weight * cos_offset;
+        self.sin_sum += weight * sin_offset;
+        self.least_offset_rad = self.least_offset_rad.min(offset_rad);
+        self.greatest_offset_rad = self.greatest_offset_rad.max(offset_rad);
+        self.rings[ring] += weight;
+        let sector = (offset_rad * (SECTORS as f64 / (2.0 * PI)) + 0.5).floor() as i64;
+        self.polar[ring / FINE_IN_COARSE][sector.rem_euclid(SECTORS as i64) as usize] += weight;
+        self.columns[column] += weight;
+        self.rows[row] += weight;
+    }
+
+    pub fn columns(&self) -> usize {
+        self.columns.len()
+    }
+
+    /// Mean direction by light, from the antisolar one, (-pi, pi]; None without light or without a mean.
+    pub fn mean_offset_rad(&self) -> Option<f64> {
+        let length = (self.cos_sum * self.cos_sum + self.sin_sum * self.sin_sum).sqrt();
+        (length > 1e-9 * self.light && self.light > 0.0).then(|| libm::atan2(self.sin_sum, self.cos_sum))
+    }
+
+    /// Distance within which this part of the light lies, radians.
+    pub fn distance_rad(&self, part: f64) -> f64 {
+        let (ring, inside) = quantile(&self.rings, part);
+        let (begin, end) = (ring_begin_rad(ring), ring_begin_rad(ring + 1));
+        begin + (end - begin) * inside
+    }
+
+    /// Column and the part of it below which this part of the light lies.
+    pub fn column(&self, part: f64) -> (usize, f64) {
+        quantile(&self.columns, part)
+    }
+
+    /// Row likewise.
+    pub fn row(&self, part: f64) -> (usize, f64) {
+        quantile(&self.rows, part)
+    }
+
+    /// How bright the brightest 5-degree sector of this class is beside the brightest of `other` at the same distance:
+    /// mean over the octaves of distance, by the light of this class in each; each octave counts at most 10.
+    pub fn beside(&self, other: &Tally) -> f64 {
+        let peak = |polar: &[f64; SECTORS]| polar.iter().fold(0.0_f64, |most, light| most.max(*light));
+        let mut sum = 0.0;
+        for (own, theirs) in self.polar.iter().zip(&other.polar) {
+            let light: f64 = own.iter().sum();
+            if light > 0.0 {
+                sum += light * (peak(own) / peak(theirs).max(1e-300)).min(10.0);
+            }
+        }
+        if self.light > 0.0 { sum / self.light } else { 0.0 }
+    }
+
+    /// First and last direction of a fan that does not go round the back, from the antisolar direction: where its light
+    /// is at least 5 percent of the brightest at the same distance. None without light.
+    pub fn fan_rad(&self) -> Option<[f64; 2]> {
+        let mut fan: Option<[f64; 2]> = None;
+        for polar in &self.polar {
+            let light: f64 = polar.iter().sum();
+            if light <= RING_FLOOR * self.light {
+                continue;
+            }
+            let [first, last] = edges(polar);
+            fan = Some(fan.map_or([first, last], |[f, l]| [f.min(first), l.max(last)]));
+        }
+        // Sectors are coarse; no grain lies beyond these.
+        fan.map(|[f, l]| [f.max(self.least_offset_rad), l.min(self.greatest_offset_rad)])
+    }
+}
+
+/// Where the light of one ring rises above and falls below the floor, from the antisolar direction.
+fn edges(polar: &[f64; SECTORS]) -> [f64; 2] {
+    let floor = FAN_FLOOR * polar.iter().fold(0.0_f64, |most, light| most.max(*light));
+    let half = SECTORS as i64 / 2;
+    let at = |sector: i64| polar[sector.rem_euclid(SECTORS as i64) as usize];
+    let width = 2.0 * PI / SECTORS as f64;
+    // The sector before the first bright one, and where between their middles the floor is met.
+    let meet = |dim: i64, bright: i64| {
+        let (low, high) = (at(dim), at(bright));
+        let part = if high > low { (floor - low) / (high - low) } else { 1.0 };
+        (dim as f64 + (bright - dim) as f64 * part) * width
+    };
+    let bright = |sector: &i64| at(*sector) >= floor;
+    let first = (-half + 1..=half).find(bright).unwrap_or(0);
+    let last = (-half + 1..=half).rev().find(bright).unwrap_or(0);
+    [meet(first - 1, first), meet(last + 1, last)]
+}
+
+/// The bin in which the running sum passes this part of the whole, and how far inside it.
+fn quantile(bins: &[f64], part: f64) -> (usize, f64) {
+    let wanted = part * bins.iter().sum::<f64>();
+    let mut sum = 0.0;
+    for (index, light) in bins.iter().enumerate() {
+        if *light > 0.0 && sum + light >= wanted {
+            return (index, ((wanted - sum) / light).clamp(0.0, 1.0));
+        }
+        sum += light;
+    }
+    (bins.len() - 1, 1.0)
+}
