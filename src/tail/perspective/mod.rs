@@ -21,14 +21,15 @@
 pub mod sheet;
 pub mod tally;
 
-use crate::body::AU_KM;
+use crate::body::{AU_KM, KM_S_PER_AU_D};
 use crate::frame::turn;
+use crate::orbit::conic::SUN_GM_AU3_D2;
 use crate::sky::Sky;
 use crate::tail::grain::Vista;
 use crate::tail::law::Tails;
 use sheet::{Frame, Sheet};
 use std::f64::consts::{PI, TAU};
-use tally::{Fallen, Tally};
+use tally::{Fallen, Glow, Tally};
 
 /// Dust nearer than this to the nucleus on the sky, at its distance, is coma: km, and arcsec where that is more.
 pub const COMA_KM: f64 = 50_000.0;
@@ -40,6 +41,8 @@ const SUBCELLS_EJECTED: usize = 2;
 /// Ejection velocities for each sample, and sets of them that take turns.
 const THROWS: usize = 8;
 const THROW_SETS: usize = 64;
+/// The fastest of a set, in standard deviations of the speed.
+const FASTEST_DEVIATE: f64 = 1.534_121;
 
 /// How conspicuous the dust in the anti-tail sector is, by its surface brightness beside the tail's at the same distance
 /// from the nucleus (brightest 5 degrees of either). The limits are our choice.
@@ -94,6 +97,8 @@ pub struct Part {
 /// The dust of the plan, for one ejection law.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Dust {
+    /// Radius within which dust is coma and does not count.
+    pub coma_rad: f64,
     /// First and last position angle of the dust on the tail side, in the sense of growing position angle; None where
     /// there is none, or no antisolar direction.
     pub fan_rad: Option<[f64; 2]>,
@@ -102,8 +107,6 @@ pub struct Dust {
     /// Everything in the anti-tail sector.
     pub anti_tail: Option<Part>,
     pub grade: Grade,
-    /// Part of all light that lies inside the coma.
-    pub coma_share: f64,
 }
 
 /// On which side of the nucleus a grain lies.
@@ -127,6 +130,8 @@ pub struct Cell {
     /// Part of its light on the sunward side outside the coma, without and with ejection.
     pub sunward_at_rest: f64,
     pub sunward_ejected: f64,
+    /// Part of its light, with ejection, that lies outside the coma on sky bright enough to count.
+    pub seen: f64,
 }
 
 /// The (beta, age) plane in cells, row by row, youngest and smallest beta first.
@@ -164,8 +169,6 @@ pub struct Perspective {
     /// Position angle of the Sun's direction; None where comet, Sun and observer are in line.
     pub sunward_position_angle_rad: Option<f64>,
     pub anti_tail_half_width_rad: f64,
-    /// Radius within which dust is coma.
-    pub coma_rad: f64,
     /// Released with the nucleus velocity alone.
     pub at_rest: Dust,
     /// Released by the plan's ejection law.
@@ -180,22 +183,18 @@ pub fn assess(vista: &Vista, sky: &Sky, tails: &Tails) -> Perspective {
     let frame = frame(sky);
     let sheet = Sheet::of(vista, &frame, tails);
     let coma_rad = (COMA_KM / AU_KM / sky.observer_distance_au).max(COMA_ARCSEC / 3600.0 * PI / 180.0);
-    let rule = Rule::of(antisolar.is_some(), coma_rad, tails);
+    let rule = Rule::of(antisolar.is_some(), tails);
     let weights = Weights::of(vista, &sheet, tails);
 
-    let at_rest = Sums::at_rest(&sheet, &weights, &rule);
-    let ejected = if tails.ejection_speed_km_s > 0.0 {
-        Sums::ejected(&sheet, &weights, &rule, tails)
-    } else {
-        at_rest.clone()
-    };
+    let at_rest = Sums::of(&sheet, &weights, &rule, coma_rad, SUBCELLS_AT_REST, AtRest);
+    let round_rad = coma_rad.max(fountain_rad(&sheet, sky, tails));
+    let ejected = Sums::of(&sheet, &weights, &rule, round_rad, SUBCELLS_EJECTED, Thrown::of(&sheet, tails));
     let map = map(&sheet, &weights, &rule, &at_rest, &ejected);
     let at_rest = at_rest.dust(&sheet, antisolar);
     let ejected = ejected.dust(&sheet, antisolar);
     Perspective {
         sunward_position_angle_rad: antisolar.map(|angle| turn(angle + PI)),
         anti_tail_half_width_rad: tails.anti_tail_half_width_deg.to_radians(),
-        coma_rad,
         at_rest,
         ejected,
         verdict: verdict(antisolar.is_some(), weights.whole, &at_rest, &ejected),
@@ -219,28 +218,21 @@ fn verdict(has_side: bool, whole: f64, at_rest: &Dust, ejected: &Dust) -> Verdic
 fn frame(sky: &Sky) -> Frame {
     let axes = &sky.axes;
     let (sin, cos) = libm::sincos(sky.antisolar_position_angle_rad.unwrap_or(0.0));
-    Frame {
-        sight: axes.sight,
-        away: axes.east * sin + axes.north * cos,
-        aside: axes.east * cos - axes.north * sin,
-    }
+    Frame { sight: axes.sight, away: axes.east * sin + axes.north * cos, aside: axes.east * cos - axes.north * sin }
 }
 
 /// What counts as coma and as anti-tail.
 struct Rule {
     /// Whether a sunward side exists.
     has_side: bool,
-    /// Squared tangent of the coma's radius.
-    coma_squared: f64,
     /// Cosine of the half width of the anti-tail sector.
     sector_cos: f64,
 }
 
 impl Rule {
-    fn of(has_side: bool, coma_rad: f64, tails: &Tails) -> Self {
-        let coma = libm::tan(coma_rad);
+    fn of(has_side: bool, tails: &Tails) -> Self {
         let sector_cos = libm::cos(tails.anti_tail_half_width_deg.to_radians());
-        Rule { has_side, coma_squared: coma * coma, sector_cos }
+        Rule { has_side, sector_cos }
     }
 }
 
@@ -281,78 +273,60 @@ impl Weights {
 }
 
 /// Sums by side.
-#[derive(Clone)]
 struct Sums {
+    coma_rad: f64,
     coma: f64,
     tail: Tally,
     sunward: Tally,
     anti_tail: Tally,
-    /// Sunward light of each cell.
+    /// Light on the sunward side, and light that counts, of each cell.
     sunward_cells: Vec<f64>,
+    seen_cells: Vec<f64>,
 }
 
 impl Sums {
-    fn new(sheet: &Sheet) -> Self {
+    /// Sums what `lay` puts on the sky: it is given every sample and a way to add a place with its light.
+    fn of(sheet: &Sheet, weights: &Weights, rule: &Rule, coma_rad: f64, subcells: usize, lay: impl Lay) -> Self {
+        let coma_squared = libm::tan(coma_rad) * libm::tan(coma_rad);
+        let mut grains = Vec::with_capacity(weights.cells.len() * subcells * subcells * lay.throws());
+        let mut coma = 0.0;
+        for_each_sample(sheet, weights, subcells, |sample| {
+            lay.places(sample, |place, weight| {
+                match Fallen::of(place, coma_squared, sample.column, sample.row, weight) {
+                    Some(fallen) => grains.push(fallen),
+                    None => coma += weight,
+                }
+            });
+        });
         let (columns, rows) = (sheet.betas.len() - 1, sheet.ages_days.len() - 1);
         let tally = || Tally::new(columns, rows);
-        Sums {
-            coma: 0.0,
+        let mut sums = Sums {
+            coma_rad,
+            coma,
             tail: tally(),
             sunward: tally(),
             anti_tail: tally(),
             sunward_cells: vec![0.0; columns * rows],
-        }
-    }
-
-    fn at_rest(sheet: &Sheet, weights: &Weights, rule: &Rule) -> Self {
-        let mut sums = Sums::new(sheet);
-        for_each_sample(sheet, weights, SUBCELLS_AT_REST, |sample| {
-            sums.add(&sample.node.place_au, sample, sample.weight, rule);
-        });
-        sums
-    }
-
-    fn ejected(sheet: &Sheet, weights: &Weights, rule: &Rule, tails: &Tails) -> Self {
-        let mut sums = Sums::new(sheet);
-        let throws = throws(tails);
-        let by_beta: Vec<f64> = sheet.betas.iter().map(|b| libm::pow(*b, tails.ejection_beta_exponent)).collect();
-        let by_distance: Vec<f64> = sheet
-            .release_au
-            .iter()
-            .map(|r| tails.ejection_speed_km_s * libm::pow(*r, -tails.ejection_distance_exponent))
-            .collect();
-        let mut turn = 0;
-        for_each_sample(sheet, weights, SUBCELLS_EJECTED, |sample| {
-            let between = |values: &[f64], index: usize, part: f64| {
-                values[index] + (values[index + 1] - values[index]) * part
-            };
-            let speed = between(&by_beta, sample.column, sample.column_part)
-                * between(&by_distance, sample.row, sample.row_part);
-            let set = &throws[turn % THROW_SETS];
-            turn += 1;
-            for throw in set {
-                let place = sample.node.thrown(&throw.map(|part| part * speed));
-                sums.add(&place, sample, sample.weight / THROWS as f64, rule);
-            }
-        });
-        sums
-    }
-
-    fn add(&mut self, place: &[f64; 3], sample: &Sample, weight: f64, rule: &Rule) {
-        let Some(fallen) = Fallen::of(place, rule.coma_squared, sample.column, sample.row, weight) else {
-            self.coma += weight;
-            return;
+            seen_cells: vec![0.0; columns * rows],
         };
-        let across = (place[1] * place[1] + place[2] * place[2]).sqrt();
-        let (cos, sin) = (place[1] / across, place[2] / across);
-        if cos >= 0.0 || !rule.has_side {
-            self.tail.add(&fallen, cos, sin);
+        let glow = Glow::of(&grains);
+        for grain in &grains {
+            sums.add(grain, grain.weight * glow.seen(grain), columns, rule);
+        }
+        sums
+    }
+
+    fn add(&mut self, grain: &Fallen, light: f64, columns: usize, rule: &Rule) {
+        let cell = grain.row * columns + grain.column;
+        self.seen_cells[cell] += light;
+        if grain.cos_offset >= 0.0 || !rule.has_side {
+            self.tail.add(grain, light);
             return;
         }
-        self.sunward.add(&fallen, cos, sin);
-        self.sunward_cells[sample.row * (self.sunward.columns()) + sample.column] += weight;
-        if -cos >= rule.sector_cos {
-            self.anti_tail.add(&fallen, cos, sin);
+        self.sunward_cells[cell] += grain.weight;
+        self.sunward.add(grain, light);
+        if -grain.cos_offset >= rule.sector_cos {
+            self.anti_tail.add(grain, light);
         }
     }
 
@@ -362,11 +336,11 @@ impl Sums {
         let anti_tail = part(&self.anti_tail);
         let grade = anti_tail.map_or(Grade::None, |part| grade(part.beside_tail));
         Dust {
+            coma_rad: self.coma_rad,
             fan_rad: antisolar.and_then(|angle| Some(self.tail.fan_rad()?.map(|offset| turn(angle + offset)))),
             sunward: part(&self.sunward),
             anti_tail,
             grade,
-            coma_share: if self.coma > 0.0 { self.coma / (self.coma + outside) } else { 0.0 },
         }
     }
 
@@ -400,8 +374,68 @@ fn grade(beside_tail: f64) -> Grade {
     GRADE_FLOORS.iter().find(|(_, floor)| beside_tail >= *floor).map_or(Grade::None, |(grade, _)| *grade)
 }
 
+/// A way to lay a sample on the sky, as one grain or several.
+trait Lay {
+    /// Grains for each sample.
+    fn throws(&self) -> usize;
+    fn places(&self, sample: &Sample, place: impl FnMut(&[f64; 3], f64));
+}
+
+/// Grains that leave with the nucleus velocity alone.
+struct AtRest;
+
+impl Lay for AtRest {
+    fn throws(&self) -> usize {
+        1
+    }
+
+    fn places(&self, sample: &Sample, mut place: impl FnMut(&[f64; 3], f64)) {
+        place(&sample.node.place_au, sample.weight);
+    }
+}
+
+/// Grains that leave by an ejection law.
+struct Thrown {
+    sets: Vec<[[f64; 3]; THROWS]>,
+    /// Factors of the mean speed, km/s: by column, and by row.
+    by_beta: Vec<f64>,
+    by_distance_km_s: Vec<f64>,
+}
+
+impl Thrown {
+    fn of(sheet: &Sheet, tails: &Tails) -> Self {
+        Thrown {
+            sets: throws(tails),
+            by_beta: sheet.betas.iter().map(|beta| libm::pow(*beta, tails.ejection_beta_exponent)).collect(),
+            by_distance_km_s: sheet
+                .release_au
+                .iter()
+                .map(|r| tails.ejection_speed_km_s * libm::pow(*r, -tails.ejection_distance_exponent))
+                .collect(),
+        }
+    }
+}
+
+impl Lay for Thrown {
+    fn throws(&self) -> usize {
+        THROWS
+    }
+
+    fn places(&self, sample: &Sample, mut place: impl FnMut(&[f64; 3], f64)) {
+        let between =
+            |values: &[f64], index: usize, part: f64| values[index] + (values[index + 1] - values[index]) * part;
+        let speed = between(&self.by_beta, sample.column, sample.column_part)
+            * between(&self.by_distance_km_s, sample.row, sample.row_part);
+        for throw in &self.sets[sample.number % THROW_SETS] {
+            place(&sample.node.thrown(&throw.map(|part| part * speed)), sample.weight / THROWS as f64);
+        }
+    }
+}
+
 /// One sample inside a cell.
 struct Sample {
+    /// Counted from 0.
+    number: usize,
     column: usize,
     row: usize,
     /// How far into the cell, [0, 1].
@@ -413,6 +447,7 @@ struct Sample {
 
 fn for_each_sample(sheet: &Sheet, weights: &Weights, subcells: usize, mut visit: impl FnMut(&Sample)) {
     let columns = sheet.betas.len() - 1;
+    let mut number = 0;
     for row in 0..sheet.ages_days.len() - 1 {
         for row_step in 0..subcells {
             let row_part = (row_step as f64 + 0.5) / subcells as f64;
@@ -424,7 +459,8 @@ fn for_each_sample(sheet: &Sheet, weights: &Weights, subcells: usize, mut visit:
                     for column_step in 0..subcells {
                         let column_part = (column_step as f64 + 0.5) / subcells as f64;
                         let node = left.toward(&right, column_part);
-                        visit(&Sample { column, row, column_part, row_part, weight, node });
+                        visit(&Sample { number, column, row, column_part, row_part, weight, node });
+                        number += 1;
                     }
                 }
                 left = right;
@@ -437,7 +473,8 @@ fn for_each_sample(sheet: &Sheet, weights: &Weights, subcells: usize, mut visit:
 /// speeds at the middles of eight equal parts of a Gaussian.
 fn throws(tails: &Tails) -> Vec<[[f64; 3]; THROWS]> {
     /// Standard normal quantiles at 1/16, 3/16, ... 15/16, mixed so that they do not follow the direction.
-    const DEVIATES: [f64; THROWS] = [-0.157_311, 1.534_121, -0.887_147, 0.488_776, 0.157_311, -1.534_121, 0.887_147, -0.488_776];
+    const DEVIATES: [f64; THROWS] =
+        [-0.157_311, FASTEST_DEVIATE, -0.887_147, 0.488_776, 0.157_311, -FASTEST_DEVIATE, 0.887_147, -0.488_776];
     /// The golden section: azimuths that never repeat.
     const GOLDEN: f64 = 0.618_033_988_749_894_9;
     let cap = 1.0 - libm::cos(tails.ejection_cone_deg.to_radians());
@@ -456,6 +493,7 @@ fn throws(tails: &Tails) -> Vec<[[f64; 3]; THROWS]> {
 }
 
 fn map(sheet: &Sheet, weights: &Weights, rule: &Rule, at_rest: &Sums, ejected: &Sums) -> Map {
+    let coma_squared = libm::tan(at_rest.coma_rad) * libm::tan(at_rest.coma_rad);
     let columns = sheet.betas.len() - 1;
     let cells = weights
         .cells
@@ -463,12 +501,13 @@ fn map(sheet: &Sheet, weights: &Weights, rule: &Rule, at_rest: &Sums, ejected: &
         .enumerate()
         .map(|(index, light)| {
             let (row, column) = (index / columns, index % columns);
-            let part = |sums: &Sums| if *light > 0.0 { sums.sunward_cells[index] / light } else { 0.0 };
+            let part = |sums: &[f64]| if *light > 0.0 { sums[index] / light } else { 0.0 };
             Cell {
-                side: rule.has_side.then(|| side(sheet, row, column, rule)),
+                side: rule.has_side.then(|| side(sheet, row, column, rule, coma_squared)),
                 brightness: weights.densities[index],
-                sunward_at_rest: part(at_rest),
-                sunward_ejected: part(ejected),
+                sunward_at_rest: part(&at_rest.sunward_cells),
+                sunward_ejected: part(&ejected.sunward_cells),
+                seen: part(&ejected.seen_cells),
             }
         })
         .collect();
@@ -476,18 +515,32 @@ fn map(sheet: &Sheet, weights: &Weights, rule: &Rule, at_rest: &Sums, ejected: &
 }
 
 /// The side of the middle of a cell, without ejection.
-fn side(sheet: &Sheet, row: usize, column: usize, rule: &Rule) -> Side {
+fn side(sheet: &Sheet, row: usize, column: usize, rule: &Rule, coma_squared: f64) -> Side {
     let across = |column: usize| sheet.node(row, column).toward(sheet.node(row + 1, column), 0.5);
     let place = across(column).toward(&across(column + 1), 0.5).place_au;
-    if Fallen::of(&place, rule.coma_squared, column, row, 0.0).is_none() {
-        return Side::Coma;
+    match Fallen::of(&place, coma_squared, column, row, 0.0).map(|fallen| fallen.cos_offset) {
+        None => Side::Coma,
+        Some(cos) if cos >= 0.0 => Side::Tail,
+        Some(cos) if -cos >= rule.sector_cos => Side::AntiTail,
+        Some(_) => Side::Sunward,
     }
-    let cos = place[1] / (place[1] * place[1] + place[2] * place[2]).sqrt();
-    match cos {
-        cos if cos >= 0.0 => Side::Tail,
-        cos if -cos >= rule.sector_cos => Side::AntiTail,
-        _ => Side::Sunward,
-    }
+}
+
+/// How far the fountain of ejected dust seems to reach to every side of the nucleus, radians: the greatest of v t - a t^2
+/// sin(phase) / 2 over time and beta, which is d / sin(phase) with d = v^2 / 2a where the dust is old enough for it.
+fn fountain_rad(sheet: &Sheet, sky: &Sky, tails: &Tails) -> f64 {
+    let r = sky.sun_distance_au;
+    let sine = libm::sin(sky.phase_angle_rad);
+    let fastest = 1.0 + FASTEST_DEVIATE * tails.ejection_spread;
+    let speed = fastest * tails.ejection_speed_km_s * libm::pow(r, -tails.ejection_distance_exponent) / KM_S_PER_AU_D;
+    let reach_au = |beta: &f64| {
+        let speed = speed * libm::pow(*beta, tails.ejection_beta_exponent);
+        let push = SUN_GM_AU3_D2 * beta / (r * r) * sine;
+        let days = (speed / push).min(tails.age_greatest_days);
+        speed * days - 0.5 * push * days * days
+    };
+    let farthest = sheet.betas.iter().map(reach_au).fold(0.0_f64, f64::max);
+    libm::atan(farthest / sky.observer_distance_au)
 }
 
 /// Relative dust production, by number of grains of each size, at a distance from the Sun and days from perihelion.

@@ -3,7 +3,7 @@
 //! Grains come as places in the axes of [`super::sheet::Frame`]. Distances fall into rings, directions into sectors
 //! counted from the antisolar direction. Light is relative throughout.
 
-use std::f64::consts::PI;
+use std::f64::consts::TAU;
 
 /// Sectors of the whole circle, 5 degrees each; the first is centred on the antisolar direction.
 pub const SECTORS: usize = 72;
@@ -13,6 +13,9 @@ const FIRST_OCTAVE: i64 = -32;
 /// Fine rings in one coarse ring: a factor of two in distance.
 const FINE_IN_COARSE: usize = 8;
 const COARSE_RINGS: usize = FINE_RINGS / FINE_IN_COARSE;
+/// Sky on which dust is this much fainter than the brightest outside the coma counts half, and yet fainter sky less:
+/// 7.5 mag. Light spread so thin that no picture shows it must not decide.
+const DEPTH: f64 = 1e-3;
 /// A fan reaches as far as its light is at least this part of the brightest at the same distance.
 const FAN_FLOOR: f64 = 0.05;
 /// Rings with less than this part of all light do not widen the fan.
@@ -25,9 +28,12 @@ pub struct Fallen {
     pub row: usize,
     /// Relative light.
     pub weight: f64,
-    /// Position angle less the antisolar one, (-pi, pi].
+    /// Position angle less the antisolar one, (-pi, pi], and its cosine and sine.
     pub offset_rad: f64,
+    pub cos_offset: f64,
+    pub sin_offset: f64,
     ring: usize,
+    sector: usize,
 }
 
 impl Fallen {
@@ -40,8 +46,19 @@ impl Fallen {
         if squared < coma_squared {
             return None;
         }
+        let length = across.sqrt();
         let offset_rad = f64::from(libm::atan2f(aside as f32, away as f32));
-        Some(Fallen { column, row, weight, offset_rad, ring: ring(squared) })
+        let sector = (offset_rad * (SECTORS as f64 / TAU) + (SECTORS as f64 + 0.5)) as usize % SECTORS;
+        Some(Fallen {
+            column,
+            row,
+            weight,
+            offset_rad,
+            cos_offset: away / length,
+            sin_offset: aside / length,
+            ring: ring(squared),
+            sector,
+        })
     }
 }
 
@@ -56,6 +73,38 @@ fn ring_begin_rad(ring: usize) -> f64 {
     let quarter = ring as i64 + FIRST_OCTAVE * 4;
     let squared = f64::from_bits(((quarter + (1023 << 2)) as u64) << 50);
     libm::atan(squared.sqrt())
+}
+
+/// The light of all grains on the sky, in cells of one octave of distance and one sector.
+#[derive(Clone, Debug)]
+pub struct Glow {
+    polar: Vec<[f64; SECTORS]>,
+}
+
+impl Glow {
+    pub fn of(grains: &[Fallen]) -> Self {
+        let mut polar = vec![[0.0; SECTORS]; COARSE_RINGS];
+        for grain in grains {
+            polar[grain.ring / FINE_IN_COARSE][grain.sector] += grain.weight;
+        }
+        // The area of a cell grows fourfold with each octave.
+        let mut area = 1.0;
+        for ring in &mut polar {
+            ring.iter_mut().for_each(|light| *light /= area);
+            area *= 4.0;
+        }
+        let brightest = polar.iter().flatten().fold(0.0_f64, |most, surface| most.max(*surface));
+        let half = DEPTH * brightest;
+        for surface in polar.iter_mut().flatten().filter(|surface| **surface > 0.0) {
+            *surface /= *surface + half;
+        }
+        Glow { polar }
+    }
+
+    /// Which part of a grain's light counts, by the brightness of the sky where it lies, [0, 1].
+    pub fn seen(&self, grain: &Fallen) -> f64 {
+        self.polar[grain.ring / FINE_IN_COARSE][grain.sector]
+    }
 }
 
 /// Sums over one class of grains.
@@ -88,22 +137,17 @@ impl Tally {
         }
     }
 
-    pub fn add(&mut self, grain: &Fallen, cos_offset: f64, sin_offset: f64) {
-        let Fallen { column, row, weight, offset_rad, ring } = *grain;
-        self.light += weight;
-        self.cos_sum += weight * cos_offset;
-        self.sin_sum += weight * sin_offset;
-        self.least_offset_rad = self.least_offset_rad.min(offset_rad);
-        self.greatest_offset_rad = self.greatest_offset_rad.max(offset_rad);
-        self.rings[ring] += weight;
-        let sector = (offset_rad * (SECTORS as f64 / (2.0 * PI)) + 0.5).floor() as i64;
-        self.polar[ring / FINE_IN_COARSE][sector.rem_euclid(SECTORS as i64) as usize] += weight;
-        self.columns[column] += weight;
-        self.rows[row] += weight;
-    }
-
-    pub fn columns(&self) -> usize {
-        self.columns.len()
+    /// Adds a grain of which this much light counts.
+    pub fn add(&mut self, grain: &Fallen, light: f64) {
+        self.light += light;
+        self.cos_sum += light * grain.cos_offset;
+        self.sin_sum += light * grain.sin_offset;
+        self.least_offset_rad = self.least_offset_rad.min(grain.offset_rad);
+        self.greatest_offset_rad = self.greatest_offset_rad.max(grain.offset_rad);
+        self.rings[grain.ring] += light;
+        self.polar[grain.ring / FINE_IN_COARSE][grain.sector] += light;
+        self.columns[grain.column] += light;
+        self.rows[grain.row] += light;
     }
 
     /// Mean direction by light, from the antisolar one, (-pi, pi]; None without light or without a mean.
@@ -165,7 +209,7 @@ fn edges(polar: &[f64; SECTORS]) -> [f64; 2] {
     let floor = FAN_FLOOR * polar.iter().fold(0.0_f64, |most, light| most.max(*light));
     let half = SECTORS as i64 / 2;
     let at = |sector: i64| polar[sector.rem_euclid(SECTORS as i64) as usize];
-    let width = 2.0 * PI / SECTORS as f64;
+    let width = TAU / SECTORS as f64;
     // The sector before the first bright one, and where between their middles the floor is met.
     let meet = |dim: i64, bright: i64| {
         let (low, high) = (at(dim), at(bright));
