@@ -9,4 +9,5 @@
 
 pub mod law;
 pub mod grain;
+pub mod weight;
 pub mod perspective;

@@ -27,8 +27,9 @@ use crate::orbit::conic::SUN_GM_AU3_D2;
 use crate::sky::Sky;
 use crate::tail::grain::Vista;
 use crate::tail::law::Tails;
+use crate::tail::weight::Weights;
 use sheet::{Frame, Sheet};
-use std::f64::consts::{PI, TAU};
+use std::f64::consts::PI;
 use tally::{Fallen, Glow, Tally};
 
 /// Dust nearer than this to the nucleus on the sky, at its distance, is coma: km, and arcsec where that is more.
@@ -41,8 +42,6 @@ const SUBCELLS_EJECTED: usize = 2;
 /// Ejection velocities for each sample, and sets of them that take turns.
 const THROWS: usize = 8;
 const THROW_SETS: usize = 64;
-/// The fastest of a set, in standard deviations of the speed.
-const FASTEST_DEVIATE: f64 = 1.534_121;
 
 /// How conspicuous the dust in the anti-tail sector is, by its surface brightness beside the tail's at the same distance
 /// from the nucleus (brightest 5 degrees of either). The limits are our choice.
@@ -182,14 +181,15 @@ pub fn assess(vista: &Vista, sky: &Sky, tails: &Tails) -> Perspective {
     let antisolar = sky.antisolar_position_angle_rad;
     let frame = frame(sky);
     let sheet = Sheet::of(vista, &frame, tails);
+    let weights = Weights::of(tails);
     let coma_rad = (COMA_KM / AU_KM / sky.observer_distance_au).max(COMA_ARCSEC / 3600.0 * PI / 180.0);
     let rule = Rule::of(antisolar.is_some(), tails);
-    let weights = Weights::of(vista, &sheet, tails);
+    let light = Light::of(vista, &sheet, &weights);
 
-    let at_rest = Sums::of(&sheet, &weights, &rule, coma_rad, SUBCELLS_AT_REST, AtRest);
-    let round_rad = coma_rad.max(fountain_rad(&sheet, sky, tails));
-    let ejected = Sums::of(&sheet, &weights, &rule, round_rad, SUBCELLS_EJECTED, Thrown::of(&sheet, tails));
-    let map = map(&sheet, &weights, &rule, &at_rest, &ejected);
+    let at_rest = Sums::of(&sheet, &light, &rule, coma_rad, SUBCELLS_AT_REST, AtRest);
+    let round_rad = coma_rad.max(fountain_rad(&sheet, sky, &weights));
+    let ejected = Sums::of(&sheet, &light, &rule, round_rad, SUBCELLS_EJECTED, Thrown::of(&sheet, &weights));
+    let map = map(&sheet, &light, &rule, &at_rest, &ejected);
     let at_rest = at_rest.dust(&sheet, antisolar);
     let ejected = ejected.dust(&sheet, antisolar);
     Perspective {
@@ -197,7 +197,7 @@ pub fn assess(vista: &Vista, sky: &Sky, tails: &Tails) -> Perspective {
         anti_tail_half_width_rad: tails.anti_tail_half_width_deg.to_radians(),
         at_rest,
         ejected,
-        verdict: verdict(antisolar.is_some(), weights.whole, &at_rest, &ejected),
+        verdict: verdict(antisolar.is_some(), light.whole, &at_rest, &ejected),
         map,
     }
 }
@@ -237,7 +237,7 @@ impl Rule {
 }
 
 /// The light of each cell, before it is shared out among its samples.
-struct Weights {
+struct Light {
     /// Row by row.
     cells: Vec<f64>,
     whole: f64,
@@ -245,22 +245,22 @@ struct Weights {
     densities: Vec<f64>,
 }
 
-impl Weights {
-    fn of(vista: &Vista, sheet: &Sheet, tails: &Tails) -> Self {
-        let perihelion_days = vista.orbit.days_from_perihelion(vista.seen);
-        let rates: Vec<f64> = (0..sheet.ages_days.len())
-            .map(|i| rate(tails, sheet.release_au[i], perihelion_days - sheet.ages_days[i]))
-            .collect();
-        let sizes: Vec<f64> = sheet.betas.iter().map(|beta| cross_section(tails, *beta)).collect();
-        let mut cells = Vec::new();
-        let mut densities = Vec::new();
-        for row in 0..sheet.ages_days.len() - 1 {
-            let days = sheet.ages_days[row + 1] - sheet.ages_days[row];
-            for column in 0..sheet.betas.len() - 1 {
-                let step = libm::log(sheet.betas[column + 1] / sheet.betas[column]);
-                let density = 0.25 * (rates[row] + rates[row + 1]) * (sizes[column] + sizes[column + 1]);
-                densities.push(density);
-                cells.push(density * days * step);
+impl Light {
+    fn of(vista: &Vista, sheet: &Sheet, weights: &Weights) -> Self {
+        let now = vista.orbit.days_from_perihelion(vista.seen);
+        let (mut cells, mut densities) = (Vec::new(), Vec::new());
+        for (ages, distances) in sheet.ages_days.windows(2).zip(sheet.release_au.windows(2)) {
+            // Simpson's rule; rows end where the activity breaks off.
+            let rate = |part: f64| {
+                let age = ages[0] + (ages[1] - ages[0]) * part;
+                weights.release_rate(distances[0] + (distances[1] - distances[0]) * part, now - age)
+            };
+            // Just inside, since a row may end where the activity does.
+            let mean = (rate(1e-9) + 4.0 * rate(0.5) + rate(1.0 - 1e-9)) / 6.0;
+            for betas in sheet.betas.windows(2) {
+                let light = mean * weights.light_between(betas[0], betas[1]);
+                densities.push(light / libm::log(betas[1] / betas[0]));
+                cells.push(light * (ages[1] - ages[0]));
             }
         }
         let greatest = densities.iter().fold(0.0_f64, |most, density| most.max(*density));
@@ -268,14 +268,13 @@ impl Weights {
             densities.iter_mut().for_each(|density| *density /= greatest);
         }
         let whole = cells.iter().sum();
-        Weights { cells, whole, densities }
+        Light { cells, whole, densities }
     }
 }
 
 /// Sums by side.
 struct Sums {
     coma_rad: f64,
-    coma: f64,
     tail: Tally,
     sunward: Tally,
     anti_tail: Tally,
@@ -286,23 +285,18 @@ struct Sums {
 
 impl Sums {
     /// Sums what `lay` puts on the sky: it is given every sample and a way to add a place with its light.
-    fn of(sheet: &Sheet, weights: &Weights, rule: &Rule, coma_rad: f64, subcells: usize, lay: impl Lay) -> Self {
+    fn of(sheet: &Sheet, light: &Light, rule: &Rule, coma_rad: f64, subcells: usize, lay: impl Lay) -> Self {
         let coma_squared = libm::tan(coma_rad) * libm::tan(coma_rad);
-        let mut grains = Vec::with_capacity(weights.cells.len() * subcells * subcells * lay.throws());
-        let mut coma = 0.0;
-        for_each_sample(sheet, weights, subcells, |sample| {
+        let mut grains = Vec::with_capacity(light.cells.len() * subcells * subcells * lay.throws());
+        for_each_sample(sheet, light, subcells, |sample| {
             lay.places(sample, |place, weight| {
-                match Fallen::of(place, coma_squared, sample.column, sample.row, weight) {
-                    Some(fallen) => grains.push(fallen),
-                    None => coma += weight,
-                }
+                grains.extend(Fallen::of(place, coma_squared, sample.column, sample.row, weight));
             });
         });
         let (columns, rows) = (sheet.betas.len() - 1, sheet.ages_days.len() - 1);
         let tally = || Tally::new(columns, rows);
         let mut sums = Sums {
             coma_rad,
-            coma,
             tail: tally(),
             sunward: tally(),
             anti_tail: tally(),
@@ -397,20 +391,20 @@ impl Lay for AtRest {
 /// Grains that leave by an ejection law.
 struct Thrown {
     sets: Vec<[[f64; 3]; THROWS]>,
-    /// Factors of the mean speed, km/s: by column, and by row.
+    /// Mean speed at 1 au by column, km/s, and the factor by row that the distance makes of it.
     by_beta: Vec<f64>,
-    by_distance_km_s: Vec<f64>,
+    by_distance: Vec<f64>,
 }
 
 impl Thrown {
-    fn of(sheet: &Sheet, tails: &Tails) -> Self {
+    fn of(sheet: &Sheet, weights: &Weights) -> Self {
         Thrown {
-            sets: throws(tails),
-            by_beta: sheet.betas.iter().map(|beta| libm::pow(*beta, tails.ejection_beta_exponent)).collect(),
-            by_distance_km_s: sheet
+            sets: throws(weights),
+            by_beta: sheet.betas.iter().map(|beta| weights.mean_speed_km_s(*beta, 1.0)).collect(),
+            by_distance: sheet
                 .release_au
                 .iter()
-                .map(|r| tails.ejection_speed_km_s * libm::pow(*r, -tails.ejection_distance_exponent))
+                .map(|r| libm::pow(*r, -weights.laws().ejection_distance_exponent))
                 .collect(),
         }
     }
@@ -425,7 +419,7 @@ impl Lay for Thrown {
         let between =
             |values: &[f64], index: usize, part: f64| values[index] + (values[index + 1] - values[index]) * part;
         let speed = between(&self.by_beta, sample.column, sample.column_part)
-            * between(&self.by_distance_km_s, sample.row, sample.row_part);
+            * between(&self.by_distance, sample.row, sample.row_part);
         for throw in &self.sets[sample.number % THROW_SETS] {
             place(&sample.node.thrown(&throw.map(|part| part * speed)), sample.weight / THROWS as f64);
         }
@@ -445,7 +439,7 @@ struct Sample {
     node: sheet::Node,
 }
 
-fn for_each_sample(sheet: &Sheet, weights: &Weights, subcells: usize, mut visit: impl FnMut(&Sample)) {
+fn for_each_sample(sheet: &Sheet, light: &Light, subcells: usize, mut visit: impl FnMut(&Sample)) {
     let columns = sheet.betas.len() - 1;
     let mut number = 0;
     for row in 0..sheet.ages_days.len() - 1 {
@@ -454,7 +448,7 @@ fn for_each_sample(sheet: &Sheet, weights: &Weights, subcells: usize, mut visit:
             let mut left = sheet.node(row, 0).toward(sheet.node(row + 1, 0), row_part);
             for column in 0..columns {
                 let right = sheet.node(row, column + 1).toward(sheet.node(row + 1, column + 1), row_part);
-                let weight = weights.cells[row * columns + column] / (subcells * subcells) as f64;
+                let weight = light.cells[row * columns + column] / (subcells * subcells) as f64;
                 if weight > 0.0 {
                     for column_step in 0..subcells {
                         let column_part = (column_step as f64 + 0.5) / subcells as f64;
@@ -469,42 +463,37 @@ fn for_each_sample(sheet: &Sheet, weights: &Weights, subcells: usize, mut visit:
     }
 }
 
-/// Sets of ejection velocities over the mean speed: directions spread over the cone about the sunward direction,
-/// speeds at the middles of eight equal parts of a Gaussian.
-fn throws(tails: &Tails) -> Vec<[[f64; 3]; THROWS]> {
-    /// Standard normal quantiles at 1/16, 3/16, ... 15/16, mixed so that they do not follow the direction.
-    const DEVIATES: [f64; THROWS] =
-        [-0.157_311, FASTEST_DEVIATE, -0.887_147, 0.488_776, 0.157_311, -FASTEST_DEVIATE, 0.887_147, -0.488_776];
+/// Sets of ejection velocities over the mean speed, spread over the law's speeds and directions.
+fn throws(weights: &Weights) -> Vec<[[f64; 3]; THROWS]> {
     /// The golden section: azimuths that never repeat.
     const GOLDEN: f64 = 0.618_033_988_749_894_9;
-    let cap = 1.0 - libm::cos(tails.ejection_cone_deg.to_radians());
+    /// Prime to THROWS, so that speeds do not follow directions.
+    const SHUFFLE: usize = 3;
     (0..THROW_SETS)
         .map(|set| {
             std::array::from_fn(|i| {
-                let height = (i as f64 + (set as f64 + 0.5) / THROW_SETS as f64) / THROWS as f64;
-                let cos = 1.0 - cap * height;
-                let sin = (1.0 - cos * cos).max(0.0).sqrt();
-                let (sin_turn, cos_turn) = libm::sincos(TAU * GOLDEN * (set * THROWS + i) as f64);
-                let speed = (1.0 + tails.ejection_spread * DEVIATES[(i + set) % THROWS]).max(0.0);
-                [-cos * speed, sin * cos_turn * speed, sin * sin_turn * speed]
+                let speed = ((i * SHUFFLE + set) % THROWS) as f64 + 0.5;
+                let polar = i as f64 + (set as f64 + 0.5) / THROW_SETS as f64;
+                let turn = GOLDEN * (set * THROWS + i) as f64;
+                weights.ejection([speed / THROWS as f64, polar / THROWS as f64, turn - turn.floor()])
             })
         })
         .collect()
 }
 
-fn map(sheet: &Sheet, weights: &Weights, rule: &Rule, at_rest: &Sums, ejected: &Sums) -> Map {
+fn map(sheet: &Sheet, light: &Light, rule: &Rule, at_rest: &Sums, ejected: &Sums) -> Map {
     let coma_squared = libm::tan(at_rest.coma_rad) * libm::tan(at_rest.coma_rad);
     let columns = sheet.betas.len() - 1;
-    let cells = weights
+    let cells = light
         .cells
         .iter()
         .enumerate()
-        .map(|(index, light)| {
+        .map(|(index, own)| {
             let (row, column) = (index / columns, index % columns);
-            let part = |sums: &[f64]| if *light > 0.0 { sums[index] / light } else { 0.0 };
+            let part = |sums: &[f64]| if *own > 0.0 { sums[index] / own } else { 0.0 };
             Cell {
                 side: rule.has_side.then(|| side(sheet, row, column, rule, coma_squared)),
-                brightness: weights.densities[index],
+                brightness: light.densities[index],
                 sunward_at_rest: part(&at_rest.sunward_cells),
                 sunward_ejected: part(&ejected.sunward_cells),
                 seen: part(&ejected.seen_cells),
@@ -528,29 +517,17 @@ fn side(sheet: &Sheet, row: usize, column: usize, rule: &Rule, coma_squared: f64
 
 /// How far the fountain of ejected dust seems to reach to every side of the nucleus, radians: the greatest of v t - a t^2
 /// sin(phase) / 2 over time and beta, which is d / sin(phase) with d = v^2 / 2a where the dust is old enough for it.
-fn fountain_rad(sheet: &Sheet, sky: &Sky, tails: &Tails) -> f64 {
+fn fountain_rad(sheet: &Sheet, sky: &Sky, weights: &Weights) -> f64 {
     let r = sky.sun_distance_au;
     let sine = libm::sin(sky.phase_angle_rad);
-    let fastest = 1.0 + FASTEST_DEVIATE * tails.ejection_spread;
-    let speed = fastest * tails.ejection_speed_km_s * libm::pow(r, -tails.ejection_distance_exponent) / KM_S_PER_AU_D;
+    let oldest = weights.laws().age_greatest_days;
+    let fastest = weights.ejection([1.0 - 0.5 / THROWS as f64, 0.0, 0.0])[0].abs() / KM_S_PER_AU_D;
     let reach_au = |beta: &f64| {
-        let speed = speed * libm::pow(*beta, tails.ejection_beta_exponent);
+        let speed = fastest * weights.mean_speed_km_s(*beta, r);
         let push = SUN_GM_AU3_D2 * beta / (r * r) * sine;
-        let days = (speed / push).min(tails.age_greatest_days);
+        let days = (speed / push).min(oldest);
         speed * days - 0.5 * push * days * days
     };
     let farthest = sheet.betas.iter().map(reach_au).fold(0.0_f64, f64::max);
     libm::atan(farthest / sky.observer_distance_au)
-}
-
-/// Relative dust production, by number of grains of each size, at a distance from the Sun and days from perihelion.
-fn rate(tails: &Tails, sun_distance_au: f64, days_from_perihelion: f64) -> f64 {
-    let off = sun_distance_au > tails.activity_cutoff_au
-        || tails.activity_start_days.is_some_and(|start| days_from_perihelion < start);
-    if off { 0.0 } else { libm::pow(sun_distance_au, -tails.activity_exponent) }
-}
-
-/// Relative cross-section per step of log beta.
-fn cross_section(tails: &Tails, beta: f64) -> f64 {
-    libm::pow(beta, tails.size_exponent - 3.0)
 }

@@ -157,5 +157,20 @@ fn row_ages(vista: &Vista, tails: &Tails) -> Vec<f64> {
         ages.push(age_0 + (age_1 - age_0) * (wanted - sum_0) / (sum_1 - sum_0));
     }
     ages.push(oldest);
+    let now = vista.orbit.days_from_perihelion(vista.seen);
+    ages.extend(breaks_days(tails).into_iter().map(|days| now - days).filter(|age| youngest < *age && *age < oldest));
+    ages.sort_by(f64::total_cmp);
+    ages.dedup();
     ages
+}
+
+/// Days from perihelion at which the activity breaks off or swings too fast for the rows.
+fn breaks_days(tails: &Tails) -> Vec<f64> {
+    let mut days: Vec<f64> = tails.activity_start_days.into_iter().collect();
+    if let Some(outburst) = &tails.outburst {
+        days.extend(
+            [-1.5, -0.75, -0.25, 0.25, 0.75, 1.5].map(|step| outburst.middle_days + step * outburst.width_days),
+        );
+    }
+    days
 }
