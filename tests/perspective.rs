@@ -24,6 +24,15 @@ fn explore() {
         let mut engine = Engine::new(plan).unwrap();
         let stamp: Stamp = format!("{} TT", f[7]).parse().unwrap();
         let sky = engine.sky_at(stamp.instant()).unwrap();
+        let mut times: Vec<f64> = (0..40)
+            .map(|_| {
+                let t0 = std::time::Instant::now();
+                std::hint::black_box(engine.perspective(&sky));
+                t0.elapsed().as_secs_f64() * 1e3
+            })
+            .collect();
+        times.sort_by(f64::total_cmp);
+        print!("best {:.2} median {:.2} ms ", times[0], times[20]);
         let t0 = std::time::Instant::now();
         let p = engine.perspective(&sky);
         let dt = t0.elapsed();

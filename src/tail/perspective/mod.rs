@@ -43,23 +43,23 @@ const SUBCELLS_EJECTED: usize = 2;
 const THROWS: usize = 8;
 const THROW_SETS: usize = 64;
 
-/// How conspicuous the dust in the anti-tail sector is, by its surface brightness beside the tail's at the same distance
-/// from the nucleus (brightest 5 degrees of either). The limits are our choice.
+/// How conspicuous the dust in the anti-tail sector is: by its surface brightness beside the tail's at the same distance
+/// from the nucleus (brightest 5 degrees of either), and by its share of the light. The limits are our choice.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
 pub enum Grade {
-    /// No dust, or fainter than 1/300 of the tail (6 mag).
+    /// No dust, or fainter than [`GRADE_FLOORS`] ask.
     None,
-    /// Up to 1/30 (3.7 mag): deep images only.
+    /// Deep images only.
     Faint,
-    /// Up to 1/6 (2 mag).
+    /// 3.7 mag fainter than the tail, or better.
     Possible,
-    /// Brighter.
+    /// 2 mag fainter than the tail, or better.
     Strong,
 }
 
-/// Least brightness beside the tail for each grade above none.
-pub const GRADE_FLOORS: [(Grade, f64); 3] =
-    [(Grade::Strong, 1.0 / 6.0), (Grade::Possible, 1.0 / 30.0), (Grade::Faint, 1.0 / 300.0)];
+/// Least brightness beside the tail, and least share of the light, for each grade above none.
+pub const GRADE_FLOORS: [(Grade, f64, f64); 3] =
+    [(Grade::Strong, 1.0 / 6.0, 0.02), (Grade::Possible, 1.0 / 30.0, 0.005), (Grade::Faint, 1.0 / 300.0, 0.001)];
 
 /// What the dust of the plan says about a sunward tail.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -328,7 +328,7 @@ impl Sums {
         let outside = self.tail.light + self.sunward.light;
         let part = |tally: &Tally| self.part(tally, outside, sheet, antisolar?);
         let anti_tail = part(&self.anti_tail);
-        let grade = anti_tail.map_or(Grade::None, |part| grade(part.beside_tail));
+        let grade = anti_tail.as_ref().map_or(Grade::None, grade);
         Dust {
             coma_rad: self.coma_rad,
             fan_rad: antisolar.and_then(|angle| Some(self.tail.fan_rad()?.map(|offset| turn(angle + offset)))),
@@ -363,9 +363,12 @@ impl Sums {
     }
 }
 
-/// The grade of a brightness beside the tail.
-fn grade(beside_tail: f64) -> Grade {
-    GRADE_FLOORS.iter().find(|(_, floor)| beside_tail >= *floor).map_or(Grade::None, |(grade, _)| *grade)
+/// The grade of a part of the dust.
+fn grade(part: &Part) -> Grade {
+    GRADE_FLOORS
+        .iter()
+        .find(|(_, beside_tail, share)| part.beside_tail >= *beside_tail && part.share >= *share)
+        .map_or(Grade::None, |(grade, ..)| *grade)
 }
 
 /// A way to lay a sample on the sky, as one grain or several.
