@@ -56,7 +56,7 @@ fn explore() {
             dt
         );
         for (n, q) in [("rest", &p.at_rest), ("ejec", &p.ejected)] {
-            print!("   {n} coma {:.3} fan {:?} ", d(q.coma_rad), q.fan_rad.map(|f| f.map(|x| d(x).round())));
+            print!("   {n} coma {:.3} fan {:?} ", d(p.fountain_rad), q.fan_rad.map(|f| f.map(|x| d(x).round())));
             for (m, part) in [("sun", &q.sunward), ("anti", &q.anti_tail)] {
                 if let Some(a) = part {
                     print!(

@@ -30,7 +30,7 @@ use crate::tail::law::Tails;
 use crate::tail::weight::Weights;
 use sheet::{Frame, Sheet};
 use std::f64::consts::PI;
-use tally::{Fallen, Glow, Tally};
+use tally::{Coma, Fallen, Glow, Tally};
 
 /// Dust nearer than this to the nucleus on the sky, at its distance, is coma: km, and arcsec where that is more.
 pub const COMA_KM: f64 = 50_000.0;
@@ -96,8 +96,6 @@ pub struct Part {
 /// The dust of the plan, for one ejection law.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Dust {
-    /// Radius within which dust is coma and does not count.
-    pub coma_rad: f64,
     /// First and last position angle of the dust on the tail side, in the sense of growing position angle; None where
     /// there is none, or no antisolar direction.
     pub fan_rad: Option<[f64; 2]>,
@@ -168,6 +166,10 @@ pub struct Perspective {
     /// Position angle of the Sun's direction; None where comet, Sun and observer are in line.
     pub sunward_position_angle_rad: Option<f64>,
     pub anti_tail_half_width_rad: f64,
+    /// Radius within which dust is coma and does not count.
+    pub coma_rad: f64,
+    /// How far toward the Sun the fountain of ejected dust seems to reach; ejected dust inside it does not count.
+    pub fountain_rad: f64,
     /// Released with the nucleus velocity alone.
     pub at_rest: Dust,
     /// Released by the plan's ejection law.
@@ -186,15 +188,18 @@ pub fn assess(vista: &Vista, sky: &Sky, tails: &Tails) -> Perspective {
     let rule = Rule::of(antisolar.is_some(), tails);
     let light = Light::of(vista, &sheet, &weights);
 
-    let at_rest = Sums::of(&sheet, &light, &rule, coma_rad, SUBCELLS_AT_REST, AtRest);
-    let round_rad = coma_rad.max(fountain_rad(&sheet, sky, &weights));
-    let ejected = Sums::of(&sheet, &light, &rule, round_rad, SUBCELLS_EJECTED, Thrown::of(&sheet, &weights));
-    let map = map(&sheet, &light, &rule, &at_rest, &ejected);
+    let at_rest = Sums::of(&sheet, &light, &rule, Coma::of(coma_rad, 0.0), SUBCELLS_AT_REST, AtRest);
+    let apex_rad = fountain_rad(&sheet, sky, &weights);
+    let ejected =
+        Sums::of(&sheet, &light, &rule, Coma::of(coma_rad, apex_rad), SUBCELLS_EJECTED, Thrown::of(&sheet, &weights));
+    let map = map(&sheet, &light, &rule, &Coma::of(coma_rad, 0.0), [&at_rest, &ejected]);
     let at_rest = at_rest.dust(&sheet, antisolar);
     let ejected = ejected.dust(&sheet, antisolar);
     Perspective {
         sunward_position_angle_rad: antisolar.map(|angle| turn(angle + PI)),
         anti_tail_half_width_rad: tails.anti_tail_half_width_deg.to_radians(),
+        coma_rad,
+        fountain_rad: apex_rad,
         at_rest,
         ejected,
         verdict: verdict(antisolar.is_some(), light.whole, &at_rest, &ejected),
@@ -274,7 +279,6 @@ impl Light {
 
 /// Sums by side.
 struct Sums {
-    coma_rad: f64,
     tail: Tally,
     sunward: Tally,
     anti_tail: Tally,
@@ -285,18 +289,16 @@ struct Sums {
 
 impl Sums {
     /// Sums what `lay` puts on the sky: it is given every sample and a way to add a place with its light.
-    fn of(sheet: &Sheet, light: &Light, rule: &Rule, coma_rad: f64, subcells: usize, lay: impl Lay) -> Self {
-        let coma_squared = libm::tan(coma_rad) * libm::tan(coma_rad);
+    fn of(sheet: &Sheet, light: &Light, rule: &Rule, coma: Coma, subcells: usize, lay: impl Lay) -> Self {
         let mut grains = Vec::with_capacity(light.cells.len() * subcells * subcells * lay.throws());
         for_each_sample(sheet, light, subcells, |sample| {
             lay.places(sample, |place, weight| {
-                grains.extend(Fallen::of(place, coma_squared, sample.column, sample.row, weight));
+                grains.extend(Fallen::of(place, &coma, sample.column, sample.row, weight));
             });
         });
         let (columns, rows) = (sheet.betas.len() - 1, sheet.ages_days.len() - 1);
         let tally = || Tally::new(columns, rows);
         let mut sums = Sums {
-            coma_rad,
             tail: tally(),
             sunward: tally(),
             anti_tail: tally(),
@@ -330,7 +332,6 @@ impl Sums {
         let anti_tail = part(&self.anti_tail);
         let grade = anti_tail.as_ref().map_or(Grade::None, grade);
         Dust {
-            coma_rad: self.coma_rad,
             fan_rad: antisolar.and_then(|angle| Some(self.tail.fan_rad()?.map(|offset| turn(angle + offset)))),
             sunward: part(&self.sunward),
             anti_tail,
@@ -484,8 +485,7 @@ fn throws(weights: &Weights) -> Vec<[[f64; 3]; THROWS]> {
         .collect()
 }
 
-fn map(sheet: &Sheet, light: &Light, rule: &Rule, at_rest: &Sums, ejected: &Sums) -> Map {
-    let coma_squared = libm::tan(at_rest.coma_rad) * libm::tan(at_rest.coma_rad);
+fn map(sheet: &Sheet, light: &Light, rule: &Rule, coma: &Coma, [at_rest, ejected]: [&Sums; 2]) -> Map {
     let columns = sheet.betas.len() - 1;
     let cells = light
         .cells
@@ -495,7 +495,7 @@ fn map(sheet: &Sheet, light: &Light, rule: &Rule, at_rest: &Sums, ejected: &Sums
             let (row, column) = (index / columns, index % columns);
             let part = |sums: &[f64]| if *own > 0.0 { sums[index] / own } else { 0.0 };
             Cell {
-                side: rule.has_side.then(|| side(sheet, row, column, rule, coma_squared)),
+                side: rule.has_side.then(|| side(sheet, row, column, rule, coma)),
                 brightness: light.densities[index],
                 sunward_at_rest: part(&at_rest.sunward_cells),
                 sunward_ejected: part(&ejected.sunward_cells),
@@ -507,10 +507,10 @@ fn map(sheet: &Sheet, light: &Light, rule: &Rule, at_rest: &Sums, ejected: &Sums
 }
 
 /// The side of the middle of a cell, without ejection.
-fn side(sheet: &Sheet, row: usize, column: usize, rule: &Rule, coma_squared: f64) -> Side {
+fn side(sheet: &Sheet, row: usize, column: usize, rule: &Rule, coma: &Coma) -> Side {
     let across = |column: usize| sheet.node(row, column).toward(sheet.node(row + 1, column), 0.5);
     let place = across(column).toward(&across(column + 1), 0.5).place_au;
-    match Fallen::of(&place, coma_squared, column, row, 0.0).map(|fallen| fallen.cos_offset) {
+    match Fallen::of(&place, coma, column, row, 0.0).map(|fallen| fallen.cos_offset) {
         None => Side::Coma,
         Some(cos) if cos >= 0.0 => Side::Tail,
         Some(cos) if -cos >= rule.sector_cos => Side::AntiTail,
