@@ -27,15 +27,17 @@ fn explore() {
         let mut times: Vec<f64> = (0..40)
             .map(|_| {
                 let t0 = std::time::Instant::now();
-                std::hint::black_box(engine.perspective(&sky));
+                std::hint::black_box(engine.tails_at(&sky).perspective);
                 t0.elapsed().as_secs_f64() * 1e3
             })
             .collect();
         times.sort_by(f64::total_cmp);
         print!("best {:.2} median {:.2} ms ", times[0], times[20]);
         let t0 = std::time::Instant::now();
-        let p = engine.perspective(&sky);
+        let p = engine.tails_at(&sky).perspective;
         let dt = t0.elapsed();
+        let said = engine.saying(&sky, &engine.tails_at(&sky));
+        println!("{}\n   {}", said.headline, said.sentence);
         let d = |x: f64| x.to_degrees();
         println!(
             "{} {} age{}  plane {:.1} r {:.2} D {:.2} phase {:.0} anti {:.1} -v {:.1} expect {} [{}] => {:?} grid {}x{} {:?}",
