@@ -1,15 +1,14 @@
 //! How are angles, factors, shares and dates written for people?
 
+use crate::frame::turn;
 use crate::time::Instant;
+
+/// A range narrower than this is one direction: two degrees.
+const NARROW_RAD: f64 = 2.0 * std::f64::consts::PI / 180.0;
 
 /// An angle in whole degrees; a direction never reads 360.
 pub fn whole(angle_rad: f64) -> String {
-    format!("{}\u{b0}", whole_number(angle_rad))
-}
-
-/// The whole degrees themselves, [0, 360).
-pub fn whole_number(angle_rad: f64) -> i64 {
-    (angle_rad.to_degrees().round() as i64).rem_euclid(360)
+    format!("{}\u{b0}", (angle_rad.to_degrees().round() as i64).rem_euclid(360))
 }
 
 /// An angle in tenths of a degree; a direction never reads 360.
@@ -18,13 +17,14 @@ pub fn tenth(angle_rad: f64) -> String {
     format!("{}.{}\u{b0}", tenths / 10, tenths % 10)
 }
 
-/// A range of directions in the sense of growing position angle, whole degrees: `from 243° to 330°`, `toward 243°`
-/// where both ends read the same.
+/// A range of directions in the sense of growing position angle, whole degrees: `from 243° to 330°`; `toward 243°`
+/// where it is not two degrees wide.
 pub fn range([first_rad, last_rad]: [f64; 2]) -> String {
-    match (whole_number(first_rad), whole_number(last_rad)) {
-        (first, last) if first == last => format!("toward {first}\u{b0}"),
-        (first, last) => format!("from {first}\u{b0} to {last}\u{b0}"),
+    let width = turn(last_rad - first_rad);
+    if width < NARROW_RAD {
+        return format!("toward {}", whole(first_rad + 0.5 * width));
     }
+    format!("from {} to {}", whole(first_rad), whole(last_rad))
 }
 
 /// A share in percent with one figure below 10: `less than 1 percent`, `4 percent`, `35 percent`.
