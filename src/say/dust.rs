@@ -17,8 +17,8 @@ const FRESH_PART: f64 = 0.02;
 /// The dust in the headline: its fan and what lies on the sunward side.
 pub fn headline(perspective: &Perspective) -> String {
     match perspective.verdict {
-        Verdict::NoDust => return "No dust left in the chosen ages.".to_owned(),
-        Verdict::NoSunwardSide => return "Dust has no sunward side: the Sun is in line.".to_owned(),
+        Verdict::NoDust => return "No dust was released in the chosen ages.".to_owned(),
+        Verdict::NoSunwardSide => return "Comet, Sun and observer are in line: dust has no sunward side.".to_owned(),
         Verdict::None | Verdict::NeedsEjection(_) | Verdict::Perspective(_) => {}
     }
     let fan = perspective.at_rest.fan_rad.or(perspective.ejected.fan_rad);
@@ -48,10 +48,10 @@ fn sunward(perspective: &Perspective) -> Option<[String; 2]> {
 pub fn clause(plan: &Plan, sky: &Sky, perspective: &Perspective) -> String {
     let ejected = &perspective.ejected;
     match perspective.verdict {
-        Verdict::NoDust => "no dust left in the chosen ages, so nothing is said of a sunward tail".to_owned(),
-        Verdict::NoSunwardSide => {
-            "with the Sun in line there is no sunward side, so no tail can be told to point there".to_owned()
+        Verdict::NoDust => {
+            "no dust was released in the chosen ages, so nothing can be said of a sunward tail".to_owned()
         }
+        Verdict::NoSunwardSide => "there is no sunward side, so no tail can be said to point there".to_owned(),
         Verdict::None => none(perspective),
         Verdict::NeedsEjection(grade) => {
             format!("only dust that was thrown out reaches the sunward sector, {}", light(grade, ejected))

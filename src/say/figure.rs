@@ -41,6 +41,7 @@ pub fn beside(ratio: f64) -> String {
     match ratio {
         r if r >= 1.5 => "brighter than".to_owned(),
         r if r >= 0.67 => "about as bright as".to_owned(),
+        r if r >= 0.4 => "about half as bright as".to_owned(),
         r => {
             let times = 1.0 / r;
             let times = if times < 9.5 { times.round() } else { (times / 10.0).round() * 10.0 };
@@ -92,6 +93,7 @@ mod tests {
     fn brightness_and_shares_read_in_honest_digits() {
         assert_eq!(beside(3.0), "brighter than");
         assert_eq!(beside(0.9), "about as bright as");
+        assert_eq!(beside(0.45), "about half as bright as");
         assert_eq!(beside(0.21), "about 5 times fainter than");
         assert_eq!(beside(0.031), "about 30 times fainter than");
         assert_eq!(beside(0.004), "over a hundred times fainter than");

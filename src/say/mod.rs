@@ -42,23 +42,23 @@ fn gas(ion: &Wedge) -> String {
 /// Where the directions lie: antisolar, gas, dust, negative velocity.
 fn directions(sky: &Sky, perspective: &Perspective, ion: &Wedge) -> String {
     let gas = match (ion.axis.position_angle_rad, ion.reach_rad) {
-        (Some(axis), Some([below, above])) => format!("the gas {}", range([axis + below, axis + above])),
-        _ => "the gas along the line of sight".to_owned(),
+        (Some(axis), Some([below, above])) => format!("gas {}", range([axis + below, axis + above])),
+        _ => "gas along the line of sight".to_owned(),
     };
     let back = match sky.negative_velocity_position_angle_rad {
-        Some(angle) => format!("negative velocity at {}", tenth(angle)),
-        None => "negative velocity along the line of sight".to_owned(),
+        Some(angle) => format!("and negative velocity at {}", tenth(angle)),
+        None => "and negative velocity along the line of sight".to_owned(),
     };
     let Some(antisolar) = sky.antisolar_position_angle_rad else {
         return format!(
-            "Comet, Sun and observer are in line, so no antisolar direction exists on the sky; {gas}, and {back} (J2000)."
+            "Comet, Sun and observer are in line, so no antisolar direction exists on the sky; {gas}, {back} (J2000)."
         );
     };
     let dust = match perspective.at_rest.fan_rad {
         Some(fan) => format!(", dust on the tail side {}", range(fan)),
         None => String::new(),
     };
-    format!("The antisolar direction lies at position angle {} (J2000), {gas}{dust}, and {back}.", tenth(antisolar))
+    format!("The antisolar direction lies at position angle {} (J2000), {gas}{dust}, {back}.", tenth(antisolar))
 }
 
 /// How the observer stands to the orbit plane, and what the dust makes of it.
