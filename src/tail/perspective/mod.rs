@@ -1,7 +1,7 @@
 //! Which dust projects to the sunward side, how bright is it, and which grains is it made of?
 //!
-//! The whole (beta, age) plane of the plan is laid on the sky , once without ejection speed and once with
-//! the chosen ejection law, and its light is summed by side . Nothing is concluded from the orbit-plane angle,
+//! The whole (beta, age) plane of the plan is laid on the sky, once without ejection speed and once with
+//! the chosen ejection law, and its light is summed by side. Nothing is concluded from the orbit-plane angle,
 //! from negative velocity or from the date: perspective anti-tails are seen well off the plane (C/1999 H1), and a
 //! plane crossing need not show one.
 //!
@@ -11,12 +11,15 @@
 //!                                              antisolar <-----nucleus-----> Sun
 //! ```
 //!
-//! Light is cross-section times activity ([`crate::tail::law`]): no phase function, no fading of grains. Dust within
-//! [`COMA_KM`] or [`COMA_ARCSEC`] of the nucleus on the sky does not count: every comet has a round coma there, half of
-//! it sunward, and the fountain of ejected dust turns back in it (7,600 km r at 0.3 km/s). Position angles J2000.
+//! Light is cross-section times activity ([`crate::tail::weight`]): no phase function, no fading of grains. Two kinds of it
+//! do not count. Coma: dust within [`COMA_KM`] or [`COMA_ARCSEC`] of the nucleus on the sky, where every comet is round and
+//! pictures are burnt out; and ejected dust inside the outline of its own fountain, which turns back some 7,600 km r
+//! sunward at 0.3 km/s and seems to reach further at small phase angles. And light spread so thin that no picture
+//! shows it: sky 7.5 mag fainter than the brightest dust outside the coma counts half. Position angles J2000.
 //!
-//! Accuracy: shares to about 1 percent of the whole (tests/perspective.rs, against finer grids); the ejected dust is
-//! of first order in the ejection velocity, good below some 0.2 km/s per grain.
+//! Accuracy: the sunward part of all light to 0.01 against exact grains (tests/perspective.rs: to 0.3 km/s of ejection,
+//! ages to 1500 d, beta to 2.5). The ejected dust is of first order in the ejection velocity. Takes 0.2 to 1.4 ms.
+//! Left out: grains that fall into the Sun.
 
 mod lay;
 mod map;
