@@ -4,7 +4,6 @@ use super::{Call, Limits, Stop, in_words, text};
 use tailvane::engine::{Engine, View};
 use tailvane::error::{Error, Kind, Place};
 use tailvane::paint::svg;
-use tailvane::say;
 use tailvane::scene::theme::Theme;
 use tailvane::scene::view::SkyView;
 use tailvane::scene::{Scene, sky_plane};
@@ -41,7 +40,7 @@ pub fn run(arguments: lexopt::Parser) -> Result<(), Stop> {
     let mut engine = Engine::new(plan)?;
     let view = engine.view_at(time)?;
     let title = format!("{}, {}", engine.plan().comet.name, time.utc_minute());
-    let saying = say::say(engine.plan(), &view.sky);
+    let saying = engine.saying(&view.sky, &engine.tails_at(&view.sky));
     let scene = drawing(&engine, &view, size_px);
     let file = svg::write(&scene, theme, &title, &saying.sentence);
     std::fs::write(&out, file).map_err(|error| {
