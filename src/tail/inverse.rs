@@ -10,7 +10,7 @@
 //! ```
 //!
 //! and one equation in the age is left: the grain must have turned by just D in that time. Its roots are found along
-//! the comet's way back; there may be none, one or several. Near edge-on every line of sight runs along the plane and
+//! the comet's way back, to a micro-radian about the Sun; there may be none, one or several. Near edge-on every line of sight runs along the plane and
 //! nothing can be said. Left out: ejection speeds, light time within the tail. Source of the problem: Finson &
 //! Probstein 1968; of this way to solve it: none, it is derived above and tested by round trip.
 
