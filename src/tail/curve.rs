@@ -47,7 +47,7 @@ pub struct Fineness {
 
 /// Even steps a curve starts from; each is halved until it is straight enough, but no more often than this.
 const FIRST_STEPS: u32 = 16;
-const MOST_HALVINGS: u32 = 12;
+const MOST_HALVINGS: u32 = 26;
 
 /// The curve of dust of one beta, from the youngest to the oldest age.
 pub fn syndyne(vista: &Vista, beta: f64, ages_days: [f64; 2], fineness: &Fineness) -> Curve {
