@@ -10,4 +10,5 @@
 pub mod law;
 pub mod grain;
 pub mod weight;
+pub mod kernel;
 pub mod cloud;
