@@ -230,8 +230,10 @@ impl Desk {
 
     /// Everything the page shows beside the drawings.
     pub fn reading(&mut self) -> JsValue {
-        let visibility =
-            self.engine.dark_windows(self.seen.sky.time).map(|windows| say::when_up(&windows)).unwrap_or_default();
+        let visibility = match self.engine.dark_windows(self.seen.sky.time) {
+            Some(windows) => say::when_up(&windows),
+            None => "Give a site under Observer to see when the comet is up in a dark sky.".to_owned(),
+        };
         to_js(&answer::reading(&self.engine, &self.time, &self.seen, visibility))
     }
 
@@ -318,7 +320,7 @@ impl Desk {
     fn take_comet(&mut self, comet: Comet, now_ms: f64) -> Result<JsValue, JsValue> {
         let perihelion = comet.elements.perihelion_time.instant();
         // 10957.5 days from the Unix epoch to 2000-01-01 12:00.
-        let now = Instant::from_ut1_days((now_ms / 86_400_000.0).max(-3e6).min(3e6) - 10_957.5);
+        let now = Instant::from_ut1_days((now_ms / 86_400_000.0).clamp(-3e6, 3e6) - 10_957.5);
         let away = |time: Instant| (time.tdb_days() - perihelion.tdb_days()).abs();
         let time = if away(self.seen.sky.time) <= NEAR_PERIHELION_DAYS {
             self.time.clone()

@@ -84,6 +84,15 @@ install_rust() {
     return 1
 }
 
+WASM=wasm32-unknown-unknown
+install_wasm_target() {
+    if [ -d "$(rustc --print target-libdir --target $WASM 2>/dev/null)" ]; then
+        echo "compiler's part for the browser: there"
+        return 0
+    fi
+    have rustup && rustup target add $WASM
+}
+
 install_node_modules() {
     local stamp=tests/browser/node_modules/.package-lock.json
     if [ -f "$stamp" ] && [ ! tests/browser/package-lock.json -nt "$stamp" ]; then
@@ -110,6 +119,7 @@ install_truth() {
 say "What the tests need"
 install_packages
 install_rust || exit 1
+install_wasm_target || echo "The compiler's part for the browser could not be installed; run: rustup target add $WASM"
 install_node_modules || echo "The node packages could not be installed; run: (cd tests/browser && npm ci)"
 install_truth || echo "The reference libraries could not be installed; see the messages above."
 
@@ -122,7 +132,10 @@ format() {
 
 lint() {
     cargo clippy --version >/dev/null 2>&1 || { echo "clippy is not installed here; lints are not checked"; return 0; }
-    cargo clippy --workspace --all-targets --quiet -- -D warnings
+    # Tests may use std's mathematics, which the core may not.
+    cargo clippy --workspace --lib --bins --quiet -- -D warnings &&
+        cargo clippy --lib --target $WASM --quiet -- -D warnings &&
+        cargo clippy --workspace --tests --benches --quiet -- -D warnings -A clippy::disallowed_methods
 }
 
 rust_tests() { cargo test --workspace --no-fail-fast 2>&1 | tee target/cargo-test.log; return "${PIPESTATUS[0]}"; }

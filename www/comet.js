@@ -6,6 +6,8 @@
  */
 Tailvane.comet = (function () {
   const MOST_SHOWN = 100;
+  /** A text box with megabytes in it stops the browser for seconds; beyond this only the beginning is shown. */
+  const MOST_IN_BOX = 200000;
   const box = Tailvane.find("input", "elements");
   const found = Tailvane.find("show", "found");
   const file = Tailvane.find("file", "elements");
@@ -19,6 +21,30 @@ Tailvane.comet = (function () {
   let examples = [];
   let shownFields = "";
   let readTimer = 0;
+  let held = null;
+
+  /** The whole text: what stands in the box, or the long text of which the box shows the beginning. */
+  const wholeText = () => (held === null ? box.value : held);
+
+  /** Puts text into the box and reads it. */
+  function putText(text) {
+    const long = text.length > MOST_IN_BOX;
+    box.value = long ? text.slice(0, MOST_IN_BOX) : text;
+    held = long ? text : null;
+    read(text);
+  }
+
+  /** Marks the faulty line in the box, without taking the focus. */
+  function markLine(line) {
+    const lines = box.value.split("\n", line);
+    if (!line || lines.length < line) {
+      return;
+    }
+    const end = lines.join("\n").length;
+    const start = end - lines[line - 1].length;
+    box.setSelectionRange(start, end);
+    box.scrollTop = (line - 2) * (box.scrollHeight / box.value.split("\n").length);
+  }
 
   /** Reads pasted text; the first comet of it comes onto the desk. */
   function read(text) {
@@ -27,7 +53,8 @@ Tailvane.comet = (function () {
     const result = Tailvane.desk.change((desk) => desk.read_text(text, Date.now()));
     if (!result) {
       box.setAttribute("aria-invalid", "true");
-      Tailvane.write(found, "Nothing was changed; the text is kept.");
+      Tailvane.write(found, "Nothing was changed; the text is kept." + shownPart());
+      markLine(Tailvane.desk.refusal().line);
       readBox.hidden = true;
       return;
     }
@@ -36,11 +63,12 @@ Tailvane.comet = (function () {
     if (faults > 0) {
       const more = faults > 1 ? "\n" + (faults - 1) + " more could not be read." : "";
       Tailvane.say.error(result.errors[0].message + "." + more);
+      markLine(result.errors[0].line);
     }
     const count = result.count;
     const read = count === 1 ? result.first + " was read" : count + " comets were read, shown is " + result.first;
     const notices = result.notices.length ? " " + result.notices[0] + (result.notices.length > 1 ? " And " + (result.notices.length - 1) + " more notices." : "") : "";
-    Tailvane.write(found, read + (faults ? "; " + faults + " could not be read." : ".") + notices);
+    Tailvane.write(found, read + (faults ? "; " + faults + " could not be read." : ".") + notices + shownPart());
     Tailvane.season.pause();
     readBox.hidden = count < 2;
     if (count > 1) {
@@ -48,6 +76,8 @@ Tailvane.comet = (function () {
       listRead();
     }
   }
+
+  const shownPart = () => (held === null ? "" : " The box shows the beginning of " + Math.round(held.length / 1000) + " kB.");
 
   function listRead() {
     const hits = Tailvane.desk.ask((desk) => desk.find_read(readSearch.value, MOST_SHOWN));
@@ -156,8 +186,7 @@ Tailvane.comet = (function () {
     const chosen = file.files[0];
     file.value = "";
     if (chosen) {
-      box.value = await chosen.text();
-      read(box.value);
+      putText(await chosen.text());
     }
   }
 
@@ -170,13 +199,23 @@ Tailvane.comet = (function () {
       storage.textContent = "This browser does not let the page keep comets between visits. Save plans as files instead.";
     }
     // A paste is read at once, typing when it rests or the box is left.
-    box.addEventListener("paste", () => setTimeout(() => read(box.value)));
+    box.addEventListener("paste", (event) => {
+      const text = event.clipboardData ? event.clipboardData.getData("text") : "";
+      if (text.length > MOST_IN_BOX) {
+        event.preventDefault();
+        putText(text);
+        return;
+      }
+      held = null;
+      setTimeout(() => read(box.value));
+    });
     box.addEventListener("input", () => {
+      held = null;
       clearTimeout(readTimer);
       readTimer = setTimeout(() => box.value !== lastRead && box.value.trim() !== "" && read(box.value), 1200);
     });
-    box.addEventListener("change", () => box.value !== lastRead && box.value.trim() !== "" && read(box.value));
-    Tailvane.onAct("read", () => read(box.value));
+    box.addEventListener("change", () => held === null && box.value !== lastRead && box.value.trim() !== "" && read(box.value));
+    Tailvane.onAct("read", () => read(wholeText()));
     Tailvane.onAct("open-elements", () => file.click());
     file.addEventListener("change", openFile);
     Tailvane.onAct("keep", keep);

@@ -13,6 +13,7 @@ Tailvane.desk = (function () {
   let lastPlan = null;
   let asked = false;
   let restTimer = 0;
+  let refused = {};
 
   function start(plan) {
     desk = new (Tailvane.core.exports().Desk)(plan);
@@ -47,8 +48,10 @@ Tailvane.desk = (function () {
   }
 
   function fail(failure) {
+    refused = {};
     if (failure && typeof failure.message === "string" && failure.refused) {
-      Tailvane.say.error(failure.message, failure);
+      refused = failure;
+      Tailvane.say.error(failure.message);
       return;
     }
     const words = Tailvane.core.lastWords() || String((failure && failure.message) || failure);
@@ -99,6 +102,7 @@ Tailvane.desk = (function () {
     change,
     ask,
     redraw,
+    refusal: () => refused,
     onFrame: (listener) => frameListeners.push(listener),
     onRest: (listener) => restListeners.push(listener),
   };

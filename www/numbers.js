@@ -21,6 +21,7 @@ Tailvane.numbers = (function () {
       Tailvane.write(cell, row.printed);
       cell.dataset.value = row.value;
     }
+    Tailvane.write(Tailvane.find("show", "place"), reading.place);
     Tailvane.write(Tailvane.find("show", "numbers-caption"), "The sky in numbers, " + reading.time_words);
   }
 

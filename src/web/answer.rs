@@ -7,6 +7,7 @@ use crate::engine::{Engine, View};
 use crate::error::{Error, Place};
 use crate::orbit::notation::Entry;
 use crate::say;
+use crate::scene::quantity;
 use crate::sky::Sky;
 use crate::sky::column::{COLUMNS, Column, Value};
 use crate::time::Stamp;
@@ -116,6 +117,8 @@ pub struct Reading {
     at_site: bool,
     site: Option<SiteFields>,
     elements: ElementFields,
+    /// Right ascension and declination as observers write them.
+    place: String,
     rows: Vec<Row>,
     headline: String,
     sentence: String,
@@ -146,6 +149,7 @@ pub fn reading(engine: &Engine, time: &Stamp, view: &View, visibility: String) -
         at_site: site.is_some(),
         site,
         elements: ElementFields::of(&plan.comet),
+        place: place(sky),
         rows: shown(sky).map(|column| row(column, sky)).collect(),
         headline: saying.headline,
         sentence: saying.sentence,
@@ -156,6 +160,10 @@ pub fn reading(engine: &Engine, time: &Stamp, view: &View, visibility: String) -
             .map(|caution| Mind { weight: weight(caution.weight()), words: caution.sentence() })
             .collect(),
     }
+}
+
+fn place(sky: &Sky) -> String {
+    quantity::place(sky.right_ascension_rad, sky.declination_rad) + " (J2000)"
 }
 
 /// ISO UTC without fractions where there are none.
@@ -214,7 +222,7 @@ fn full(column: &Column, sky: &Sky) -> String {
 
 /// The read-out table as tabulated text: quantity, value, unit.
 pub fn table_text(engine: &Engine, time: &Stamp, sky: &Sky) -> String {
-    let mut text = format!("{}\t{}\n", engine.plan().comet.name, iso(time));
+    let mut text = format!("{}\t{}\t{}\n", engine.plan().comet.name, iso(time), place(sky));
     for column in shown(sky) {
         text.push_str(&format!("{}\t{}\t{}\n", column.words, column.printed(sky), column.unit));
     }

@@ -36,6 +36,20 @@ const BAD = [
   ["an unknown plan key", '{"tailvane_plan": 1, "komet": {}}', /komet/],
 ];
 
+/** Pastes a long text, made in the page from a piece, through a true paste event. */
+const pasteLong = (page, piece, times) =>
+  page.evaluate(
+    (text, count) => {
+      const data = new DataTransfer();
+      data.setData("text/plain", text.repeat(count));
+      // Chromium takes the transfer, Firefox the text.
+      const init = { clipboardData: data, dataType: "text/plain", data: text.repeat(count), cancelable: true };
+      document.querySelector('[data-input="elements"]').dispatchEvent(new ClipboardEvent("paste", init));
+    },
+    piece,
+    times
+  );
+
 export default (context) =>
   describe("input", () => {
     test("name = value lines, the circular block and a plan are read when pasted", async () => {
@@ -70,24 +84,28 @@ export default (context) =>
         // A text box keeps everything but the zero bytes and line ends that no text box holds.
         assert.equal((await box(page)).replace(/\u0000/g, ""), text.replace(/\u0000/g, ""), what);
       }
+      await paste(page, LINES.replace("58.2", "190"));
+      const marked = await page.$eval('[data-input="elements"]', (element) => element.value.slice(element.selectionStart, element.selectionEnd));
+      assert.equal(marked, "i = 190", "the faulty line is marked");
       await paste(page, LINES);
       assert.equal(await error(page), "");
       assert.deepEqual(noise, []);
       await page.close();
     });
 
-    test("ten megabytes of text are answered and lose nothing", async () => {
+    test("ten megabytes of text are answered and lose nothing, good or bad", async () => {
       const { page, noise } = await open(context.browser, PAGE_ADDRESS);
       const name = await comet(page);
-      await page.evaluate(() => {
-        const element = document.querySelector('[data-input="elements"]');
-        element.value = "no elements in this line of text at all ......................\n".repeat(160000);
-        element.dispatchEvent(new Event("paste"));
-      });
+      await pasteLong(page, "no elements in this line of text at all ......................\n", 160000);
       await page.waitForFunction(() => !document.querySelector('[data-say="error"]').hidden, { timeout: 30000 });
       assert.match(await error(page), /line 1/);
       assert.ok((await error(page)).length < 1000);
       assert.equal(await comet(page), name);
+      assert.match(await textOf(page, '[data-show="found"]'), /kept.*10[0-9]{3} kB/);
+      await pasteLong(page, LINES + "\n\n", 90000);
+      await page.waitForFunction((before) => document.querySelector('[data-show="comet"]').textContent !== before, { timeout: 30000 }, name);
+      assert.equal(await error(page), "");
+      assert.match(await textOf(page, '[data-show="found"]'), /^90000 comets were read/);
       assert.deepEqual(noise, []);
       await page.close();
     });
@@ -167,6 +185,66 @@ export default (context) =>
       await settled(page);
       const [row] = commandLineRows(await planOf(page));
       assert.equal((await numbersOf(page)).altitude_deg, row.altitude_deg);
+      await page.close();
+    });
+
+    test("an observatory is found by its code and by its name", async () => {
+      const { page, noise } = await open(context.browser, PAGE_ADDRESS);
+      await page.click('[data-bench="observer"] > summary');
+      for (const words of ["568", "mauna kea"]) {
+        await page.$eval('[data-input="code-search"]', (field) => (field.value = ""));
+        await page.type('[data-input="code-search"]', words);
+        await page.waitForSelector('[data-list="codes"] button');
+        const first = await page.$eval('[data-list="codes"] button', (button) => button.textContent);
+        assert.match(first, /^568 .*Mauna ?kea/i);
+        await page.click('[data-list="codes"] button');
+        await settled(page);
+        const [row] = commandLineRows(await planOf(page));
+        assert.equal((await numbersOf(page)).altitude_deg, row.altitude_deg);
+      }
+      // 155.47 degrees west, 19.83 north: a published place of the mountain, to a tenth of a degree.
+      const { observer } = JSON.parse(await planOf(page));
+      assert.ok(Math.abs(((observer.longitude_deg + 360) % 360) - 204.53) < 0.1 && Math.abs(observer.latitude_deg - 19.83) < 0.1);
+      assert.deepEqual(noise, []);
+      await page.close();
+    });
+
+    test("the saved plan is the plan of the address, and the saved drawing is SVG without scripts or addresses", async () => {
+      const { page } = await open(context.browser, PAGE_ADDRESS);
+      await page.evaluate(() => {
+        window.saved = [];
+        URL.createObjectURL = (blob) => {
+          window.saved.push(blob);
+          return "#";
+        };
+        // Nothing is to land in anyone's download folder.
+        HTMLAnchorElement.prototype.click = () => {};
+      });
+      await page.click('[data-bench="plan"] > summary');
+      await page.click('[data-act="save-plan"]');
+      await page.click('[data-act="save-svg"]');
+      const [plan, svg] = await page.evaluate(() => Promise.all(window.saved.map((blob) => blob.text())));
+      assert.deepEqual(JSON.parse(plan), JSON.parse(await planOf(page)));
+      assert.match(svg, /^(<\?xml[^>]*>\s*)?<svg /);
+      assert.doesNotMatch(svg.replaceAll("http://www.w3.org/2000/svg", ""), /<script|<style|<foreignObject|https?:/);
+      await page.close();
+    });
+
+    test("a core that fails is replaced, and the page goes on from the last good plan", async () => {
+      const { page } = await open(context.browser, PAGE_ADDRESS);
+      await rested(page);
+      const name = await comet(page);
+      await page.evaluate(() =>
+        Tailvane.desk.change(() => {
+          throw new WebAssembly.RuntimeError("unreachable");
+        })
+      );
+      await settled(page);
+      assert.match(await error(page), /started anew/);
+      assert.equal(await comet(page), name);
+      await paste(page, LINES);
+      assert.equal(await comet(page), "Invented comet Elm");
+      assert.equal(await error(page), "");
       await page.close();
     });
 

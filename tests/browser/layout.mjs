@@ -37,6 +37,9 @@ const faults = (page) =>
         found.push(name(element) + " is cut off: " + element.textContent.slice(0, 30));
       }
     }
+    if (innerWidth >= 1000 && innerHeight >= 700 && parseFloat(getComputedStyle(root).fontSize) < 20 && root.scrollHeight > root.clientHeight) {
+      found.push("the page scrolls down although it fits: " + root.scrollHeight + " in " + root.clientHeight);
+    }
     const canvas = boxOf(document.querySelector("canvas"));
     if (canvas.width < 280 || canvas.height < 240) {
       found.push("the sky has only " + canvas.width + " by " + canvas.height);

@@ -192,8 +192,8 @@ mod tests {
         assert!(html.contains("BLOCK\n<script>{a.js}\n</script>"));
         assert!(html.contains(&format!(
             "script-src {} 'wasm-unsafe-eval'; style-src {};",
-            hash("/* a.js */"),
-            hash("/* a.css */")
+            hash("{a.js}\n"),
+            hash("{a.css}\n")
         )));
     }
 
