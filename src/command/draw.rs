@@ -4,14 +4,15 @@ use super::{Call, Limits, Stop, in_words, text};
 use tailvane::engine::{Engine, View};
 use tailvane::error::{Error, Kind, Place};
 use tailvane::paint::svg;
+use tailvane::scene::layer::{Layers, TailLayers};
 use tailvane::scene::theme::Theme;
 use tailvane::scene::view::SkyView;
-use tailvane::scene::{Scene, sky_plane};
+use tailvane::scene::{Scene, orbit_view, sky_plane};
 
 /// What is drawn, by its name.
 type Drawing = (&'static str, fn(&Engine, &View, [f64; 2]) -> Scene);
 
-const VIEWS: &[Drawing] = &[("sky", sky)];
+const VIEWS: &[Drawing] = &[("sky", sky), ("orbit", orbit)];
 
 const PIXELS: Limits = Limits { least: 64.0, greatest: 16_384.0 };
 
@@ -49,7 +50,13 @@ pub fn run(arguments: lexopt::Parser) -> Result<(), Stop> {
 }
 
 fn sky(engine: &Engine, view: &View, [width_px, height_px]: [f64; 2]) -> Scene {
-    sky_plane::compose(engine.plan(), &view.sky, &SkyView::start(width_px, height_px))
+    let facing = SkyView::start(width_px, height_px);
+    let tails = TailLayers::of(&engine.vista(&view.sky), &engine.plan().tails, &facing, &Layers::default());
+    sky_plane::compose(engine.plan(), &view.sky, &tails, &facing)
+}
+
+fn orbit(engine: &Engine, view: &View, [width_px, height_px]: [f64; 2]) -> Scene {
+    orbit_view::compose(engine.plan(), &view.sky, &engine.vista(&view.sky), width_px, height_px)
 }
 
 fn view_names() -> String {
