@@ -2,8 +2,8 @@
 //!
 //! Curves of dust leave the nucleus together and open like a fan, so a label belongs where its curve runs alone: on the
 //! curve, which is broken for it, or beside it, or beyond its tip. A spot is free when its box lies on the page,
-//! touches nothing that is taken, and no other curve of its kind runs through it; among the free ones the cheapest wins:
-//! three quarters out along the curve, off hands and other curves. A curve without a free spot has no label: a bundle
+//! touches nothing that is taken, and neither a hand nor another curve of its kind runs through it; among the free ones
+//! the cheapest wins: three quarters out along the curve, outside the ring, off curves of other kinds. A curve without a free spot has no label: a bundle
 //! seen edge-on names its outermost curves and not each. The outer curves of a kind choose first, then those between.
 //!
 //! Spots are shares of the visible length, so a label slides with its curve while the date is scrubbed.
@@ -49,8 +49,7 @@ const BESIDE: f64 = 9.0;
 const BEYOND: f64 = 6.0;
 const SHORT_WORDS: f64 = 28.0;
 const MEETS_OTHER_KIND: f64 = 9.0;
-const MEETS_HAND: f64 = 30.0;
-const INSIDE_RING: f64 = 20.0;
+const INSIDE_RING: f64 = 30.0;
 
 /// A spot for each curve that has one; each takes its room.
 pub fn find(room: &mut Room, curves: &[PageCurve]) -> Vec<Option<Spot>> {
@@ -69,7 +68,7 @@ pub fn find(room: &mut Room, curves: &[PageCurve]) -> Vec<Option<Spot>> {
 }
 
 /// 0 to `count` - 1: the two ends, then the middles of what lies between, ever finer.
-fn outer_first(count: usize) -> Vec<usize> {
+pub fn outer_first(count: usize) -> Vec<usize> {
     let mut order: Vec<usize> = Vec::new();
     let mut parts = 1;
     while order.len() < count {
@@ -136,14 +135,12 @@ fn judged(room: &Room, mesh: &Mesh, index: usize, area: &Rect) -> Option<f64> {
     if met & mesh.kind(index) != 0 {
         return None;
     }
-    let hands = room.hands.iter().filter(|[a, b]| clear.cuts(*a, *b)).count();
+    if room.hands.iter().any(|[a, b]| clear.cuts(*a, *b)) {
+        return None;
+    }
     let center = area.center();
     let inside = libm::hypot(center[0] - room.ring_center[0], center[1] - room.ring_center[1]) < room.ring_radius_px;
-    Some(
-        MEETS_OTHER_KIND * f64::from(met.count_ones())
-            + MEETS_HAND * hands as f64
-            + if inside { INSIDE_RING } else { 0.0 },
-    )
+    Some(MEETS_OTHER_KIND * f64::from(met.count_ones()) + if inside { INSIDE_RING } else { 0.0 })
 }
 
 /// How far a box of these half sides reaches along a unit step.
