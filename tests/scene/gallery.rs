@@ -1,7 +1,7 @@
-//! Twelve nasty skies of invented comets, from their plan files: is each what its name says, and readable?
+//! Thirteen nasty skies of invented comets, from their plan files: is each what its name says, and readable?
 //!
 //! The plans were designed backwards: a place of the Earth from DE440, a place and a velocity for the comet that make
-//! the trouble, and the elements of that state. tests/snapshots holds one drawing of each: our own output, kept to
+//! the trouble, and the elements of that state; the sky with old dust toward the Sun was found by trying. tests/snapshots holds one drawing of each: our own output, kept to
 //! show changes, not truth. To write them anew after a wanted change, run this test with TAILVANE_WRITE_SNAPSHOTS=1.
 
 use crate::labels::faults;
@@ -19,7 +19,7 @@ use tailvane::sky::Sky;
 use tailvane::tail::grain::Vista;
 use tailvane::tail::perspective;
 
-const NAMES: [&str; 12] = [
+const NAMES: [&str; 13] = [
     "aligned-with-the-sun",
     "all-hands-together",
     "at-the-pole",
@@ -31,6 +31,7 @@ const NAMES: [&str; 12] = [
     "near-the-earth",
     "near-the-sun",
     "near-the-zenith",
+    "old-dust-toward-the-sun",
     "right-ascension-wrap",
 ];
 
@@ -81,6 +82,8 @@ fn each_sky_of_the_gallery_is_as_nasty_as_its_name() {
     assert!(of("far-away").sun_distance_au > 30.0);
     assert!((of("near-the-earth").observer_distance_au - 0.05).abs() < 1e-4);
     assert!(of("near-the-sun").elongation_rad.to_degrees() < 2.1);
+    let crossed = of("old-dust-toward-the-sun").observer_from_orbit_plane_rad.to_degrees();
+    assert!((2.5..3.5).contains(&crossed.abs()), "{crossed}");
     let overhead = of("near-the-zenith").site.expect("a site").altitude_rad.to_degrees();
     assert!(overhead > 89.8, "{overhead}");
     let wrap = of("right-ascension-wrap").right_ascension_rad.to_degrees();
