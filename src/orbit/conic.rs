@@ -33,6 +33,7 @@ pub struct Orbit {
     toward_perihelion: Vector3<f64>,
     /// Unit vector along the velocity at perihelion, equatorial.
     along_perihelion: Vector3<f64>,
+    normal: Vector3<f64>,
     /// sqrt(mu q (1 + e)): the angular momentum, au^2/d.
     angular_momentum: f64,
 }
@@ -81,6 +82,7 @@ impl Orbit {
             start: Start { mu: SUN_GM_AU3_D2, distance: q, eta: 0.0, binding: SUN_GM_AU3_D2 * (1.0 - e) / q },
             toward_perihelion: ecliptic_to_equatorial(&toward),
             along_perihelion: ecliptic_to_equatorial(&along),
+            normal: ecliptic_to_equatorial(&toward.cross(&along)),
             angular_momentum: (SUN_GM_AU3_D2 * q * (1.0 + e)).sqrt(),
         })
     }
@@ -100,7 +102,7 @@ impl Orbit {
 
     /// Unit vector of the orbital angular momentum, equatorial.
     pub fn normal(&self) -> Vector3<f64> {
-        self.toward_perihelion.cross(&self.along_perihelion)
+        self.normal
     }
 
     /// The comet at an instant.
