@@ -44,6 +44,14 @@ pub enum Caution {
     SunUp,
     /// The comet is below the site's horizon.
     CometDown { altitude_deg: f64 },
+    /// The observer is so near the orbit plane that the ion axis does not tell the speed of the wind.
+    WindUnreadable { observer_from_orbit_plane_deg: f64 },
+    /// Dust was to leave while the nucleus was inside the Sun.
+    GrainStartsInSun,
+    /// The way of a grain leads through the Sun; its place is that of a grain that met nothing.
+    GrainInSun { least_distance_au: f64 },
+    /// A grain has gone more than once around the Sun since it left.
+    GrainRevolved { revolutions: f64 },
 }
 
 impl Caution {
@@ -55,7 +63,11 @@ impl Caution {
             | Caution::Parabola
             | Caution::AngleUndefined { .. }
             | Caution::AngleLoose { .. }
-            | Caution::NearEarth { .. } => Weight::Doubt,
+            | Caution::NearEarth { .. }
+            | Caution::WindUnreadable { .. }
+            | Caution::GrainStartsInSun
+            | Caution::GrainInSun { .. }
+            | Caution::GrainRevolved { .. } => Weight::Doubt,
             Caution::NoEpoch | Caution::NongravitationalUnused | Caution::SunUp | Caution::CometDown { .. } => {
                 Weight::Notice
             }
@@ -117,6 +129,22 @@ impl Caution {
             Caution::CometDown { altitude_deg } => {
                 format!("The comet is {:.0} deg below the horizon of this site.", -altitude_deg)
             }
+            Caution::WindUnreadable { observer_from_orbit_plane_deg } => format!(
+                "You are only {:.1} deg from the comet's orbit plane. Wind bends the ion tail within that plane, so here the \
+                 angle between ion tail and antisolar direction says nothing about the speed of the wind.",
+                observer_from_orbit_plane_deg.abs()
+            ),
+            Caution::GrainStartsInSun => {
+                "The nucleus was inside the Sun when this grain was to leave: the grain does not exist.".to_owned()
+            }
+            Caution::GrainInSun { least_distance_au } => format!(
+                "The way of this grain leads through the Sun, to {least_distance_au:.5} au from its centre: the grain \
+                 no longer exists, and the place given is that of one that met nothing."
+            ),
+            Caution::GrainRevolved { revolutions } => format!(
+                "This grain has gone {revolutions:.1} times around the Sun since it left: planets and the drag of light \
+                 are left out and may have moved it far."
+            ),
         }
     }
 }

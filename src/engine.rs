@@ -14,11 +14,15 @@ use crate::frame::earth_rotation::celestial_to_terrestrial;
 use crate::frame::horizon::Horizon;
 use crate::orbit::conic::Orbit;
 use crate::plan::Plan;
+use crate::say::{self, Saying};
 use crate::sky::Sky;
 use crate::sky::avoidance;
 use crate::sky::dark::{self, Window};
 use crate::sky::trail::Trail;
 use crate::sky::viewpoint::{Ground, Viewpoint};
+use crate::tail::grain::Vista;
+use crate::tail::ion::Wedge;
+use crate::tail::perspective::{self, Perspective};
 use crate::time::Instant;
 
 /// Two-body motion is doubted this many days from the elements' epoch.
@@ -38,6 +42,13 @@ pub struct View {
     pub sky: Sky,
     /// The heaviest first.
     pub cautions: Vec<Caution>,
+}
+
+/// The tails of a sky, as directions and sums.
+#[derive(Clone, Debug, PartialEq)]
+pub struct TailView {
+    pub perspective: Perspective,
+    pub ion: Wedge,
 }
 
 impl Engine {
@@ -91,6 +102,25 @@ impl Engine {
         cautions.extend(avoidance::cautions(&sky, |time| self.sun_altitude_deg(site.as_ref()?, time)));
         cautions.sort_by_key(|caution| std::cmp::Reverse(caution.weight()));
         Ok(View { sky, cautions })
+    }
+
+    /// The comet of a sky, ready for its tails.
+    pub fn vista(&self, sky: &Sky) -> Vista<'_> {
+        Vista::of(&self.orbit, sky)
+    }
+
+    /// Where the plan's tails lie in a sky of its comet; takes about a millisecond.
+    pub fn tails_at(&self, sky: &Sky) -> TailView {
+        let vista = self.vista(sky);
+        TailView {
+            perspective: perspective::assess(&vista, sky, &self.plan.tails),
+            ion: Wedge::of(&vista, &self.plan.tails),
+        }
+    }
+
+    /// A sky and its tails in words.
+    pub fn saying(&self, sky: &Sky, tails: &TailView) -> Saying {
+        say::say(&self.plan, sky, &tails.perspective, &tails.ion)
     }
 
     /// When the comet is up in a dark sky within half a day of `time`; None for the geocentre.

@@ -269,7 +269,7 @@ impl Desk {
     /// The sky plane as an SVG file, as it stands.
     pub fn svg(&self, theme: &str) -> String {
         let scene = sky_plane::compose(self.engine.plan(), &self.seen.sky, &self.view);
-        let saying = say::say(self.engine.plan(), &self.seen.sky);
+        let saying = self.engine.saying(&self.seen.sky, &self.engine.tails_at(&self.seen.sky));
         let title = format!("{}, {}", self.engine.plan().comet.name, self.seen.sky.time.utc_minute());
         svg::write(&scene, named_theme(theme), &title, &saying.sentence)
     }

@@ -1,6 +1,10 @@
 //! How does the Sun's own globe lie?
 
+use super::AU_KM;
 use nalgebra::Vector3;
+
+/// Nominal solar radius, au: 695 700 km (IAU 2015 resolution B3).
+pub const RADIUS_AU: f64 = 695_700.0 / AU_KM;
 
 /// The Sun's north pole of rotation, equatorial: right ascension 286.13 deg, declination 63.87 deg (Archinal et al.
 /// 2018, report of the IAU working group on cartographic coordinates and rotational elements 2015).

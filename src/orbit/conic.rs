@@ -117,6 +117,26 @@ impl Orbit {
         self.place(&self.start.after_near(guess.s, guess.revolutions, days))
     }
 
+    /// The comet where its universal anomaly, whole revolutions included, has that value, and days from perihelion.
+    pub fn at_anomaly(&self, whole: f64) -> (State, f64) {
+        let turn =
+            if self.start.binding > 0.0 { std::f64::consts::TAU / self.start.binding.sqrt() } else { f64::INFINITY };
+        let revolutions = (whole / turn).round();
+        let s = if revolutions == 0.0 { whole } else { whole - revolutions * turn };
+        let g = self.start.universal(s);
+        let rest_days = self.perihelion_distance_au * g[1] + SUN_GM_AU3_D2 * g[3];
+        let days = rest_days + if revolutions == 0.0 { 0.0 } else { revolutions * self.period_days().unwrap_or(0.0) };
+        (self.place(&Reached { s, revolutions, rest_days, g }).state, days)
+    }
+
+    /// The universal anomaly, whole revolutions included.
+    pub fn whole_anomaly(&self, anomaly: &Anomaly) -> f64 {
+        if anomaly.revolutions == 0.0 {
+            return anomaly.s;
+        }
+        anomaly.s + anomaly.revolutions * std::f64::consts::TAU / self.start.binding.sqrt()
+    }
+
     /// Angle from perihelion to a place on the orbit, seen from the Sun: (-pi, pi], negative before perihelion.
     pub fn true_anomaly_rad(&self, position_au: &Vector3<f64>) -> f64 {
         half_turn(libm::atan2(position_au.dot(&self.along_perihelion), position_au.dot(&self.toward_perihelion)))

@@ -5,10 +5,13 @@
 //! Poynting-Robertson drag (1e-4 of the force; months), the pull of the nucleus and of planets, the Lorentz force.
 //! Source: Burns, Lamy & Soter 1979, Icarus 40, 1.
 
+use crate::body::sun::RADIUS_AU;
 use crate::body::{KM_S_PER_AU_D, State};
+use crate::caution::Caution;
 use crate::frame::{Axes, tangent};
 use crate::orbit::conic::{Orbit, SUN_GM_AU3_D2, propagate};
 use crate::sky::Sky;
+use crate::tail::path::{Path, perihelion_distance_au};
 use crate::time::Instant;
 use nalgebra::Vector3;
 
@@ -61,11 +64,60 @@ impl<'a> Vista<'a> {
         self.orbit.place_at(self.seen.plus_days(-age_days)).state
     }
 
-    /// The grain at the moment seen, heliocentric equatorial.
-    pub fn grain(&self, grain: &Grain) -> State {
+    /// When dust of an age left.
+    pub fn released_at(&self, age_days: f64) -> Instant {
+        self.seen.plus_days(-age_days)
+    }
+
+    /// The grain as it leaves, heliocentric equatorial.
+    pub fn start(&self, grain: &Grain) -> State {
         let mut start = self.release(grain.age_days);
         start.velocity_au_d += ejection_au_d(&start, grain.ejection_km_s);
-        propagate(SUN_GM_AU3_D2 * (1.0 - grain.beta), &start, grain.age_days)
+        start
+    }
+
+    /// The grain at the moment seen, heliocentric equatorial. One that has met the Sun is computed as if it had
+    /// passed; [`Self::fate`] says so.
+    pub fn grain(&self, grain: &Grain) -> State {
+        propagate(pull_au3_d2(grain.beta), &self.start(grain), grain.age_days)
+    }
+
+    /// The way of a grain since it left.
+    pub fn path(&self, grain: &Grain) -> Path {
+        Path::of(pull_au3_d2(grain.beta), &self.start(grain), grain.age_days)
+    }
+
+    /// Where a grain of one beta is that left in a state (no ejection speed added here) so long ago; None if it has
+    /// met the Sun.
+    pub fn survivor(&self, beta: f64, start: &State, age_days: f64) -> Option<Vector3<f64>> {
+        let pull = pull_au3_d2(beta);
+        let met = perihelion_distance_au(pull, start) < RADIUS_AU
+            && Path::of(pull, start, age_days).least_distance_au < RADIUS_AU;
+        (!met).then(|| propagate(pull, start, age_days).position_au)
+    }
+
+    /// The grain at the moment seen, as [`Self::grain`], and what is doubtful about it: it has met the Sun, or gone
+    /// round it.
+    pub fn fate(&self, grain: &Grain) -> (State, Vec<Caution>) {
+        let start = self.start(grain);
+        let pull = pull_au3_d2(grain.beta);
+        let path = Path::of(pull, &start, grain.age_days);
+        let mut found = Vec::new();
+        if start.position_au.norm() < RADIUS_AU {
+            found.push(Caution::GrainStartsInSun);
+        } else if path.least_distance_au < RADIUS_AU {
+            found.push(Caution::GrainInSun { least_distance_au: path.least_distance_au });
+        }
+        if path.revolutions > 1.0 {
+            found.push(Caution::GrainRevolved { revolutions: path.revolutions });
+        }
+        (propagate(pull, &start, grain.age_days), found)
+    }
+
+    /// Angle of the observer above (+) or below the orbit plane, seen from the nucleus.
+    pub fn observer_from_orbit_plane_rad(&self) -> f64 {
+        let (normal, to_observer) = (self.orbit.normal(), -self.axes.sight);
+        libm::atan2(to_observer.dot(&normal), to_observer.cross(&normal).norm())
     }
 
     /// Gnomonic offset from the nucleus (xi east, eta north; tangent values) of a heliocentric place; None 90
@@ -73,6 +125,11 @@ impl<'a> Vista<'a> {
     pub fn offset(&self, position_au: &Vector3<f64>) -> Option<[f64; 2]> {
         tangent::project(&(position_au - self.observer_au), &self.axes)
     }
+}
+
+/// What is left of the Sun's pull: GM (1 - beta), au^3/d^2.
+pub fn pull_au3_d2(beta: f64) -> f64 {
+    SUN_GM_AU3_D2 * (1.0 - beta)
 }
 
 /// An ejection velocity (radial, transverse, normal, km/s) in equatorial components, au/day.

@@ -68,7 +68,7 @@ impl Default for Tails {
             beta_least: 0.001,
             beta_greatest: 1.0,
             age_least_days: 0.0,
-            age_greatest_days: 100.0,
+            age_greatest_days: 200.0,
             grain_density_g_cm3: 1.0,
             pressure_efficiency: 1.0,
             size_exponent: 3.5,

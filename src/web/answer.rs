@@ -6,7 +6,6 @@ use crate::caution::Weight;
 use crate::engine::{Engine, View};
 use crate::error::{Error, Place};
 use crate::orbit::notation::Entry;
-use crate::say;
 use crate::scene::quantity;
 use crate::sky::Sky;
 use crate::sky::column::{COLUMNS, Column, Value};
@@ -130,7 +129,7 @@ pub struct Reading {
 pub fn reading(engine: &Engine, time: &Stamp, view: &View, visibility: String) -> Reading {
     let sky = &view.sky;
     let plan = engine.plan();
-    let saying = say::say(plan, sky);
+    let saying = engine.saying(sky, &engine.tails_at(sky));
     let site = match &plan.observer {
         Observer::Geocentre => None,
         Observer::Site(site) => Some(SiteFields::of(site)),
