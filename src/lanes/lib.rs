@@ -8,4 +8,5 @@
 
 pub mod grid;
 pub mod row;
+pub mod solve;
 pub mod tone;

@@ -18,6 +18,7 @@ pub mod weight;
 pub mod ion;
 pub mod curve;
 pub mod neck_line;
+pub mod kernel;
 pub mod cloud;
 pub mod perspective;
 pub mod inverse;
