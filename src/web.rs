@@ -19,6 +19,7 @@ use crate::paint::canvas::CanvasPainter;
 use crate::paint::{paint, svg};
 use crate::plan::{Plan, paste};
 use crate::say;
+use crate::scene::layer::TailLayers;
 use crate::scene::theme::Theme;
 use crate::scene::view::{SkyView, Up};
 use crate::scene::{pointer, sky_plane};
@@ -262,13 +263,13 @@ impl Desk {
 
     /// Draws the sky plane; the context's transform carries the device's pixel ratio.
     pub fn draw(&self, context: &CanvasRenderingContext2d, theme: &str) {
-        let scene = sky_plane::compose(self.engine.plan(), &self.seen.sky, &self.view);
+        let scene = sky_plane::compose(self.engine.plan(), &self.seen.sky, &TailLayers::default(), &self.view);
         paint(&scene, named_theme(theme), &mut CanvasPainter::new(context));
     }
 
     /// The sky plane as an SVG file, as it stands.
     pub fn svg(&self, theme: &str) -> String {
-        let scene = sky_plane::compose(self.engine.plan(), &self.seen.sky, &self.view);
+        let scene = sky_plane::compose(self.engine.plan(), &self.seen.sky, &TailLayers::default(), &self.view);
         let saying = self.engine.saying(&self.seen.sky, &self.engine.tails_at(&self.seen.sky));
         let title = format!("{}, {}", self.engine.plan().comet.name, self.seen.sky.time.utc_minute());
         svg::write(&scene, named_theme(theme), &title, &saying.sentence)

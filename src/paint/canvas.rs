@@ -3,14 +3,18 @@
 //! Coordinates are CSS pixels: the caller sets the context's transform for the device's pixel ratio, and
 //! clears what the ground does not cover (it covers everything). Texts are held to the width that the
 //! scene reckoned with, whatever face the system has.
+//!
+//! A picture goes to the canvas straight from the memory of this module. As large as the canvas, it is put there pixel by
+//! pixel; smaller, it is put into a corner and drawn from there over its rectangle, which spares a second canvas.
 
 use super::{Ink, Painter, Stroke};
 use crate::scene::Point;
+use crate::scene::image::Image;
 use crate::scene::lettering::{Anchor, Text};
 use crate::scene::theme::Color;
 use std::f64::consts::TAU;
-use wasm_bindgen::JsValue;
-use web_sys::CanvasRenderingContext2d;
+use wasm_bindgen::{Clamped, JsValue};
+use web_sys::{CanvasRenderingContext2d, ImageData};
 
 /// Paints on a two-dimensional canvas context.
 pub struct CanvasPainter<'a> {
@@ -37,7 +41,9 @@ impl<'a> CanvasPainter<'a> {
     fn finish(&self, ink: &Ink) {
         if let Some(color) = ink.fill {
             self.context.set_fill_style_str(&color.css());
+            self.context.set_global_alpha(ink.fill_opacity);
             self.context.fill();
+            self.context.set_global_alpha(1.0);
         }
         if let Some(stroke) = &ink.stroke {
             self.pen(stroke);
@@ -50,6 +56,31 @@ impl Painter for CanvasPainter<'_> {
     fn surface(&mut self, width_px: f64, height_px: f64, fill: Color) {
         self.context.set_fill_style_str(&fill.css());
         self.context.fill_rect(0.0, 0.0, width_px, height_px);
+    }
+
+    fn image(&mut self, image: &Image) {
+        let Some(canvas) = self.context.canvas() else { return };
+        let (width, height) = (image.width as u32, image.height as u32);
+        let Ok(data) = ImageData::new_with_u8_clamped_array_and_sh(Clamped(&image.rgba[..]), width, height) else {
+            return;
+        };
+        let area = &image.area;
+        let at_origin = area.left == 0.0 && area.top == 0.0;
+        // Both fail only on a lost context; the next frame draws again.
+        let _ = self.context.put_image_data(&data, 0.0, 0.0);
+        if (canvas.width(), canvas.height()) != (width, height) || !at_origin {
+            let _ = self.context.draw_image_with_html_canvas_element_and_sw_and_sh_and_dx_and_dy_and_dw_and_dh(
+                &canvas,
+                0.0,
+                0.0,
+                f64::from(width),
+                f64::from(height),
+                area.left,
+                area.top,
+                area.width(),
+                area.height(),
+            );
+        }
     }
 
     fn lines(&mut self, lines: &[Vec<Point>], closed: bool, ink: &Ink) {

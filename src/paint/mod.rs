@@ -5,12 +5,14 @@
 
 #[cfg(target_arch = "wasm32")]
 pub mod canvas;
+pub mod png;
 pub mod record;
 pub mod svg;
 
+use crate::scene::image::Image;
 use crate::scene::lettering::Text;
 use crate::scene::theme::{Color, Look, Pen, Theme};
-use crate::scene::{Point, Scene, Shape};
+use crate::scene::{Point, Scene, Shape, Slope};
 
 /// A line as it is drawn, in pixels. Ends and joins are round.
 #[derive(Clone, Debug, PartialEq)]
@@ -22,9 +24,11 @@ pub struct Stroke {
 }
 
 /// What fills and what outlines a primitive; the fill comes first.
-#[derive(Clone, Debug, PartialEq, Default)]
+#[derive(Clone, Debug, PartialEq)]
 pub struct Ink {
     pub fill: Option<Color>,
+    /// How much the fill covers what lies under it, 0 to 1.
+    pub fill_opacity: f64,
     pub stroke: Option<Stroke>,
 }
 
@@ -32,7 +36,9 @@ pub struct Ink {
 pub trait Painter {
     /// A rectangle from the origin, the whole surface.
     fn surface(&mut self, width_px: f64, height_px: f64, fill: Color);
-    /// One or more lines under one ink, each open or closed.
+    /// Pixels stretched over a rectangle.
+    fn image(&mut self, image: &Image);
+    /// One or more lines under one ink, each open or closed. Closed ones that turn the same way are filled as one.
     fn lines(&mut self, lines: &[Vec<Point>], closed: bool, ink: &Ink);
     fn circle(&mut self, center: Point, radius_px: f64, ink: &Ink);
     /// A line of text; a stroke outlines the letters.
@@ -55,11 +61,21 @@ pub fn paint(scene: &Scene, theme: Theme, painter: &mut dyn Painter) {
                 let open = Ink { fill: None, ..ink };
                 painter.lines(std::slice::from_ref(points), false, &open);
             }
+            Shape::Lines(lines) if !lines.is_empty() => painter.lines(lines, false, &Ink { fill: None, ..ink }),
+            Shape::Patches(figures) if !figures.is_empty() => painter.lines(figures, true, &ink),
+            Shape::Lines(_) | Shape::Patches(_) => {}
+            Shape::Image(image) => painter.image(image),
             Shape::Circle { center, radius_px } => painter.circle(*center, *radius_px, &ink),
-            Shape::Hatch { outline, gap_px } => painter.lines(&diagonals(outline, *gap_px), false, &ink),
+            Shape::Hatch { outlines, gap_px, slope } => {
+                let lines: Vec<_> = outlines.iter().flat_map(|one| diagonals(one, *gap_px, *slope)).collect();
+                if !lines.is_empty() {
+                    painter.lines(&lines, false, &ink);
+                }
+            }
             Shape::Text(text) => {
                 if let Some(pen) = &look.halo {
-                    painter.text(text, &Ink { fill: None, stroke: Some(stroke(pen, scene.unit_px)) });
+                    painter
+                        .text(text, &Ink { fill: None, fill_opacity: 1.0, stroke: Some(stroke(pen, scene.unit_px)) });
                 }
                 painter.text(text, &ink);
             }
@@ -68,7 +84,7 @@ pub fn paint(scene: &Scene, theme: Theme, painter: &mut dyn Painter) {
 }
 
 fn ink(look: &Look, unit_px: f64) -> Ink {
-    Ink { fill: look.fill, stroke: look.pen.as_ref().map(|pen| stroke(pen, unit_px)) }
+    Ink { fill: look.fill, fill_opacity: look.fill_opacity, stroke: look.pen.as_ref().map(|pen| stroke(pen, unit_px)) }
 }
 
 fn stroke(pen: &Pen, unit_px: f64) -> Stroke {
@@ -79,11 +95,12 @@ fn stroke(pen: &Pen, unit_px: f64) -> Stroke {
     }
 }
 
-/// Rising diagonals inside a convex outline, `gap_px` apart and fixed to the page, so that the hatch does
-/// not swim when its outline turns.
-fn diagonals(outline: &[Point], gap_px: f64) -> Vec<Vec<Point>> {
-    // On a rising diagonal x + y is constant.
-    let level = |p: Point| p[0] + p[1];
+/// Diagonals inside a convex outline, `gap_px` apart and fixed to the page, so that the hatch does not swim when
+/// its outline turns, and runs on from one outline to the next.
+fn diagonals(outline: &[Point], gap_px: f64, slope: Slope) -> Vec<Vec<Point>> {
+    // On a rising diagonal x + y is constant, on a falling one x - y.
+    let sign = if slope == Slope::Rising { 1.0 } else { -1.0 };
+    let level = |p: Point| p[0] + sign * p[1];
     let step = gap_px * std::f64::consts::SQRT_2;
     let lowest = outline.iter().copied().map(level).fold(f64::INFINITY, f64::min);
     let highest = outline.iter().copied().map(level).fold(f64::NEG_INFINITY, f64::max);

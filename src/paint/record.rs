@@ -4,6 +4,7 @@
 
 use super::{Ink, Painter};
 use crate::scene::Point;
+use crate::scene::image::Image;
 use crate::scene::lettering::Text;
 use crate::scene::theme::Color;
 
@@ -11,6 +12,7 @@ use crate::scene::theme::Color;
 #[derive(Clone, Debug, PartialEq)]
 pub enum Call {
     Surface { width_px: f64, height_px: f64, fill: Color },
+    Image { image: Image },
     Lines { lines: Vec<Vec<Point>>, closed: bool, ink: Ink },
     Circle { center: Point, radius_px: f64, ink: Ink },
     Text { text: Text, ink: Ink },
@@ -25,6 +27,10 @@ pub struct Recorder {
 impl Painter for Recorder {
     fn surface(&mut self, width_px: f64, height_px: f64, fill: Color) {
         self.calls.push(Call::Surface { width_px, height_px, fill });
+    }
+
+    fn image(&mut self, image: &Image) {
+        self.calls.push(Call::Image { image: image.clone() });
     }
 
     fn lines(&mut self, lines: &[Vec<Point>], closed: bool, ink: &Ink) {

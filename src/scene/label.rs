@@ -107,6 +107,11 @@ impl Room {
         placed
     }
 
+    /// Whether a leader runs through a box.
+    pub fn meets_leader(&self, area: &Rect) -> bool {
+        self.leaders.iter().any(|[a, b]| area.cuts(*a, *b))
+    }
+
     fn alone(&mut self, wish: &Wish) -> Option<Placed> {
         let placed = self
             .cheapest(wish, self.around(wish), Rules::Strict)

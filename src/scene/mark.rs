@@ -3,6 +3,7 @@
 //! | direction | end mark |
 //! | --- | --- |
 //! | antisolar | open ring |
+//! | ion axis | split tail, at the end of a wedge |
 //! | negative velocity | cross bar |
 //! | sky motion | chevron |
 //! | zenith | small triangle, pointing outward |
@@ -20,9 +21,10 @@ pub const fn reach(direction: Direction) -> f64 {
     match direction {
         Direction::Sunward => 1.0,
         Direction::Antisolar => 0.88,
-        Direction::NegativeVelocity => 0.76,
-        Direction::SkyMotion => 0.64,
-        Direction::Zenith => 0.52,
+        Direction::IonAxis => 0.76,
+        Direction::NegativeVelocity => 0.64,
+        Direction::SkyMotion => 0.52,
+        Direction::Zenith => 0.40,
     }
 }
 
@@ -31,6 +33,7 @@ pub const fn words(direction: Direction) -> &'static str {
     match direction {
         Direction::Sunward => "toward the Sun",
         Direction::Antisolar => "antisolar",
+        Direction::IonAxis => "ion axis",
         Direction::NegativeVelocity => "negative velocity",
         Direction::SkyMotion => "sky motion",
         Direction::Zenith => "zenith",
@@ -56,6 +59,11 @@ pub fn draw(scene: &mut Scene, direction: Direction, center: Point, outward: Poi
     match direction {
         Direction::Antisolar => {
             scene.add(outline, Shape::Circle { center, radius_px: half * 0.8 });
+        }
+        Direction::IonAxis => {
+            let fork = vec![point(0.9, -0.75), point(-0.2, 0.0), point(0.9, 0.75)];
+            scene.add(outline, Shape::Polyline(fork));
+            scene.add(outline, Shape::Polyline(vec![point(-0.9, 0.0), point(-0.2, 0.0)]));
         }
         Direction::NegativeVelocity => {
             scene.add(outline, Shape::Polyline(vec![point(0.0, -1.0), point(0.0, 1.0)]));

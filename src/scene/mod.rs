@@ -4,22 +4,34 @@
 //! origin at the upper left corner) and a role, which says what it means. What a role looks like is the
 //! business of [`theme`]; where the sky falls on the page, of [`view`]; how a node becomes a call or a
 //! line of SVG, of [`crate::paint`]. A scene holds no colour, and a theme moves nothing: the same scene
-//! serves every theme.
+//! serves every theme. The one exception is a picture of dust, whose pixels were coloured on the way
+//! ([`image`]).
 //!
-//! A drawing is made by one function per view, such as [`sky_plane::compose`]. New drawings (a strip of a
-//! season, an orbit seen from its pole) need new roles, not new shapes.
+//! A drawing is made by one function per view: [`sky_plane::compose`], [`orbit_view::compose`],
+//! [`sheet_map::compose`]. New drawings need new roles, not new shapes.
 
+pub mod clip;
+pub mod image;
+pub mod isophote;
 pub mod label;
+pub mod layer;
 pub mod lettering;
 pub mod mark;
 pub mod note;
+pub mod orbit_view;
+pub mod panel;
 pub mod pointer;
 pub mod quantity;
+pub mod sheet;
+pub mod sheet_map;
 pub mod sky_plane;
+pub mod spot;
+pub mod tail_plane;
 pub mod theme;
 pub mod vane;
 pub mod view;
 
+use image::Image;
 use lettering::Text;
 
 /// A place on the page: x to the right, y down, pixels.
@@ -55,22 +67,44 @@ pub enum Shape {
         center: Point,
         radius_px: f64,
     },
-    /// Parallel rising diagonals, `gap_px` apart, inside a convex outline.
+    /// Several open lines under one look.
+    Lines(Vec<Vec<Point>>),
+    /// Several closed figures, filled as one: where they overlap, no darker.
+    Patches(Vec<Vec<Point>>),
+    /// Parallel diagonals, `gap_px` apart and fixed to the page, inside convex outlines.
     Hatch {
-        outline: Vec<Point>,
+        outlines: Vec<Vec<Point>>,
         gap_px: f64,
+        slope: Slope,
     },
+    Image(Image),
     Text(Text),
+}
+
+/// Which way a diagonal runs, read from left to right.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Slope {
+    Rising,
+    Falling,
 }
 
 /// A direction on the sky that has a hand or a mark of its own.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
 pub enum Direction {
     Antisolar,
+    IonAxis,
     NegativeVelocity,
     SkyMotion,
     Zenith,
     Sunward,
+}
+
+/// A kind of curve along which dust lies.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
+pub enum Family {
+    Syndyne,
+    Synchrone,
+    NeckLine,
 }
 
 /// What a node means.
@@ -78,6 +112,9 @@ pub enum Direction {
 pub enum Role {
     /// The empty sky.
     Ground,
+    /// Surface density of the dust, instead of the empty sky.
+    DustPicture,
+    Isophote,
     /// The half of the sky within 90 degrees of the Sun's direction, and its straight edge.
     SunwardHalf,
     SunwardEdge,
@@ -98,6 +135,40 @@ pub enum Role {
     /// From an end mark to its label.
     Leader(Direction),
     Label(Direction),
+    /// The range of directions in which the ion tail may lie, and its two edges.
+    Wedge,
+    WedgeEdge,
+    Curve(Family),
+    CurveLabel(Family),
+    /// Dust of the sheet that lies in the anti-tail sector: where it is broad, where it is a thin line, and its hatch.
+    TowardSun,
+    TowardSunLine,
+    TowardSunHatch,
+    /// The comet's way about the Sun, and the arrow of its motion.
+    OrbitPath,
+    OrbitArrow,
+    /// The orbit plane seen edge-on.
+    PlaneLine,
+    /// From the observer to the comet, and beyond.
+    SightLine,
+    /// What helps the eye from one place to another.
+    Guide,
+    /// The angle of the observer from the orbit plane.
+    Angle,
+    /// The dust sheet in the orbit plane: its area, its rim, and where it is seen edge-on.
+    Sheet,
+    SheetRim,
+    SheetEdgeOn,
+    /// The observer's place.
+    Observer,
+    /// Name of a place or line.
+    PlaceLabel,
+    /// Brightness of a cell, from 0 (none) to [`theme::TONES`] - 1.
+    Tone(u8),
+    /// Hatch over cells.
+    MapHatch,
+    /// Frame and ticks of a map.
+    Axis,
     ScaleBar,
     /// Name of what is drawn.
     Title,

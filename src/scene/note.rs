@@ -28,9 +28,10 @@ pub struct Notes {
 }
 
 impl Notes {
-    pub fn of(scene: &Scene, plan: &Plan, sky: &Sky, view: &SkyView, facing: &Facing) -> Self {
+    /// `crossed` tells whether dust toward the Sun is cross-hatched.
+    pub fn of(scene: &Scene, plan: &Plan, sky: &Sky, view: &SkyView, facing: &Facing, crossed: bool) -> Self {
         let mut notes = Notes { texts: Vec::new(), bar: Vec::new() };
-        notes.write_top(scene, plan, sky, view);
+        notes.write_top(scene, plan, sky, view, crossed);
         notes.write_bottom(scene, sky, view, facing);
         notes
     }
@@ -51,7 +52,7 @@ impl Notes {
         }
     }
 
-    fn write_top(&mut self, scene: &Scene, plan: &Plan, sky: &Sky, view: &SkyView) {
+    fn write_top(&mut self, scene: &Scene, plan: &Plan, sky: &Sky, view: &SkyView, crossed: bool) {
         let unit = scene.unit_px;
         let (margin, size, title_size) = (MARGIN * unit, SIZE * unit, TITLE_SIZE * unit);
         let [across, down] = view.field_rad();
@@ -64,8 +65,13 @@ impl Notes {
             let at = [at[0], at[1] + LINE * size];
             corner.push(Text { words: "hatched: sunward half".to_string(), at, ..corner[0].clone() });
         }
+        if crossed {
+            let at = [at[0], at[1] + LINE * size * corner.len() as f64];
+            corner.push(Text { words: "crossed: dust there".to_string(), at, ..corner[0].clone() });
+        }
         let corner_left = corner.iter().map(|text| text.area().left).fold(scene.width_px, f64::min);
         let title_limit = corner_left - 2.0 * margin;
+        let below_corner = margin + ABOVE * title_size + LINE * size * corner.len() as f64;
         self.texts.extend(corner.into_iter().map(|text| (Role::Note, text)));
 
         let mut lines = wrapped(&plan.comet.name, title_limit, title_size, true);
@@ -87,6 +93,10 @@ impl Notes {
         }
 
         let limit = (LONGEST * unit).min(scene.width_px - 2.0 * margin);
+        // Where a long line would reach under the corner, it stands below it.
+        if margin + limit > corner_left - margin {
+            baseline = baseline.max(below_corner);
+        }
         for (role, words) in absences(sky, view) {
             for line in wrapped(&words, limit, size, false) {
                 self.put(role, line, [margin, baseline], size, false);
@@ -133,7 +143,7 @@ impl Notes {
 }
 
 /// A line cut to a width, with an ellipsis where letters are lost.
-fn shortened(words: String, limit_px: f64, size_px: f64) -> String {
+pub fn shortened(words: String, limit_px: f64, size_px: f64) -> String {
     if width_px(&words, size_px, true) <= limit_px {
         return words;
     }

@@ -3,6 +3,7 @@
 //! For people: rounded to what the drawing can show. Full precision is in the table and the files.
 
 use crate::frame::turn;
+use crate::time::Instant;
 
 /// Kilometres in one astronomical unit, exact (IAU 2012 resolution B2).
 pub const KM_PER_AU: f64 = 149_597_870.7;
@@ -28,6 +29,55 @@ pub fn arc(angle_rad: f64) -> String {
         _ => 3,
     };
     format!("{value:.decimals$}{sign}")
+}
+
+/// A position angle in whole degrees, from 0 to 359, with the degree sign.
+pub fn whole_position_angle(angle_rad: f64) -> String {
+    format!("{}°", turn(angle_rad).to_degrees().round() as i64 % 360)
+}
+
+/// A ratio of radiation pressure to gravity: `β 0.03`. The space does not break.
+pub fn beta(beta: f64) -> String {
+    format!("β\u{a0}{}", figures(beta))
+}
+
+/// An age: `30 d`. The space does not break.
+pub fn age(days: f64) -> String {
+    format!("{}\u{a0}d", figures(days))
+}
+
+/// At most three significant figures, without an exponent.
+pub fn figures(value: f64) -> String {
+    if value == 0.0 || !value.is_finite() {
+        return "0".to_string();
+    }
+    let magnitude = libm::floor(libm::log10(value.abs())) as i32;
+    let decimals = (2 - magnitude).clamp(0, 12) as usize;
+    let plain = format!("{value:.decimals$}");
+    if plain.contains('.') { plain.trim_end_matches('0').trim_end_matches('.').to_string() } else { plain }
+}
+
+/// A day of the calendar, UTC, with its year: `26 Feb 2031`.
+pub fn day_of_year(time: Instant) -> String {
+    const MONTHS: [&str; 12] = ["Jan", "Feb", "Mar", "Apr", "May", "Jun", "Jul", "Aug", "Sep", "Oct", "Nov", "Dec"];
+    let date = time.utc_minute();
+    let mut parts = date.split([' ', '-']);
+    let found = (|| {
+        let year = parts.next()?;
+        let month: usize = parts.next()?.parse().ok()?;
+        let day: u32 = parts.next()?.parse().ok()?;
+        Some(format!("{day}\u{a0}{}\u{a0}{year}", MONTHS.get(month.checked_sub(1)?)?))
+    })();
+    found.unwrap_or(date)
+}
+
+/// A day of the calendar, UTC: `26 Feb`.
+pub fn day(time: Instant) -> String {
+    let whole = day_of_year(time);
+    match whole.rsplit_once('\u{a0}') {
+        Some((day, _)) => day.to_string(),
+        None => whole,
+    }
 }
 
 /// A length in km with three figures: `541 000 km`, `1.23 million km`. The spaces do not break.

@@ -1,23 +1,33 @@
-//! How does the sky around the nucleus look: directions, sunward half, scale?
+//! How does the sky around the nucleus look: directions, tails, sunward half, scale?
 //!
-//! Painting order: ground, hatch of the sunward half, ring, hands, nucleus, marks, leaders, notes, labels,
-//! letters, numbers. The ring keeps its size on the page at every zoom: it shows directions, not distances.
-//! Texts are placed by rank: notes keep to the edges, letters to the ring, labels find room, numbers are
-//! left out where anything else stands.
+//! Painting order: ground or dust picture, hatch of the sunward half, what [`super::tail_plane`] lays under the ring,
+//! ring, wedge, hands, nucleus, marks, leaders, notes, labels, letters, numbers. The ring keeps its size on the
+//! page at every zoom: it shows directions, not distances. Texts are placed by rank before anything is drawn: notes
+//! keep to the edges, letters to the ring, labels of hands find room, labels of curves take what is left, numbers are
+//! left out where anything else stands; then every curve makes room for every text.
 
 use super::label::{Placed, Room, Wish};
+use super::layer::TailLayers;
 use super::lettering::{ABOVE, Anchor, BELOW, LINE, Rect, Text, width_px};
 use super::note::{MARGIN, Notes};
+use super::sheet::TowardSun;
+use super::spot::PageCurve;
 use super::vane::Vane;
 use super::view::{Facing, SkyView};
-use super::{Direction, Point, Role, Scene, Shape, mark, quantity};
+use super::{Direction, Node, Point, Role, Scene, Shape, Slope, mark, quantity, spot, tail_plane};
 use crate::caution::Caution;
 use crate::plan::Plan;
 use crate::sky::Sky;
 
 /// Order of labels: the first keep the better places.
-const RANK: [Direction; 5] =
-    [Direction::Antisolar, Direction::NegativeVelocity, Direction::Sunward, Direction::SkyMotion, Direction::Zenith];
+const RANK: [Direction; 6] = [
+    Direction::Antisolar,
+    Direction::IonAxis,
+    Direction::NegativeVelocity,
+    Direction::Sunward,
+    Direction::SkyMotion,
+    Direction::Zenith,
+];
 const LABEL_SIZE: f64 = 13.5;
 /// Between the diagonals of the sunward half, in drawing units.
 const HATCH_GAP: f64 = 9.0;
@@ -30,23 +40,47 @@ struct Hand {
     position_angle_rad: f64,
     /// Where the direction lies almost along the line of sight.
     uncertainty_deg: Option<f64>,
+    /// The directions that a wedge spans, in words.
+    range: Option<String>,
     /// Unit step away from the nucleus.
     step: Point,
     /// Centre of the end mark.
     end: Point,
 }
 
-/// The drawing of `sky` for the comet of `plan`, as `view` asks.
-pub fn compose(plan: &Plan, sky: &Sky, view: &SkyView) -> Scene {
+/// The drawing of `sky` with its `tails` for the comet of `plan`, as `view` asks.
+pub fn compose(plan: &Plan, sky: &Sky, tails: &TailLayers, view: &SkyView) -> Scene {
     let mut scene = Scene::new(view.width_px, view.height_px);
     let facing = view.facing(sky);
     let vane = Vane::of(&scene, &facing);
-    let notes = Notes::of(&scene, plan, sky, view, &facing);
-    let hands = if vane.is_in_sight(&scene) { hands(sky, &facing, &vane) } else { Vec::new() };
+    let page = page(&scene);
+    let toward_sun = toward_sun(sky, tails, &facing, &page, scene.unit_px);
+    let crossed = !toward_sun.is_empty();
+    let notes = Notes::of(&scene, plan, sky, view, &facing, crossed);
+    let hands = if vane.is_in_sight(&scene) { hands(sky, tails, &facing, &vane) } else { Vec::new() };
+    let curves = tail_plane::curves(tails, &facing, &page);
+    let writing = Writing::of(&scene, &facing, &vane, notes, &hands, &curves);
 
+    if let Some(image) = &tails.picture {
+        let node = Node { role: Role::DustPicture, shape: Shape::Image(image.clone()) };
+        // A picture that covers the page spares the ground.
+        if image.covers(scene.width_px, scene.height_px) {
+            scene.nodes[0] = node;
+        } else {
+            scene.nodes.push(node);
+        }
+    }
     hatch_sunward_half(&mut scene, sky, &facing);
+    tail_plane::draw(&mut scene, tails, toward_sun, &curves, &writing.areas());
     if vane.is_in_sight(&scene) {
         vane.draw(&mut scene, &facing);
+        tail_plane::draw_wedge(
+            &mut scene,
+            tails,
+            &facing,
+            vane.center,
+            vane.radius_px * mark::reach(Direction::IonAxis),
+        );
     }
     // The shorter hands come last: where two fall together, each pattern shows from its own length inward.
     for hand in hands.iter().filter(|hand| hand.direction != Direction::Sunward) {
@@ -59,14 +93,29 @@ pub fn compose(plan: &Plan, sky: &Sky, view: &SkyView) -> Scene {
     for hand in &hands {
         mark::draw(&mut scene, hand.direction, hand.end, hand.step);
     }
-    write(&mut scene, &facing, &vane, notes, &hands);
+    writing.draw(&mut scene);
     scene
 }
 
+fn page(scene: &Scene) -> Rect {
+    Rect { left: 0.0, top: 0.0, right: scene.width_px, bottom: scene.height_px }
+}
+
+/// The dust of the sheet in the anti-tail sector; none where there is no such sector, or its layer is off.
+fn toward_sun(sky: &Sky, tails: &TailLayers, facing: &Facing, page: &Rect, unit_px: f64) -> TowardSun {
+    match (&tails.sheet, sunward_rad(sky)) {
+        (Some(sheet), Some(sunward)) => {
+            sheet.toward_sun(facing, sunward, tails.anti_tail_half_width_rad, page, unit_px)
+        }
+        _ => TowardSun::default(),
+    }
+}
+
 /// The directions that exist for `sky`.
-fn hands(sky: &Sky, facing: &Facing, vane: &Vane) -> Vec<Hand> {
+fn hands(sky: &Sky, tails: &TailLayers, facing: &Facing, vane: &Vane) -> Vec<Hand> {
     let angle = |direction| match direction {
         Direction::Antisolar => sky.antisolar_position_angle_rad,
+        Direction::IonAxis => tail_plane::wedge_rad(tails).map(|(axis, _)| axis),
         Direction::Sunward => sunward_rad(sky),
         Direction::NegativeVelocity => sky.negative_velocity_position_angle_rad,
         Direction::SkyMotion => sky.motion_position_angle_rad,
@@ -80,6 +129,12 @@ fn hands(sky: &Sky, facing: &Facing, vane: &Vane) -> Vec<Hand> {
                 direction,
                 position_angle_rad,
                 uncertainty_deg: uncertainty_deg(sky, direction),
+                range: match direction {
+                    Direction::IonAxis => {
+                        tail_plane::wedge_rad(tails).map(|(axis, reach)| tail_plane::wedge_range(axis, reach))
+                    }
+                    _ => None,
+                },
                 step,
                 end: vane.point(step, mark::reach(direction)),
             })
@@ -92,7 +147,7 @@ fn uncertainty_deg(sky: &Sky, direction: Direction) -> Option<f64> {
     let named = match direction {
         Direction::Antisolar | Direction::Sunward => "antisolar direction",
         Direction::NegativeVelocity => "negative velocity",
-        Direction::SkyMotion | Direction::Zenith => return None,
+        Direction::IonAxis | Direction::SkyMotion | Direction::Zenith => return None,
     };
     sky.cautions.iter().find_map(|caution| match caution {
         Caution::AngleLoose { quantity, uncertainty_deg } if *quantity == named && *uncertainty_deg >= 0.1 => {
@@ -131,57 +186,78 @@ fn hatch_sunward_half(scene: &mut Scene, sky: &Sky, facing: &Facing) {
         }
     }
     if outline.len() >= 3 {
-        scene.add(Role::SunwardHalf, Shape::Hatch { outline, gap_px: HATCH_GAP * scene.unit_px });
+        let gap_px = HATCH_GAP * scene.unit_px;
+        scene.add(Role::SunwardHalf, Shape::Hatch { outlines: vec![outline], gap_px, slope: Slope::Rising });
     }
     if edge.len() == 2 {
         scene.add(Role::SunwardEdge, Shape::Polyline(edge));
     }
 }
 
-/// Places and writes every text: notes, labels with their leaders, letters, numbers.
-fn write(scene: &mut Scene, facing: &Facing, vane: &Vane, notes: Notes, hands: &[Hand]) {
-    let unit = scene.unit_px;
-    let page = Rect { left: 0.0, top: 0.0, right: scene.width_px, bottom: scene.height_px };
-    let mut room = Room::new(page.grown(-0.5 * MARGIN * unit), vane.center, vane.radius_px, unit);
-    room.taken.extend(notes.areas());
-    let in_sight = vane.is_in_sight(scene);
-    let letters: Vec<Text> = if in_sight { vane.letters(scene, facing) } else { Vec::new() };
-    let letters: Vec<Text> = letters
-        .into_iter()
-        .filter(|letter| page.contains(&letter.area()) && !room.taken.iter().any(|area| area.overlaps(&letter.area())))
-        .collect();
-    room.taken.extend(letters.iter().map(Text::area));
-    room.taken.extend(hands.iter().map(|hand| mark::area(hand.end, unit)));
-    room.taken.push(Rect::around(vane.center, 8.0 * unit, 8.0 * unit));
-    room.hands.extend(hands.iter().map(|hand| [vane.center, hand.end]));
+/// Every text of a drawing, placed, and the leaders of labels.
+struct Writing {
+    notes: Notes,
+    leaders: Vec<(Role, Vec<Point>)>,
+    /// Labels of hands and curves, letters, numbers.
+    texts: Vec<(Role, Text)>,
+}
 
-    notes.draw(scene);
-    // A direction whose mark is off the page keeps its place in the table only.
-    let hands: Vec<&Hand> = hands.iter().filter(|hand| page.grown(-4.0).holds(hand.end)).collect();
-    let wishes: Vec<Wish> = hands.iter().map(|hand| wish(hand, vane, &page, unit)).collect();
-    let placed = room.place(&wishes);
-    let mut leaders = Vec::new();
-    let mut labels = Vec::new();
-    for ((hand, wish), placed) in hands.iter().zip(&wishes).zip(placed) {
-        let Some(placed) = placed else { continue };
-        labels.extend(lines_of(hand, &placed, unit));
-        leaders.extend(leader(hand, wish, &placed, unit).map(|line| (Role::Leader(hand.direction), line)));
+impl Writing {
+    fn of(scene: &Scene, facing: &Facing, vane: &Vane, notes: Notes, hands: &[Hand], curves: &[PageCurve]) -> Self {
+        let unit = scene.unit_px;
+        let page = page(scene);
+        let mut room = Room::new(page.grown(-0.5 * MARGIN * unit), vane.center, vane.radius_px, unit);
+        room.taken.extend(notes.areas());
+        let in_sight = vane.is_in_sight(scene);
+        let letters: Vec<Text> = if in_sight { vane.letters(scene, facing) } else { Vec::new() };
+        let free = |letter: &Text| {
+            page.contains(&letter.area()) && !room.taken.iter().any(|area| area.overlaps(&letter.area()))
+        };
+        let letters: Vec<Text> = letters.into_iter().filter(free).collect();
+        room.taken.extend(letters.iter().map(Text::area));
+        room.taken.extend(hands.iter().map(|hand| mark::area(hand.end, unit)));
+        room.taken.push(Rect::around(vane.center, 8.0 * unit, 8.0 * unit));
+        room.hands.extend(hands.iter().map(|hand| [vane.center, hand.end]));
+
+        let mut writing = Writing { notes, leaders: Vec::new(), texts: Vec::new() };
+        // A direction whose mark is off the page keeps its place in the table only.
+        let hands: Vec<&Hand> = hands.iter().filter(|hand| page.grown(-4.0).holds(hand.end)).collect();
+        let wishes: Vec<Wish> = hands.iter().map(|hand| wish(hand, vane, &page, unit)).collect();
+        let placed = room.place(&wishes);
+        for ((hand, wish), placed) in hands.iter().zip(&wishes).zip(placed) {
+            let Some(placed) = placed else { continue };
+            writing.texts.extend(lines_of(hand, &placed, unit));
+            let leader = leader(hand, wish, &placed, unit);
+            writing.leaders.extend(leader.map(|line| (Role::Leader(hand.direction), line)));
+        }
+        let spots = spot::find(&mut room, curves);
+        writing.texts.extend(tail_plane::labels(curves, &spots, unit));
+        writing.texts.extend(letters.into_iter().map(|letter| (Role::Cardinal, letter)));
+        let numbers: Vec<Text> = if in_sight { vane.numbers(scene, facing) } else { Vec::new() };
+        for number in numbers {
+            let area = number.area().grown(2.0 * unit);
+            let lines = writing.leaders.iter().flat_map(|(_, line)| line.windows(2));
+            let crossed = lines.into_iter().any(|ends| area.cuts(ends[0], ends[1]));
+            if page.contains(&area) && !crossed && !room.taken.iter().any(|taken| taken.overlaps(&area)) {
+                writing.texts.push((Role::DialNumber, number));
+            }
+        }
+        writing
     }
-    for (role, line) in &leaders {
-        scene.add(*role, Shape::Polyline(line.clone()));
+
+    /// The boxes that lines keep clear of.
+    fn areas(&self) -> Vec<Rect> {
+        let texts = self.texts.iter().map(|(_, text)| text.area().grown(2.0));
+        self.notes.areas().map(|area| area.grown(2.0)).chain(texts).collect()
     }
-    for (role, text) in labels {
-        scene.add(role, Shape::Text(text));
-    }
-    for text in letters {
-        scene.add(Role::Cardinal, Shape::Text(text));
-    }
-    let numbers: Vec<Text> = if in_sight { vane.numbers(scene, facing) } else { Vec::new() };
-    for number in numbers {
-        let area = number.area().grown(2.0 * unit);
-        let crossed = leaders.iter().any(|(_, line)| line.windows(2).any(|ends| area.cuts(ends[0], ends[1])));
-        if page.contains(&area) && !crossed && !room.taken.iter().any(|taken| taken.overlaps(&area)) {
-            scene.add(Role::DialNumber, Shape::Text(number));
+
+    fn draw(self, scene: &mut Scene) {
+        self.notes.draw(scene);
+        for (role, line) in self.leaders {
+            scene.add(role, Shape::Polyline(line));
+        }
+        for (role, text) in self.texts {
+            scene.add(role, Shape::Text(text));
         }
     }
 }
@@ -189,6 +265,10 @@ fn write(scene: &mut Scene, facing: &Facing, vane: &Vane, notes: Notes, hands: &
 /// The label of a hand on one line, and in two parts.
 fn words(hand: &Hand) -> (String, [String; 2]) {
     let name = mark::words(hand.direction);
+    if let Some(range) = &hand.range {
+        let named = format!("{name} {}", quantity::whole_position_angle(hand.position_angle_rad));
+        return (format!("{named} ({range})"), [named, range.clone()]);
+    }
     let mut angle = quantity::position_angle(hand.position_angle_rad);
     if let Some(uncertainty_deg) = hand.uncertainty_deg {
         let decimals = if uncertainty_deg < 0.95 { 1 } else { 0 };

@@ -8,7 +8,7 @@
 //! Contrast (tested): every text at least 4.5:1 and every control border at least 3:1 on its ground, by
 //! WCAG 2.2 relative luminance.
 
-use super::{Direction, Role};
+use super::{Direction, Family, Role};
 
 /// A colour scheme.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -39,10 +39,27 @@ pub struct Pen {
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Look {
     pub fill: Option<Color>,
+    /// How much the fill covers what lies under it, 0 to 1.
+    pub fill_opacity: f64,
     pub pen: Option<Pen>,
     /// Outline behind a text that keeps it readable on lines.
     pub halo: Option<Pen>,
 }
+
+/// Nothing at all.
+const BARE: Look = Look { fill: None, fill_opacity: 1.0, pen: None, halo: None };
+
+/// A colour of the tone map, and the brightness from 0 to 1 that it stands for; in between runs a straight line.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Stop {
+    pub at: f64,
+    pub color: Color,
+}
+
+/// Steps of brightness that a cell of a map may have ([`Role::Tone`]).
+pub const TONES: u8 = 12;
+/// Cells of a map use the tone map up to here, so that a hatch stands out on the brightest.
+const BRIGHTEST_CELL: f64 = 0.62;
 
 /// Every colour of a theme. Names say what a colour is for.
 struct Palette {
@@ -61,6 +78,20 @@ struct Palette {
     sky_motion: Color,
     zenith: Color,
     sunward: Color,
+    ion: Color,
+    syndyne: Color,
+    synchrone: Color,
+    neck_line: Color,
+    isophote: Color,
+    /// Shading of dust toward the Sun, and its hatch.
+    toward_sun: Color,
+    /// The dust sheet in the orbit view.
+    sheet: Color,
+    dust: [Stop; 5],
+}
+
+const fn stop(at: f64, hex: u32) -> Stop {
+    Stop { at, color: rgb(hex) }
 }
 
 const fn rgb(hex: u32) -> Color {
@@ -84,6 +115,15 @@ const DARK: Palette = Palette {
     sky_motion: rgb(0x98a2b3),
     zenith: rgb(0xb9d36c),
     sunward: rgb(0xc4b6a6),
+    ion: rgb(0x8ea6ff),
+    syndyne: rgb(0xd9b38c),
+    synchrone: rgb(0xd98ca0),
+    neck_line: rgb(0xe4e6da),
+    isophote: rgb(0x8a7660),
+    toward_sun: rgb(0xe0a860),
+    sheet: rgb(0xd9b38c),
+    // The first stop is the ground: a sky without dust stays dark.
+    dust: [stop(0.0, 0x0a0d12), stop(0.1, 0x1a130d), stop(0.45, 0x5e452e), stop(0.8, 0xcba478), stop(1.0, 0xfff1d6)],
 };
 
 const RED: Palette = Palette {
@@ -102,6 +142,14 @@ const RED: Palette = Palette {
     sky_motion: rgb(0xff0000),
     zenith: rgb(0xff0000),
     sunward: rgb(0xff0000),
+    ion: rgb(0xff0000),
+    syndyne: rgb(0xff0000),
+    synchrone: rgb(0xff0000),
+    neck_line: rgb(0xff0000),
+    isophote: rgb(0x8c0000),
+    toward_sun: rgb(0xd00000),
+    sheet: rgb(0xff0000),
+    dust: [stop(0.0, 0x000000), stop(0.1, 0x140000), stop(0.45, 0x4c0000), stop(0.8, 0xa60000), stop(1.0, 0xff0000)],
 };
 
 const PAPER: Palette = Palette {
@@ -120,6 +168,14 @@ const PAPER: Palette = Palette {
     sky_motion: rgb(0x4f5866),
     zenith: rgb(0x4b6200),
     sunward: rgb(0x6b5a48),
+    ion: rgb(0x2f4bc0),
+    syndyne: rgb(0x7a5222),
+    synchrone: rgb(0x9c3550),
+    neck_line: rgb(0x2e3440),
+    isophote: rgb(0xa08a6c),
+    toward_sun: rgb(0xa86a1c),
+    sheet: rgb(0x9a7040),
+    dust: [stop(0.0, 0xffffff), stop(0.1, 0xf8f2e8), stop(0.45, 0xe3cfae), stop(0.8, 0xb28a5a), stop(1.0, 0x6e4d26)],
 };
 
 impl Color {
@@ -133,9 +189,20 @@ impl Color {
 const fn dashes(direction: Direction) -> &'static [f64] {
     match direction {
         Direction::Antisolar | Direction::Sunward => &[],
+        // The thin line in the middle of the wedge.
+        Direction::IonAxis => &[],
         Direction::NegativeVelocity => &[13.0, 7.0],
         Direction::SkyMotion => &[0.1, 5.5],
         Direction::Zenith => &[8.0, 5.0, 0.1, 5.0],
+    }
+}
+
+/// Line pattern of a curve of dust.
+const fn curve_dashes(family: Family) -> &'static [f64] {
+    match family {
+        Family::Syndyne => &[],
+        Family::Synchrone => &[4.5, 4.0],
+        Family::NeckLine => &[9.0, 4.0, 0.1, 4.0, 0.1, 4.0],
     }
 }
 
@@ -185,6 +252,11 @@ impl Theme {
             ("--sky-motion", p.sky_motion),
             ("--zenith", p.zenith),
             ("--sunward", p.sunward),
+            ("--ion", p.ion),
+            ("--syndyne", p.syndyne),
+            ("--synchrone", p.synchrone),
+            ("--neck-line", p.neck_line),
+            ("--toward-sun", p.toward_sun),
         ]
         .map(|(name, color)| (name, color.css()))
         .to_vec();
@@ -201,41 +273,99 @@ impl Theme {
             Direction::SkyMotion => p.sky_motion,
             Direction::Zenith => p.zenith,
             Direction::Sunward => p.sunward,
+            Direction::IonAxis => p.ion,
+        }
+    }
+
+    fn curve(self, family: Family) -> Color {
+        let p = self.palette();
+        match family {
+            Family::Syndyne => p.syndyne,
+            Family::Synchrone => p.synchrone,
+            Family::NeckLine => p.neck_line,
+        }
+    }
+
+    /// The colours of surface density, from none (the ground) to the brightest, in rising order.
+    pub fn dust_stops(self) -> [Stop; 5] {
+        self.palette().dust
+    }
+
+    /// The colour of a brightness from 0 to 1 by [`Self::dust_stops`].
+    pub fn dust_color(self, brightness: f64) -> Color {
+        let stops = self.dust_stops();
+        let after = stops.iter().position(|stop| stop.at >= brightness).unwrap_or(stops.len() - 1).max(1);
+        let (a, b) = (stops[after - 1], stops[after]);
+        let share = ((brightness - a.at) / (b.at - a.at)).clamp(0.0, 1.0);
+        let mix = |a: u8, b: u8| (f64::from(a) + (f64::from(b) - f64::from(a)) * share).round() as u8;
+        Color {
+            red: mix(a.color.red, b.color.red),
+            green: mix(a.color.green, b.color.green),
+            blue: mix(a.color.blue, b.color.blue),
         }
     }
 
     /// The look of a role.
     pub fn look(self, role: Role) -> Look {
         let p = self.palette();
-        let line = |color, width| Look { fill: None, pen: Some(Pen { color, width, dashes: &[] }), halo: None };
-        let letters =
-            |color| Look { fill: Some(color), pen: None, halo: Some(Pen { color: p.ground, width: 4.0, dashes: &[] }) };
+        let pattern = |color, width, dashes| Look { pen: Some(Pen { color, width, dashes }), ..BARE };
+        let line = |color, width| pattern(color, width, &[]);
+        let fill = |color, fill_opacity| Look { fill: Some(color), fill_opacity, ..BARE };
+        let halo = Some(Pen { color: p.ground, width: 4.0, dashes: &[] });
+        let letters = |color| Look { fill: Some(color), halo, ..BARE };
         match role {
-            Role::Ground => Look { fill: Some(p.ground), pen: None, halo: None },
+            Role::Ground => fill(p.ground, 1.0),
+            // Its pixels have their colours already.
+            Role::DustPicture => BARE,
+            Role::Isophote => line(p.isophote, 0.9),
             Role::SunwardHalf => line(p.hatch, 1.0),
             Role::SunwardEdge => line(p.hatch, 1.4),
-            Role::Nucleus => {
-                Look { fill: Some(p.text), pen: Some(Pen { color: p.ground, width: 2.0, dashes: &[] }), halo: None }
-            }
+            Role::Nucleus => Look { fill: Some(p.text), ..line(p.ground, 2.0) },
             Role::Ring => line(p.dial, 1.0),
             Role::TickShort => line(p.dial, 1.0),
             Role::TickLong => line(p.dial, 1.6),
             Role::DialNumber => letters(p.quiet),
             Role::Cardinal => letters(p.text),
-            Role::Hand(direction) => Look {
-                fill: None,
-                pen: Some(Pen {
-                    color: self.direction(direction),
-                    width: if direction == Direction::SkyMotion { 2.4 } else { 1.8 },
-                    dashes: dashes(direction),
-                }),
-                halo: None,
-            },
+            Role::Hand(direction) => {
+                let width = match direction {
+                    Direction::SkyMotion => 2.4,
+                    Direction::IonAxis => 0.9,
+                    _ => 1.8,
+                };
+                pattern(self.direction(direction), width, dashes(direction))
+            }
             // The ground shows inside an open mark, so that a ring stays a ring on any line.
             Role::Mark(direction) => Look { fill: Some(p.ground), ..line(self.direction(direction), 2.0) },
-            Role::MarkFill(direction) => Look { fill: Some(self.direction(direction)), pen: None, halo: None },
+            Role::MarkFill(direction) => fill(self.direction(direction), 1.0),
             Role::Leader(direction) => line(self.direction(direction), 0.8),
             Role::Label(direction) => letters(self.direction(direction)),
+            Role::Wedge => fill(p.ion, 0.16),
+            Role::WedgeEdge => line(p.ion, 1.5),
+            Role::Curve(family) => {
+                let width = if family == Family::NeckLine { 1.8 } else { 1.1 };
+                pattern(self.curve(family), width, curve_dashes(family))
+            }
+            Role::CurveLabel(family) => letters(self.curve(family)),
+            Role::TowardSun => fill(p.toward_sun, 0.3),
+            Role::TowardSunLine => line(p.toward_sun, 4.0),
+            Role::TowardSunHatch => line(p.toward_sun, 1.0),
+            Role::OrbitPath => line(p.dial, 1.4),
+            Role::OrbitArrow => fill(p.text, 1.0),
+            Role::PlaneLine => line(p.dial, 1.4),
+            Role::SightLine => pattern(p.text, 1.2, &[7.0, 4.0]),
+            Role::Guide => pattern(p.dial, 1.0, &[2.0, 4.0]),
+            Role::Angle => line(p.text, 1.2),
+            Role::Sheet => fill(p.sheet, 0.2),
+            Role::SheetRim => line(p.sheet, 1.0),
+            Role::SheetEdgeOn => line(p.sheet, 4.0),
+            Role::Observer => Look { fill: Some(p.ground), ..line(p.text, 1.8) },
+            Role::PlaceLabel => letters(p.text),
+            Role::Tone(level) => {
+                let share = f64::from(level.min(TONES - 1)) / f64::from(TONES - 1);
+                fill(self.dust_color(BRIGHTEST_CELL * share), 1.0)
+            }
+            Role::MapHatch => line(p.text, 1.0),
+            Role::Axis => line(p.dial, 1.0),
             Role::ScaleBar => line(p.text, 1.4),
             Role::Title => letters(p.text),
             Role::Note => letters(p.quiet),

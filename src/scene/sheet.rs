@@ -1,0 +1,147 @@
+//! Which part of the dust sheet lies toward the Sun on the sky?
+//!
+//! Dust that leaves without a speed of its own lies in a sheet in the orbit plane, one grain for each beta and age. Here
+//! the sheet is a mesh of exact grains, straight in between: good for a drawing, not for numbers (those come from
+//! [`crate::tail::perspective`]). Betas step evenly in their logarithm, ages in their square root, since near the
+//! nucleus the way grows as the square of the age.
+
+use super::Point;
+use super::clip::{figure_beside, figure_inside, twice_area};
+use super::lettering::Rect;
+use super::view::Facing;
+use crate::tail::grain::Vista;
+use crate::tail::law::Tails;
+use nalgebra::Vector3;
+
+/// Ages of the mesh.
+const ROWS: usize = 32;
+/// Betas of the mesh for each decade, and how many at least and at most.
+const COLUMNS_PER_DECADE: f64 = 3.0;
+const COLUMNS: [usize; 2] = [4, 13];
+
+/// The sheet as a mesh, row by row of equal age.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Sheet {
+    pub betas: Vec<f64>,
+    pub ages_days: Vec<f64>,
+    /// Heliocentric equatorial, au; None for a grain that has met the Sun.
+    pub places_au: Vec<Option<Vector3<f64>>>,
+    /// Tangent offsets from the nucleus, xi east, eta north; None 90 degrees or more away too.
+    pub offsets: Vec<Option<[f64; 2]>>,
+}
+
+/// Dust toward the Sun on the page.
+#[derive(Clone, Debug, Default, PartialEq)]
+pub struct TowardSun {
+    /// Figures broad enough to be filled, all turning the same way.
+    pub broad: Vec<Vec<Point>>,
+    /// What is seen edge-on, as lines.
+    pub thin: Vec<Vec<Point>>,
+}
+
+impl TowardSun {
+    pub fn is_empty(&self) -> bool {
+        self.broad.is_empty() && self.thin.is_empty()
+    }
+}
+
+impl Sheet {
+    /// The sheet of a vista over the ranges of `laws`.
+    pub fn of(vista: &Vista, laws: &Tails) -> Self {
+        let span = libm::log(laws.beta_greatest / laws.beta_least);
+        let wanted = (span / std::f64::consts::LN_10 * COLUMNS_PER_DECADE).ceil() as usize + 1;
+        let columns = wanted.clamp(COLUMNS[0], COLUMNS[1]);
+        let share = |i: usize, count: usize| i as f64 / (count - 1) as f64;
+        let betas: Vec<f64> = (0..columns).map(|i| laws.beta_least * libm::exp(span * share(i, columns))).collect();
+        let (youngest, oldest) = (laws.age_least_days.sqrt(), laws.age_greatest_days.sqrt());
+        let ages_days: Vec<f64> = (0..ROWS)
+            .map(|i| {
+                let root = youngest + (oldest - youngest) * share(i, ROWS);
+                root * root
+            })
+            .collect();
+        let mut places_au = Vec::with_capacity(columns * ROWS);
+        for &age_days in &ages_days {
+            let start = vista.release(age_days);
+            places_au.extend(betas.iter().map(|&beta| vista.survivor(beta, &start, age_days)));
+        }
+        let offsets = places_au.iter().map(|place| vista.offset(place.as_ref()?)).collect();
+        Sheet { betas, ages_days, places_au, offsets }
+    }
+
+    /// The corners of each cell of a mesh of the sheet's shape, in order around it; cells that lack one are left out.
+    pub fn cells<'a, T: Copy>(&self, nodes: &'a [Option<T>]) -> impl Iterator<Item = [T; 4]> + 'a {
+        let columns = self.betas.len();
+        let rows = self.ages_days.len();
+        (0..rows - 1).flat_map(move |row| {
+            (0..columns - 1).filter_map(move |column| {
+                let at = row * columns + column;
+                Some([nodes[at]?, nodes[at + 1]?, nodes[at + columns + 1]?, nodes[at + columns]?])
+            })
+        })
+    }
+
+    /// The part of the sheet on the page within `half_width_rad` (at most a quarter turn) of the Sun's direction.
+    pub fn toward_sun(
+        &self,
+        facing: &Facing,
+        sunward_rad: f64,
+        half_width_rad: f64,
+        page: &Rect,
+        unit_px: f64,
+    ) -> TowardSun {
+        let nucleus = facing.nucleus();
+        let sun = facing.direction(sunward_rad);
+        let edges = [-half_width_rad, half_width_rad].map(|aside| {
+            let [x, y] = facing.direction(sunward_rad + aside);
+            let across = [-y, x];
+            let sign = if across[0] * sun[0] + across[1] * sun[1] < 0.0 { -1.0 } else { 1.0 };
+            [sign * across[0], sign * across[1]]
+        });
+        let beside = |edge: [f64; 2]| move |p: Point| (p[0] - nucleus[0]) * edge[0] + (p[1] - nucleus[1]) * edge[1];
+        let ahead = beside(sun);
+        // The coma hides what is nearer than this, and rounding would scatter it over all directions.
+        let near_px = 8.0 * unit_px;
+        let mut found = TowardSun::default();
+        for corners in self.cells(&self.offsets) {
+            let figure = corners.map(|[xi, eta]| facing.to_page(xi, eta));
+            if figure.iter().all(|&p| ahead(p) < 0.0) {
+                continue;
+            }
+            let kept = figure_beside(&figure, beside(edges[0]));
+            let kept = figure_inside(&figure_beside(&kept, beside(edges[1])), page);
+            let near = |p: &Point| libm::hypot(p[0] - nucleus[0], p[1] - nucleus[1]) < near_px;
+            if kept.is_empty() || kept.iter().all(near) {
+                continue;
+            }
+            found.take(kept, unit_px);
+        }
+        found
+    }
+}
+
+impl TowardSun {
+    fn take(&mut self, mut figure: Vec<Point>, unit_px: f64) {
+        let area = twice_area(&figure);
+        let length = |a: Point, b: Point| libm::hypot(b[0] - a[0], b[1] - a[1]);
+        let around: f64 = (0..figure.len()).map(|i| length(figure[i], figure[(i + 1) % figure.len()])).sum();
+        if area.abs() > 2.0 * unit_px * around {
+            if area < 0.0 {
+                figure.reverse();
+            }
+            self.broad.push(figure);
+            return;
+        }
+        let mut ends = [figure[0], figure[0]];
+        for (i, &a) in figure.iter().enumerate() {
+            for &b in &figure[i + 1..] {
+                if length(a, b) > length(ends[0], ends[1]) {
+                    ends = [a, b];
+                }
+            }
+        }
+        if length(ends[0], ends[1]) > 0.0 {
+            self.thin.push(ends.to_vec());
+        }
+    }
+}

@@ -1,0 +1,127 @@
+//! How do the tails lie on the sky plane?
+//!
+//! Under the ring: the dust picture, isophotes, the shaded dust toward the Sun, synchrones, syndynes, the neck-line.
+//! With the hands: the wedge of the ion tail. Lines end at the edge of the page and leave room for every text.
+
+use super::clip::{line_inside, line_outside};
+use super::layer::TailLayers;
+use super::lettering::{Anchor, Rect, Text};
+use super::sheet::TowardSun;
+use super::spot::{self, PageCurve, Spot};
+use super::view::Facing;
+use super::{Family, Point, Role, Scene, Shape, Slope, quantity};
+use crate::tail::curve::{Curve, Held};
+use crate::tail::size::Material;
+
+/// Between the diagonals over dust toward the Sun, in drawing units.
+const HATCH_GAP: f64 = 6.0;
+/// A release longer ago is dated with its year.
+const LONG_AGO_DAYS: f64 = 300.0;
+/// The arc of a wedge is drawn in steps of this, radians.
+const ARC_STEP: f64 = 0.06;
+
+/// The curves of the layers on a page.
+pub fn curves(tails: &TailLayers, facing: &Facing, page: &Rect) -> Vec<PageCurve> {
+    let mut found: Vec<PageCurve> =
+        tails.curves.iter().map(|curve| on_page(curve, tails.material, facing, page)).collect();
+    // The neck-line runs over the betas that have one; a gap breaks it.
+    let mut pieces: Vec<Vec<Point>> = vec![Vec::new()];
+    for knot in &tails.neck_line {
+        match knot.as_ref().and_then(|knot| knot.offset) {
+            Some([xi, eta]) => pieces.last_mut().expect("at least one piece").push(facing.to_page(xi, eta)),
+            None => pieces.push(Vec::new()),
+        }
+    }
+    let words = "neck-line".to_string();
+    found.push(clipped(Family::NeckLine, &pieces, page, [words.clone(), words]));
+    found.retain(|curve| !curve.pieces.is_empty());
+    found
+}
+
+fn on_page(curve: &Curve, material: Option<Material>, facing: &Facing, page: &Rect) -> PageCurve {
+    let pieces: Vec<Vec<Point>> = curve
+        .pieces
+        .iter()
+        .map(|piece| piece.iter().map(|point| facing.to_page(point.offset[0], point.offset[1])).collect())
+        .collect();
+    match curve.held {
+        Held::Beta(beta) => {
+            let short = quantity::beta(beta);
+            let full = material.map_or(short.clone(), |material| format!("{short} · {}", material.short(beta)));
+            clipped(Family::Syndyne, &pieces, page, [full, short])
+        }
+        Held::Age { days, released } => {
+            let short = quantity::age(days);
+            let date = if days > LONG_AGO_DAYS { quantity::day_of_year(released) } else { quantity::day(released) };
+            clipped(Family::Synchrone, &pieces, page, [format!("{short} · {date}"), short])
+        }
+    }
+}
+
+fn clipped(family: Family, pieces: &[Vec<Point>], page: &Rect, words: [String; 2]) -> PageCurve {
+    let inside: Vec<Vec<Point>> = pieces.iter().flat_map(|piece| line_inside(piece, page)).collect();
+    let ends = inside.last().and_then(|piece| piece.last()) == pieces.last().and_then(|piece| piece.last());
+    PageCurve { family, pieces: inside, ends, words }
+}
+
+/// Draws isophotes, shading and curves; `texts` are the boxes that lines leave free.
+pub fn draw(scene: &mut Scene, tails: &TailLayers, toward_sun: TowardSun, curves: &[PageCurve], texts: &[Rect]) {
+    if !toward_sun.is_empty() {
+        let gap_px = HATCH_GAP * scene.unit_px;
+        scene.add(Role::TowardSun, Shape::Patches(toward_sun.broad.clone()));
+        scene.add(Role::TowardSunHatch, Shape::Hatch { outlines: toward_sun.broad, gap_px, slope: Slope::Falling });
+        scene.add(Role::TowardSunLine, Shape::Lines(toward_sun.thin));
+    }
+    let free = |lines: &mut dyn Iterator<Item = &Vec<Point>>| -> Vec<Vec<Point>> {
+        lines.flat_map(|line| line_outside(line, texts)).collect()
+    };
+    if let Some(isophotes) = &tails.isophotes {
+        scene.add(Role::Isophote, Shape::Lines(free(&mut isophotes.lines.iter())));
+    }
+    for family in [Family::Synchrone, Family::Syndyne, Family::NeckLine] {
+        for curve in curves.iter().filter(|curve| curve.family == family) {
+            let lines = free(&mut curve.pieces.iter());
+            if !lines.is_empty() {
+                scene.add(Role::Curve(family), Shape::Lines(lines));
+            }
+        }
+    }
+}
+
+/// The labels of the curves that found a spot.
+pub fn labels(curves: &[PageCurve], spots: &[Option<Spot>], unit_px: f64) -> Vec<(Role, Text)> {
+    let size_px = spot::LABEL_SIZE * unit_px;
+    let label = |(curve, spot): (&PageCurve, &Option<Spot>)| {
+        let spot = spot.as_ref()?;
+        let text = Text::centered(curve.words[spot.words].clone(), spot.area.center(), size_px, false);
+        Some((Role::CurveLabel(curve.family), Text { anchor: Anchor::Middle, ..text }))
+    };
+    curves.iter().zip(spots).filter_map(label).collect()
+}
+
+/// Draws the wedge of the ion tail, `radius_px` long.
+pub fn draw_wedge(scene: &mut Scene, tails: &TailLayers, facing: &Facing, center: Point, radius_px: f64) {
+    let Some((axis_rad, [first, last])) = wedge_rad(tails) else { return };
+    let at = |position_angle_rad: f64| {
+        let step = facing.direction(position_angle_rad);
+        [center[0] + step[0] * radius_px, center[1] + step[1] * radius_px]
+    };
+    let steps = ((last - first) / ARC_STEP).ceil().max(1.0) as usize;
+    let mut outline = vec![center];
+    outline.extend((0..=steps).map(|i| at(axis_rad + first + (last - first) * i as f64 / steps as f64)));
+    let edges = vec![vec![center, at(axis_rad + first)], vec![center, at(axis_rad + last)]];
+    scene.add(Role::Wedge, Shape::Polygon(outline));
+    scene.add(Role::WedgeEdge, Shape::Lines(edges));
+}
+
+/// The wedge's axis and its reach to either side, where the axis has a position angle.
+pub fn wedge_rad(tails: &TailLayers) -> Option<(f64, [f64; 2])> {
+    let wedge = tails.wedge.as_ref()?;
+    Some((wedge.axis.position_angle_rad?, wedge.reach_rad?))
+}
+
+/// The range of the wedge in whole degrees: `238–247°`.
+pub fn wedge_range(axis_rad: f64, [first, last]: [f64; 2]) -> String {
+    let first = quantity::whole_position_angle(axis_rad + first);
+    format!("{}–{}", first.trim_end_matches('°'), quantity::whole_position_angle(axis_rad + last))
+}
