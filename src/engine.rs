@@ -4,6 +4,8 @@
 //! Earth's path once per 16 days ([`Track`]), the comet from the nearest of its anchors ([`Trail`]). None of that
 //! changes an answer by a single bit, whatever was asked before.
 
+pub mod easel;
+
 use crate::body::SPAN;
 use crate::body::earth::Track;
 use crate::body::moon;

@@ -6,6 +6,7 @@
 
 mod dust;
 mod figure;
+pub mod stage;
 
 use crate::body::observer::Observer;
 use crate::plan::Plan;
