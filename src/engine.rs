@@ -4,6 +4,8 @@
 //! Earth's path once per 16 days ([`Track`]), the comet from the nearest of its anchors ([`Trail`]). None of that
 //! changes an answer by a single bit, whatever was asked before.
 
+pub mod easel;
+
 use crate::body::SPAN;
 use crate::body::earth::Track;
 use crate::body::moon;
@@ -14,12 +16,14 @@ use crate::frame::earth_rotation::celestial_to_terrestrial;
 use crate::frame::horizon::Horizon;
 use crate::orbit::conic::Orbit;
 use crate::plan::Plan;
+use crate::say::{self, Saying};
 use crate::sky::Sky;
 use crate::sky::avoidance;
 use crate::sky::dark::{self, Window};
 use crate::sky::trail::Trail;
 use crate::sky::viewpoint::{Ground, Viewpoint};
 use crate::tail::grain::Vista;
+use crate::tail::ion::Wedge;
 use crate::tail::perspective::{self, Perspective};
 use crate::time::Instant;
 
@@ -40,6 +44,13 @@ pub struct View {
     pub sky: Sky,
     /// The heaviest first.
     pub cautions: Vec<Caution>,
+}
+
+/// The tails of a sky, as directions and sums.
+#[derive(Clone, Debug, PartialEq)]
+pub struct TailView {
+    pub perspective: Perspective,
+    pub ion: Wedge,
 }
 
 impl Engine {
@@ -95,9 +106,23 @@ impl Engine {
         Ok(View { sky, cautions })
     }
 
-    /// Which dust of the plan projects where in a sky of its comet.
-    pub fn perspective(&self, sky: &Sky) -> Perspective {
-        perspective::assess(&Vista::of(&self.orbit, sky), sky, &self.plan.tails)
+    /// The comet of a sky, ready for its tails.
+    pub fn vista(&self, sky: &Sky) -> Vista<'_> {
+        Vista::of(&self.orbit, sky)
+    }
+
+    /// Where the plan's tails lie in a sky of its comet; takes about a millisecond.
+    pub fn tails_at(&self, sky: &Sky) -> TailView {
+        let vista = self.vista(sky);
+        TailView {
+            perspective: perspective::assess(&vista, sky, &self.plan.tails),
+            ion: Wedge::of(&vista, &self.plan.tails),
+        }
+    }
+
+    /// A sky and its tails in words.
+    pub fn saying(&self, sky: &Sky, tails: &TailView) -> Saying {
+        say::say(&self.plan, sky, &tails.perspective, &tails.ion)
     }
 
     /// When the comet is up in a dark sky within half a day of `time`; None for the geocentre.

@@ -5,13 +5,16 @@
 //! with `refused: true`, a message and the place; after a panic the page throws this core away and makes a new one.
 
 mod answer;
+mod bench;
 mod examples;
 mod season;
+mod tails;
 mod typed;
 
 use crate::body::observer::Observer;
 use crate::body::site_code;
-use crate::engine::{Engine, View};
+use crate::engine::easel::{Easel, Wishes};
+use crate::engine::{Engine, TailView, View};
 use crate::error::{Error, Kind, Place};
 use crate::orbit::elements::Comet;
 use crate::orbit::notation::Entry;
@@ -19,10 +22,10 @@ use crate::paint::canvas::CanvasPainter;
 use crate::paint::{paint, svg};
 use crate::plan::{Plan, paste};
 use crate::say;
-use crate::scene::layer::TailLayers;
 use crate::scene::theme::Theme;
 use crate::scene::view::{SkyView, Up};
-use crate::scene::{pointer, sky_plane};
+use crate::scene::pointer;
+use crate::tail::cloud::Quality;
 use crate::time::{Instant, Stamp};
 use answer::Refusal;
 use season::Season;
@@ -107,6 +110,10 @@ pub struct Desk {
     time: Stamp,
     /// What is seen at `time`.
     seen: View,
+    /// The tails of what is seen.
+    tails: TailView,
+    easel: Easel,
+    wishes: Wishes,
     view: SkyView,
     /// Whether a person zoomed or panned; until then the view follows the size of the drawing.
     view_chosen: bool,
@@ -121,6 +128,9 @@ impl Desk {
     pub fn new(plan: &str) -> Result<Desk, JsValue> {
         let (engine, time, seen) = prepared(Plan::parse(plan).map_err(refusal)?).map_err(refusal)?;
         Ok(Desk {
+            tails: engine.tails_at(&seen.sky),
+            easel: Easel::default(),
+            wishes: tails::default_wishes(),
             engine,
             time,
             seen,
@@ -235,7 +245,7 @@ impl Desk {
             Some(windows) => say::when_up(&windows),
             None => "Give a site under Observer to see when the comet is up in a dark sky.".to_owned(),
         };
-        to_js(&answer::reading(&self.engine, &self.time, &self.seen, visibility))
+        to_js(&answer::reading(&self.engine, &self.time, &self.seen, &self.tails, visibility))
     }
 
     /// The read-out table as tabulated text.
@@ -262,22 +272,27 @@ impl Desk {
     }
 
     /// Draws the sky plane; the context's transform carries the device's pixel ratio.
-    pub fn draw(&self, context: &CanvasRenderingContext2d, theme: &str) {
-        let scene = sky_plane::compose(self.engine.plan(), &self.seen.sky, &TailLayers::default(), &self.view);
-        paint(&scene, named_theme(theme), &mut CanvasPainter::new(context));
+    pub fn draw(&mut self, context: &CanvasRenderingContext2d, theme: &str) {
+        let theme = named_theme(theme);
+        let wishes = Wishes { theme, ..self.wishes };
+        let scene = self.easel.sky(&self.engine, &self.seen.sky, &self.view, &wishes);
+        paint(&scene, theme, &mut CanvasPainter::new(context));
     }
 
     /// The sky plane as an SVG file, as it stands.
-    pub fn svg(&self, theme: &str) -> String {
-        let scene = sky_plane::compose(self.engine.plan(), &self.seen.sky, &TailLayers::default(), &self.view);
-        let saying = say::say(self.engine.plan(), &self.seen.sky);
+    pub fn svg(&mut self, theme: &str) -> String {
+        let theme = named_theme(theme);
+        let wishes = Wishes { theme, quality: Quality::STILL, ..self.wishes };
+        let scene = self.easel.sky(&self.engine, &self.seen.sky, &self.view, &wishes);
+        let saying = self.engine.saying(&self.seen.sky, &self.tails);
         let title = format!("{}, {}", self.engine.plan().comet.name, self.seen.sky.time.utc_minute());
-        svg::write(&scene, named_theme(theme), &title, &saying.sentence)
+        svg::write(&scene, theme, &title, &saying.sentence)
     }
 
     /// What lies under the pointer, in words, one fact to a line.
     pub fn hover(&self, x_px: f64, y_px: f64) -> String {
-        pointer::hover(&self.seen.sky, &self.view, x_px, y_px).words()
+        let place = pointer::hover(&self.seen.sky, &self.view, x_px, y_px).words();
+        format!("{place}\n{}", self.landing_words(x_px, y_px))
     }
 
     pub fn zoom(&mut self, factor: f64, x_px: f64, y_px: f64) {
@@ -313,6 +328,7 @@ impl Desk {
     fn take(&mut self, plan: Plan) -> Result<JsValue, JsValue> {
         let (engine, time, seen) = prepared(plan).map_err(refusal)?;
         self.season = None;
+        self.tails = engine.tails_at(&seen.sky);
         (self.engine, self.time, self.seen) = (engine, time, seen);
         Ok(JsValue::TRUE)
     }
@@ -337,6 +353,7 @@ impl Desk {
 
     fn go(&mut self, time: Stamp) -> Result<f64, JsValue> {
         self.seen = self.engine.view_at(time.instant()).map_err(refusal)?;
+        self.tails = self.engine.tails_at(&self.seen.sky);
         self.time = time;
         Ok(self.seen.sky.time.tdb_days())
     }

@@ -64,5 +64,6 @@ Tailvane.say = (function () {
     },
     error,
     clearError,
+    lastError: () => errorBox.textContent,
   };
 })();

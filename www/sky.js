@@ -7,6 +7,7 @@ Tailvane.sky = (function () {
   const ZOOM_STEP = 1.25;
   const PAN_STEP_PX = 40;
   const PRINT_SCALE = 4;
+  const STILL_MS = 140;
   const canvas = Tailvane.find("view", "sky");
   const box = Tailvane.find("box", "sky");
   const hover = Tailvane.find("show", "hover");
@@ -15,6 +16,7 @@ Tailvane.sky = (function () {
   const pointers = new Map();
   let size = null;
   let hoverAt = null;
+  let stillTimer = 0;
 
   /** Measures the box: CSS pixels for the drawing, device pixels for the canvas. */
   function watchSize() {
@@ -46,7 +48,8 @@ Tailvane.sky = (function () {
     size = { width: Math.max(width, 1), height: Math.max(height, 1), ratio: window.devicePixelRatio || 1 };
   }
 
-  function paint(desk, scale) {
+  /** Draws everything; in motion the dust is made coarser and sooner. */
+  function paint(desk, scale, still) {
     const width = Math.max(1, Math.round(size.width * scale));
     const height = Math.max(1, Math.round(size.height * scale));
     if (canvas.width !== width || canvas.height !== height) {
@@ -55,19 +58,29 @@ Tailvane.sky = (function () {
     }
     context.setTransform(1, 0, 0, 1, 0, 0);
     desk.resize(size.width, size.height);
+    desk.set_layers(Tailvane.tails.layers());
+    desk.set_still(still, scale);
     context.setTransform(width / size.width, 0, 0, height / size.height, 0, 0);
     desk.draw(context, Tailvane.theme.name());
   }
 
   function frame(reading, desk) {
-    paint(desk, size.ratio);
+    paint(desk, size.ratio, false);
+    clearTimeout(stillTimer);
+    stillTimer = setTimeout(refine, STILL_MS);
     upButton.hidden = !reading.at_site;
     upButton.setAttribute("aria-pressed", String(desk.zenith_up()));
     showHover(desk);
   }
 
+  /** Nothing changed for a moment: the finer picture, once. */
+  function refine() {
+    Tailvane.desk.ask((desk) => paint(desk, size.ratio, true));
+  }
+
   function drawForPrint() {
-    Tailvane.desk.ask((desk) => paint(desk, PRINT_SCALE));
+    clearTimeout(stillTimer);
+    Tailvane.desk.ask((desk) => paint(desk, PRINT_SCALE, true));
   }
 
   function showHover(desk) {

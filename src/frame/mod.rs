@@ -13,7 +13,7 @@
 //!    (xi)      |
 //! ```
 //!
-//! [`position_angle_rad`] is the only function in the crate that makes one.
+//! [`Bearing`] is the only maker of one in the crate.
 //!
 //! Left out: frame bias between J2000 and ICRF (0.042 arcsec in all), precession of the ecliptic.
 //! Sources: IAU 1976 obliquity; spherical formulas as in any textbook, checked against ERFA's unit tests.
@@ -83,20 +83,33 @@ pub fn separation_rad(a: &Vector3<f64>, b: &Vector3<f64>) -> f64 {
     libm::atan2(a.cross(b).norm(), a.dot(b))
 }
 
-/// Sine of the angle between a vector and the line of sight, [0, 1]; zero for a zero vector.
-pub fn sine_to_sight(v: &Vector3<f64>, axes: &Axes) -> f64 {
-    let (east, north) = (v.dot(&axes.east), v.dot(&axes.north));
-    let length = v.norm();
-    if length > 0.0 { (east * east + north * north).sqrt() / length } else { 0.0 }
+/// How a vector at the place of some axes lies on the sky.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Bearing {
+    east: f64,
+    north: f64,
+    /// Sine of the angle to the line of sight, [0, 1]; zero for a zero vector.
+    pub sine_to_sight: f64,
 }
 
-/// Position angle of a small displacement along `v` at the place of `axes`: north through east, [0, 2 pi).
-/// None when `v` has no length or lies along the line of sight to within 1e-8 rad.
-pub fn position_angle_rad(v: &Vector3<f64>, axes: &Axes) -> Option<f64> {
-    if sine_to_sight(v, axes) < LEAST_SINE {
-        return None;
+impl Bearing {
+    pub fn of(v: &Vector3<f64>, axes: &Axes) -> Self {
+        let (east, north) = (v.dot(&axes.east), v.dot(&axes.north));
+        let square = v.norm_squared();
+        let sine_to_sight = if square > 0.0 { ((east * east + north * north) / square).sqrt() } else { 0.0 };
+        Bearing { east, north, sine_to_sight }
     }
-    Some(turn(libm::atan2(v.dot(&axes.east), v.dot(&axes.north))))
+
+    /// Position angle of a small displacement along the vector: north through east, [0, 2 pi). None when it has
+    /// no length or lies along the line of sight to within 1e-8 rad.
+    pub fn position_angle_rad(&self) -> Option<f64> {
+        (self.sine_to_sight >= LEAST_SINE).then(|| turn(libm::atan2(self.east, self.north)))
+    }
+}
+
+/// Position angle of a small displacement along `v` at the place of `axes`; see [`Bearing`].
+pub fn position_angle_rad(v: &Vector3<f64>, axes: &Axes) -> Option<f64> {
+    Bearing::of(v, axes).position_angle_rad()
 }
 
 /// An angle brought into [0, 2 pi).

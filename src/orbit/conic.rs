@@ -33,6 +33,7 @@ pub struct Orbit {
     toward_perihelion: Vector3<f64>,
     /// Unit vector along the velocity at perihelion, equatorial.
     along_perihelion: Vector3<f64>,
+    normal: Vector3<f64>,
     /// sqrt(mu q (1 + e)): the angular momentum, au^2/d.
     angular_momentum: f64,
 }
@@ -81,6 +82,7 @@ impl Orbit {
             start: Start { mu: SUN_GM_AU3_D2, distance: q, eta: 0.0, binding: SUN_GM_AU3_D2 * (1.0 - e) / q },
             toward_perihelion: ecliptic_to_equatorial(&toward),
             along_perihelion: ecliptic_to_equatorial(&along),
+            normal: ecliptic_to_equatorial(&toward.cross(&along)),
             angular_momentum: (SUN_GM_AU3_D2 * q * (1.0 + e)).sqrt(),
         })
     }
@@ -100,7 +102,7 @@ impl Orbit {
 
     /// Unit vector of the orbital angular momentum, equatorial.
     pub fn normal(&self) -> Vector3<f64> {
-        self.toward_perihelion.cross(&self.along_perihelion)
+        self.normal
     }
 
     /// The comet at an instant.
@@ -113,6 +115,26 @@ impl Orbit {
     pub fn place_near(&self, time: Instant, guess: &Anomaly) -> Place {
         let days = self.days_from_perihelion(time);
         self.place(&self.start.after_near(guess.s, guess.revolutions, days))
+    }
+
+    /// The comet where its universal anomaly, whole revolutions included, has that value, and days from perihelion.
+    pub fn at_anomaly(&self, whole: f64) -> (State, f64) {
+        let turn =
+            if self.start.binding > 0.0 { std::f64::consts::TAU / self.start.binding.sqrt() } else { f64::INFINITY };
+        let revolutions = (whole / turn).round();
+        let s = if revolutions == 0.0 { whole } else { whole - revolutions * turn };
+        let g = self.start.universal(s);
+        let rest_days = self.perihelion_distance_au * g[1] + SUN_GM_AU3_D2 * g[3];
+        let days = rest_days + if revolutions == 0.0 { 0.0 } else { revolutions * self.period_days().unwrap_or(0.0) };
+        (self.place(&Reached { s, revolutions, rest_days, g }).state, days)
+    }
+
+    /// The universal anomaly, whole revolutions included.
+    pub fn whole_anomaly(&self, anomaly: &Anomaly) -> f64 {
+        if anomaly.revolutions == 0.0 {
+            return anomaly.s;
+        }
+        anomaly.s + anomaly.revolutions * std::f64::consts::TAU / self.start.binding.sqrt()
     }
 
     /// Angle from perihelion to a place on the orbit, seen from the Sun: (-pi, pi], negative before perihelion.

@@ -65,7 +65,7 @@ fn print(number: f64, decimals: usize, whole_turn: bool) -> String {
 }
 
 /// Radians to degrees for an angle in [0, 2 pi): the product may round up to 360, which is 0.
-fn whole_turn_deg(angle_rad: f64) -> f64 {
+pub fn whole_turn_deg(angle_rad: f64) -> f64 {
     let degrees = angle_rad.to_degrees();
     if degrees >= 360.0 { 0.0 } else { degrees }
 }

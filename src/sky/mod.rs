@@ -21,7 +21,7 @@ pub mod viewpoint;
 use crate::body::State;
 use crate::body::sun::heliographic_latitude_rad;
 use crate::caution::Caution;
-use crate::frame::{Axes, declination_rad, position_angle_rad, right_ascension_rad, separation_rad, sine_to_sight};
+use crate::frame::{Axes, Bearing, declination_rad, position_angle_rad, right_ascension_rad, separation_rad};
 use crate::orbit::conic::Orbit;
 use crate::time::Instant;
 use nalgebra::Vector3;
@@ -115,8 +115,9 @@ impl Sky {
         let motion = Motion::of(&comet, &observer, &axes, observer_distance_au);
         let mut cautions = Vec::new();
         let mut angle = |direction: &Vector3<f64>, quantity: &'static str| {
-            let found = position_angle_rad(direction, &axes);
-            doubt(found, sine_to_sight(direction, &axes), quantity, &mut cautions);
+            let bearing = Bearing::of(direction, &axes);
+            let found = bearing.position_angle_rad();
+            doubt(found, bearing.sine_to_sight, quantity, &mut cautions);
             found
         };
         let antisolar_position_angle_rad = angle(&r, "antisolar direction");

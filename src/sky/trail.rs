@@ -13,6 +13,9 @@ use crate::time::Instant;
 use nalgebra::Vector3;
 use std::collections::BTreeMap;
 
+/// Light time of one au, days.
+const DAYS_PER_AU: f64 = 1.0 / LIGHT_AU_D;
+
 /// Anchors stand this far apart, days.
 const ANCHOR_DAYS: f64 = 2.0;
 
@@ -32,7 +35,7 @@ impl Trail {
         let mut light_time_days = 0.0;
         for _ in 0..2 {
             let near = anchor.position_near(viewpoint.time.plus_days(-light_time_days));
-            light_time_days = (near - seen_from).norm() / LIGHT_AU_D;
+            light_time_days = (near - seen_from).norm() * DAYS_PER_AU;
         }
         let mut left = viewpoint.time.plus_days(-light_time_days);
         let mut place = orbit.place_near(left, &anchor.anomaly_near(left));
@@ -41,15 +44,17 @@ impl Trail {
             let distance = sight_line.norm();
             // Newton on light_time - distance / c, whose derivative is 1 + (line-of-sight speed) / c.
             let speed = sight_line.dot(&place.state.velocity_au_d) / distance;
-            let later = (light_time_days - distance / LIGHT_AU_D) / (1.0 + speed / LIGHT_AU_D);
+            let later = (light_time_days - distance * DAYS_PER_AU) / (1.0 + speed * DAYS_PER_AU);
             light_time_days -= later;
-            let r = place.state.position_au.norm();
-            // Relative to the time scale of the motion, r^1.5 / k, this leaves less than 1e-13 of the velocity.
-            if later.abs() < 1e-5 * r * r.sqrt() {
+            let square = place.state.position_au.norm_squared();
+            // Relative to the time scale of the motion, r^1.5 / k, this leaves less than 1e-13 of the velocity:
+            // later < 1e-5 r^1.5, in fourth powers to save roots.
+            let later_square = later * later;
+            if later_square * later_square < 1e-20 * square * square * square {
                 shift(&mut place.state, later);
                 return (place.state, light_time_days);
             }
-            place.anomaly.s += later / r;
+            place.anomaly.s += later / square.sqrt();
             left = viewpoint.time.plus_days(-light_time_days);
             place = orbit.place_near(left, &place.anomaly);
         }
@@ -74,6 +79,8 @@ impl Trail {
 struct Anchor {
     time: Instant,
     state: State,
+    /// Acceleration, au/d^2.
+    pull: Vector3<f64>,
     anomaly: Anomaly,
     /// First, second and third derivative of the universal anomaly with time, over 1, 2 and 6.
     rates: [f64; 3],
@@ -90,7 +97,13 @@ impl Anchor {
         let eta_rate = velocity_au_d.norm_squared() - SUN_GM_AU3_D2 / r;
         let cube = r * r * r;
         let third = 3.0 * eta * eta / (cube * r * r) - eta_rate / cube;
-        Anchor { time, state: place.state, anomaly: place.anomaly, rates: [1.0 / r, -0.5 * eta / cube, third / 6.0] }
+        Anchor {
+            time,
+            state: place.state,
+            pull: pull(&position_au),
+            anomaly: place.anomaly,
+            rates: [1.0 / r, -0.5 * eta / cube, third / 6.0],
+        }
     }
 
     /// A guess of the universal anomaly at a near time.
@@ -103,16 +116,19 @@ impl Anchor {
     /// A guess of the place at a near time.
     fn position_near(&self, time: Instant) -> Vector3<f64> {
         let days = time.tdb_days() - self.time.tdb_days();
-        let mut state = self.state;
-        shift(&mut state, days);
-        state.position_au
+        self.state.position_au + (self.state.velocity_au_d + self.pull * (0.5 * days)) * days
     }
+}
+
+/// Acceleration by the Sun at a heliocentric place, au/d^2.
+fn pull(position_au: &Vector3<f64>) -> Vector3<f64> {
+    let square = position_au.norm_squared();
+    position_au * (-SUN_GM_AU3_D2 / (square * square.sqrt()))
 }
 
 /// Moves a state by a short time under the Sun's pull, to second order.
 fn shift(state: &mut State, days: f64) {
-    let r = state.position_au;
-    let pull = r * (-SUN_GM_AU3_D2 / (r.norm_squared() * r.norm()));
+    let pull = pull(&state.position_au);
     state.position_au += (state.velocity_au_d + pull * (0.5 * days)) * days;
     state.velocity_au_d += pull * days;
 }

@@ -77,7 +77,7 @@ impl<'a> Vista<'a> {
     }
 
     /// The grain at the moment seen, heliocentric equatorial. One that has met the Sun is computed as if it had
-    /// passed; [`Self::cautions`] says so.
+    /// passed; [`Self::fate`] says so.
     pub fn grain(&self, grain: &Grain) -> State {
         propagate(pull_au3_d2(grain.beta), &self.start(grain), grain.age_days)
     }
@@ -96,11 +96,13 @@ impl<'a> Vista<'a> {
         (!met).then(|| propagate(pull, start, age_days).position_au)
     }
 
-    /// What is doubtful about a grain's place: it has met the Sun, or gone round it.
-    pub fn cautions(&self, grain: &Grain) -> Vec<Caution> {
-        let mut found = Vec::new();
+    /// The grain at the moment seen, as [`Self::grain`], and what is doubtful about it: it has met the Sun, or gone
+    /// round it.
+    pub fn fate(&self, grain: &Grain) -> (State, Vec<Caution>) {
         let start = self.start(grain);
-        let path = Path::of(pull_au3_d2(grain.beta), &start, grain.age_days);
+        let pull = pull_au3_d2(grain.beta);
+        let path = Path::of(pull, &start, grain.age_days);
+        let mut found = Vec::new();
         if start.position_au.norm() < RADIUS_AU {
             found.push(Caution::GrainStartsInSun);
         } else if path.least_distance_au < RADIUS_AU {
@@ -109,7 +111,7 @@ impl<'a> Vista<'a> {
         if path.revolutions > 1.0 {
             found.push(Caution::GrainRevolved { revolutions: path.revolutions });
         }
-        found
+        (propagate(pull, &start, grain.age_days), found)
     }
 
     /// Angle of the observer above (+) or below the orbit plane, seen from the nucleus.

@@ -10,7 +10,7 @@
 //! ```
 //!
 //! and one equation in the age is left: the grain must have turned by just D in that time. Its roots are found along
-//! the comet's way back; there may be none, one or several. Near edge-on every line of sight runs along the plane and
+//! the comet's way back, to a micro-radian about the Sun; there may be none, one or several. Near edge-on every line of sight runs along the plane and
 //! nothing can be said. Left out: ejection speeds, light time within the tail. Source of the problem: Finson &
 //! Probstein 1968; of this way to solve it: none, it is derived above and tested by round trip.
 
@@ -31,11 +31,16 @@ pub const LEAST_SINE_TO_PLANE: f64 = 0.017_452;
 /// Betas beyond this are not looked for: no known grain has more.
 pub const GREATEST_BETA: f64 = 5.0;
 
+/// Nearer to the nucleus than this, 0.1 arcsec, the age hangs on the last digits of the place.
+const LEAST_OFFSET_RAD: f64 = 5e-7;
+
 /// Why no point of the orbit plane, or no grain, belongs to a place on the sky.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Reason {
     /// The orbit plane is seen within a degree of edge-on.
     EdgeOn,
+    /// The place is the nucleus as far as arithmetic can tell: nearer than 0.1 arcsec.
+    OnNucleus,
     /// The line of sight does not meet the orbit plane in front of the observer.
     MissesPlane,
     /// No dust without a speed of its own gets there within the ages looked through.
@@ -48,6 +53,7 @@ impl Reason {
             Reason::EdgeOn => {
                 "The orbit plane is seen within 1 degree of edge-on: grains of many sizes and ages share this line of sight."
             }
+            Reason::OnNucleus => "This is the nucleus itself: dust of every size starts here.",
             Reason::MissesPlane => "This line of sight does not meet the orbit plane.",
             Reason::NoGrain => "No dust that left without a speed of its own, within these ages, is seen here.",
         }
@@ -71,6 +77,9 @@ pub struct Landing {
 /// # Errors
 /// Why there is none.
 pub fn landings(vista: &Vista, offset: [f64; 2], laws: &Tails) -> Result<Vec<Landing>, Reason> {
+    if libm::hypot(offset[0], offset[1]) < LEAST_OFFSET_RAD {
+        return Err(Reason::OnNucleus);
+    }
     let point = Point::of(vista, &in_orbit_plane(vista, offset)?);
     let found: Vec<Landing> = point
         .roots(vista, laws.age_greatest_days)
@@ -90,18 +99,31 @@ pub fn landings(vista: &Vista, offset: [f64; 2], laws: &Tails) -> Result<Vec<Lan
 /// # Errors
 /// Edge-on, or missed.
 pub fn in_orbit_plane(vista: &Vista, [xi, eta]: [f64; 2]) -> Result<Vector3<f64>, Reason> {
-    let normal = vista.orbit.normal();
     let sight = tangent::unproject(xi, eta, &vista.axes);
-    let steepness = normal.dot(&sight);
+    meet_plane(&vista.orbit.normal(), &vista.observer_au, &vista.axes.sight, &sight)
+}
+
+/// Where a line of sight meets the plane through the Sun with this unit normal, heliocentric, au; `to_nucleus` and `sight`
+/// are unit vectors from the observer.
+///
+/// # Errors
+/// Edge-on, or missed.
+pub fn meet_plane(
+    normal: &Vector3<f64>,
+    observer_au: &Vector3<f64>,
+    to_nucleus: &Vector3<f64>,
+    sight: &Vector3<f64>,
+) -> Result<Vector3<f64>, Reason> {
+    let steepness = normal.dot(sight);
     // Near the plane the stretch is as bad whether the observer or the nucleus makes it.
-    if steepness.abs() < LEAST_SINE_TO_PLANE || normal.dot(&vista.axes.sight).abs() < LEAST_SINE_TO_PLANE {
+    if steepness.abs() < LEAST_SINE_TO_PLANE || normal.dot(to_nucleus).abs() < LEAST_SINE_TO_PLANE {
         return Err(Reason::EdgeOn);
     }
-    let range = -normal.dot(&vista.observer_au) / steepness;
+    let range = -normal.dot(observer_au) / steepness;
     if range <= 0.0 {
         return Err(Reason::MissesPlane);
     }
-    Ok(vista.observer_au + sight * range)
+    Ok(observer_au + sight * range)
 }
 
 /// A point of the orbit plane, seen from the Sun.
@@ -150,8 +172,8 @@ impl Point {
     fn roots(&self, vista: &Vista, oldest_days: f64) -> Vec<(f64, f64)> {
         let mut found = Vec::new();
         let mut last: Option<Trial> = None;
-        for (age_days, start) in self.ages(vista, oldest_days) {
-            let next = self.trial(age_days, &start);
+        for age_days in self.ages(vista, oldest_days) {
+            let next = self.trial(age_days, &vista.release(age_days));
             if let Some(last) = last {
                 self.between(vista, &last, &next, &mut found);
             }
@@ -162,25 +184,24 @@ impl Point {
 
     /// The ages tried: the comet's way back in steps of 3 degrees, closer together toward zero, and toward the age at
     /// which the comet had the direction of the point, where beta runs to infinity.
-    fn ages(&self, vista: &Vista, oldest_days: f64) -> Vec<(f64, State)> {
+    fn ages(&self, vista: &Vista, oldest_days: f64) -> Vec<f64> {
+        /// Halvings of a step toward an end that needs them.
+        const CLOSER: u32 = 24;
         let walk = walk(vista, oldest_days);
         let mut ages = Vec::new();
         for pair in walk.windows(2) {
             let [(from, from_state), (to, to_state)] = [pair[0], pair[1]];
             // Going back the angle grows, and falls from a turn to zero where the comet had the point's direction.
             let (before, after) = (self.angle(&from_state), self.angle(&to_state));
-            let edge = if before > PI && after < PI {
-                close_in([from, to], |age| half_turn(self.angle(&vista.release(age))))
+            if before > PI && after < PI {
+                let edge = close_in([from, to], |age| half_turn(self.angle(&vista.release(age))));
+                let closer = (0..CLOSER).map(|step| libm::pow(2.0, -f64::from(step)));
+                ages.extend(closer.clone().map(|share| edge + (from - edge) * share));
+                ages.extend(closer.rev().map(|share| edge + (to - edge) * share));
+            } else if from == 0.0 {
+                ages.extend((0..CLOSER).rev().map(|step| to * libm::pow(2.0, -f64::from(step))));
             } else {
-                from
-            };
-            let dense = from == 0.0 || edge != from;
-            let shares = if dense { 24 } else { 3 };
-            for share in 0..shares {
-                let part =
-                    if dense { libm::pow(2.0, f64::from(share + 1 - shares)) } else { f64::from(share + 1) / 3.0 };
-                let age = edge + (to - edge) * part;
-                ages.push((age, vista.release(age)));
+                ages.extend((1..=3).map(|third| from + (to - from) * f64::from(third) / 3.0));
             }
         }
         ages

@@ -68,7 +68,7 @@ impl Default for Tails {
             beta_least: 0.001,
             beta_greatest: 1.0,
             age_least_days: 0.0,
-            age_greatest_days: 100.0,
+            age_greatest_days: 200.0,
             grain_density_g_cm3: 1.0,
             pressure_efficiency: 1.0,
             size_exponent: 3.5,
@@ -87,7 +87,7 @@ impl Default for Tails {
 }
 
 /// A field's key, its value, and the least and greatest value allowed.
-type Bound = (&'static str, f64, f64, f64);
+pub type Bound = (&'static str, f64, f64, f64);
 
 impl Tails {
     /// Whether nothing was changed, so that a plan need not say it.
@@ -118,7 +118,8 @@ impl Tails {
         Ok(())
     }
 
-    fn bounds(&self) -> Vec<Bound> {
+    /// Every number that is set, with its range.
+    pub fn bounds(&self) -> Vec<Bound> {
         let mut bounds = vec![
             ("wind_axis_km_s", self.wind_axis_km_s, 100.0, 2000.0),
             ("wind_slowest_km_s", self.wind_slowest_km_s, 100.0, 2000.0),

@@ -114,6 +114,31 @@ impl Weights {
         -0.5 * (1.0 + self.cone_cosine) * (1.0 + self.laws.ejection_spread * shift)
     }
 
+    /// Variances of [`Self::ejection`] along its three axes.
+    pub fn ejection_variances(&self) -> [f64; 3] {
+        let [low, high] = self.speed_limits;
+        let bell = |z: f64| libm::exp(-0.5 * z * z) / TAU.sqrt();
+        let (spread, cosine) = (self.laws.ejection_spread, self.cone_cosine);
+        // Mean square of the speed over its centre: 1 + 2 spread <z> + spread^2 <z^2> of the Gaussian cut off.
+        let square = if low < high {
+            let whole = normal(high) - normal(low);
+            let shift = (bell(low) - bell(high)) / whole;
+            1.0 + 2.0 * spread * shift + spread * spread * (1.0 + (low * bell(low) - high * bell(high)) / whole)
+        } else {
+            1.0
+        };
+        // Mean square of the cosine over the cone.
+        let along = (1.0 + cosine + cosine * cosine) / 3.0;
+        let mean = self.mean_radial_ejection();
+        let across = 0.5 * square * (1.0 - along);
+        [(square * along - mean * mean).max(0.0), across, across]
+    }
+
+    /// Greatest of the speeds over their centre.
+    pub fn greatest_speed_factor(&self) -> f64 {
+        1.0 + self.laws.ejection_spread * self.speed_limits[1]
+    }
+
     /// Speed over its centre, by the share (0 to 1) of grains that are slower.
     fn speed_factor(&self, share: f64) -> f64 {
         if self.speeds.is_empty() {
@@ -283,14 +308,21 @@ mod tests {
             });
             let steps = 48;
             let at = |k: usize| (k as f64 + 0.5) / steps as f64;
-            let (mut mean, mut narrowest, mut slow) = ([0.0; 3], 1.0_f64, 0);
+            let (mut mean, mut square, mut narrowest, mut slow) = ([0.0; 3], [0.0; 3], 1.0_f64, 0);
             for point in 0..steps * steps * steps {
                 let cube = [at(point % steps), at(point / steps % steps), at(point / steps / steps)];
                 let velocity = weights.ejection(cube);
                 let speed = velocity.iter().map(|v| v * v).sum::<f64>().sqrt();
                 slow += u32::from(speed < 1.0);
                 narrowest = narrowest.min(-velocity[0] / speed);
-                (0..3).for_each(|axis| mean[axis] += velocity[axis] / (steps * steps * steps) as f64);
+                for axis in 0..3 {
+                    mean[axis] += velocity[axis] / (steps * steps * steps) as f64;
+                    square[axis] += velocity[axis] * velocity[axis] / (steps * steps * steps) as f64;
+                }
+            }
+            for (axis, variance) in weights.ejection_variances().into_iter().enumerate() {
+                let summed = square[axis] - mean[axis] * mean[axis];
+                assert!((variance - summed).abs() < 4e-3, "{spread} {cone_deg} {axis}: {variance} {summed}");
             }
             assert!((mean[0] - weights.mean_radial_ejection()).abs() < 2e-3, "{spread} {cone_deg}: {mean:?}");
             assert!(mean[1].abs() < 1e-9 && mean[2].abs() < 1e-9, "{mean:?}");

@@ -3,10 +3,9 @@
 use crate::body::observer::Observer;
 use crate::body::site_code;
 use crate::caution::Weight;
-use crate::engine::{Engine, View};
+use crate::engine::{Engine, TailView, View};
 use crate::error::{Error, Place};
 use crate::orbit::notation::Entry;
-use crate::say;
 use crate::scene::quantity;
 use crate::sky::Sky;
 use crate::sky::column::{COLUMNS, Column, Value};
@@ -127,10 +126,10 @@ pub struct Reading {
 }
 
 /// The reading of a view; `visibility` says when the comet is up.
-pub fn reading(engine: &Engine, time: &Stamp, view: &View, visibility: String) -> Reading {
+pub fn reading(engine: &Engine, time: &Stamp, view: &View, tails: &TailView, visibility: String) -> Reading {
     let sky = &view.sky;
     let plan = engine.plan();
-    let saying = say::say(plan, sky);
+    let saying = engine.saying(sky, tails);
     let site = match &plan.observer {
         Observer::Geocentre => None,
         Observer::Site(site) => Some(SiteFields::of(site)),

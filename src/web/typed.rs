@@ -3,6 +3,7 @@
 use crate::body::observer::Site;
 use crate::error::{Error, Kind, Place};
 use crate::orbit::elements::{Comet, Elements};
+use crate::scene::layer::Layers;
 use crate::time::Stamp;
 use serde::{Deserialize, Serialize};
 
@@ -94,7 +95,7 @@ impl SiteFields {
     }
 }
 
-fn number(text: &str, field: &str) -> Result<f64, Error> {
+pub fn number(text: &str, field: &str) -> Result<f64, Error> {
     // A typographic minus is what this page itself prints.
     let plain = text.trim().replace('\u{2212}', "-");
     plain.parse::<f64>().ok().filter(|number| number.is_finite()).ok_or_else(|| {
@@ -105,4 +106,40 @@ fn number(text: &str, field: &str) -> Result<f64, Error> {
         };
         Error::new(Kind::Range, Place::Field(field.to_owned()), found, "a number such as 12.5")
     })
+}
+
+/// What of the tails is drawn, and how, as the page sends it.
+#[derive(Clone, Copy, Deserialize)]
+pub struct LayerFields {
+    ion: bool,
+    syndynes: bool,
+    synchrones: bool,
+    neck_line: bool,
+    toward_sun: bool,
+    dust: bool,
+    isophotes: bool,
+    depth_mag: f64,
+    isophote_step_mag: f64,
+}
+
+impl LayerFields {
+    pub fn layers(&self) -> Layers {
+        Layers {
+            ion: self.ion,
+            syndynes: self.syndynes,
+            synchrones: self.synchrones,
+            neck_line: self.neck_line,
+            toward_sun: self.toward_sun,
+            dust: self.dust,
+            isophotes: self.isophotes,
+        }
+    }
+
+    /// Depth of the tone map and step of the isophotes, magnitudes; what the page keeps may be anything.
+    pub fn depth_and_step_mag(&self) -> [f64; 2] {
+        let sane = |value: f64, least: f64, most: f64, else_: f64| {
+            if value.is_finite() { value.clamp(least, most) } else { else_ }
+        };
+        [sane(self.depth_mag, 1.0, 15.0, 7.5), sane(self.isophote_step_mag, 0.25, 5.0, 1.0)]
+    }
 }

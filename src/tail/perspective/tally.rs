@@ -36,14 +36,31 @@ pub struct Fallen {
     sector: usize,
 }
 
+/// The part of the sky about the nucleus where dust does not count. The outline of the fountain of ejected dust is a
+/// parabola about the nucleus: distance (1 + cos(angle from the Sun's direction)) = 2 apex.
+#[derive(Clone, Copy, Debug)]
+pub struct Coma {
+    /// Squared tangent of the radius.
+    squared: f64,
+    /// Twice the tangent of the distance of the fountain's apex; 0 without ejection.
+    twice_apex: f64,
+}
+
+impl Coma {
+    pub fn of(radius_rad: f64, apex_rad: f64) -> Self {
+        let radius = libm::tan(radius_rad);
+        Coma { squared: radius * radius, twice_apex: 2.0 * libm::tan(apex_rad) }
+    }
+}
+
 impl Fallen {
-    /// None inside the coma: where the squared tangent of the distance is below `coma_squared`.
-    pub fn of(place: &[f64; 3], coma_squared: f64, column: usize, row: usize, weight: f64) -> Option<Self> {
+    /// None inside the coma.
+    pub fn of(place: &[f64; 3], coma: &Coma, column: usize, row: usize, weight: f64) -> Option<Self> {
         let [along, away, aside] = *place;
         let across = away * away + aside * aside;
         // Beyond 89.5 degrees, or behind the observer, everything counts as the last ring.
         let squared = if along > 0.0 { across / (along * along) } else { f64::INFINITY };
-        if squared < coma_squared {
+        if squared < coma.squared || (away < 0.0 && across.sqrt() - away < coma.twice_apex * along) {
             return None;
         }
         let length = across.sqrt();
