@@ -1,11 +1,15 @@
 //! Is the dust picture right, and are fast grains where slow ones are?
 
+use tailvane::body::KM_S_PER_AU_D;
 use tailvane::engine::Engine;
 use tailvane::orbit::conic::{SUN_GM_AU3_D2, propagate_bracketed};
 use tailvane::plan::Plan;
 use tailvane::sky::Sky;
+use tailvane::tail::cloud::{Cloud, Picture, Quality, Raster, Stretch, Tone};
 use tailvane::tail::grain::{Grain, Vista};
 use tailvane::tail::kernel::{Flight, Kernel};
+use tailvane::tail::law::{Outburst, Tails};
+use tailvane::tail::weight::Weights;
 use tailvane::time::Instant;
 
 /// An invented comet and when it is looked at, days from perihelion.
@@ -100,5 +104,371 @@ fn the_fast_kernel_agrees_with_the_slow_solver_to_1e_10_always() {
         });
         println!("{}: worst {worst:.1e}, {} of {} by the slow solver", scene.name, kernel.slow, flights.len());
         assert!(worst < 1e-10, "{}: {worst:e}", scene.name);
+    }
+}
+
+/// A picture 1200 x 800 that shows so many degrees, with the nucleus in the middle, north up and east to the left.
+fn raster(field_deg: f64) -> Raster {
+    let scale = 1200.0 / field_deg.to_radians();
+    Raster { width: 1200, height: 800, turn_px: [[-scale, 0.0], [0.0, -scale]], nucleus_px: [600.0, 400.0] }
+}
+
+fn laws(change: impl Fn(&mut Tails)) -> Tails {
+    let mut laws = Tails::default();
+    change(&mut laws);
+    laws.validate().expect("laws in range");
+    laws
+}
+
+/// Side of the cells in which pictures are compared, pixels, and grains of the Monte Carlo.
+const SIDE: usize = 8;
+const GRAINS: usize = 1_000_000;
+
+/// Grains of the law, drawn one by one, each moved by the exact kernel: how many fall into each cell.
+///
+/// The law is written down here a second time, from its words: rate ~ r^-p with cut-off, start and outburst by
+/// rejection; beta from its power law; speed by the polar method, redrawn beyond the cut-offs; direction even over the
+/// cone. Four grains share a time of release, which changes no mean.
+fn monte_carlo(vista: &Vista, laws: &Tails, raster: &Raster, seed: u64) -> Vec<f64> {
+    let mut chance = Chance(seed);
+    let now = vista.orbit.days_from_perihelion(vista.seen);
+    let rate = |age: f64, r: f64| {
+        let days = now - age;
+        if r > laws.activity_cutoff_au || laws.activity_start_days.is_some_and(|start| days < start) {
+            return 0.0;
+        }
+        let burst = laws.outburst.map_or(0.0, |burst| {
+            let x = (days - burst.middle_days) / burst.width_days;
+            (burst.strength - 1.0) * libm::exp2(-4.0 * x * x)
+        });
+        libm::pow(r, -laws.activity_exponent) * (1.0 + burst)
+    };
+    let (youngest, oldest) = (laws.age_least_days, laws.age_greatest_days);
+    let highest = (0..20_000)
+        .map(|k| youngest + (oldest - youngest) * f64::from(k) / 20_000.0)
+        .map(|age| rate(age, vista.release(age).position_au.norm()))
+        .fold(0.0, f64::max)
+        * 1.01;
+    let exponent = laws.size_exponent - 3.0;
+    let cone = 1.0 - libm::cos(laws.ejection_cone_deg.to_radians());
+    let mut gaussian = {
+        let mut chance = Chance(seed ^ 0x5555);
+        move || loop {
+            let (x, y) = (2.0 * chance.next() - 1.0, 2.0 * chance.next() - 1.0);
+            let square = x * x + y * y;
+            if square > 0.0 && square < 1.0 {
+                return x * (-2.0 * libm::log(square) / square).sqrt();
+            }
+        }
+    };
+
+    let mut counts = vec![0.0; raster.width / SIDE * (raster.height / SIDE)];
+    let mut kernel = Kernel::new();
+    let here = vista.orbit.whole_anomaly(&vista.orbit.place_at(vista.seen).anomaly);
+    let mut flights = Vec::with_capacity(4096);
+    let mut done = 0;
+    while done < GRAINS {
+        flights.clear();
+        while flights.len() < 4096 && done + flights.len() < GRAINS {
+            let age = youngest + (oldest - youngest) * chance.next();
+            let place = vista.orbit.place_at(vista.seen.plus_days(-age));
+            let released = place.state;
+            let r = released.position_au.norm();
+            if chance.next() * highest > rate(age, r) {
+                continue;
+            }
+            let out = released.position_au / r;
+            let up = released.position_au.cross(&released.velocity_au_d).normalize();
+            for _ in 0..4 {
+                let share = chance.next();
+                let power = |beta: f64| libm::pow(beta, exponent);
+                let beta = if exponent == 0.0 {
+                    laws.beta_least * libm::pow(laws.beta_greatest / laws.beta_least, share)
+                } else {
+                    let (low, high) = (power(laws.beta_least), power(laws.beta_greatest));
+                    libm::pow(low + share * (high - low), 1.0 / exponent)
+                };
+                let factor = loop {
+                    let z = gaussian();
+                    if z.abs() <= 3.0 && 1.0 + laws.ejection_spread * z >= 0.0 {
+                        break 1.0 + laws.ejection_spread * z;
+                    }
+                };
+                let speed = factor
+                    * laws.ejection_speed_km_s
+                    * libm::pow(beta, laws.ejection_beta_exponent)
+                    * libm::pow(r, -laws.ejection_distance_exponent)
+                    / KM_S_PER_AU_D;
+                let sunward = 1.0 - cone * chance.next();
+                let across = (1.0 - sunward * sunward).max(0.0).sqrt();
+                let (sine, cosine) = libm::sincos(std::f64::consts::TAU * chance.next());
+                let direction = out * -sunward + up.cross(&out) * (across * cosine) + up * (across * sine);
+                let mut start = released;
+                start.velocity_au_d += direction * speed;
+                let guess = here - vista.orbit.whole_anomaly(&place.anomaly);
+                flights.push(Flight { beta, start, days: age, guess });
+            }
+        }
+        done += flights.len();
+        kernel.see(vista, &flights, |_, offset| {
+            let Some([xi, eta]) = offset else { return };
+            let [x, y] = [0, 1].map(|k| raster.nucleus_px[k] + raster.turn_px[k][0] * xi + raster.turn_px[k][1] * eta);
+            if x >= 0.0 && y >= 0.0 && x < raster.width as f64 && y < raster.height as f64 {
+                counts[y as usize / SIDE * (raster.width / SIDE) + x as usize / SIDE] += 1.0;
+            }
+        });
+    }
+    counts
+}
+
+/// The picture in the same cells, in grains.
+fn in_cells(picture: &Picture, raster: &Raster) -> Vec<f64> {
+    let columns = raster.width / SIDE;
+    let mut sums = vec![0.0; columns * (raster.height / SIDE)];
+    let side = SIDE / picture.cell_px();
+    for y in 0..picture.height() {
+        for (x, weight) in picture.line(y).iter().enumerate() {
+            sums[y / side * columns + x / side] += f64::from(*weight) * GRAINS as f64 / picture.whole();
+        }
+    }
+    sums
+}
+
+/// Correlation and ratio of fluxes of picture and grains, over the cells in which the picture expects more than 100
+/// grains. Chosen by the picture: a choice by the counts would favour cells in which chance put too many.
+fn compare(picture: &[f64], grains: &[f64]) -> (usize, f64, f64) {
+    let pairs: Vec<[f64; 2]> =
+        picture.iter().zip(grains).filter(|(expected, _)| **expected > 100.0).map(|(a, b)| [*a, *b]).collect();
+    let n = pairs.len() as f64;
+    let mean = |k: usize| pairs.iter().map(|pair| pair[k]).sum::<f64>() / n;
+    let means = [mean(0), mean(1)];
+    let product =
+        |a: usize, b: usize| pairs.iter().map(|pair| (pair[a] - means[a]) * (pair[b] - means[b])).sum::<f64>();
+    (pairs.len(), product(0, 1) / (product(0, 0) * product(1, 1)).sqrt(), means[0] / means[1])
+}
+
+fn check(name: &str, scene: &Scene, field_deg: f64, laws: &Tails) {
+    let (engine, sky) = scene.set();
+    let vista = Vista::of(engine.orbit(), &sky);
+    let raster = raster(field_deg);
+    let weights = Weights::of(laws);
+    let mut cloud = Cloud::new();
+    let grains = monte_carlo(&vista, laws, &raster, 0x1234_5678_9abc_def1);
+    for (quality, limit) in [(Quality::STILL, 0.99), (Quality::DRAGGING, 0.99)] {
+        let picture = cloud.render(&vista, &weights, &raster, quality).expect("laws that release dust");
+        let (cells, correlation, flux) = compare(&in_cells(picture, &raster), &grains);
+        println!("{name}: {cells} cells, correlation {correlation:.5}, flux {flux:.4}, {:?}", picture.effort());
+        assert!(cells > 100, "{name}: only {cells} cells");
+        assert!(correlation > limit, "{name}: correlation {correlation}");
+        assert!((flux - 1.0).abs() < 0.01, "{name}: flux {flux}");
+    }
+}
+
+const EDGE_ON: Scene = Scene {
+    name: "edge-on",
+    perihelion_distance_au: 0.6,
+    eccentricity: 1.0001,
+    angles_deg: [2.0, 62.0, 118.0],
+    days: 60.0,
+};
+const AFTER: Scene = Scene {
+    name: "after",
+    perihelion_distance_au: 0.17,
+    eccentricity: 0.9993,
+    angles_deg: [63.0, 222.0, 332.0],
+    days: 13.0,
+};
+
+#[test]
+fn the_picture_is_that_of_a_million_grains_moved_one_by_one_plain_and_with_repulsion() {
+    check("plain", &SCENES[0], 6.0, &laws(|_| ()));
+    check(
+        "beta above 1",
+        &SCENES[1],
+        3.0,
+        &laws(|laws| {
+            laws.beta_least = 0.2;
+            laws.beta_greatest = 2.5;
+            laws.age_greatest_days = 40.0;
+        }),
+    );
+    check(
+        "short period, a year, other sizes",
+        &SCENES[2],
+        2.0,
+        &laws(|laws| {
+            laws.age_greatest_days = 400.0;
+            laws.size_exponent = 2.8;
+            laws.activity_cutoff_au = 1.6;
+        }),
+    );
+    check("grazing", &SCENES[3], 12.0, &laws(|_| ()));
+}
+
+#[test]
+fn the_picture_is_that_of_a_million_grains_moved_one_by_one_edge_on_neck_line_and_outburst() {
+    // Edge-on with old slow dust: the neck-line is the bright ray within the fan.
+    check(
+        "edge-on, neck-line",
+        &EDGE_ON,
+        6.0,
+        &laws(|laws| {
+            laws.beta_greatest = 0.05;
+            laws.age_greatest_days = 200.0;
+            laws.ejection_speed_km_s = 0.5;
+        }),
+    );
+    check(
+        "neck-line from the side",
+        &AFTER,
+        3.0,
+        &laws(|laws| {
+            laws.beta_least = 1e-4;
+            laws.beta_greatest = 0.1;
+            laws.age_greatest_days = 60.0;
+        }),
+    );
+    check(
+        "outburst, sunward cone",
+        &SCENES[0],
+        3.0,
+        &laws(|laws| {
+            laws.ejection_cone_deg = 30.0;
+            laws.outburst = Some(Outburst { middle_days: 10.0, width_days: 1.0, strength: 50.0 });
+        }),
+    );
+    check(
+        "late start, no ejection",
+        &SCENES[0],
+        6.0,
+        &laws(|laws| {
+            laws.ejection_speed_km_s = 0.0;
+            laws.activity_start_days = Some(-10.0);
+            laws.age_least_days = 5.0;
+        }),
+    );
+}
+
+#[test]
+fn few_exact_orbits_place_every_grain_to_a_tenth_of_a_pixel() {
+    for (scene, field_deg) in SCENES[..3].iter().zip([6.0, 3.0, 2.0]) {
+        let (engine, sky) = scene.set();
+        let vista = Vista::of(engine.orbit(), &sky);
+        let laws = laws(|laws| {
+            laws.beta_least = 1e-4;
+            laws.beta_greatest = 2.0;
+        });
+        let weights = Weights::of(&laws);
+        let raster = raster(field_deg);
+        let mut cloud = Cloud::new();
+        let effort = cloud.render(&vista, &weights, &raster, Quality::STILL).expect("dust").effort();
+        let mut chance = Chance(77);
+        let (mut worst, mut seen) = (0.0_f64, 0);
+        for _ in 0..20_000 {
+            let age = 100.0 * chance.next();
+            let root_beta = 0.01 + chance.next() * (2.0_f64.sqrt() - 0.01);
+            let exact = vista.grain(&Grain::released(root_beta * root_beta, age));
+            let Some([xi, eta]) = vista.offset(&exact.position_au) else { continue };
+            let exact = [0, 1].map(|k| raster.turn_px[k][0] * xi + raster.turn_px[k][1] * eta);
+            if exact[0].abs() > 600.0 || exact[1].abs() > 400.0 {
+                continue;
+            }
+            let released = vista.orbit.place_at(vista.seen.plus_days(-age));
+            let anomaly = vista.orbit.whole_anomaly(&released.anomaly);
+            let place = cloud.patches().iter().find_map(|patch| patch.place_px(anomaly, root_beta));
+            let place = place.expect("a place in the picture lies in a patch");
+            worst = worst.max((place[0] - exact[0]).abs()).max((place[1] - exact[1]).abs());
+            seen += 1;
+        }
+        println!("{}: {effort:?}, worst {worst:.4} px of {seen}", scene.name);
+        assert!(seen > 2000 && worst < 0.1 && effort.solves <= 5000 && effort.rough == 0);
+    }
+}
+
+#[test]
+fn all_that_is_released_is_in_a_picture_that_holds_it() {
+    let (engine, sky) = SCENES[1].set();
+    let vista = Vista::of(engine.orbit(), &sky);
+    let laws = laws(|laws| {
+        laws.beta_greatest = 0.02;
+        laws.age_greatest_days = 60.0;
+    });
+    let mut cloud = Cloud::new();
+    let raster = raster(20.0);
+    for quality in [Quality::STILL, Quality::DRAGGING] {
+        let picture = cloud.render(&vista, &Weights::of(&laws), &raster, quality).expect("dust");
+        let sum: f64 = (0..picture.height()).flat_map(|y| picture.line(y)).map(|weight| f64::from(*weight)).sum();
+        assert!((sum / picture.whole() - 1.0).abs() < 2e-3, "{sum} {}", picture.whole());
+    }
+}
+
+#[test]
+fn activity_that_releases_nothing_is_refused_and_spans_end_at_the_cut_off() {
+    let (engine, sky) = SCENES[2].set();
+    let vista = Vista::of(engine.orbit(), &sky);
+    for change in [
+        (|laws: &mut Tails| laws.activity_cutoff_au = 1.0) as fn(&mut Tails),
+        |laws| laws.activity_start_days = Some(61.0),
+        |laws| {
+            laws.activity_cutoff_au = 1.25;
+            laws.age_greatest_days = 20.0;
+        },
+    ] {
+        let weights = Weights::of(&laws(change));
+        let error = Cloud::new().render(&vista, &weights, &raster(3.0), Quality::DRAGGING).expect_err("nothing leaves");
+        assert!(error.to_string().contains("no release"), "{error}");
+    }
+    // 1.2 / 0.35 au half axis: a period of 2,319 d, so 5,000 d hold three passages.
+    let weights = Weights::of(&laws(|laws| {
+        laws.activity_cutoff_au = 2.0;
+        laws.age_greatest_days = 5000.0;
+    }));
+    let spans = weights.release_spans(&vista).expect("dust");
+    assert_eq!(spans.len(), 3, "{spans:?}");
+    for age in spans.iter().flatten().skip(1).filter(|age| **age < 5000.0) {
+        assert!((vista.release(*age).position_au.norm() - 2.0).abs() < 1e-6, "{age}");
+    }
+}
+
+#[test]
+fn tone_rises_with_density_and_isophotes_enclose_what_is_brighter() {
+    let (engine, sky) = SCENES[0].set();
+    let vista = Vista::of(engine.orbit(), &sky);
+    let weights = Weights::of(&Tails::default());
+    let mut cloud = Cloud::new();
+    let picture = cloud.render(&vista, &weights, &raster(6.0), Quality::DRAGGING).expect("dust");
+    let mut rgba = Vec::new();
+    for stretch in [Stretch::Asinh, Stretch::Log] {
+        picture.tone(
+            &[[0, 0, 0, 255], [200, 100, 50, 255], [255, 250, 240, 255]],
+            Tone { stretch, depth_decades: 3.0 },
+            &mut rgba,
+        );
+        assert_eq!(rgba.len(), 4 * picture.width() * picture.height());
+        let mut pairs: Vec<(f32, u8)> = (0..picture.height())
+            .flat_map(|y| {
+                picture.line(y).iter().zip(rgba[4 * y * picture.width()..].chunks(4)).map(|(d, c)| (*d, c[1]))
+            })
+            .collect();
+        pairs.sort_by(|a, b| a.0.total_cmp(&b.0));
+        assert!(pairs.windows(2).all(|pair| pair[0].1 <= pair[1].1));
+        assert_eq!(pairs[0].1, 0);
+        assert!(pairs[pairs.len() - 1].1 > 245);
+    }
+    let levels = picture.isophote_levels(5, 3.0);
+    assert!(levels.windows(2).all(|pair| pair[0] > pair[1]));
+    for level in levels {
+        let lines = picture.isophotes(level);
+        assert!(!lines.is_empty());
+        for line in &lines {
+            for pair in line.windows(2) {
+                // A quarter circle to the left of the way, in page axes, is (y, -x).
+                let [dx, dy] = [pair[1][0] - pair[0][0], pair[1][1] - pair[0][1]];
+                assert!(dx.abs() <= 16.0 && dy.abs() <= 16.0, "{pair:?}");
+            }
+            let closed = line[0] == line[line.len() - 1];
+            let at_edge = |p: [f32; 2]| p[0] < 9.0 || p[1] < 9.0 || p[0] > 1191.0 || p[1] > 791.0;
+            assert!(closed || (at_edge(line[0]) && at_edge(line[line.len() - 1])), "{:?} {:?}", line[0], line.last());
+        }
     }
 }

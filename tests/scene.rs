@@ -14,3 +14,9 @@ mod place;
 mod pointer;
 #[path = "scene/skies.rs"]
 mod skies;
+#[path = "scene/small.rs"]
+mod small;
+#[path = "scene/tails.rs"]
+mod tails;
+#[path = "scene/tone.rs"]
+mod tone;

@@ -4,14 +4,20 @@ use super::{Call, Limits, Stop, in_words, text};
 use tailvane::engine::{Engine, View};
 use tailvane::error::{Error, Kind, Place};
 use tailvane::paint::svg;
+use tailvane::scene::dust::{Depth, DustLayer};
+use tailvane::scene::layer::{Layers, TailLayers};
 use tailvane::scene::theme::Theme;
 use tailvane::scene::view::SkyView;
-use tailvane::scene::{Scene, sky_plane};
+use tailvane::scene::{Scene, orbit_view, sky_plane};
+use tailvane::tail::cloud::Quality;
 
 /// What is drawn, by its name.
-type Drawing = (&'static str, fn(&Engine, &View, [f64; 2]) -> Scene);
+type Drawing = (&'static str, Draw);
 
-const VIEWS: &[Drawing] = &[("sky", sky)];
+/// Makes the scene of a view, in the theme that will paint it, of a size in pixels.
+type Draw = fn(&Engine, &View, Theme, [f64; 2]) -> Scene;
+
+const VIEWS: &[Drawing] = &[("sky", sky), ("orbit", orbit)];
 
 const PIXELS: Limits = Limits { least: 64.0, greatest: 16_384.0 };
 
@@ -41,15 +47,27 @@ pub fn run(arguments: lexopt::Parser) -> Result<(), Stop> {
     let view = engine.view_at(time)?;
     let title = format!("{}, {}", engine.plan().comet.name, time.utc_minute());
     let saying = engine.saying(&view.sky, &engine.tails_at(&view.sky));
-    let scene = drawing(&engine, &view, size_px);
+    let scene = drawing(&engine, &view, theme, size_px);
     let file = svg::write(&scene, theme, &title, &saying.sentence);
     std::fs::write(&out, file).map_err(|error| {
         Error::new(Kind::File, Place::Field(out.clone()), error.to_string(), "a file that can be written").into()
     })
 }
 
-fn sky(engine: &Engine, view: &View, [width_px, height_px]: [f64; 2]) -> Scene {
-    sky_plane::compose(engine.plan(), &view.sky, &SkyView::start(width_px, height_px))
+fn sky(engine: &Engine, view: &View, theme: Theme, [width_px, height_px]: [f64; 2]) -> Scene {
+    let (vista, laws) = (engine.vista(&view.sky), &engine.plan().tails);
+    let frame = SkyView::start(width_px, height_px);
+    let mut tails = TailLayers::of(&vista, laws, &frame, &Layers::default());
+    let mut dust = DustLayer::new();
+    // Laws that release nothing leave a sky without dust; the sentence says so.
+    if dust.render(&vista, laws, &view.sky, &frame, Quality::STILL).is_ok() {
+        tails.picture = dust.image(theme, &Depth::default());
+    }
+    sky_plane::compose(engine.plan(), &view.sky, &tails, &frame)
+}
+
+fn orbit(engine: &Engine, view: &View, _theme: Theme, [width_px, height_px]: [f64; 2]) -> Scene {
+    orbit_view::compose(engine.plan(), &view.sky, &engine.vista(&view.sky), width_px, height_px)
 }
 
 fn view_names() -> String {
@@ -57,7 +75,7 @@ fn view_names() -> String {
     in_words(&names, "or")
 }
 
-fn named(drawings: &[Drawing], typed: &str) -> Result<fn(&Engine, &View, [f64; 2]) -> Scene, Stop> {
+fn named(drawings: &[Drawing], typed: &str) -> Result<Draw, Stop> {
     let found = drawings.iter().find(|(name, _)| *name == typed).map(|(_, drawing)| *drawing);
     found.ok_or_else(|| Stop::Usage(format!("--view: found '{typed}'; expected {}", view_names())))
 }

@@ -60,9 +60,42 @@ pub fn polynomial_at(powers: &[f32], t: f32) -> f32 {
     powers.iter().rev().fold(0.0, |sum, power| sum * t + power)
 }
 
+/// A cell, with as few powers as serve. An enum and not a generic type, so that the loops are compiled in this crate.
+#[derive(Clone, Debug)]
+pub enum Part {
+    /// Nothing is ejected.
+    Still(Box<Cell<6, 0>>),
+    Short(Box<Cell<4, 3>>),
+    Full(Box<Cell<6, 6>>),
+}
+
+impl Part {
+    /// The part of a patch from t = `middle` - `half` to `middle` + `half`; shortened powers may miss `tolerance`, in
+    /// units of X and Y.
+    pub fn of(patch: &[Row; S_TERMS], [middle, half]: [f32; 2], ejected: bool, tolerance: f32) -> Self {
+        if !ejected {
+            return Part::Still(Box::new(Cell::of(patch, [middle, half])));
+        }
+        let short = Cell::of(patch, [middle, half]);
+        if short.cut <= tolerance {
+            return Part::Short(Box::new(short));
+        }
+        Part::Full(Box::new(Cell::of(patch, [middle, half])))
+    }
+
+    /// Adds the samples of its row at `s` to a grid.
+    pub fn add_row(&self, s: f32, samples: &Samples, ejections: &Ejections, grid: &mut Grid) {
+        match self {
+            Part::Still(cell) => add_strip(&cell.strip_at(s), samples, ejections, grid),
+            Part::Short(cell) => add_strip(&cell.strip_at(s), samples, ejections, grid),
+            Part::Full(cell) => add_strip(&cell.strip_at(s), samples, ejections, grid),
+        }
+    }
+}
+
 /// The polynomials of one row of a cell: P powers for each place, J for each slope (none: nothing is ejected).
 #[derive(Clone, Copy, Debug)]
-pub struct Strip<const P: usize, const J: usize> {
+struct Strip<const P: usize, const J: usize> {
     place: [[f32; P]; 3],
     slope: [[f32; J]; 9],
 }
@@ -71,23 +104,22 @@ pub struct Strip<const P: usize, const J: usize> {
 #[derive(Clone, Copy, Debug)]
 pub struct Cell<const P: usize, const J: usize> {
     strips: [Strip<P, J>; S_TERMS],
-    /// At most so much was cut off: from places, from slopes.
-    pub cut: [f32; 2],
+    /// At most so much was cut off, of places and of slopes together.
+    cut: f32,
 }
 
 impl<const P: usize, const J: usize> Cell<P, J> {
-    /// The part of a patch from t = `middle` - `half` to `middle` + `half`.
-    pub fn of(patch: &[Row; S_TERMS], [middle, half]: [f32; 2]) -> Self {
-        let mut cut = [0.0_f32; 2];
+    fn of(patch: &[Row; S_TERMS], [middle, half]: [f32; 2]) -> Self {
+        let mut cut = 0.0;
         let strips = patch.map(|row| {
             let mut strip = Strip { place: [[0.0; P]; 3], slope: [[0.0; J]; 9] };
             for (function, powers) in row.chunks_exact(T_TERMS).enumerate() {
                 let mut own = shifted(powers, middle, half);
                 if function < 3 {
-                    cut[0] += economise(&mut own, P);
+                    cut += economise(&mut own, P);
                     strip.place[function].copy_from_slice(&own[..P]);
                 } else if J > 0 {
-                    cut[1] += economise(&mut own, J);
+                    cut += economise(&mut own, J);
                     strip.slope[function - 3].copy_from_slice(&own[..J]);
                 }
             }
@@ -97,7 +129,7 @@ impl<const P: usize, const J: usize> Cell<P, J> {
     }
 
     /// Its row at `s`.
-    pub fn strip_at(&self, s: f32) -> Strip<P, J> {
+    fn strip_at(&self, s: f32) -> Strip<P, J> {
         let terms = chebyshev(s);
         let mut sum = self.strips[0];
         for (term, strip) in terms.iter().zip(&self.strips).skip(1) {
@@ -174,8 +206,7 @@ pub struct Samples {
     pub nearest: f32,
 }
 
-/// Adds the samples of a row to a grid.
-pub fn add_strip<const P: usize, const J: usize>(
+fn add_strip<const P: usize, const J: usize>(
     strip: &Strip<P, J>,
     samples: &Samples,
     ejections: &Ejections,

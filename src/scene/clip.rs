@@ -39,6 +39,31 @@ pub fn line_outside(line: &[Point], areas: &[Rect]) -> Vec<Vec<Point>> {
     pieces.done
 }
 
+/// The parts of an open line outside a circle.
+pub fn outside_circle(line: &[Point], center: Point, radius: f64) -> Vec<Vec<Point>> {
+    let mut pieces = Pieces::default();
+    for pair in line.windows(2) {
+        let (a, b) = (pair[0], pair[1]);
+        // |a + t (b - a) - center|^2 = radius^2, a t^2 + 2 h t + c = 0.
+        let ([px, py], [dx, dy]) = ([a[0] - center[0], a[1] - center[1]], [b[0] - a[0], b[1] - a[1]]);
+        let (square, half, rest) = (dx * dx + dy * dy, px * dx + py * dy, px * px + py * py - radius * radius);
+        let under = half * half - square * rest;
+        let (first, last) = if square > 0.0 && under > 0.0 {
+            let root = under.sqrt();
+            ((-half - root) / square, (-half + root) / square)
+        } else {
+            (2.0, 2.0)
+        };
+        if first > 0.0 {
+            pieces.add(a, between(a, b, first));
+        }
+        if last < 1.0 {
+            pieces.add(between(a, b, last), b);
+        }
+    }
+    pieces.done
+}
+
 /// First and last share of a segment inside a rectangle, edges included; None where it passes by.
 fn shares(area: &Rect, a: Point, b: Point) -> Option<[f64; 2]> {
     let (mut first, mut last) = (0.0_f64, 1.0_f64);
@@ -145,6 +170,14 @@ mod tests {
         assert_eq!(outside[0], [[-5.0, 5.0], [0.0, 5.0]]);
         assert_eq!(outside[1].first(), Some(&[10.0, 5.0]));
         assert_eq!(outside[1].last(), Some(&[10.0, 8.0]));
+    }
+
+    #[test]
+    fn a_circle_is_cut_out_of_a_line() {
+        let outside = outside_circle(&[[-10.0, 0.0], [10.0, 0.0], [10.0, 3.0]], [0.0, 0.0], 5.0);
+        assert_eq!(outside, [vec![[-10.0, 0.0], [-5.0, 0.0]], vec![[5.0, 0.0], [10.0, 0.0], [10.0, 3.0]]]);
+        assert!(outside_circle(&[[-1.0, 0.0], [1.0, 2.0]], [0.0, 0.0], 5.0).is_empty());
+        assert_eq!(outside_circle(&[[9.0, 0.0], [9.0, 9.0]], [0.0, 0.0], 5.0), [vec![[9.0, 0.0], [9.0, 9.0]]]);
     }
 
     #[test]

@@ -65,7 +65,7 @@ pub fn compose(plan: &Plan, sky: &Sky, vista: &Vista, width_px: f64, height_px: 
         scene.add(role, Shape::Text(Text { words, at, anchor: Anchor::Start, size_px, strong }));
         baseline += LINE * size_px;
     }
-    let top = baseline - ABOVE * size_px;
+    let top = baseline - ABOVE * size_px + 4.0 * unit;
     let whole = Rect { left: 0.0, top, right: width_px, bottom: height_px };
     let stage = Stage::of(plan, sky, vista);
     let (first, second) = halves(&whole, width_px >= SIDE_BY_SIDE * unit);
@@ -386,8 +386,14 @@ fn two_rows(words: &str, rows: &[String]) -> Vec<String> {
 }
 
 fn put(scene: &mut Scene, name: &Name, rows: &[String], placed: &Placed, size_px: f64) {
-    if let Some(leader) = placed.leader {
-        scene.add(Role::Guide, Shape::Polyline(leader.to_vec()));
+    // A label that stands beside its mark needs no leader; a longer one starts outside the mark.
+    if let Some([from, to]) = placed.leader {
+        let (step, long) = (unit_step(from, to), libm::hypot(to[0] - from[0], to[1] - from[1]));
+        if long > 2.2 * size_px {
+            let start = 0.8 * size_px;
+            let line = vec![[from[0] + step[0] * start, from[1] + step[1] * start], to];
+            scene.add(Role::Guide, Shape::Polyline(line));
+        }
     }
     for (row, words) in rows.iter().enumerate() {
         let at = [placed.area.center()[0], placed.area.top + (ABOVE + LINE * row as f64) * size_px];

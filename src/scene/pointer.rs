@@ -11,20 +11,17 @@
 //! ```
 //!
 //! In the orbit plane, a line of sight s from the observer meets the plane where n . (k s - rho) = 0, n the
-//! orbit's normal and rho the way from observer to nucleus. Left out: light time within the tail.
+//! orbit's normal and rho the way from observer to nucleus ([`inverse::meet_plane`]). Left out: light time within the tail.
 
 use super::quantity::{self, KM_PER_AU};
 use super::view::SkyView;
 use crate::frame::{self, half_turn, tangent};
 use crate::sky::Sky;
+use crate::tail::inverse;
 use std::f64::consts::PI;
 
 /// How far a position angle may differ from that of a direction for a length along it to be given.
 pub const AGREES_WITHIN_RAD: f64 = 5.0 * PI / 180.0;
-
-/// Sine of the least angle between line of sight and orbit plane for a length in the plane: at one degree an
-/// error across is already stretched 57 times; at a crossing the length is undefined.
-const LEAST_SINE_TO_PLANE: f64 = 0.017_452;
 
 /// A length along a direction in space.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -92,23 +89,9 @@ fn along(observer_distance_au: f64, distance_rad: f64, to_observer_rad: f64) -> 
 
 /// Distance from the nucleus of the point where a line of sight meets the orbit plane.
 fn in_orbit_plane_km(sky: &Sky, sight: &nalgebra::Vector3<f64>) -> Option<f64> {
-    let normal = sky.comet.position_au.cross(&sky.comet.velocity_au_d);
-    let length = normal.norm();
-    if length == 0.0 {
-        return None;
-    }
-    let normal = normal / length;
-    let steepness = normal.dot(sight);
-    let to_nucleus = sky.axes.sight * sky.observer_distance_au;
-    let range = normal.dot(&to_nucleus) / steepness;
-    if steepness.abs() < LEAST_SINE_TO_PLANE || range <= 0.0 {
-        return None;
-    }
-    // The observer near the plane: the same stretch, seen from the nucleus.
-    if normal.dot(&sky.axes.sight).abs() < LEAST_SINE_TO_PLANE {
-        return None;
-    }
-    Some((sight * range - to_nucleus).norm() * KM_PER_AU)
+    let normal = sky.comet.position_au.cross(&sky.comet.velocity_au_d).try_normalize(0.0)?;
+    let met = inverse::meet_plane(&normal, &sky.observer.position_au, &sky.axes.sight, sight).ok()?;
+    Some((met - sky.comet.position_au).norm() * KM_PER_AU)
 }
 
 impl Hover {

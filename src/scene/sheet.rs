@@ -2,22 +2,27 @@
 //!
 //! Dust that leaves without a speed of its own lies in a sheet in the orbit plane, one grain for each beta and age. Here
 //! the sheet is a mesh of exact grains, straight in between: good for a drawing, not for numbers (those come from
-//! [`crate::tail::perspective`]). Betas step evenly in their logarithm, ages in their square root, since near the
-//! nucleus the way grows as the square of the age.
+//! [`crate::tail::perspective`]). Betas step evenly in a low power, between their logarithm, which would be coarse far
+//! out, and beta itself, which would be coarse near the nucleus. Ages step evenly in the sum of their square root, since
+//! near the nucleus the way grows as the square of the age, and of the angle through which the comet has turned about the
+//! Sun, so that a fast perihelion is not stepped over.
 
 use super::Point;
 use super::clip::{figure_beside, figure_inside, twice_area};
 use super::lettering::Rect;
 use super::view::Facing;
+use crate::frame::separation_rad;
 use crate::tail::grain::Vista;
 use crate::tail::law::Tails;
 use nalgebra::Vector3;
 
 /// Ages of the mesh.
-const ROWS: usize = 32;
-/// Betas of the mesh for each decade, and how many at least and at most.
-const COLUMNS_PER_DECADE: f64 = 3.0;
-const COLUMNS: [usize; 2] = [4, 13];
+const ROWS: usize = 40;
+/// Steps among which the ages are chosen.
+const FINE_STEPS: usize = 160;
+/// Betas of the mesh, and the power that they step in.
+const COLUMNS: usize = 12;
+const POWER: f64 = 0.3;
 
 /// The sheet as a mesh, row by row of equal age.
 #[derive(Clone, Debug, PartialEq)]
@@ -48,18 +53,12 @@ impl TowardSun {
 impl Sheet {
     /// The sheet of a vista over the ranges of `laws`.
     pub fn of(vista: &Vista, laws: &Tails) -> Self {
-        let span = libm::log(laws.beta_greatest / laws.beta_least);
-        let wanted = (span / std::f64::consts::LN_10 * COLUMNS_PER_DECADE).ceil() as usize + 1;
-        let columns = wanted.clamp(COLUMNS[0], COLUMNS[1]);
+        let columns = COLUMNS;
         let share = |i: usize, count: usize| i as f64 / (count - 1) as f64;
-        let betas: Vec<f64> = (0..columns).map(|i| laws.beta_least * libm::exp(span * share(i, columns))).collect();
-        let (youngest, oldest) = (laws.age_least_days.sqrt(), laws.age_greatest_days.sqrt());
-        let ages_days: Vec<f64> = (0..ROWS)
-            .map(|i| {
-                let root = youngest + (oldest - youngest) * share(i, ROWS);
-                root * root
-            })
-            .collect();
+        let [least, greatest] = [laws.beta_least, laws.beta_greatest].map(|beta| libm::pow(beta, POWER));
+        let betas: Vec<f64> =
+            (0..columns).map(|i| libm::pow(least + (greatest - least) * share(i, columns), 1.0 / POWER)).collect();
+        let ages_days = ages_days(vista, laws);
         let mut places_au = Vec::with_capacity(columns * ROWS);
         for &age_days in &ages_days {
             let start = vista.release(age_days);
@@ -118,6 +117,30 @@ impl Sheet {
         }
         found
     }
+}
+
+/// The ages of the rows, youngest first.
+fn ages_days(vista: &Vista, laws: &Tails) -> Vec<f64> {
+    let (youngest, oldest) = (laws.age_least_days.sqrt(), laws.age_greatest_days.sqrt());
+    let age = |i: usize| {
+        let root = youngest + (oldest - youngest) * i as f64 / FINE_STEPS as f64;
+        root * root
+    };
+    let places: Vec<Vector3<f64>> = (0..=FINE_STEPS).map(|i| vista.release(age(i)).position_au).collect();
+    let turns: Vec<f64> = places.windows(2).map(|pair| separation_rad(&pair[0], &pair[1])).collect();
+    let whole_turn: f64 = turns.iter().sum::<f64>().max(1e-9);
+    // The measure at each fine step, from 0 to about 2.
+    let mut measure = vec![0.0];
+    for turn in &turns {
+        measure.push(measure[measure.len() - 1] + turn / whole_turn + 1.0 / FINE_STEPS as f64);
+    }
+    let whole = measure[FINE_STEPS];
+    (0..ROWS)
+        .map(|row| {
+            let wanted = whole * row as f64 / (ROWS - 1) as f64;
+            age(measure.partition_point(|&sum| sum < wanted - 1e-9).min(FINE_STEPS))
+        })
+        .collect()
 }
 
 impl TowardSun {

@@ -18,8 +18,9 @@ const SIZE: f64 = 11.5;
 /// Room beside the map for ages at its left and dates at its right, in drawing units.
 const LEFT: f64 = 44.0;
 const RIGHT: f64 = 58.0;
+const RIGHT_WITH_YEARS: f64 = 78.0;
 const TICK: f64 = 5.0;
-const HATCH_GAP: f64 = 6.5;
+const HATCH_GAP: f64 = 7.0;
 /// Decades of brightness that the cells show.
 const DECADES: f64 = 2.5;
 /// Releases longer ago than this are dated by month and year.
@@ -40,13 +41,14 @@ pub fn compose(map: &Map, laws: &Tails, seen: Instant, width_px: f64, height_px:
     let row = LINE * size_px;
     let legend = legend(map, width_px - 2.0 * margin, size_px);
     let foot = margin + row * legend.len() as f64;
+    let right = if laws.age_greatest_days > LONG_AGO_DAYS { RIGHT_WITH_YEARS } else { RIGHT };
     let ends = |edges: &[f64]| [edges[0], edges[edges.len() - 1]];
     let plane = Plane {
         area: Rect {
             left: (margin + (LEFT - note::MARGIN) * unit).round(),
-            top: (margin + 2.2 * row).round(),
-            right: (width_px - RIGHT * unit).round(),
-            bottom: (height_px - foot - 2.4 * row).round(),
+            top: (margin + 2.6 * row).round(),
+            right: (width_px - right * unit).round(),
+            bottom: (height_px - foot - 3.3 * row).round(),
         },
         log_betas: ends(&map.beta_edges).map(libm::log),
         ages_days: ends(&map.age_edges_days),
@@ -157,7 +159,7 @@ impl Plane {
 
     fn titles(&self, width_px: f64, margin: f64, size_px: f64) -> Vec<(Role, Text)> {
         let top = margin + ABOVE * size_px;
-        let foot = self.area.bottom + (2.0 * LINE - BELOW) * size_px;
+        let foot = self.area.bottom + (2.2 * LINE + ABOVE - BELOW) * size_px;
         let middle = self.area.center()[0];
         [
             ("age", [margin, top], Anchor::Start),
@@ -190,7 +192,7 @@ impl Plane {
                 axis.push(vec![[x, edge], [x, edge + out * TICK * unit]]);
             }
             let below = self.area.bottom + TICK * unit + 2.0 * unit + ABOVE * size_px;
-            let above = self.area.top - TICK * unit - 2.0 * unit - BELOW * size_px;
+            let above = self.area.top - TICK * unit - 5.0 * unit - BELOW * size_px;
             for (words, y) in [(quantity::figures(beta), below), (material.short(beta), above)] {
                 texts.push((Role::Note, Text { words, at: [x, y], anchor: Anchor::Middle, size_px, strong: false }));
             }

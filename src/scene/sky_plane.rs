@@ -58,8 +58,12 @@ pub fn compose(plan: &Plan, sky: &Sky, tails: &TailLayers, view: &SkyView) -> Sc
     let crossed = !toward_sun.is_empty();
     let notes = Notes::of(&scene, plan, sky, view, &facing, crossed);
     let hands = if vane.is_in_sight(&scene) { hands(sky, tails, &facing, &vane) } else { Vec::new() };
-    let curves = tail_plane::curves(tails, &facing, &page);
-    let writing = Writing::of(&scene, &facing, &vane, notes, &hands, &curves);
+    let mut curves = tail_plane::curves(tails, &facing, &page);
+    tail_plane::part(&mut curves, vane.center, vane.radius_px, scene.unit_px);
+    let wedge_px = vane.radius_px * mark::reach(Direction::IonAxis);
+    let wedge = tail_plane::wedge_ends(tails, &facing, vane.center, wedge_px);
+    let lines = Lines { vane: &vane, hands: &hands, wedge: &wedge, curves: &curves, before: &tails.spots_before };
+    let writing = Writing::of(&scene, &facing, notes, &lines);
 
     if let Some(image) = &tails.picture {
         let node = Node { role: Role::DustPicture, shape: Shape::Image(image.clone()) };
@@ -74,13 +78,7 @@ pub fn compose(plan: &Plan, sky: &Sky, tails: &TailLayers, view: &SkyView) -> Sc
     tail_plane::draw(&mut scene, tails, toward_sun, &curves, &writing.areas());
     if vane.is_in_sight(&scene) {
         vane.draw(&mut scene, &facing);
-        tail_plane::draw_wedge(
-            &mut scene,
-            tails,
-            &facing,
-            vane.center,
-            vane.radius_px * mark::reach(Direction::IonAxis),
-        );
+        tail_plane::draw_wedge(&mut scene, tails, &facing, vane.center, wedge_px);
     }
     // The shorter hands come last: where two fall together, each pattern shows from its own length inward.
     for hand in hands.iter().filter(|hand| hand.direction != Direction::Sunward) {
@@ -194,6 +192,17 @@ fn hatch_sunward_half(scene: &mut Scene, sky: &Sky, facing: &Facing) {
     }
 }
 
+/// What texts belong to, and keep clear of.
+struct Lines<'a> {
+    vane: &'a Vane,
+    hands: &'a [Hand],
+    /// Where the edges of the ion wedge end.
+    wedge: &'a [Point],
+    curves: &'a [PageCurve],
+    /// Where labels of curves stood before.
+    before: &'a [(String, Point)],
+}
+
 /// Every text of a drawing, placed, and the leaders of labels.
 struct Writing {
     notes: Notes,
@@ -203,7 +212,8 @@ struct Writing {
 }
 
 impl Writing {
-    fn of(scene: &Scene, facing: &Facing, vane: &Vane, notes: Notes, hands: &[Hand], curves: &[PageCurve]) -> Self {
+    fn of(scene: &Scene, facing: &Facing, notes: Notes, lines: &Lines) -> Self {
+        let Lines { vane, hands, wedge, curves, before } = *lines;
         let unit = scene.unit_px;
         let page = page(scene);
         let mut room = Room::new(page.grown(-0.5 * MARGIN * unit), vane.center, vane.radius_px, unit);
@@ -218,6 +228,7 @@ impl Writing {
         room.taken.extend(hands.iter().map(|hand| mark::area(hand.end, unit)));
         room.taken.push(Rect::around(vane.center, 8.0 * unit, 8.0 * unit));
         room.hands.extend(hands.iter().map(|hand| [vane.center, hand.end]));
+        room.hands.extend(wedge.iter().map(|&edge| [vane.center, edge]));
 
         let mut writing = Writing { notes, leaders: Vec::new(), texts: Vec::new() };
         // A direction whose mark is off the page keeps its place in the table only.
@@ -230,7 +241,7 @@ impl Writing {
             let leader = leader(hand, wish, &placed, unit);
             writing.leaders.extend(leader.map(|line| (Role::Leader(hand.direction), line)));
         }
-        let spots = spot::find(&mut room, curves);
+        let spots = spot::find(&mut room, curves, before);
         writing.texts.extend(tail_plane::labels(curves, &spots, unit));
         writing.texts.extend(letters.into_iter().map(|letter| (Role::Cardinal, letter)));
         let numbers: Vec<Text> = if in_sight { vane.numbers(scene, facing) } else { Vec::new() };

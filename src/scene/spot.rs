@@ -2,16 +2,17 @@
 //!
 //! Curves of dust leave the nucleus together and open like a fan, so a label belongs where its curve runs alone: on the
 //! curve, which is broken for it, or beside it, or beyond its tip. A spot is free when its box lies on the page,
-//! touches nothing that is taken, and no other curve of its kind runs through it; among the free ones the cheapest wins:
-//! three quarters out along the curve, off hands and other curves. A curve without a free spot has no label: a bundle
+//! touches nothing that is taken, and neither a hand nor another curve of its kind runs through it; among the free ones
+//! the cheapest wins: three quarters out along the curve, outside the ring, off curves of other kinds. A curve without a free spot has no label: a bundle
 //! seen edge-on names its outermost curves and not each. The outer curves of a kind choose first, then those between.
 //!
-//! Spots are shares of the visible length, so a label slides with its curve while the date is scrubbed.
+//! Spots are shares of the visible length, so a label slides with its curve while the date is scrubbed; and a spot near
+//! that of the drawing before is cheaper than any other.
 //! Which curve runs where is kept in a mesh of cells, so that a frame costs no search through segments.
 
 use super::label::Room;
 use super::lettering::{ABOVE, BELOW, Rect, width_px};
-use super::{Family, Point};
+use super::{Family, Point, Role, Scene};
 
 /// A curve as it lies on the page.
 #[derive(Clone, Debug, PartialEq)]
@@ -49,18 +50,33 @@ const BESIDE: f64 = 9.0;
 const BEYOND: f64 = 6.0;
 const SHORT_WORDS: f64 = 28.0;
 const MEETS_OTHER_KIND: f64 = 9.0;
-const MEETS_HAND: f64 = 30.0;
-const INSIDE_RING: f64 = 20.0;
+const INSIDE_RING: f64 = 30.0;
+/// For each drawing unit away from where the label stood before, up to so many of them.
+const MOVED: f64 = 2.0;
+const FARTHEST_MOVE: f64 = 40.0;
 
-/// A spot for each curve that has one; each takes its room.
-pub fn find(room: &mut Room, curves: &[PageCurve]) -> Vec<Option<Spot>> {
+/// The labels of curves in a drawing: the name of the curve (its beta or age), and the middle of the label.
+pub fn spots_of(scene: &Scene) -> Vec<(String, Point)> {
+    let labels = scene.texts().filter(|(role, _)| matches!(role, Role::CurveLabel(_)));
+    labels.map(|(_, text)| (name(&text.words).to_string(), text.area().center())).collect()
+}
+
+/// What of a label's words stays the same from one drawing to the next.
+fn name(words: &str) -> &str {
+    words.split(" · ").next().unwrap_or(words)
+}
+
+/// A spot for each curve that has one; each takes its room. `before` holds those of the drawing before.
+pub fn find(room: &mut Room, curves: &[PageCurve], before: &[(String, Point)]) -> Vec<Option<Spot>> {
     let mesh = Mesh::of(room, curves);
     let mut spots = vec![None; curves.len()];
     for family in [Family::NeckLine, Family::Syndyne, Family::Synchrone] {
         let members: Vec<usize> = (0..curves.len()).filter(|&i| curves[i].family == family).collect();
         for member in outer_first(members.len()) {
             let index = members[member];
-            let spot = cheapest(room, &mesh, curves, index);
+            let name = name(&curves[index].words[0]);
+            let was = before.iter().find(|(other, _)| other == name).map(|(_, at)| *at);
+            let spot = cheapest(room, &mesh, curves, index, was);
             room.taken.extend(spot.map(|spot: Spot| spot.area));
             spots[index] = spot;
         }
@@ -69,7 +85,7 @@ pub fn find(room: &mut Room, curves: &[PageCurve]) -> Vec<Option<Spot>> {
 }
 
 /// 0 to `count` - 1: the two ends, then the middles of what lies between, ever finer.
-fn outer_first(count: usize) -> Vec<usize> {
+pub fn outer_first(count: usize) -> Vec<usize> {
     let mut order: Vec<usize> = Vec::new();
     let mut parts = 1;
     while order.len() < count {
@@ -84,7 +100,7 @@ fn outer_first(count: usize) -> Vec<usize> {
     order
 }
 
-fn cheapest(room: &Room, mesh: &Mesh, curves: &[PageCurve], index: usize) -> Option<Spot> {
+fn cheapest(room: &Room, mesh: &Mesh, curves: &[PageCurve], index: usize, was: Option<Point>) -> Option<Spot> {
     let curve = &curves[index];
     let unit = room.unit_px;
     let piece = curve.pieces.iter().max_by(|a, b| length(a).total_cmp(&length(b)))?;
@@ -97,7 +113,8 @@ fn cheapest(room: &Room, mesh: &Mesh, curves: &[PageCurve], index: usize) -> Opt
         let half = [width_px(text, size_px, false) / 2.0, size_px * (ABOVE + BELOW) / 2.0];
         let mut consider = |center: Point, cost: f64| {
             let area = Rect::around(center, half[0], half[1]);
-            let cost = cost + SHORT_WORDS * words as f64;
+            let moved = was.map_or(0.0, |[x, y]| (libm::hypot(center[0] - x, center[1] - y) / unit).min(FARTHEST_MOVE));
+            let cost = cost + SHORT_WORDS * words as f64 + MOVED * moved;
             if best.is_some_and(|(least, _)| cost >= least) {
                 return;
             }
@@ -136,14 +153,12 @@ fn judged(room: &Room, mesh: &Mesh, index: usize, area: &Rect) -> Option<f64> {
     if met & mesh.kind(index) != 0 {
         return None;
     }
-    let hands = room.hands.iter().filter(|[a, b]| clear.cuts(*a, *b)).count();
+    if room.hands.iter().any(|[a, b]| clear.cuts(*a, *b)) {
+        return None;
+    }
     let center = area.center();
     let inside = libm::hypot(center[0] - room.ring_center[0], center[1] - room.ring_center[1]) < room.ring_radius_px;
-    Some(
-        MEETS_OTHER_KIND * f64::from(met.count_ones())
-            + MEETS_HAND * hands as f64
-            + if inside { INSIDE_RING } else { 0.0 },
-    )
+    Some(MEETS_OTHER_KIND * f64::from(met.count_ones()) + if inside { INSIDE_RING } else { 0.0 })
 }
 
 /// How far a box of these half sides reaches along a unit step.

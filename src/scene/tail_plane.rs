@@ -3,7 +3,7 @@
 //! Under the ring: the dust picture, isophotes, the shaded dust toward the Sun, synchrones, syndynes, the neck-line.
 //! With the hands: the wedge of the ion tail. Lines end at the edge of the page and leave room for every text.
 
-use super::clip::{line_inside, line_outside};
+use super::clip::{line_inside, line_outside, outside_circle};
 use super::layer::TailLayers;
 use super::lettering::{Anchor, Rect, Text};
 use super::sheet::TowardSun;
@@ -12,9 +12,14 @@ use super::view::Facing;
 use super::{Family, Point, Role, Scene, Shape, Slope, quantity};
 use crate::tail::curve::{Curve, Held};
 use crate::tail::size::Material;
+use std::f64::consts::TAU;
 
 /// Between the diagonals over dust toward the Sun, in drawing units.
 const HATCH_GAP: f64 = 6.0;
+/// Neighbouring synchrones stand at least this far apart where they begin, in drawing units, unless that lies farther
+/// out than this share of the ring's radius.
+const LEAST_APART: f64 = 5.0;
+const BUNDLED_SHARE: f64 = 0.45;
 /// A release longer ago is dated with its year.
 const LONG_AGO_DAYS: f64 = 300.0;
 /// The arc of a wedge is drawn in steps of this, radians.
@@ -64,6 +69,61 @@ fn clipped(family: Family, pieces: &[Vec<Point>], page: &Rect, words: [String; 2
     PageCurve { family, pieces: inside, ends, words }
 }
 
+/// Keeps synchrones from running together into a smear: leaves out those that lie on another for all of their visible
+/// length (as all do in the orbit plane), the outer ones staying, and cuts off the inner ends of the rest where they
+/// crowd around the nucleus.
+pub fn part(curves: &mut Vec<PageCurve>, nucleus: Point, ring_radius_px: f64, unit_px: f64) {
+    let synchrones: Vec<usize> = (0..curves.len()).filter(|&i| curves[i].family == Family::Synchrone).collect();
+    let mut kept: Vec<usize> = Vec::new();
+    for member in spot::outer_first(synchrones.len()) {
+        let index = synchrones[member];
+        let apart = |other: &usize| apart_px(&curves[index], &curves[*other]) > LEAST_APART * unit_px;
+        if kept.iter().all(apart) {
+            kept.push(index);
+        }
+    }
+    let from = inner_px(&kept, curves, nucleus, unit_px).min(BUNDLED_SHARE * ring_radius_px);
+    for &index in &kept {
+        let outside = curves[index].pieces.iter().flat_map(|piece| outside_circle(piece, nucleus, from)).collect();
+        curves[index].pieces = outside;
+    }
+    let mut index = 0;
+    curves.retain(|curve| {
+        index += 1;
+        curve.family != Family::Synchrone || kept.contains(&(index - 1)) && !curve.pieces.is_empty()
+    });
+}
+
+/// How far a curve comes away from another.
+fn apart_px(one: &PageCurve, other: &PageCurve) -> f64 {
+    let away = |p: &Point| {
+        let segments = other.pieces.iter().flat_map(|piece| piece.windows(2));
+        segments.map(|pair| distance_px(*p, pair[0], pair[1])).fold(f64::INFINITY, f64::min)
+    };
+    one.pieces.iter().flatten().map(|p| away(p)).fold(0.0, f64::max)
+}
+
+/// Distance of a point from a segment.
+fn distance_px(p: Point, a: Point, b: Point) -> f64 {
+    let (step, to) = ([b[0] - a[0], b[1] - a[1]], [p[0] - a[0], p[1] - a[1]]);
+    let square = step[0] * step[0] + step[1] * step[1];
+    let part = if square > 0.0 { ((to[0] * step[0] + to[1] * step[1]) / square).clamp(0.0, 1.0) } else { 0.0 };
+    libm::hypot(to[0] - step[0] * part, to[1] - step[1] * part)
+}
+
+/// The distance from the nucleus at which these curves stand apart: their number over the angle that they fill.
+fn inner_px(members: &[usize], curves: &[PageCurve], nucleus: Point, unit_px: f64) -> f64 {
+    let end = |&index: &usize| curves[index].pieces.last()?.last().copied();
+    let mut angles: Vec<f64> =
+        members.iter().filter_map(end).map(|[x, y]| libm::atan2(y - nucleus[1], x - nucleus[0])).collect();
+    angles.sort_by(f64::total_cmp);
+    let Some(&first) = angles.first() else { return 0.0 };
+    // The circle less its widest gap between neighbours is what the curves fill.
+    let next = angles.iter().copied().skip(1).chain([first + TAU]);
+    let gap = angles.iter().zip(next).map(|(a, b)| b - a).fold(0.0, f64::max);
+    LEAST_APART * unit_px * (angles.len() as f64 - 1.0) / (TAU - gap).max(1e-9)
+}
+
 /// Draws isophotes, shading and curves; `texts` are the boxes that lines leave free.
 pub fn draw(scene: &mut Scene, tails: &TailLayers, toward_sun: TowardSun, curves: &[PageCurve], texts: &[Rect]) {
     if !toward_sun.is_empty() {
@@ -109,9 +169,20 @@ pub fn draw_wedge(scene: &mut Scene, tails: &TailLayers, facing: &Facing, center
     let steps = ((last - first) / ARC_STEP).ceil().max(1.0) as usize;
     let mut outline = vec![center];
     outline.extend((0..=steps).map(|i| at(axis_rad + first + (last - first) * i as f64 / steps as f64)));
-    let edges = vec![vec![center, at(axis_rad + first)], vec![center, at(axis_rad + last)]];
+    let ends = wedge_ends(tails, facing, center, radius_px);
+    let edges = ends.into_iter().map(|end| vec![center, end]).collect();
     scene.add(Role::Wedge, Shape::Polygon(outline));
     scene.add(Role::WedgeEdge, Shape::Lines(edges));
+}
+
+/// Where the two edges of the wedge end.
+pub fn wedge_ends(tails: &TailLayers, facing: &Facing, center: Point, radius_px: f64) -> Vec<Point> {
+    let Some((axis_rad, reach)) = wedge_rad(tails) else { return Vec::new() };
+    let end = |aside: f64| {
+        let step = facing.direction(axis_rad + aside);
+        [center[0] + step[0] * radius_px, center[1] + step[1] * radius_px]
+    };
+    reach.map(end).to_vec()
 }
 
 /// The wedge's axis and its reach to either side, where the axis has a position angle.

@@ -176,12 +176,23 @@ impl<F: Fn(f64) -> Option<Point>> Tracer<'_, F> {
         }
         let middle = 0.5 * (from.0 + to.0);
         let between = (middle, (self.at)(middle));
-        let straight = between.1.is_some_and(|point| from_chord(point.offset, &a, &b) <= self.fineness.tolerance_rad);
-        if straight && !far {
-            self.join(a, b);
-        } else {
-            self.stretch(from, between, halvings - 1);
-            self.stretch(between, to, halvings - 1);
+        // With the middle as a point of its own each half strays a quarter as far, an even bend given; a point off the
+        // middle tells of a curve that swings from one side of its chord to the other.
+        let near =
+            |place: Point, from: &Point, to: &Point| from_chord(place.offset, from, to) <= self.fineness.tolerance_rad;
+        let off_middle = from.0 + 0.23 * (to.0 - from.0);
+        let straight = |middle: &Point| {
+            near(*middle, &a, &b) && (self.at)(off_middle).is_some_and(|point| near(point, &a, middle))
+        };
+        match between.1 {
+            Some(middle) if !far && straight(&middle) => {
+                self.join(a, middle);
+                self.join(middle, b);
+            }
+            _ => {
+                self.stretch(from, between, halvings - 1);
+                self.stretch(between, to, halvings - 1);
+            }
         }
     }
 

@@ -10,7 +10,7 @@
 //! ```
 //!
 //! and one equation in the age is left: the grain must have turned by just D in that time. Its roots are found along
-//! the comet's way back; there may be none, one or several. Near edge-on every line of sight runs along the plane and
+//! the comet's way back, to a micro-radian about the Sun; there may be none, one or several. Near edge-on every line of sight runs along the plane and
 //! nothing can be said. Left out: ejection speeds, light time within the tail. Source of the problem: Finson &
 //! Probstein 1968; of this way to solve it: none, it is derived above and tested by round trip.
 
@@ -99,18 +99,31 @@ pub fn landings(vista: &Vista, offset: [f64; 2], laws: &Tails) -> Result<Vec<Lan
 /// # Errors
 /// Edge-on, or missed.
 pub fn in_orbit_plane(vista: &Vista, [xi, eta]: [f64; 2]) -> Result<Vector3<f64>, Reason> {
-    let normal = vista.orbit.normal();
     let sight = tangent::unproject(xi, eta, &vista.axes);
-    let steepness = normal.dot(&sight);
+    meet_plane(&vista.orbit.normal(), &vista.observer_au, &vista.axes.sight, &sight)
+}
+
+/// Where a line of sight meets the plane through the Sun with this unit normal, heliocentric, au; `to_nucleus` and `sight`
+/// are unit vectors from the observer.
+///
+/// # Errors
+/// Edge-on, or missed.
+pub fn meet_plane(
+    normal: &Vector3<f64>,
+    observer_au: &Vector3<f64>,
+    to_nucleus: &Vector3<f64>,
+    sight: &Vector3<f64>,
+) -> Result<Vector3<f64>, Reason> {
+    let steepness = normal.dot(sight);
     // Near the plane the stretch is as bad whether the observer or the nucleus makes it.
-    if steepness.abs() < LEAST_SINE_TO_PLANE || normal.dot(&vista.axes.sight).abs() < LEAST_SINE_TO_PLANE {
+    if steepness.abs() < LEAST_SINE_TO_PLANE || normal.dot(to_nucleus).abs() < LEAST_SINE_TO_PLANE {
         return Err(Reason::EdgeOn);
     }
-    let range = -normal.dot(&vista.observer_au) / steepness;
+    let range = -normal.dot(observer_au) / steepness;
     if range <= 0.0 {
         return Err(Reason::MissesPlane);
     }
-    Ok(vista.observer_au + sight * range)
+    Ok(observer_au + sight * range)
 }
 
 /// A point of the orbit plane, seen from the Sun.

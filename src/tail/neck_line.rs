@@ -32,12 +32,23 @@ pub struct Knot {
 /// of that beta has turned half round, or where it has met the Sun.
 pub fn neck_line(vista: &Vista, betas: &[f64], oldest_days: f64) -> Vec<Option<Knot>> {
     let walk = walk(vista, oldest_days);
-    betas.iter().map(|&beta| knot(vista, &walk, beta)).collect()
+    let mut last = (f64::INFINITY, 0);
+    betas
+        .iter()
+        .map(|&beta| {
+            // Of grains that left together the one with the weaker pull is always farther out and has turned less, so
+            // that its first half turn cannot come earlier on the walk.
+            let from = if beta >= last.0 { last.1 } else { 0 };
+            let at = half_turned(&walk, beta, from);
+            last = (beta, at.unwrap_or(walk.len()));
+            knot(vista, &walk, beta, at?)
+        })
+        .collect()
 }
 
 /// The neck-line's grain of one beta.
 pub fn knot_of(vista: &Vista, beta: f64, oldest_days: f64) -> Option<Knot> {
-    knot(vista, &walk(vista, oldest_days), beta)
+    neck_line(vista, &[beta], oldest_days).pop().flatten()
 }
 
 /// An age and the nucleus at release.
@@ -61,18 +72,23 @@ pub(super) fn walk(vista: &Vista, oldest_days: f64) -> Vec<Left> {
     ways
 }
 
-fn knot(vista: &Vista, walk: &[Left], beta: f64) -> Option<Knot> {
+/// How much more than half a turn a grain has made since it left.
+fn beyond(beta: f64, (age_days, start): &Left) -> f64 {
+    Path::of(pull_au3_d2(beta), start, *age_days).sweep_rad - PI
+}
+
+/// The first place of the walk, from the given one on, whose grain has turned half round.
+fn half_turned(walk: &[Left], beta: f64, from: usize) -> Option<usize> {
     if beta >= 1.0 {
         return None;
     }
-    let pull = pull_au3_d2(beta);
-    let beyond = |(age_days, start): &Left| Path::of(pull, start, *age_days).sweep_rad - PI;
-    let at = walk.iter().position(|left| beyond(left) >= 0.0)?;
-    let age_days = if at == 0 {
-        walk[0].0
-    } else {
-        close_in([walk[at - 1].0, walk[at].0], |age_days| beyond(&(age_days, vista.release(age_days))))
-    };
+    (from..walk.len()).find(|&at| beyond(beta, &walk[at]) >= 0.0)
+}
+
+fn knot(vista: &Vista, walk: &[Left], beta: f64, at: usize) -> Option<Knot> {
+    // No grain has turned at age zero, where the walk begins.
+    let bracket = [walk[at.checked_sub(1)?].0, walk[at].0];
+    let age_days = close_in(bracket, |age_days| beyond(beta, &(age_days, vista.release(age_days))));
     let position_au = vista.survivor(beta, &vista.release(age_days), age_days)?;
     Some(Knot {
         beta,

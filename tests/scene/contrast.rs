@@ -3,11 +3,19 @@
 //! Source of the formula: WCAG 2.2, relative luminance and contrast ratio.
 
 use std::collections::BTreeMap;
+use tailvane::scene::theme::TONES;
 use tailvane::scene::theme::{Color, Theme};
-use tailvane::scene::{Direction, Role};
+use tailvane::scene::{Direction, Family, Role};
 
-const DIRECTIONS: [Direction; 5] =
-    [Direction::Antisolar, Direction::NegativeVelocity, Direction::SkyMotion, Direction::Zenith, Direction::Sunward];
+const DIRECTIONS: [Direction; 6] = [
+    Direction::Antisolar,
+    Direction::IonAxis,
+    Direction::NegativeVelocity,
+    Direction::SkyMotion,
+    Direction::Zenith,
+    Direction::Sunward,
+];
+const FAMILIES: [Family; 3] = [Family::Syndyne, Family::Synchrone, Family::NeckLine];
 
 fn luminance(css: &str) -> f64 {
     let part = |at: usize| {
@@ -50,10 +58,10 @@ fn every_text_of_the_page_stands_out_at_4_5_to_1() {
 #[test]
 fn every_text_of_a_drawing_stands_out_at_4_5_to_1() {
     let labels = DIRECTIONS.map(Role::Label);
-    let others = [Role::DialNumber, Role::Cardinal, Role::Title, Role::Note, Role::Caution];
+    let others = [Role::DialNumber, Role::Cardinal, Role::Title, Role::Note, Role::Caution, Role::PlaceLabel];
     for theme in Theme::ALL {
         let ground = theme.look(Role::Ground).fill.expect("a ground").css();
-        for role in labels.into_iter().chain(others) {
+        for role in labels.into_iter().chain(FAMILIES.map(Role::CurveLabel)).chain(others) {
             let look = theme.look(role);
             let ratio = contrast(&look.fill.expect("letters are filled").css(), &ground);
             assert!(ratio >= 4.5, "{} {role:?} {ratio:.2}", theme.name());
@@ -73,7 +81,24 @@ fn controls_and_what_a_drawing_must_show_stand_out_at_3_to_1() {
             }
         }
         let lines = DIRECTIONS.map(Role::Hand).into_iter().chain(DIRECTIONS.map(Role::Mark));
-        for role in lines.chain([Role::Ring, Role::TickShort, Role::TickLong, Role::ScaleBar]) {
+        let others = [
+            Role::Ring,
+            Role::TickShort,
+            Role::TickLong,
+            Role::ScaleBar,
+            Role::WedgeEdge,
+            Role::TowardSunLine,
+            Role::TowardSunHatch,
+            Role::OrbitPath,
+            Role::PlaneLine,
+            Role::SightLine,
+            Role::Angle,
+            Role::SheetRim,
+            Role::SheetEdgeOn,
+            Role::Observer,
+            Role::Axis,
+        ];
+        for role in lines.chain(FAMILIES.map(Role::Curve)).chain(others) {
             let ratio = contrast(&theme.look(role).pen.expect("a line").color.css(), &colors["--ground"]);
             assert!(ratio >= 3.0, "{} {role:?} {ratio:.2}", theme.name());
         }
@@ -118,6 +143,48 @@ fn hands_differ_in_pattern_and_no_theme_changes_a_pattern() {
             for &other in &hands[i + 1..] {
                 assert_ne!(dashes, theme.look(Role::Hand(other)).pen.expect("a line").dashes, "{one:?} {other:?}");
             }
+        }
+    }
+}
+
+#[test]
+fn curves_differ_in_pattern_or_weight_from_each_other_and_no_theme_changes_that() {
+    let patterns = |theme: Theme| {
+        FAMILIES.map(|family| theme.look(Role::Curve(family)).pen.map(|pen| (pen.width.to_bits(), pen.dashes)))
+    };
+    let dark = patterns(Theme::Dark);
+    assert!(dark[0] != dark[1] && dark[1] != dark[2] && dark[0] != dark[2]);
+    for theme in Theme::ALL {
+        assert_eq!(patterns(theme), dark);
+    }
+}
+
+#[test]
+fn the_tone_map_begins_at_the_ground_and_goes_one_way() {
+    for theme in Theme::ALL {
+        let ground = theme.look(Role::Ground).fill.expect("a ground");
+        assert_eq!(theme.dust_color(0.0), ground);
+        assert_eq!(theme.dust_color(-1.0), ground);
+        assert_eq!(theme.dust_color(2.0), theme.dust_stops()[4].color);
+        let ramp: Vec<f64> = (0..=100).map(|i| luminance(&theme.dust_color(f64::from(i) / 100.0).css())).collect();
+        let sign = if theme == Theme::Paper { -1.0 } else { 1.0 };
+        assert!(ramp.windows(2).all(|pair| sign * (pair[1] - pair[0]) >= 0.0), "{}", theme.name());
+        assert!((ramp[100] - ramp[0]).abs() > 0.2, "{}", theme.name());
+    }
+    for i in 0..=100 {
+        let color = Theme::Red.dust_color(f64::from(i) / 100.0);
+        assert_eq!((color.green, color.blue), (0, 0));
+    }
+}
+
+#[test]
+fn a_hatch_is_seen_on_the_brightest_cell_of_a_map() {
+    for theme in Theme::ALL {
+        let hatch = theme.look(Role::MapHatch).pen.expect("a line").color.css();
+        for level in 0..TONES {
+            let cell = theme.look(Role::Tone(level)).fill.expect("a cell is filled").css();
+            let ratio = contrast(&hatch, &cell);
+            assert!(ratio >= 2.5, "{} tone {level} {ratio:.2}", theme.name());
         }
     }
 }

@@ -1,10 +1,10 @@
 //! Can every text be read?
 
+use crate::skies::bare as compose;
 use crate::skies::{self, APART, Hands};
 use proptest::prelude::*;
 use tailvane::paint::record::{Call, Recorder};
 use tailvane::scene::lettering::{Rect, Text};
-use tailvane::scene::sky_plane::compose;
 use tailvane::scene::theme::Theme;
 use tailvane::scene::view::{SkyView, Up};
 use tailvane::scene::{Direction, Role, Scene, Shape};
@@ -29,7 +29,7 @@ pub fn on_marks(scene: &Scene) -> Vec<String> {
         let (Role::Mark(_) | Role::MarkFill(_)) = node.role else { continue };
         let mark = extent(&node.shape);
         for (role, text) in scene.texts() {
-            if matches!(role, Role::Label(_) | Role::DialNumber) && text.area().overlaps(&mark) {
+            if matches!(role, Role::Label(_) | Role::CurveLabel(_) | Role::DialNumber) && text.area().overlaps(&mark) {
                 found.push(format!("{:?} on {:?}", text.words, node.role));
             }
         }

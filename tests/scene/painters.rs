@@ -1,15 +1,15 @@
 //! Do the painters give the same picture, and the SVG the same clean bytes?
 
-use crate::skies::{self, APART};
+use crate::skies::bare as compose;
+use crate::skies::{self, APART, tailed};
 use tailvane::paint::record::{Call, Recorder};
 use tailvane::paint::{paint, svg};
 use tailvane::scene::Scene;
-use tailvane::scene::sky_plane::compose;
 use tailvane::scene::theme::Theme;
 use tailvane::scene::view::SkyView;
 
 fn scene() -> Scene {
-    compose(&skies::plan(), &skies::with(APART), &SkyView::start(1024.0, 640.0))
+    tailed(&skies::plan(), &skies::with(APART), &SkyView::start(1024.0, 640.0))
 }
 
 fn calls(theme: Theme) -> Vec<Call> {
@@ -33,6 +33,7 @@ fn the_svg_holds_the_recorded_calls_one_element_each_in_order() {
             .iter()
             .map(|call| match call {
                 Call::Surface { .. } => "rect",
+                Call::Image { .. } => "image",
                 Call::Lines { .. } => "path",
                 Call::Circle { .. } => "circle",
                 Call::Text { .. } => "text",
@@ -49,6 +50,7 @@ fn a_theme_moves_nothing() {
             .into_iter()
             .map(|call| match call {
                 Call::Surface { width_px, height_px, .. } => format!("{width_px} {height_px}"),
+                Call::Image { image } => format!("{image:?}"),
                 Call::Lines { lines, closed, ink } => {
                     format!("{lines:?} {closed} {:?}", ink.stroke.map(|s| (s.width_px, s.dashes_px)))
                 }
@@ -87,6 +89,7 @@ fn an_svg_holds_shapes_texts_and_presentation_attributes_only() {
         "stroke-linecap",
         "stroke-linejoin",
         "fill",
+        "fill-opacity",
         "stroke",
         "stroke-width",
         "stroke-dasharray",

@@ -1,8 +1,8 @@
 //! Does the sky fall where it should on the page, to scale?
 
+use crate::skies::bare as compose;
 use crate::skies::{self, APART, Hands};
 use tailvane::scene::lettering::Text;
-use tailvane::scene::sky_plane::compose;
 use tailvane::scene::view::{SkyView, Up};
 use tailvane::scene::{Direction, Role, Scene, Shape};
 

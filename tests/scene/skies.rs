@@ -6,9 +6,14 @@ use tailvane::body::observer::{Observer, Site};
 use tailvane::orbit::conic::Orbit;
 use tailvane::orbit::elements::{Comet, Elements};
 use tailvane::plan::Plan;
+use tailvane::scene::Scene;
+use tailvane::scene::layer::{Layers, TailLayers};
+use tailvane::scene::sky_plane;
+use tailvane::scene::view::SkyView;
 use tailvane::sky::trail::Trail;
 use tailvane::sky::viewpoint::Viewpoint;
 use tailvane::sky::{SiteSky, Sky};
+use tailvane::tail::grain::Vista;
 use tailvane::time::Stamp;
 
 /// Position angles of the four hands, degrees; None where the direction is absent.
@@ -80,3 +85,19 @@ pub fn with(hands: Hands) -> Sky {
 /// Four directions well apart.
 pub const APART: Hands =
     Hands { antisolar: Some(238.4), negative_velocity: Some(12.5), sky_motion: Some(171.0), zenith: Some(327.4) };
+
+/// The drawing of a sky without tails.
+pub fn bare(plan: &Plan, sky: &Sky, view: &SkyView) -> Scene {
+    sky_plane::compose(plan, sky, &TailLayers::default(), view)
+}
+
+/// The tails of the comet of `plan` in a sky.
+pub fn tails(plan: &Plan, sky: &Sky, view: &SkyView, layers: &Layers) -> TailLayers {
+    let orbit = Orbit::new(&plan.comet.elements).expect("elements in range");
+    TailLayers::of(&Vista::of(&orbit, sky), &plan.tails, view, layers)
+}
+
+/// The drawing of a sky with all of its tails.
+pub fn tailed(plan: &Plan, sky: &Sky, view: &SkyView) -> Scene {
+    sky_plane::compose(plan, sky, &tails(plan, sky, view, &Layers::default()), view)
+}

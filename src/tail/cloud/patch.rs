@@ -44,6 +44,18 @@ pub struct Patch {
 }
 
 impl Patch {
+    /// Where a grain that left without more than the mean ejection falls, pixels right and down from the nucleus; None
+    /// outside the patch, or behind the observer.
+    pub fn place_px(&self, anomaly: f64, root_beta: f64) -> Option<[f64; 2]> {
+        let s = (anomaly - self.anomaly[0]) / self.anomaly[1];
+        let t = (root_beta - self.root_beta[0]) / self.root_beta[1];
+        if s.abs() > 1.0 || t.abs() > 1.0 {
+            return None;
+        }
+        let [x, y, z, ..] = row::functions_at(&row::row_at(&self.map, s as f32), t as f32).map(f64::from);
+        (z > NEAREST_AU).then(|| [x / z, y / z])
+    }
+
     /// Release per unit of anomaly, >= 0.
     pub fn release_at(&self, s: f32) -> f32 {
         let terms = row::chebyshev(s);

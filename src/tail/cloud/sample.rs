@@ -10,7 +10,7 @@ use crate::tail::cloud::cell::{self, Cell};
 use crate::tail::cloud::patch::{NEAREST_AU, Patch, Subject};
 use crate::tail::cloud::picture::{LEVELS, Picture};
 use crate::tail::weight::Weights;
-use tailvane_lanes::row::{self, Ejections, LANES, Samples};
+use tailvane_lanes::row::{self, Ejections, LANES, Part, Samples};
 
 /// Fewest samples of a cell in the picture.
 const FEWEST: f32 = 32.0;
@@ -81,25 +81,8 @@ impl Sampler {
 
     fn sample(&self, subject: &Subject, patch: &Patch, cell: &Cell, wanted: f32, picture: &mut Picture) {
         let layout = Layout::of(subject, patch, cell, wanted);
-        if subject.weights.laws().ejection_speed_km_s == 0.0 {
-            let part = row::Cell::<6, 0>::of(&patch.map, cell.t);
-            return self.add(&layout, patch, &part, picture);
-        }
-        let short = row::Cell::<4, 3>::of(&patch.map, cell.t);
-        if short.cut[0] + short.cut[1] <= CUT_TOLERANCE * layout.nearest_z {
-            self.add(&layout, patch, &short, picture);
-        } else {
-            self.add(&layout, patch, &row::Cell::<6, 6>::of(&patch.map, cell.t), picture);
-        }
-    }
-
-    fn add<const P: usize, const J: usize>(
-        &self,
-        layout: &Layout,
-        patch: &Patch,
-        part: &row::Cell<P, J>,
-        picture: &mut Picture,
-    ) {
+        let ejected = subject.weights.laws().ejection_speed_km_s > 0.0;
+        let part = Part::of(&patch.map, cell.t, ejected, CUT_TOLERANCE * layout.nearest_z);
         let grid = picture.level(layout.level);
         for line in 0..layout.rows {
             let s = layout.row_place(line);
@@ -125,7 +108,7 @@ impl Sampler {
                     offset: layout.offset,
                     nearest: NEAREST_AU as f32,
                 };
-                row::add_strip(&part.strip_at(s), &samples, &self.ejections, grid);
+                part.add_row(s, &samples, &self.ejections, grid);
                 next += count;
                 done += count;
             }
