@@ -22,7 +22,9 @@ pub fn orbit(sky: &Sky) -> String {
     let side = if latitude < 0.0 { "below" } else { "above" };
     let standing = match latitude.to_degrees().abs() {
         degrees if degrees < 0.05 => "in the plane, so that the dust sheet is seen edge-on".to_owned(),
-        degrees if degrees < 5.0 => format!("{} {side} it, so that the dust sheet is seen nearly edge-on", tenth(latitude.abs())),
+        degrees if degrees < 5.0 => {
+            format!("{} {side} it, so that the dust sheet is seen nearly edge-on", tenth(latitude.abs()))
+        }
         _ => format!("{} {side} it", whole(latitude.abs())),
     };
     format!(

@@ -56,7 +56,7 @@ pub fn compose(plan: &Plan, sky: &Sky, tails: &TailLayers, view: &SkyView) -> Sc
     let page = page(&scene);
     let toward_sun = toward_sun(sky, tails, &facing, &page, scene.unit_px);
     let crossed = !toward_sun.is_empty();
-    let notes = Notes::of(&scene, plan, sky, view, &facing, crossed);
+    let notes = Notes::of(&scene, plan, sky, view, &facing, [crossed, tails.picture.is_some()]);
     let hands = if vane.is_in_sight(&scene) { hands(sky, tails, &facing, &vane) } else { Vec::new() };
     let mut curves = tail_plane::curves(tails, &facing, &page);
     tail_plane::part(&mut curves, vane.center, vane.radius_px, scene.unit_px);
