@@ -130,7 +130,7 @@ impl Desk {
         Ok(Desk {
             tails: engine.tails_at(&seen.sky),
             easel: Easel::default(),
-            wishes: tails::default_wishes(),
+            wishes: Wishes::default(),
             engine,
             time,
             seen,

@@ -6,9 +6,6 @@ use crate::paint::canvas::CanvasPainter;
 use crate::paint::paint;
 use crate::plan::Plan;
 use crate::say;
-use crate::scene::dust::Depth;
-use crate::scene::layer::Layers;
-use crate::scene::theme::Theme;
 use crate::scene::{orbit_view, sheet_map};
 use crate::sky::column::whole_turn_deg;
 use crate::tail::cloud::Quality;
@@ -21,11 +18,6 @@ use web_sys::CanvasRenderingContext2d;
 
 /// A still picture has at most about so many cells: more would block the page for longer than a frame.
 const MOST_CELLS: f64 = 1_000_000.0;
-
-/// How the tails are drawn as long as nobody chose otherwise.
-pub fn default_wishes() -> Wishes {
-    Wishes { layers: Layers::default(), depth: Depth::default(), theme: Theme::Dark, quality: Quality::DRAGGING }
-}
 
 /// Every control of the Tails bench, by group.
 #[wasm_bindgen]
@@ -69,7 +61,8 @@ impl Desk {
     /// Chooses what is drawn of the tails, and how.
     pub fn set_layers(&mut self, fields: JsValue) -> Result<(), JsValue> {
         let fields: typed::LayerFields = from_js(fields)?;
-        self.wishes = Wishes { layers: fields.layers(), depth: fields.depth(), ..self.wishes };
+        let [depth_mag, isophote_step_mag] = fields.depth_and_step_mag();
+        self.wishes = Wishes { layers: fields.layers(), depth_mag, isophote_step_mag, ..self.wishes };
         Ok(())
     }
 

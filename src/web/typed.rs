@@ -3,7 +3,6 @@
 use crate::body::observer::Site;
 use crate::error::{Error, Kind, Place};
 use crate::orbit::elements::{Comet, Elements};
-use crate::scene::dust::Depth;
 use crate::scene::layer::Layers;
 use crate::time::Stamp;
 use serde::{Deserialize, Serialize};
@@ -136,15 +135,11 @@ impl LayerFields {
         }
     }
 
-    /// Depth of the tone map and step of the isophotes; what the page keeps may be anything.
-    pub fn depth(&self) -> Depth {
-        let sane = |value: f64, least: f64, most: f64, otherwise: f64| {
-            if value.is_finite() { value.clamp(least, most) } else { otherwise }
+    /// Depth of the tone map and step of the isophotes, magnitudes; what the page keeps may be anything.
+    pub fn depth_and_step_mag(&self) -> [f64; 2] {
+        let sane = |value: f64, least: f64, most: f64, else_: f64| {
+            if value.is_finite() { value.clamp(least, most) } else { else_ }
         };
-        let plain = Depth::default();
-        Depth {
-            magnitudes: sane(self.depth_mag, 1.0, 15.0, plain.magnitudes),
-            isophote_step_mag: sane(self.isophote_step_mag, 0.25, 5.0, plain.isophote_step_mag),
-        }
+        [sane(self.depth_mag, 1.0, 15.0, 7.5), sane(self.isophote_step_mag, 0.25, 5.0, 1.0)]
     }
 }
