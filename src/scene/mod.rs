@@ -11,6 +11,7 @@
 //! [`sheet_map::compose`]. New drawings need new roles, not new shapes.
 
 pub mod clip;
+pub mod dust;
 pub mod image;
 pub mod isophote;
 pub mod label;

@@ -28,17 +28,10 @@ pub struct Notes {
 }
 
 impl Notes {
-    /// `crossed` tells whether dust toward the Sun is cross-hatched, `modelled` whether there is a picture of the dust.
-    pub fn of(
-        scene: &Scene,
-        plan: &Plan,
-        sky: &Sky,
-        view: &SkyView,
-        facing: &Facing,
-        [crossed, modelled]: [bool; 2],
-    ) -> Self {
+    /// `legend` says what else is drawn, a line each.
+    pub fn of(scene: &Scene, plan: &Plan, sky: &Sky, view: &SkyView, facing: &Facing, legend: &[String]) -> Self {
         let mut notes = Notes { texts: Vec::new(), bar: Vec::new() };
-        notes.write_top(scene, plan, sky, view, [crossed, modelled]);
+        notes.write_top(scene, plan, sky, view, legend);
         notes.write_bottom(scene, sky, view, facing);
         notes
     }
@@ -59,7 +52,7 @@ impl Notes {
         }
     }
 
-    fn write_top(&mut self, scene: &Scene, plan: &Plan, sky: &Sky, view: &SkyView, [crossed, modelled]: [bool; 2]) {
+    fn write_top(&mut self, scene: &Scene, plan: &Plan, sky: &Sky, view: &SkyView, legend: &[String]) {
         let unit = scene.unit_px;
         let (margin, size, title_size) = (MARGIN * unit, SIZE * unit, TITLE_SIZE * unit);
         let [across, down] = view.field_rad();
@@ -72,13 +65,9 @@ impl Notes {
             let at = [at[0], at[1] + LINE * size];
             corner.push(Text { words: "hatched: sunward half".to_string(), at, ..corner[0].clone() });
         }
-        if crossed {
+        for words in legend {
             let at = [at[0], at[1] + LINE * size * corner.len() as f64];
-            corner.push(Text { words: "crossed: dust there".to_string(), at, ..corner[0].clone() });
-        }
-        if modelled {
-            let at = [at[0], at[1] + LINE * size * corner.len() as f64];
-            corner.push(Text { words: "dust: model, relative".to_string(), at, ..corner[0].clone() });
+            corner.push(Text { words: words.clone(), at, ..corner[0].clone() });
         }
         let corner_left = corner.iter().map(|text| text.area().left).fold(scene.width_px, f64::min);
         let title_limit = corner_left - 2.0 * margin;

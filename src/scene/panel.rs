@@ -8,6 +8,8 @@ use super::note::{MARGIN, shortened};
 use super::{Point, Role, Scene, Shape, quantity};
 
 const CAPTION_SIZE: f64 = 12.0;
+/// Height of the caption's row.
+const CAPTION_ROW: f64 = 21.0;
 /// Longest share of the width that a scale bar takes.
 const BAR_SHARE: f64 = 0.28;
 /// Least and greatest scale, au per pixel.
@@ -16,6 +18,8 @@ const SCALES: [f64; 2] = [1e-9, 10.0];
 /// A part of the page with a drawing to scale.
 pub struct Panel {
     pub area: Rect,
+    /// Where lines and figures end: below the caption.
+    inner: Rect,
     caption: String,
     au_per_px: f64,
     /// The place in au that stands in the middle of the area.
@@ -31,10 +35,11 @@ impl Panel {
         let high = [0, 1].map(|axis| over(axis, f64::max, f64::NEG_INFINITY));
         // Caption above and scale bar below keep their own rows.
         let rows_px = 18.0 * unit_px;
-        let inner = [area.width() - 2.0 * inset_px, area.height() - 2.0 * (0.6 * inset_px + rows_px)];
-        let scale = |axis: usize| (high[axis] - low[axis]) / inner[axis].max(20.0);
+        let free_px = [area.width() - 2.0 * inset_px, area.height() - 2.0 * (0.6 * inset_px + rows_px)];
+        let scale = |axis: usize| (high[axis] - low[axis]) / free_px[axis].max(20.0);
         Panel {
             area,
+            inner: Rect { top: (area.top + CAPTION_ROW * unit_px).min(area.bottom), ..area },
             caption: caption.to_string(),
             au_per_px: scale(0).max(scale(1)).clamp(SCALES[0], SCALES[1]),
             middle_au: [0, 1].map(|axis| 0.5 * (low[axis] + high[axis])),
@@ -63,7 +68,7 @@ impl Panel {
 
     /// Draws a line as far as it lies on the panel.
     pub fn line(&self, scene: &mut Scene, role: Role, line: &[Point]) {
-        let pieces = line_inside(line, &self.area);
+        let pieces = line_inside(line, &self.inner);
         if !pieces.is_empty() {
             scene.add(role, Shape::Lines(pieces));
         }
@@ -73,7 +78,7 @@ impl Panel {
     pub fn fill(&self, scene: &mut Scene, role: Role, figures: impl Iterator<Item = [Point; 4]>) {
         let mut kept = Vec::new();
         for figure in figures {
-            let mut inside = figure_inside(&figure, &self.area);
+            let mut inside = figure_inside(&figure, &self.inner);
             let area = twice_area(&inside);
             if area < 0.0 {
                 inside.reverse();

@@ -35,12 +35,11 @@ pub struct Sheet {
     pub offsets: Vec<Option<[f64; 2]>>,
 }
 
-/// Dust toward the Sun on the page.
+/// Dust toward the Sun on the page: as figures, or, where it is seen edge-on, as lines.
 #[derive(Clone, Debug, Default, PartialEq)]
 pub struct TowardSun {
-    /// Figures broad enough to be filled, all turning the same way.
+    /// Figures to be filled as one, all turning the same way.
     pub broad: Vec<Vec<Point>>,
-    /// What is seen edge-on, as lines.
     pub thin: Vec<Vec<Point>>,
 }
 
@@ -101,7 +100,7 @@ impl Sheet {
         let ahead = beside(sun);
         // The coma hides what is nearer than this, and rounding would scatter it over all directions.
         let near_px = 8.0 * unit_px;
-        let mut found = TowardSun::default();
+        let mut figures = Vec::new();
         for corners in self.cells(&self.offsets) {
             let figure = corners.map(|[xi, eta]| facing.to_page(xi, eta));
             if figure.iter().all(|&p| ahead(p) < 0.0) {
@@ -113,9 +112,9 @@ impl Sheet {
             if kept.is_empty() || kept.iter().all(near) {
                 continue;
             }
-            found.take(kept, unit_px);
+            figures.push(kept);
         }
-        found
+        TowardSun::of(figures, nucleus, unit_px)
     }
 }
 
@@ -143,28 +142,39 @@ fn ages_days(vista: &Vista, laws: &Tails) -> Vec<f64> {
         .collect()
 }
 
+/// Edge-on is what is on the average narrower than this, in drawing units.
+const NARROW: f64 = 3.0;
+
 impl TowardSun {
-    fn take(&mut self, mut figure: Vec<Point>, unit_px: f64) {
-        let area = twice_area(&figure);
-        let length = |a: Point, b: Point| libm::hypot(b[0] - a[0], b[1] - a[1]);
-        let around: f64 = (0..figure.len()).map(|i| length(figure[i], figure[(i + 1) % figure.len()])).sum();
-        if area.abs() > 2.0 * unit_px * around {
-            if area < 0.0 {
+    fn of(mut figures: Vec<Vec<Point>>, nucleus: Point, unit_px: f64) -> Self {
+        let away = |p: &Point| libm::hypot(p[0] - nucleus[0], p[1] - nucleus[1]);
+        let whole: f64 = figures.iter().map(|figure| 0.5 * twice_area(figure).abs()).sum();
+        let reach = figures.iter().flatten().map(away).fold(0.0, f64::max);
+        if whole < NARROW * unit_px * reach {
+            return TowardSun {
+                broad: Vec::new(),
+                thin: figures.iter().map(|figure| longest(figure).to_vec()).collect(),
+            };
+        }
+        for figure in &mut figures {
+            if twice_area(figure) < 0.0 {
                 figure.reverse();
             }
-            self.broad.push(figure);
-            return;
         }
-        let mut ends = [figure[0], figure[0]];
-        for (i, &a) in figure.iter().enumerate() {
-            for &b in &figure[i + 1..] {
-                if length(a, b) > length(ends[0], ends[1]) {
-                    ends = [a, b];
-                }
+        TowardSun { broad: figures, thin: Vec::new() }
+    }
+}
+
+/// The two corners of a figure that lie farthest apart.
+fn longest(figure: &[Point]) -> [Point; 2] {
+    let length = |[a, b]: [Point; 2]| libm::hypot(b[0] - a[0], b[1] - a[1]);
+    let mut ends = [figure[0], figure[0]];
+    for (i, &a) in figure.iter().enumerate() {
+        for &b in &figure[i + 1..] {
+            if length([a, b]) > length(ends) {
+                ends = [a, b];
             }
         }
-        if length(ends[0], ends[1]) > 0.0 {
-            self.thin.push(ends.to_vec());
-        }
     }
+    ends
 }

@@ -55,8 +55,8 @@ pub fn compose(plan: &Plan, sky: &Sky, tails: &TailLayers, view: &SkyView) -> Sc
     let vane = Vane::of(&scene, &facing);
     let page = page(&scene);
     let toward_sun = toward_sun(sky, tails, &facing, &page, scene.unit_px);
-    let crossed = !toward_sun.is_empty();
-    let notes = Notes::of(&scene, plan, sky, view, &facing, [crossed, tails.picture.is_some()]);
+    let legend = tail_plane::legend(tails, &toward_sun);
+    let notes = Notes::of(&scene, plan, sky, view, &facing, &legend);
     let hands = if vane.is_in_sight(&scene) { hands(sky, tails, &facing, &vane) } else { Vec::new() };
     let mut curves = tail_plane::curves(tails, &facing, &page);
     tail_plane::part(&mut curves, vane.center, vane.radius_px, scene.unit_px);

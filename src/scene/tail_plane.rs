@@ -124,6 +124,20 @@ fn inner_px(members: &[usize], curves: &[PageCurve], nucleus: Point, unit_px: f6
     LEAST_APART * unit_px * (angles.len() as f64 - 1.0) / (TAU - gap).max(1e-9)
 }
 
+/// What the drawing says about its layers, a line each.
+pub fn legend(tails: &TailLayers, toward_sun: &TowardSun) -> Vec<String> {
+    let mut lines = Vec::new();
+    if !toward_sun.is_empty() {
+        lines.push("crossed: dust there".to_string());
+    }
+    if let Some(isophotes) = &tails.isophotes
+        && !isophotes.lines.is_empty()
+    {
+        lines.push(format!("isophotes: {}\u{a0}mag apart", quantity::figures(isophotes.step_mag)));
+    }
+    lines
+}
+
 /// Draws isophotes, shading and curves; `texts` are the boxes that lines leave free.
 pub fn draw(scene: &mut Scene, tails: &TailLayers, toward_sun: TowardSun, curves: &[PageCurve], texts: &[Rect]) {
     if !toward_sun.is_empty() {

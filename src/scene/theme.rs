@@ -347,7 +347,7 @@ impl Theme {
             }
             Role::CurveLabel(family) => letters(self.curve(family)),
             Role::TowardSun => fill(p.toward_sun, 0.3),
-            Role::TowardSunLine => line(p.toward_sun, 4.0),
+            Role::TowardSunLine => line(p.toward_sun, 3.4),
             Role::TowardSunHatch => line(p.toward_sun, 1.0),
             Role::OrbitPath => line(p.dial, 1.4),
             Role::OrbitArrow => fill(p.text, 1.0),
