@@ -197,5 +197,5 @@ Tailvane.sky = (function () {
     Tailvane.onAct("up", () => Tailvane.desk.change((desk) => desk.set_zenith_up(!desk.zenith_up())));
   }
 
-  return { start, drawForPrint };
+  return { start, drawForPrint, refine };
 })();

@@ -53,7 +53,7 @@ pub fn map(plan: &Plan, sky: &Sky, perspective: &Perspective) -> String {
         None => format!("{name}: none"),
     };
     let dust = &perspective.at_rest;
-    let sector = format!("within {}\u{b0} of the Sun's direction", figures(laws.anti_tail_half_width_deg));
+    let sector = format!("Within {}\u{b0} of the Sun's direction", figures(laws.anti_tail_half_width_deg));
     format!(
         "Dust by beta and age, {} to {} and {} to {} days, without ejection speed. {}. {}.",
         figures(laws.beta_least),
