@@ -107,6 +107,46 @@ fn the_fast_kernel_agrees_with_the_slow_solver_to_1e_10_always() {
     }
 }
 
+#[test]
+fn the_response_of_a_block_is_that_of_the_slow_solver() {
+    use tailvane::orbit::conic::propagate_with_response;
+    use tailvane_lanes::solve::{BLOCK, Block};
+    for scene in &SCENES {
+        let (engine, sky) = scene.set();
+        let vista = Vista::of(engine.orbit(), &sky);
+        let mut chance = Chance(0x7777_1234);
+        let mut block = Block::default();
+        let flights: Vec<Flight> = (0..BLOCK)
+            .map(|_| {
+                let ejection_km_s = [0, 1, 2].map(|_| chance.next() - 0.5);
+                let (beta, age_days) = (2.0 * chance.next() * chance.next(), 200.0 * chance.next());
+                Flight::of(&vista, &Grain { beta, age_days, ejection_km_s })
+            })
+            .collect();
+        for (k, flight) in flights.iter().enumerate() {
+            for axis in 0..3 {
+                block.place[axis][k] = flight.start.position_au[axis];
+                block.velocity[axis][k] = flight.start.velocity_au_d[axis];
+            }
+            block.mu[k] = SUN_GM_AU3_D2 * (1.0 - flight.beta);
+            (block.time[k], block.guess[k]) = (flight.days, flight.guess);
+        }
+        block.solve();
+        let mut response = [[[0.0; BLOCK]; 3]; 3];
+        block.respond(&mut response);
+        let mut checked = 0;
+        for (k, flight) in flights.iter().enumerate() {
+            if block.doubtful[k / 64] >> (k % 64) & 1 == 0 {
+                let (_, exact) = propagate_with_response(block.mu[k], &flight.start, flight.days);
+                let off = exact.position - nalgebra::Matrix3::from_fn(|row, column| response[row][column][k]);
+                assert!(off.norm() < 1e-7 * exact.position.norm(), "{}: {off} {}", scene.name, exact.position);
+                checked += 1;
+            }
+        }
+        assert!(checked > 240);
+    }
+}
+
 /// A picture 1200 x 800 that shows so many degrees, with the nucleus in the middle, north up and east to the left.
 fn raster(field_deg: f64) -> Raster {
     let scale = 1200.0 / field_deg.to_radians();

@@ -8,14 +8,16 @@
 //! the centre of the speeds. Rectangles that lie wholly outside the picture are dropped.
 //! Source of the variables and of the accuracy to expect: measured on trial orbits; tests/cloud.rs measures it again.
 
-use crate::body::KM_S_PER_AU_D;
+use crate::body::{KM_S_PER_AU_D, State};
 use crate::orbit::conic::{SUN_GM_AU3_D2, propagate_with_response};
 use crate::tail::cloud::Raster;
 use crate::tail::grain::Vista;
 use crate::tail::weight::Weights;
 use nalgebra::{Matrix3, Vector3};
 use std::f64::consts::PI;
+use tailvane_lanes::respond::Response;
 use tailvane_lanes::row::{self, FUNCTIONS, ROW, Row, S_TERMS, T_TERMS};
+use tailvane_lanes::solve::{BLOCK, Block};
 
 /// Error of a place that is let stand, pixels, and of the spread by ejection.
 const PLACE_TOLERANCE_PX: f64 = 0.1;
@@ -95,7 +97,13 @@ pub struct Fitter {
     /// Values at the nodes to Chebyshev coefficients.
     s_fit: [[f64; S_TERMS]; S_TERMS],
     t_fit: [[f64; T_TERMS]; T_TERMS],
+    /// The grains of the nodes, and their response.
+    block: Block,
+    response: Response,
 }
+
+/// Nodes of a patch.
+const NODES: usize = S_TERMS * T_TERMS;
 
 impl Default for Fitter {
     fn default() -> Self {
@@ -104,6 +112,8 @@ impl Default for Fitter {
             t_nodes: chebyshev_nodes(),
             s_fit: chebyshev_fit(),
             t_fit: chebyshev_fit(),
+            block: Block::default(),
+            response: [[[0.0; BLOCK]; 3]; 3],
         }
     }
 }
@@ -119,7 +129,7 @@ type Values = [[[f64; T_TERMS]; S_TERMS]; FUNCTIONS];
 
 impl Fitter {
     /// The patches of a release span (ages in days) that touch the picture, and the weight of all, seen or not.
-    pub fn cover(&self, subject: &Subject, spans: &[[f64; 2]], patches: &mut Vec<Patch>) -> (f64, Effort) {
+    pub fn cover(&mut self, subject: &Subject, spans: &[[f64; 2]], patches: &mut Vec<Patch>) -> (f64, Effort) {
         let mut effort = Effort::default();
         let mut whole = 0.0;
         patches.clear();
@@ -144,7 +154,7 @@ impl Fitter {
         (whole, effort)
     }
 
-    fn fit(&self, subject: &Subject, rectangle: &Rectangle) -> Fit {
+    fn fit(&mut self, subject: &Subject, rectangle: &Rectangle) -> Fit {
         let Subject { vista, weights, raster } = subject;
         let laws = weights.laws();
         let [s_middle, s_half] = rectangle.anomaly;
@@ -157,24 +167,43 @@ impl Fitter {
             libm::pow(u * u, laws.ejection_beta_exponent) * laws.ejection_speed_km_s / KM_S_PER_AU_D
         });
 
-        let mut values: Values = [[[0.0; T_TERMS]; S_TERMS]; FUNCTIONS];
         let mut release = [0.0; S_TERMS];
+        let mut thrown = [[State { position_au: Vector3::zeros(), velocity_au_d: Vector3::zeros() }; T_TERMS]; S_TERMS];
+        let mut axes = [Matrix3::zeros(); S_TERMS];
+        let now = vista.orbit.whole_anomaly(&vista.orbit.place_at(vista.seen).anomaly);
         for (k, s) in self.s_nodes.iter().enumerate() {
-            let (start, days) = vista.orbit.at_anomaly(s_middle + s_half * s);
+            let anomaly = s_middle + s_half * s;
+            let (start, days) = vista.orbit.at_anomaly(anomaly);
             let distance = start.position_au.norm();
             release[k] = weights.release_rate(distance, days) * distance;
             let slowing = libm::pow(distance, -laws.ejection_distance_exponent);
             let out = start.position_au / distance;
             let up = start.position_au.cross(&start.velocity_au_d).normalize();
-            let axes = Matrix3::from_columns(&[out, up.cross(&out), up]);
+            axes[k] = Matrix3::from_columns(&[out, up.cross(&out), up]) * slowing;
             for (j, t) in self.t_nodes.iter().enumerate() {
                 let u = u_middle + u_half * t;
-                let speed = speed_by_beta[j] * slowing;
-                let mut thrown = start;
-                thrown.velocity_au_d += out * (mean * speed);
-                let (end, response) = propagate_with_response(SUN_GM_AU3_D2 * (1.0 - u * u), &thrown, seen_days - days);
-                let place: Vector3<f64> = camera.turn * (end.position_au - vista.nucleus.position_au);
-                let slopes = camera.turn * response.position * axes * speed;
+                let velocity = start.velocity_au_d + out * (mean * speed_by_beta[j] * slowing);
+                thrown[k][j] = State { position_au: start.position_au, velocity_au_d: velocity };
+                let node = k * T_TERMS + j;
+                for axis in 0..3 {
+                    self.block.place[axis][node] = start.position_au[axis];
+                    self.block.velocity[axis][node] = velocity[axis];
+                }
+                self.block.mu[node] = SUN_GM_AU3_D2 * (1.0 - u * u);
+                self.block.time[node] = seen_days - days;
+                self.block.guess[node] = now - anomaly;
+            }
+        }
+        self.block.count = NODES;
+        self.block.solve();
+        self.block.respond(&mut self.response);
+
+        let mut values: Values = [[[0.0; T_TERMS]; S_TERMS]; FUNCTIONS];
+        for k in 0..S_TERMS {
+            for j in 0..T_TERMS {
+                let (end, response) = self.reached(k * T_TERMS + j, &thrown[k][j]);
+                let place = camera.turn * (end - vista.nucleus.position_au);
+                let slopes = camera.turn * response * axes[k] * speed_by_beta[j];
                 values[0][k][j] = place.x;
                 values[1][k][j] = place.y;
                 values[2][k][j] = place.z + camera.distance_au;
@@ -190,6 +219,18 @@ impl Fitter {
             2.0 * u * weights.light_per_beta((u * u).clamp(laws.beta_least, laws.beta_greatest))
         });
         self.finish(subject, rectangle, &values, &release, &light)
+    }
+
+    /// Where the grain of a node is, and how that answers to its start velocity; by the slow solver where the fast one
+    /// doubts itself.
+    fn reached(&self, node: usize, start: &State) -> (Vector3<f64>, Matrix3<f64>) {
+        let block = &self.block;
+        if block.doubtful[node / 64] >> (node % 64) & 1 == 1 {
+            let (end, response) = propagate_with_response(block.mu[node], start, block.time[node]);
+            return (end.position_au, response.position);
+        }
+        let end = Vector3::from_fn(|axis, _| block.end[axis][node]);
+        (end, Matrix3::from_fn(|row, column| self.response[row][column][node]))
     }
 
     /// Coefficients from values at the nodes, and whether they are good enough.
