@@ -49,6 +49,7 @@ pub struct Block {
     /// One bit a grain, 64 to a word, for each that is for the slow solver.
     pub doubtful: [u64; BLOCK / 64],
     pub(crate) distance: Numbers,
+    inverse: Numbers,
     pub(crate) eta: Numbers,
     pub(crate) binding: Numbers,
     s: Numbers,
@@ -68,6 +69,7 @@ impl Default for Block {
             count: BLOCK,
             doubtful: [0; BLOCK / 64],
             distance: zero,
+            inverse: zero,
             eta: zero,
             binding: zero,
             s: zero,
@@ -109,7 +111,9 @@ impl Block {
             store(&mut self.distance, at, distance);
             store(&mut self.eta, at, x * u + y * v + z * w);
             let mu = load(&self.mu, at);
-            store(&mut self.binding, at, (mu + mu) / distance - (u * u + v * v + w * w));
+            let inverse = f64x4::ONE / distance;
+            store(&mut self.inverse, at, inverse);
+            store(&mut self.binding, at, (mu + mu) * inverse - (u * u + v * v + w * w));
         }
     }
 
@@ -121,8 +125,9 @@ impl Block {
             let (mu, time) = (load(&self.mu, at), load(&self.time, at));
             let a = (mu - load(&self.binding, at) * distance) * f64x4::splat(1.0 / 6.0);
             let b = eta * f64x4::splat(0.5);
-            let linear = time / distance;
-            let bend = linear * (b + linear * a) / distance;
+            let inverse = load(&self.inverse, at);
+            let linear = time * inverse;
+            let bend = linear * (b + linear * a) * inverse;
             let simple = linear / (bend + f64x4::ONE).fast_max(f64x4::splat(0.5));
             // s = x - shift gives x^3 + 3 p x + 2 q = 0.
             let over_a = f64x4::ONE / a;
@@ -182,7 +187,7 @@ impl Block {
             let g2 = g[2] + g[1] * h1 + g[0] * h2;
             let g3 = g[3] + g[2] * h1 + g[1] * h2 + g[0] * h3;
 
-            let f = f64x4::ONE - lane.mu * g2 / lane.distance;
+            let f = f64x4::ONE - lane.mu * g2 * load(&self.inverse, at);
             // Two equal forms of g; each cancels where the other does not.
             let (near, turned, fallen) = (lane.distance * g1, lane.eta * g2, lane.mu * g3);
             let by_time = (lane.time + fallen.abs()).simd_lt(near + turned.abs());

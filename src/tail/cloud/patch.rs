@@ -10,11 +10,10 @@
 
 use crate::body::{KM_S_PER_AU_D, State};
 use crate::orbit::conic::{SUN_GM_AU3_D2, propagate_with_response};
-use crate::tail::cloud::Raster;
+use crate::tail::cloud::{Raster, chebyshev};
 use crate::tail::grain::Vista;
 use crate::tail::weight::Weights;
 use nalgebra::{Matrix3, Vector3};
-use std::f64::consts::PI;
 use tailvane_lanes::respond::Response;
 use tailvane_lanes::row::{self, FUNCTIONS, ROW, Row, S_TERMS, T_TERMS};
 use tailvane_lanes::solve::{BLOCK, Block};
@@ -108,10 +107,10 @@ const NODES: usize = S_TERMS * T_TERMS;
 impl Default for Fitter {
     fn default() -> Self {
         Fitter {
-            s_nodes: chebyshev_nodes(),
-            t_nodes: chebyshev_nodes(),
-            s_fit: chebyshev_fit(),
-            t_fit: chebyshev_fit(),
+            s_nodes: chebyshev::nodes(),
+            t_nodes: chebyshev::nodes(),
+            s_fit: chebyshev::fit(),
+            t_fit: chebyshev::fit(),
             block: Block::default(),
             response: [[[0.0; BLOCK]; 3]; 3],
         }
@@ -243,16 +242,16 @@ impl Fitter {
         light: &[f64; T_TERMS],
     ) -> Fit {
         let weights = subject.weights;
-        let release = transform(&self.s_fit, release);
-        let light_terms = transform(&self.t_fit, light);
+        let release = chebyshev::transform(&self.s_fit, release);
+        let light_terms = chebyshev::transform(&self.t_fit, light);
         let [low, high] = [-1.0, 1.0].map(|t| rectangle.root_beta[0] + t * rectangle.root_beta[1]);
-        let released = chebyshev_integral(&release) * rectangle.anomaly[1];
+        let released = chebyshev::integral(&release) * rectangle.anomaly[1];
         let mut patch = Patch {
             anomaly: rectangle.anomaly,
             root_beta: rectangle.root_beta,
             map: [[0.0; ROW]; S_TERMS],
             release: release.map(|term| term as f32),
-            light: powers(&light_terms).map(|term| term as f32),
+            light: chebyshev::powers(&light_terms).map(|term| term as f32),
             whole: released.max(0.0) * weights.light_between(low * low, high * high),
         };
         if patch.whole <= 0.0 || subject.raster.misses(values, weights.greatest_speed_factor()) {
@@ -262,19 +261,16 @@ impl Fitter {
         // The size of the last terms along each variable, function by function.
         let (mut s_last, mut t_last) = ([0.0; FUNCTIONS], [0.0; FUNCTIONS]);
         for function in 0..FUNCTIONS {
-            let along_t = values[function].map(|line| transform(&self.t_fit, &line));
-            let mut terms = [[0.0; T_TERMS]; S_TERMS];
-            for k in 0..S_TERMS {
-                for j in 0..T_TERMS {
-                    terms[k][j] = (0..S_TERMS).map(|n| self.s_fit[k][n] * along_t[n][j]).sum();
-                }
-            }
-            s_last[function] = last(&terms.map(|line| line.iter().map(|term| term.abs()).sum()));
+            let along_t = values[function].map(|line| chebyshev::transform(&self.t_fit, &line));
+            let terms: [[f64; T_TERMS]; S_TERMS] = std::array::from_fn(|k| {
+                std::array::from_fn(|j| (0..S_TERMS).map(|n| self.s_fit[k][n] * along_t[n][j]).sum())
+            });
+            s_last[function] = chebyshev::last(&terms.map(|line| line.iter().map(|term| term.abs()).sum()));
             let columns: [f64; T_TERMS] = std::array::from_fn(|j| terms.iter().map(|line| line[j].abs()).sum());
-            t_last[function] = last(&columns);
-            for k in 0..S_TERMS {
-                for (j, term) in powers(&terms[k]).iter().enumerate() {
-                    patch.map[k][function * T_TERMS + j] = *term as f32;
+            t_last[function] = chebyshev::last(&columns);
+            for (row, line) in patch.map.iter_mut().zip(&terms) {
+                for (out, power) in row[function * T_TERMS..].iter_mut().zip(chebyshev::powers(line)) {
+                    *out = power as f32;
                 }
             }
         }
@@ -287,8 +283,9 @@ impl Fitter {
             let slopes = last[3..9].iter().sum::<f64>() + reach * last[9..].iter().sum::<f64>();
             place.max(factor * slopes * scale / SPREAD_TOLERANCE_PX)
         };
-        let rate =
-            |terms: &[f64]| last(terms) / terms.iter().fold(0.0_f64, |sum, term| sum.max(term.abs())) / RATE_TOLERANCE;
+        let rate = |terms: &[f64]| {
+            chebyshev::last(terms) / terms.iter().fold(0.0_f64, |sum, term| sum.max(term.abs())) / RATE_TOLERANCE
+        };
         let s_excess = excess(&s_last).max(rate(&release));
         let t_excess = excess(&t_last).max(rate(&light_terms));
         let verdict = if s_excess <= 1.0 && t_excess <= 1.0 {
@@ -362,45 +359,4 @@ fn first_rectangles(subject: &Subject, spans: &[[f64; 2]]) -> Vec<Rectangle> {
 
 fn middle_and_half(low: f64, high: f64) -> [f64; 2] {
     [0.5 * (low + high), 0.5 * (high - low)]
-}
-
-fn chebyshev_nodes<const N: usize>() -> [f64; N] {
-    std::array::from_fn(|k| libm::cos(PI * (k as f64 + 0.5) / N as f64))
-}
-
-/// Rows: coefficient; columns: node.
-fn chebyshev_fit<const N: usize>() -> [[f64; N]; N] {
-    std::array::from_fn(|n| {
-        std::array::from_fn(|k| {
-            let value = libm::cos(PI * n as f64 * (k as f64 + 0.5) / N as f64);
-            value * if n == 0 { 1.0 } else { 2.0 } / N as f64
-        })
-    })
-}
-
-fn transform<const N: usize>(fit: &[[f64; N]; N], values: &[f64; N]) -> [f64; N] {
-    std::array::from_fn(|n| (0..N).map(|k| fit[n][k] * values[k]).sum())
-}
-
-/// The last term, or a quarter of the last but one: one of them may vanish by symmetry.
-fn last(terms: &[f64]) -> f64 {
-    let n = terms.len();
-    terms[n - 1].abs().max(0.25 * terms[n - 2].abs())
-}
-
-/// Integral of a Chebyshev sum from -1 to 1.
-fn chebyshev_integral(terms: &[f64]) -> f64 {
-    terms.iter().step_by(2).enumerate().map(|(half, term)| 2.0 * term / (1.0 - 4.0 * (half * half) as f64)).sum()
-}
-
-/// Powers from Chebyshev terms (six of them).
-fn powers(c: &[f64; T_TERMS]) -> [f64; T_TERMS] {
-    [
-        c[0] - c[2] + c[4],
-        c[1] - 3.0 * c[3] + 5.0 * c[5],
-        2.0 * c[2] - 8.0 * c[4],
-        4.0 * c[3] - 20.0 * c[5],
-        8.0 * c[4],
-        16.0 * c[5],
-    ]
 }
