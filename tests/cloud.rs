@@ -8,7 +8,7 @@ mod scenes;
 use monte_carlo::{compare, in_cells, monte_carlo};
 use scenes::{AFTER, Chance, EDGE_ON, SCENES, Scene, laws, raster};
 use tailvane::orbit::conic::{SUN_GM_AU3_D2, propagate_bracketed};
-use tailvane::tail::cloud::{Cloud, Quality, Stretch, Tone};
+use tailvane::tail::cloud::{Cloud, Quality, Raster, Stretch, Tone};
 use tailvane::tail::grain::{Grain, Vista};
 use tailvane::tail::kernel::{Flight, Kernel};
 use tailvane::tail::law::{Outburst, Tails};
@@ -286,6 +286,55 @@ fn tone_rises_with_density_and_isophotes_enclose_what_is_brighter() {
             let closed = line[0] == line[line.len() - 1];
             let at_edge = |p: [f32; 2]| p[0] < 9.0 || p[1] < 9.0 || p[0] > 1191.0 || p[1] > 791.0;
             assert!(closed || (at_edge(line[0]) && at_edge(line[line.len() - 1])), "{:?} {:?}", line[0], line.last());
+        }
+    }
+}
+
+#[test]
+fn hard_laws_and_pictures_stay_finite_and_bounded() {
+    let near = Scene { days: 0.01, ..SCENES[3] };
+    for scene in SCENES.iter().chain([&EDGE_ON, &AFTER, &near]) {
+        let (engine, sky) = scene.set();
+        let vista = Vista::of(engine.orbit(), &sky);
+        let changes: [fn(&mut Tails); 6] = [
+            |_| (),
+            |laws| (laws.beta_least, laws.beta_greatest, laws.age_greatest_days) = (1e-7, 3.0, 5000.0),
+            |laws| (laws.activity_exponent, laws.size_exponent) = (15.0, 6.0),
+            |laws| (laws.activity_exponent, laws.size_exponent, laws.beta_greatest) = (0.0, 1.0, 3.0),
+            |laws| (laws.ejection_cone_deg, laws.ejection_spread, laws.ejection_speed_km_s) = (1.0, 1.0, 2.0),
+            |laws| {
+                (laws.ejection_spread, laws.age_greatest_days) = (0.0, 0.1);
+                laws.outburst = Some(Outburst { middle_days: -0.5, width_days: 0.01, strength: 1000.0 });
+            },
+        ];
+        for change in changes {
+            let laws = laws(change);
+            for (field_deg, nucleus_px) in [(1e-4, [600.0, 400.0]), (3.0, [-9000.0, 400.0]), (150.0, [600.0, 400.0])] {
+                for (width, height) in [(1200, 800), (1, 1)] {
+                    let raster = Raster { width, height, nucleus_px, ..raster(field_deg) };
+                    let quality = Quality { samples: 20_000, ..Quality::DRAGGING };
+                    let mut cloud = Cloud::new();
+                    let picture = cloud.render(&vista, &Weights::of(&laws), &raster, quality).expect("dust");
+                    let mut sum = 0.0;
+                    for y in 0..picture.height() {
+                        for weight in picture.line(y) {
+                            assert!(*weight >= 0.0 && weight.is_finite(), "{} {field_deg}: {weight}", scene.name);
+                            sum += f64::from(*weight);
+                        }
+                    }
+                    assert!(
+                        picture.whole() > 0.0 && sum <= 1.01 * picture.whole(),
+                        "{} {field_deg} {laws:?}: {sum} {}",
+                        scene.name,
+                        picture.whole()
+                    );
+                    assert!(picture.effort().solves < 60_000, "{:?}", picture.effort());
+                    let mut rgba = Vec::new();
+                    let tone = Tone { stretch: Stretch::Asinh, depth_decades: 4.0 };
+                    picture.tone(&[[0, 0, 0, 255], [255; 4]], tone, &mut rgba);
+                    picture.isophotes(picture.peak() * 0.1);
+                }
+            }
         }
     }
 }

@@ -8,12 +8,13 @@ use tailvane::tail::law::Tails;
 use tailvane::time::Instant;
 
 /// An invented comet and when it is looked at, days from perihelion.
+#[derive(Clone, Copy)]
 pub struct Scene {
     pub name: &'static str,
-    perihelion_distance_au: f64,
-    eccentricity: f64,
-    angles_deg: [f64; 3],
-    days: f64,
+    pub perihelion_distance_au: f64,
+    pub eccentricity: f64,
+    pub angles_deg: [f64; 3],
+    pub days: f64,
 }
 
 /// The four scenes of the speed benchmark: plain, before perihelion, short-period, grazing.
