@@ -100,7 +100,7 @@ pub fn raster(field_deg: f64) -> Raster {
 }
 
 pub fn laws(change: impl Fn(&mut Tails)) -> Tails {
-    let mut laws = Tails::default();
+    let mut laws = Tails { age_greatest_days: 100.0, ..Tails::default() };
     change(&mut laws);
     laws.validate().expect("laws in range");
     laws
