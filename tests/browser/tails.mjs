@@ -70,6 +70,8 @@ export default (context) =>
       for (const { key, help } of laws) {
         assert.match(help, / to .*, default /, key);
         assert.ok(help.length > 40, key + ": " + help);
+        const [, least, greatest] = /(\S+) to (\S+), default/.exec(help).map((text) => Number(text.replace("\u2212", "-")));
+        assert.ok(least < greatest, key + ": " + help);
       }
       const before = JSON.parse(await planOf(page));
       assert.equal(before.tails, undefined);
