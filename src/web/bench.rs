@@ -124,7 +124,7 @@ pub fn form() -> Vec<Group> {
     let bounds = Tails { activity_start_days: Some(0.0), outburst, ..Tails::default() }.bounds();
     let range = |key: &str| {
         let (least, greatest) =
-            bounds.iter().find(|bound| bound.0 == key).map_or((0.0, 0.0), |bound| (bound.1, bound.2));
+            bounds.iter().find(|bound| bound.0 == key).map_or((0.0, 0.0), |bound| (bound.2, bound.3));
         let default = defaults.get(key).map_or("empty", String::as_str);
         format!("{} to {}, default {default}", plain(least), plain(greatest))
     };
