@@ -22,7 +22,7 @@ pub const SCENES: [(&str, [f64; 7]); 4] = [
 ];
 
 /// Grains of the timed blocks: they stay in the second cache.
-pub const GRAINS: usize = 64 * BLOCK;
+pub const GRAINS: usize = 16 * BLOCK;
 
 pub struct Jobs {
     engine: Engine,
