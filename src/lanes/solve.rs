@@ -23,8 +23,8 @@ const MORE_STEPS: usize = 6;
 /// The last step over s must be below this: what it leaves is of its fourth power times at most some 1e5, where the
 /// time span holds a grazing perihelion.
 const LAST_STEP: f64 = 1e-4;
-/// Series serve up to this |B (s / 8)^2|: a whole revolution and some.
-const SERIES_REACH: f64 = 1.0;
+/// Series serve up to this |B (s / 8)^2|: 0.8 of a revolution about the centre of an ellipse.
+const SERIES_REACH: f64 = 0.4;
 
 /// A number for each grain.
 pub type Numbers = [f64; BLOCK];
@@ -259,8 +259,8 @@ impl Lane {
     }
 }
 
-/// Terms of the series: the next is below 1e-16 of the first for |z| up to one.
-pub(crate) const TERMS: usize = 8;
+/// Terms of the series: the next is below 2e-16 of the first within [`SERIES_REACH`].
+pub(crate) const TERMS: usize = 7;
 /// (-1)^k / (2k + 2)! and (-1)^k / (2k + 3)!.
 const C2: [f64; TERMS] = series(2);
 const C3: [f64; TERMS] = series(3);
