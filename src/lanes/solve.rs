@@ -2,8 +2,8 @@
 //!
 //! Universal variables as in `orbit::universal` of the main crate, one form for attraction, no force and repulsion,
 //! without a branch: the universal anomaly s solves t(s) = r0 G1 + eta G2 + mu G3 with G_n = s^n c_n(B s^2); c2 and c3
-//! come from short series at s / 8 and three doublings. Start: the real root of the first three terms of t(s), or the
-//! guess if that is smaller; then Laguerre's steps, which come home from afar, and one step of fourth order whose size
+//! come from short series at s / 8 and three doublings. Start: from the first three terms of t(s), or the guess if that
+//! is smaller; then Laguerre's steps, which come home from afar, and one step of fourth order whose size
 //! tells whether all is well. A block with a lane that does not pass takes more steps; a lane that still does not is named
 //! in [`Block::doubtful`] and is for the slow solver.
 //!
@@ -19,12 +19,12 @@ pub(crate) const LANES: usize = 4;
 /// Laguerre's steps before the last one: two serve every grain of an ordinary comet. A block that holds a grain for which
 /// they do not takes so many more, one at a time.
 const STEPS: usize = 2;
-const MORE_STEPS: usize = 3;
+const MORE_STEPS: usize = 6;
 /// The last step over s must be below this: what it leaves is of its fourth power times at most some 1e5, where the
 /// time span holds a grazing perihelion.
 const LAST_STEP: f64 = 1e-4;
-/// Series serve up to this |B (s / 8)^2|: a whole revolution and some.
-const SERIES_REACH: f64 = 1.0;
+/// Series serve up to this |B (s / 8)^2|: 0.8 of a revolution about the centre of an ellipse.
+const SERIES_REACH: f64 = 0.4;
 
 /// A number for each grain.
 pub type Numbers = [f64; BLOCK];
@@ -117,32 +117,16 @@ impl Block {
         }
     }
 
-    /// A start for s: the root of t = r0 s + eta s^2 / 2 + (mu - B r0) s^3 / 6 if that rises throughout, else one
-    /// substitution into its linear term.
+    /// A start for s: one substitution into the linear term of t = r0 s + eta s^2 / 2 + (mu - B r0) s^3 / 6 + ..., or
+    /// the guess if that is smaller. The root of the cubic itself would save steps only where perihelion is grazed.
     fn start(&mut self) {
         for at in (0..self.count.min(BLOCK)).step_by(LANES) {
             let (distance, eta) = (load(&self.distance, at), load(&self.eta, at));
-            let (mu, time) = (load(&self.mu, at), load(&self.time, at));
-            let a = (mu - load(&self.binding, at) * distance) * f64x4::splat(1.0 / 6.0);
-            let b = eta * f64x4::splat(0.5);
-            let inverse = load(&self.inverse, at);
-            let linear = time * inverse;
-            let bend = linear * (b + linear * a) * inverse;
-            let simple = linear / (bend + f64x4::ONE).fast_max(f64x4::splat(0.5));
-            // s = x - shift gives x^3 + 3 p x + 2 q = 0.
-            let over_a = f64x4::ONE / a;
-            let shift = b * over_a * f64x4::splat(1.0 / 3.0);
-            let p = distance * over_a * f64x4::splat(1.0 / 3.0) - shift * shift;
-            let q = shift * (shift * shift - distance * over_a * f64x4::HALF) - time * over_a * f64x4::HALF;
-            let discriminant = q * q + p * p * p;
-            let root = discriminant.fast_max(f64x4::ZERO).sqrt();
-            let size = q.abs() + root;
-            let u = cube_root(size);
-            let u = q.simd_gt(f64x4::ZERO).bitselect(-u, u);
-            let cubic = u - p / u - shift;
-            let fits = a.simd_gt(f64x4::ZERO) & discriminant.simd_gt(f64x4::ZERO) & cubic.simd_gt(f64x4::ZERO);
-            let fits = fits & bend.abs().simd_gt(f64x4::splat(0.3)) & cubic.simd_lt(f64x4::splat(f64::INFINITY));
-            let start = fits.bitselect(cubic, simple);
+            let (mu, inverse) = (load(&self.mu, at), load(&self.inverse, at));
+            let linear = load(&self.time, at) * inverse;
+            let third = (mu - load(&self.binding, at) * distance) * f64x4::splat(1.0 / 6.0);
+            let bend = linear * (eta * f64x4::HALF + linear * third) * inverse;
+            let start = linear / (bend + f64x4::ONE).fast_max(f64x4::HALF);
             store(&mut self.s, at, start.fast_min(load(&self.guess, at)));
         }
     }
@@ -275,8 +259,8 @@ impl Lane {
     }
 }
 
-/// Terms of the series: the next is below 1e-16 of the first for |z| up to one.
-pub(crate) const TERMS: usize = 8;
+/// Terms of the series: the next is below 2e-16 of the first within [`SERIES_REACH`].
+pub(crate) const TERMS: usize = 7;
 /// (-1)^k / (2k + 2)! and (-1)^k / (2k + 3)!.
 const C2: [f64; TERMS] = series(2);
 const C3: [f64; TERMS] = series(3);
@@ -295,17 +279,6 @@ pub(crate) const fn series(n: u64) -> [f64; TERMS] {
         k += 1;
     }
     terms
-}
-
-/// Cube root of numbers >= 0, to 1e-4: a third of the exponent by whole-number arithmetic on the bits, then one step of
-/// third order.
-#[inline(always)]
-fn cube_root(x: f64x4) -> f64x4 {
-    // Two thirds of the exponent's offset, and a fraction that halves the greatest error.
-    const OFFSET: u64 = 0x2A9F_7893_0000_0000;
-    let y = f64x4::from(x.to_array().map(|x| f64::from_bits((x.to_bits() >> 32) / 3 * (1 << 32) + OFFSET)));
-    let cube = y * y * y;
-    y * (cube + x + x) / (cube + cube + x)
 }
 
 #[inline(always)]
