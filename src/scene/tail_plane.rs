@@ -100,7 +100,7 @@ fn apart_px(one: &PageCurve, other: &PageCurve) -> f64 {
         let segments = other.pieces.iter().flat_map(|piece| piece.windows(2));
         segments.map(|pair| distance_px(*p, pair[0], pair[1])).fold(f64::INFINITY, f64::min)
     };
-    one.pieces.iter().flatten().map(|p| away(p)).fold(0.0, f64::max)
+    one.pieces.iter().flatten().map(away).fold(0.0, f64::max)
 }
 
 /// Distance of a point from a segment.
