@@ -22,9 +22,9 @@ use crate::paint::canvas::CanvasPainter;
 use crate::paint::{paint, svg};
 use crate::plan::{Plan, paste};
 use crate::say;
+use crate::scene::pointer;
 use crate::scene::theme::Theme;
 use crate::scene::view::{SkyView, Up};
-use crate::scene::pointer;
 use crate::tail::cloud::Quality;
 use crate::time::{Instant, Stamp};
 use answer::Refusal;
@@ -130,7 +130,7 @@ impl Desk {
         Ok(Desk {
             tails: engine.tails_at(&seen.sky),
             easel: Easel::default(),
-            wishes: tails::default_wishes(),
+            wishes: Wishes::default(),
             engine,
             time,
             seen,

@@ -1,86 +1,18 @@
 //! Is the dust picture right, and are fast grains where slow ones are?
 
-use tailvane::body::KM_S_PER_AU_D;
-use tailvane::engine::Engine;
+#[path = "cloud/monte_carlo.rs"]
+mod monte_carlo;
+#[path = "cloud/scenes.rs"]
+mod scenes;
+
+use monte_carlo::{compare, in_cells, monte_carlo};
+use scenes::{AFTER, Chance, EDGE_ON, SCENES, Scene, laws, raster};
 use tailvane::orbit::conic::{SUN_GM_AU3_D2, propagate_bracketed};
-use tailvane::plan::Plan;
-use tailvane::sky::Sky;
-use tailvane::tail::cloud::{Cloud, Picture, Quality, Raster, Stretch, Tone};
+use tailvane::tail::cloud::{Cloud, Quality, Raster, Stretch, Tone};
 use tailvane::tail::grain::{Grain, Vista};
 use tailvane::tail::kernel::{Flight, Kernel};
 use tailvane::tail::law::{Outburst, Tails};
 use tailvane::tail::weight::Weights;
-use tailvane::time::Instant;
-
-/// An invented comet and when it is looked at, days from perihelion.
-struct Scene {
-    name: &'static str,
-    perihelion_distance_au: f64,
-    eccentricity: f64,
-    angles_deg: [f64; 3],
-    days: f64,
-}
-
-/// The four scenes of the speed benchmark: plain, before perihelion, short-period, grazing.
-const SCENES: [Scene; 4] = [
-    Scene {
-        name: "plain",
-        perihelion_distance_au: 0.6,
-        eccentricity: 1.0001,
-        angles_deg: [63.0, 62.0, 118.0],
-        days: 45.0,
-    },
-    Scene {
-        name: "early",
-        perihelion_distance_au: 0.9,
-        eccentricity: 0.995,
-        angles_deg: [40.0, 100.0, 20.0],
-        days: -30.0,
-    },
-    Scene {
-        name: "short",
-        perihelion_distance_au: 1.2,
-        eccentricity: 0.65,
-        angles_deg: [12.0, 100.0, 20.0],
-        days: 60.0,
-    },
-    Scene {
-        name: "grazing",
-        perihelion_distance_au: 0.05,
-        eccentricity: 0.9999,
-        angles_deg: [50.0, 200.0, 77.0],
-        days: 12.0,
-    },
-];
-
-impl Scene {
-    fn set(&self) -> (Engine, Sky) {
-        let [inclination, node, argument] = self.angles_deg;
-        let plan = format!(
-            r#"{{ "tailvane_plan": 1, "comet": {{ "name": "Invented comet", "elements": {{
-            "perihelion_distance_au": {}, "eccentricity": {}, "inclination_deg": {inclination},
-            "ascending_node_deg": {node}, "argument_of_perihelion_deg": {argument},
-            "perihelion_time": "2031-02-22.18374 TT", "epoch": "2031-02-10.0 TT" }} }} }}"#,
-            self.perihelion_distance_au, self.eccentricity
-        );
-        let mut engine = Engine::new(Plan::parse(&plan).expect("the plan above")).expect("its orbit");
-        let time = engine.orbit().perihelion_time().tdb_days() + self.days;
-        let sky = engine.sky_at(Instant::from_tdb_days(time)).expect("a date in the span");
-        (engine, sky)
-    }
-}
-
-/// Seeded even numbers from 0 to 1.
-struct Chance(u64);
-
-impl Chance {
-    fn next(&mut self) -> f64 {
-        self.0 ^= self.0 << 13;
-        self.0 ^= self.0 >> 7;
-        self.0 ^= self.0 << 17;
-        (self.0 >> 11) as f64 / (1_u64 << 53) as f64
-    }
-}
 
 #[test]
 fn the_fast_kernel_agrees_with_the_slow_solver_to_1e_10_always() {
@@ -107,144 +39,44 @@ fn the_fast_kernel_agrees_with_the_slow_solver_to_1e_10_always() {
     }
 }
 
-/// A picture 1200 x 800 that shows so many degrees, with the nucleus in the middle, north up and east to the left.
-fn raster(field_deg: f64) -> Raster {
-    let scale = 1200.0 / field_deg.to_radians();
-    Raster { width: 1200, height: 800, turn_px: [[-scale, 0.0], [0.0, -scale]], nucleus_px: [600.0, 400.0] }
-}
-
-fn laws(change: impl Fn(&mut Tails)) -> Tails {
-    let mut laws = Tails::default();
-    change(&mut laws);
-    laws.validate().expect("laws in range");
-    laws
-}
-
-/// Side of the cells in which pictures are compared, pixels, and grains of the Monte Carlo.
-const SIDE: usize = 8;
-const GRAINS: usize = 1_000_000;
-
-/// Grains of the law, drawn one by one, each moved by the exact kernel: how many fall into each cell.
-///
-/// The law is written down here a second time, from its words: rate ~ r^-p with cut-off, start and outburst by
-/// rejection; beta from its power law; speed by the polar method, redrawn beyond the cut-offs; direction even over the
-/// cone. Four grains share a time of release, which changes no mean.
-fn monte_carlo(vista: &Vista, laws: &Tails, raster: &Raster, seed: u64) -> Vec<f64> {
-    let mut chance = Chance(seed);
-    let now = vista.orbit.days_from_perihelion(vista.seen);
-    let rate = |age: f64, r: f64| {
-        let days = now - age;
-        if r > laws.activity_cutoff_au || laws.activity_start_days.is_some_and(|start| days < start) {
-            return 0.0;
+#[test]
+fn the_response_of_a_block_is_that_of_the_slow_solver() {
+    use tailvane::orbit::conic::propagate_with_response;
+    use tailvane_lanes::solve::{BLOCK, Block};
+    for scene in &SCENES {
+        let (engine, sky) = scene.set();
+        let vista = Vista::of(engine.orbit(), &sky);
+        let mut chance = Chance(0x7777_1234);
+        let mut block = Block::default();
+        let flights: Vec<Flight> = (0..BLOCK)
+            .map(|_| {
+                let ejection_km_s = [0, 1, 2].map(|_| chance.next() - 0.5);
+                let (beta, age_days) = (2.0 * chance.next() * chance.next(), 200.0 * chance.next());
+                Flight::of(&vista, &Grain { beta, age_days, ejection_km_s })
+            })
+            .collect();
+        for (k, flight) in flights.iter().enumerate() {
+            for axis in 0..3 {
+                block.place[axis][k] = flight.start.position_au[axis];
+                block.velocity[axis][k] = flight.start.velocity_au_d[axis];
+            }
+            block.mu[k] = SUN_GM_AU3_D2 * (1.0 - flight.beta);
+            (block.time[k], block.guess[k]) = (flight.days, flight.guess);
         }
-        let burst = laws.outburst.map_or(0.0, |burst| {
-            let x = (days - burst.middle_days) / burst.width_days;
-            (burst.strength - 1.0) * libm::exp2(-4.0 * x * x)
-        });
-        libm::pow(r, -laws.activity_exponent) * (1.0 + burst)
-    };
-    let (youngest, oldest) = (laws.age_least_days, laws.age_greatest_days);
-    let highest = (0..20_000)
-        .map(|k| youngest + (oldest - youngest) * f64::from(k) / 20_000.0)
-        .map(|age| rate(age, vista.release(age).position_au.norm()))
-        .fold(0.0, f64::max)
-        * 1.01;
-    let exponent = laws.size_exponent - 3.0;
-    let cone = 1.0 - libm::cos(laws.ejection_cone_deg.to_radians());
-    let mut gaussian = {
-        let mut chance = Chance(seed ^ 0x5555);
-        move || loop {
-            let (x, y) = (2.0 * chance.next() - 1.0, 2.0 * chance.next() - 1.0);
-            let square = x * x + y * y;
-            if square > 0.0 && square < 1.0 {
-                return x * (-2.0 * libm::log(square) / square).sqrt();
+        block.solve();
+        let mut response = [[[0.0; BLOCK]; 3]; 3];
+        block.respond(&mut response);
+        let mut checked = 0;
+        for (k, flight) in flights.iter().enumerate() {
+            if block.doubtful[k / 64] >> (k % 64) & 1 == 0 {
+                let (_, exact) = propagate_with_response(block.mu[k], &flight.start, flight.days);
+                let off = exact.position - nalgebra::Matrix3::from_fn(|row, column| response[row][column][k]);
+                assert!(off.norm() < 1e-7 * exact.position.norm(), "{}: {off} {}", scene.name, exact.position);
+                checked += 1;
             }
         }
-    };
-
-    let mut counts = vec![0.0; raster.width / SIDE * (raster.height / SIDE)];
-    let mut kernel = Kernel::new();
-    let here = vista.orbit.whole_anomaly(&vista.orbit.place_at(vista.seen).anomaly);
-    let mut flights = Vec::with_capacity(4096);
-    let mut done = 0;
-    while done < GRAINS {
-        flights.clear();
-        while flights.len() < 4096 && done + flights.len() < GRAINS {
-            let age = youngest + (oldest - youngest) * chance.next();
-            let place = vista.orbit.place_at(vista.seen.plus_days(-age));
-            let released = place.state;
-            let r = released.position_au.norm();
-            if chance.next() * highest > rate(age, r) {
-                continue;
-            }
-            let out = released.position_au / r;
-            let up = released.position_au.cross(&released.velocity_au_d).normalize();
-            for _ in 0..4 {
-                let share = chance.next();
-                let power = |beta: f64| libm::pow(beta, exponent);
-                let beta = if exponent == 0.0 {
-                    laws.beta_least * libm::pow(laws.beta_greatest / laws.beta_least, share)
-                } else {
-                    let (low, high) = (power(laws.beta_least), power(laws.beta_greatest));
-                    libm::pow(low + share * (high - low), 1.0 / exponent)
-                };
-                let factor = loop {
-                    let z = gaussian();
-                    if z.abs() <= 3.0 && 1.0 + laws.ejection_spread * z >= 0.0 {
-                        break 1.0 + laws.ejection_spread * z;
-                    }
-                };
-                let speed = factor
-                    * laws.ejection_speed_km_s
-                    * libm::pow(beta, laws.ejection_beta_exponent)
-                    * libm::pow(r, -laws.ejection_distance_exponent)
-                    / KM_S_PER_AU_D;
-                let sunward = 1.0 - cone * chance.next();
-                let across = (1.0 - sunward * sunward).max(0.0).sqrt();
-                let (sine, cosine) = libm::sincos(std::f64::consts::TAU * chance.next());
-                let direction = out * -sunward + up.cross(&out) * (across * cosine) + up * (across * sine);
-                let mut start = released;
-                start.velocity_au_d += direction * speed;
-                let guess = here - vista.orbit.whole_anomaly(&place.anomaly);
-                flights.push(Flight { beta, start, days: age, guess });
-            }
-        }
-        done += flights.len();
-        kernel.see(vista, &flights, |_, offset| {
-            let Some([xi, eta]) = offset else { return };
-            let [x, y] = [0, 1].map(|k| raster.nucleus_px[k] + raster.turn_px[k][0] * xi + raster.turn_px[k][1] * eta);
-            if x >= 0.0 && y >= 0.0 && x < raster.width as f64 && y < raster.height as f64 {
-                counts[y as usize / SIDE * (raster.width / SIDE) + x as usize / SIDE] += 1.0;
-            }
-        });
+        assert!(checked > 240);
     }
-    counts
-}
-
-/// The picture in the same cells, in grains.
-fn in_cells(picture: &Picture, raster: &Raster) -> Vec<f64> {
-    let columns = raster.width / SIDE;
-    let mut sums = vec![0.0; columns * (raster.height / SIDE)];
-    let side = SIDE / picture.cell_px();
-    for y in 0..picture.height() {
-        for (x, weight) in picture.line(y).iter().enumerate() {
-            sums[y / side * columns + x / side] += f64::from(*weight) * GRAINS as f64 / picture.whole();
-        }
-    }
-    sums
-}
-
-/// Correlation and ratio of fluxes of picture and grains, over the cells in which the picture expects more than 100
-/// grains. Chosen by the picture: a choice by the counts would favour cells in which chance put too many.
-fn compare(picture: &[f64], grains: &[f64]) -> (usize, f64, f64) {
-    let pairs: Vec<[f64; 2]> =
-        picture.iter().zip(grains).filter(|(expected, _)| **expected > 100.0).map(|(a, b)| [*a, *b]).collect();
-    let n = pairs.len() as f64;
-    let mean = |k: usize| pairs.iter().map(|pair| pair[k]).sum::<f64>() / n;
-    let means = [mean(0), mean(1)];
-    let product =
-        |a: usize, b: usize| pairs.iter().map(|pair| (pair[a] - means[a]) * (pair[b] - means[b])).sum::<f64>();
-    (pairs.len(), product(0, 1) / (product(0, 0) * product(1, 1)).sqrt(), means[0] / means[1])
 }
 
 fn check(name: &str, scene: &Scene, field_deg: f64, laws: &Tails) {
@@ -263,21 +95,6 @@ fn check(name: &str, scene: &Scene, field_deg: f64, laws: &Tails) {
         assert!((flux - 1.0).abs() < 0.01, "{name}: flux {flux}");
     }
 }
-
-const EDGE_ON: Scene = Scene {
-    name: "edge-on",
-    perihelion_distance_au: 0.6,
-    eccentricity: 1.0001,
-    angles_deg: [2.0, 62.0, 118.0],
-    days: 60.0,
-};
-const AFTER: Scene = Scene {
-    name: "after",
-    perihelion_distance_au: 0.17,
-    eccentricity: 0.9993,
-    angles_deg: [63.0, 222.0, 332.0],
-    days: 13.0,
-};
 
 #[test]
 fn the_picture_is_that_of_a_million_grains_moved_one_by_one_plain_and_with_repulsion() {
@@ -469,6 +286,55 @@ fn tone_rises_with_density_and_isophotes_enclose_what_is_brighter() {
             let closed = line[0] == line[line.len() - 1];
             let at_edge = |p: [f32; 2]| p[0] < 9.0 || p[1] < 9.0 || p[0] > 1191.0 || p[1] > 791.0;
             assert!(closed || (at_edge(line[0]) && at_edge(line[line.len() - 1])), "{:?} {:?}", line[0], line.last());
+        }
+    }
+}
+
+#[test]
+fn hard_laws_and_pictures_stay_finite_and_bounded() {
+    let near = Scene { days: 0.01, ..SCENES[3] };
+    for scene in SCENES.iter().chain([&EDGE_ON, &AFTER, &near]) {
+        let (engine, sky) = scene.set();
+        let vista = Vista::of(engine.orbit(), &sky);
+        let changes: [fn(&mut Tails); 6] = [
+            |_| (),
+            |laws| (laws.beta_least, laws.beta_greatest, laws.age_greatest_days) = (1e-7, 3.0, 5000.0),
+            |laws| (laws.activity_exponent, laws.size_exponent) = (15.0, 6.0),
+            |laws| (laws.activity_exponent, laws.size_exponent, laws.beta_greatest) = (0.0, 1.0, 3.0),
+            |laws| (laws.ejection_cone_deg, laws.ejection_spread, laws.ejection_speed_km_s) = (1.0, 1.0, 2.0),
+            |laws| {
+                (laws.ejection_spread, laws.age_greatest_days) = (0.0, 0.1);
+                laws.outburst = Some(Outburst { middle_days: -0.5, width_days: 0.01, strength: 1000.0 });
+            },
+        ];
+        for change in changes {
+            let laws = laws(change);
+            for (field_deg, nucleus_px) in [(1e-4, [600.0, 400.0]), (3.0, [-9000.0, 400.0]), (150.0, [600.0, 400.0])] {
+                for (width, height) in [(1200, 800), (1, 1)] {
+                    let raster = Raster { width, height, nucleus_px, ..raster(field_deg) };
+                    let quality = Quality { samples: 20_000, ..Quality::DRAGGING };
+                    let mut cloud = Cloud::new();
+                    let picture = cloud.render(&vista, &Weights::of(&laws), &raster, quality).expect("dust");
+                    let mut sum = 0.0;
+                    for y in 0..picture.height() {
+                        for weight in picture.line(y) {
+                            assert!(*weight >= 0.0 && weight.is_finite(), "{} {field_deg}: {weight}", scene.name);
+                            sum += f64::from(*weight);
+                        }
+                    }
+                    assert!(
+                        picture.whole() > 0.0 && sum <= 1.01 * picture.whole(),
+                        "{} {field_deg} {laws:?}: {sum} {}",
+                        scene.name,
+                        picture.whole()
+                    );
+                    assert!(picture.effort().solves < 60_000, "{:?}", picture.effort());
+                    let mut rgba = Vec::new();
+                    let tone = Tone { stretch: Stretch::Asinh, depth_decades: 4.0 };
+                    picture.tone(&[[0, 0, 0, 255], [255; 4]], tone, &mut rgba);
+                    picture.isophotes(picture.peak() * 0.1);
+                }
+            }
         }
     }
 }

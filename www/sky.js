@@ -66,6 +66,7 @@ Tailvane.sky = (function () {
 
   function frame(reading, desk) {
     paint(desk, size.ratio, false);
+    canvas.dataset.picture = "coarse";
     clearTimeout(stillTimer);
     stillTimer = setTimeout(refine, STILL_MS);
     upButton.hidden = !reading.at_site;
@@ -76,6 +77,7 @@ Tailvane.sky = (function () {
   /** Nothing changed for a moment: the finer picture, once. */
   function refine() {
     Tailvane.desk.ask((desk) => paint(desk, size.ratio, true));
+    canvas.dataset.picture = "fine";
   }
 
   function drawForPrint() {
@@ -197,5 +199,5 @@ Tailvane.sky = (function () {
     Tailvane.onAct("up", () => Tailvane.desk.change((desk) => desk.set_zenith_up(!desk.zenith_up())));
   }
 
-  return { start, drawForPrint };
+  return { start, drawForPrint, refine };
 })();

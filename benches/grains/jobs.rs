@@ -21,7 +21,7 @@ pub const SCENES: [(&str, [f64; 7]); 4] = [
     ("D grazing", [0.05, 0.9999, 50.0, 200.0, 77.0, 12.0, 12.0]),
 ];
 
-/// Grains of the timed blocks: they stay in the second cache.
+/// Grains of the timed blocks: enough that no branch predictor learns them by heart.
 pub const GRAINS: usize = 64 * BLOCK;
 
 pub struct Jobs {

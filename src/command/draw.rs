@@ -1,14 +1,13 @@
 //! `tailvane draw`: the picture of the page as an SVG file.
 
 use super::{Call, Limits, Stop, in_words, text};
+use tailvane::engine::easel::{Easel, Wishes};
 use tailvane::engine::{Engine, View};
 use tailvane::error::{Error, Kind, Place};
 use tailvane::paint::svg;
-use tailvane::scene::dust::{Depth, DustLayer};
-use tailvane::scene::layer::{Layers, TailLayers};
 use tailvane::scene::theme::Theme;
 use tailvane::scene::view::SkyView;
-use tailvane::scene::{Scene, orbit_view, sky_plane};
+use tailvane::scene::{Scene, orbit_view};
 use tailvane::tail::cloud::Quality;
 
 /// What is drawn, by its name.
@@ -55,15 +54,8 @@ pub fn run(arguments: lexopt::Parser) -> Result<(), Stop> {
 }
 
 fn sky(engine: &Engine, view: &View, theme: Theme, [width_px, height_px]: [f64; 2]) -> Scene {
-    let (vista, laws) = (engine.vista(&view.sky), &engine.plan().tails);
-    let frame = SkyView::start(width_px, height_px);
-    let mut tails = TailLayers::of(&vista, laws, &frame, &Layers::default());
-    let mut dust = DustLayer::new();
-    // Laws that release nothing leave a sky without dust; the sentence says so.
-    if dust.render(&vista, laws, &view.sky, &frame, Quality::STILL).is_ok() {
-        tails.picture = dust.image(theme, &Depth::default());
-    }
-    sky_plane::compose(engine.plan(), &view.sky, &tails, &frame)
+    let wishes = Wishes { theme, quality: Quality::STILL, ..Wishes::default() };
+    Easel::default().sky(engine, &view.sky, &SkyView::start(width_px, height_px), &wishes)
 }
 
 fn orbit(engine: &Engine, view: &View, _theme: Theme, [width_px, height_px]: [f64; 2]) -> Scene {

@@ -35,6 +35,19 @@ pub struct Wishes {
     pub quality: Quality,
 }
 
+impl Default for Wishes {
+    /// Everything but isophotes, 7.5 magnitudes deep, dark, quick.
+    fn default() -> Self {
+        Wishes {
+            layers: Layers::default(),
+            depth_mag: 7.5,
+            isophote_step_mag: 1.0,
+            theme: Theme::Dark,
+            quality: Quality::DRAGGING,
+        }
+    }
+}
+
 /// What a picture was made from, the plan aside.
 #[derive(Clone, Copy, Debug, PartialEq)]
 struct Made {

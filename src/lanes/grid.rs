@@ -97,7 +97,7 @@ impl Grid {
 fn halves(fine: usize, count: usize) -> (usize, usize) {
     let shifted = fine + MARGIN;
     let near = shifted / 2;
-    let far = if shifted % 2 == 0 { near.saturating_sub(1) } else { near + 1 };
+    let far = if shifted.is_multiple_of(2) { near.saturating_sub(1) } else { near + 1 };
     (near.min(count - 1), far.min(count - 1))
 }
 

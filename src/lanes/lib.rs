@@ -9,4 +9,5 @@
 pub mod grid;
 pub mod row;
 pub mod solve;
+pub mod respond;
 pub mod tone;

@@ -2,9 +2,10 @@
 //!
 //! Universal variables as in `orbit::universal` of the main crate, one form for attraction, no force and repulsion,
 //! without a branch: the universal anomaly s solves t(s) = r0 G1 + eta G2 + mu G3 with G_n = s^n c_n(B s^2); c2 and c3
-//! come from short series at s / 8 and three doublings. Start: the real root of the first three terms of t(s), or the
-//! guess if that is smaller; then Laguerre's steps, which come home from afar, and one step of fourth order whose size
-//! tells whether all is well. A lane that does not pass is named in [`Block::doubtful`] and is for the slow solver.
+//! come from short series at s / 8 and three doublings. Start: from the first three terms of t(s), or the guess if that
+//! is smaller; then Laguerre's steps, which come home from afar, and one step of fourth order whose size
+//! tells whether all is well. A block with a lane that does not pass takes more steps; a lane that still does not is named
+//! in [`Block::doubtful`] and is for the slow solver.
 //!
 //! The work goes stage by stage through a block that fits the first cache: independent grains hide each other's
 //! waiting, natively and in wasm. 256 grains and four to a vector measured best (benches/grains.rs).
@@ -13,17 +14,20 @@ use wide::f64x4;
 
 /// Grains of a block.
 pub const BLOCK: usize = 256;
-const LANES: usize = 4;
+pub(crate) const LANES: usize = 4;
 
-/// Laguerre's steps before the last one.
-const STEPS: usize = 3;
+/// Laguerre's steps before the last one: two serve every grain of an ordinary comet. A block that holds a grain for which
+/// they do not takes so many more, one at a time.
+const STEPS: usize = 2;
+const MORE_STEPS: usize = 6;
 /// The last step over s must be below this: what it leaves is of its fourth power times at most some 1e5, where the
 /// time span holds a grazing perihelion.
 const LAST_STEP: f64 = 1e-4;
-/// Series serve up to this |B (s / 8)^2|: a whole revolution and some.
-const SERIES_REACH: f64 = 1.0;
+/// Series serve up to this |B (s / 8)^2|: 0.8 of a revolution about the centre of an ellipse.
+const SERIES_REACH: f64 = 0.4;
 
-type Numbers = [f64; BLOCK];
+/// A number for each grain.
+pub type Numbers = [f64; BLOCK];
 
 /// A block of grains: what is given, and after [`Block::solve`] what was found. Units agree with mu, for instance au,
 /// days and au^3/d^2. Lanes that are not used may hold anything.
@@ -40,12 +44,16 @@ pub struct Block {
     pub guess: Numbers,
     /// Place at the end.
     pub end: [Numbers; 3],
+    /// How many grains are in use; a multiple of four.
+    pub count: usize,
     /// One bit a grain, 64 to a word, for each that is for the slow solver.
     pub doubtful: [u64; BLOCK / 64],
-    distance: Numbers,
-    eta: Numbers,
-    binding: Numbers,
+    pub(crate) distance: Numbers,
+    inverse: Numbers,
+    pub(crate) eta: Numbers,
+    pub(crate) binding: Numbers,
     s: Numbers,
+    pub(crate) s_end: Numbers,
 }
 
 impl Default for Block {
@@ -58,11 +66,14 @@ impl Default for Block {
             time: zero,
             guess: [f64::INFINITY; BLOCK],
             end: [zero; 3],
+            count: BLOCK,
             doubtful: [0; BLOCK / 64],
             distance: zero,
+            inverse: zero,
             eta: zero,
             binding: zero,
             s: zero,
+            s_end: zero,
         }
     }
 }
@@ -83,52 +94,46 @@ impl Block {
             self.step();
         }
         self.finish();
+        for _ in 0..MORE_STEPS {
+            if self.doubtful == [0; BLOCK / 64] {
+                return;
+            }
+            self.step();
+            self.finish();
+        }
     }
 
     fn prepare(&mut self) {
-        for at in (0..BLOCK).step_by(LANES) {
+        for at in (0..self.count.min(BLOCK)).step_by(LANES) {
             let [x, y, z] = self.place.each_ref().map(|numbers| load(numbers, at));
             let [u, v, w] = self.velocity.each_ref().map(|numbers| load(numbers, at));
             let distance = (x * x + y * y + z * z).sqrt();
             store(&mut self.distance, at, distance);
             store(&mut self.eta, at, x * u + y * v + z * w);
             let mu = load(&self.mu, at);
-            store(&mut self.binding, at, (mu + mu) / distance - (u * u + v * v + w * w));
+            let inverse = f64x4::ONE / distance;
+            store(&mut self.inverse, at, inverse);
+            store(&mut self.binding, at, (mu + mu) * inverse - (u * u + v * v + w * w));
         }
     }
 
-    /// A start for s: the root of t = r0 s + eta s^2 / 2 + (mu - B r0) s^3 / 6 if that rises throughout, else one
-    /// substitution into its linear term.
+    /// A start for s: one substitution into the linear term of t = r0 s + eta s^2 / 2 + (mu - B r0) s^3 / 6 + ..., or
+    /// the guess if that is smaller. The root of the cubic itself would save steps only where perihelion is grazed.
     fn start(&mut self) {
-        for at in (0..BLOCK).step_by(LANES) {
+        for at in (0..self.count.min(BLOCK)).step_by(LANES) {
             let (distance, eta) = (load(&self.distance, at), load(&self.eta, at));
-            let (mu, time) = (load(&self.mu, at), load(&self.time, at));
-            let a = (mu - load(&self.binding, at) * distance) * f64x4::splat(1.0 / 6.0);
-            let b = eta * f64x4::splat(0.5);
-            let linear = time / distance;
-            let bend = linear * (b + linear * a) / distance;
-            let simple = linear / (bend + f64x4::ONE).fast_max(f64x4::splat(0.5));
-            // s = x - shift gives x^3 + 3 p x + 2 q = 0.
-            let over_a = f64x4::ONE / a;
-            let shift = b * over_a * f64x4::splat(1.0 / 3.0);
-            let p = distance * over_a * f64x4::splat(1.0 / 3.0) - shift * shift;
-            let q = shift * (shift * shift - distance * over_a * f64x4::HALF) - time * over_a * f64x4::HALF;
-            let discriminant = q * q + p * p * p;
-            let root = discriminant.fast_max(f64x4::ZERO).sqrt();
-            let size = q.abs() + root;
-            let u = cube_root(size);
-            let u = q.simd_gt(f64x4::ZERO).bitselect(-u, u);
-            let cubic = u - p / u - shift;
-            let fits = a.simd_gt(f64x4::ZERO) & discriminant.simd_gt(f64x4::ZERO) & cubic.simd_gt(f64x4::ZERO);
-            let fits = fits & bend.abs().simd_gt(f64x4::splat(0.3)) & cubic.simd_lt(f64x4::splat(f64::INFINITY));
-            let start = fits.bitselect(cubic, simple);
+            let (mu, inverse) = (load(&self.mu, at), load(&self.inverse, at));
+            let linear = load(&self.time, at) * inverse;
+            let third = (mu - load(&self.binding, at) * distance) * f64x4::splat(1.0 / 6.0);
+            let bend = linear * (eta * f64x4::HALF + linear * third) * inverse;
+            let start = linear / (bend + f64x4::ONE).fast_max(f64x4::HALF);
             store(&mut self.s, at, start.fast_min(load(&self.guess, at)));
         }
     }
 
     /// Laguerre's step.
     fn step(&mut self) {
-        for at in (0..BLOCK).step_by(LANES) {
+        for at in (0..self.count.min(BLOCK)).step_by(LANES) {
             let lane = Lane::at(self, at);
             let s = load(&self.s, at);
             let g = lane.universal(s);
@@ -141,7 +146,7 @@ impl Block {
     /// The step of fourth order, the check, and the place.
     fn finish(&mut self) {
         self.doubtful = [0; BLOCK / 64];
-        for at in (0..BLOCK).step_by(LANES) {
+        for at in (0..self.count.min(BLOCK)).step_by(LANES) {
             let lane = Lane::at(self, at);
             let s = load(&self.s, at);
             let g = lane.universal(s);
@@ -152,6 +157,8 @@ impl Block {
             let over = miss * (square - half);
             let under = r * (square - half - half) + miss * miss * third * f64x4::splat(1.0 / 6.0);
             let step = -over / under;
+
+            store(&mut self.s_end, at, s + step);
 
             // The G functions that small step further, by the addition theorem.
             let step2 = step * step;
@@ -164,7 +171,7 @@ impl Block {
             let g2 = g[2] + g[1] * h1 + g[0] * h2;
             let g3 = g[3] + g[2] * h1 + g[1] * h2 + g[0] * h3;
 
-            let f = f64x4::ONE - lane.mu * g2 / lane.distance;
+            let f = f64x4::ONE - lane.mu * g2 * load(&self.inverse, at);
             // Two equal forms of g; each cancels where the other does not.
             let (near, turned, fallen) = (lane.distance * g1, lane.eta * g2, lane.mu * g3);
             let by_time = (lane.time + fallen.abs()).simd_lt(near + turned.abs());
@@ -186,7 +193,7 @@ impl Block {
     pub fn project(&self, sight: &Sight, across: &mut [Numbers; 2]) {
         let [ox, oy, oz] = sight.observer.map(f64x4::splat);
         let axes = sight.axes.map(|axis| axis.map(f64x4::splat));
-        for at in (0..BLOCK).step_by(LANES) {
+        for at in (0..self.count.min(BLOCK)).step_by(LANES) {
             let x = load(&self.end[0], at) - ox;
             let y = load(&self.end[1], at) - oy;
             let z = load(&self.end[2], at) - oz;
@@ -252,13 +259,13 @@ impl Lane {
     }
 }
 
-/// Terms of the series: the next is below 1e-16 of the first for |z| up to one.
-const TERMS: usize = 8;
+/// Terms of the series: the next is below 2e-16 of the first within [`SERIES_REACH`].
+pub(crate) const TERMS: usize = 7;
 /// (-1)^k / (2k + 2)! and (-1)^k / (2k + 3)!.
 const C2: [f64; TERMS] = series(2);
 const C3: [f64; TERMS] = series(3);
 
-const fn series(n: u64) -> [f64; TERMS] {
+pub(crate) const fn series(n: u64) -> [f64; TERMS] {
     let mut terms = [0.0; TERMS];
     let mut k = 0;
     while k < TERMS {
@@ -274,23 +281,12 @@ const fn series(n: u64) -> [f64; TERMS] {
     terms
 }
 
-/// Cube root of numbers >= 0, to 1e-4: a third of the exponent by whole-number arithmetic on the bits, then one step of
-/// third order.
 #[inline(always)]
-fn cube_root(x: f64x4) -> f64x4 {
-    // Two thirds of the exponent's offset, and a fraction that halves the greatest error.
-    const OFFSET: u64 = 0x2A9F_7893_0000_0000;
-    let y = f64x4::from(x.to_array().map(|x| f64::from_bits((x.to_bits() >> 32) / 3 * (1 << 32) + OFFSET)));
-    let cube = y * y * y;
-    y * (cube + x + x) / (cube + cube + x)
-}
-
-#[inline(always)]
-fn load(numbers: &Numbers, at: usize) -> f64x4 {
+pub(crate) fn load(numbers: &Numbers, at: usize) -> f64x4 {
     f64x4::from([numbers[at], numbers[at + 1], numbers[at + 2], numbers[at + 3]])
 }
 
 #[inline(always)]
-fn store(numbers: &mut Numbers, at: usize, lanes: f64x4) {
+pub(crate) fn store(numbers: &mut Numbers, at: usize, lanes: f64x4) {
     numbers[at..at + LANES].copy_from_slice(&lanes.to_array());
 }

@@ -22,7 +22,9 @@ pub fn orbit(sky: &Sky) -> String {
     let side = if latitude < 0.0 { "below" } else { "above" };
     let standing = match latitude.to_degrees().abs() {
         degrees if degrees < 0.05 => "in the plane, so that the dust sheet is seen edge-on".to_owned(),
-        degrees if degrees < 5.0 => format!("{} {side} it, so that the dust sheet is seen nearly edge-on", tenth(latitude.abs())),
+        degrees if degrees < 5.0 => {
+            format!("{} {side} it, so that the dust sheet is seen nearly edge-on", tenth(latitude.abs()))
+        }
         _ => format!("{} {side} it", whole(latitude.abs())),
     };
     format!(
@@ -51,7 +53,7 @@ pub fn map(plan: &Plan, sky: &Sky, perspective: &Perspective) -> String {
         None => format!("{name}: none"),
     };
     let dust = &perspective.at_rest;
-    let sector = format!("within {}\u{b0} of the Sun's direction", figures(laws.anti_tail_half_width_deg));
+    let sector = format!("Within {}\u{b0} of the Sun's direction", figures(laws.anti_tail_half_width_deg));
     format!(
         "Dust by beta and age, {} to {} and {} to {} days, without ejection speed. {}. {}.",
         figures(laws.beta_least),

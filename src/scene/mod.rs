@@ -11,7 +11,6 @@
 //! [`sheet_map::compose`]. New drawings need new roles, not new shapes.
 
 pub mod clip;
-pub mod dust;
 pub mod image;
 pub mod isophote;
 pub mod label;

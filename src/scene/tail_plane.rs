@@ -130,6 +130,9 @@ pub fn legend(tails: &TailLayers, toward_sun: &TowardSun) -> Vec<String> {
     if !toward_sun.is_empty() {
         lines.push("crossed: dust there".to_string());
     }
+    if tails.picture.is_some() {
+        lines.push("dust: model, relative".to_string());
+    }
     if let Some(isophotes) = &tails.isophotes
         && !isophotes.lines.is_empty()
     {

@@ -22,26 +22,61 @@ const GAS: &[Words] = &[
 ];
 
 const DUST: &[Words] = &[
-    ("beta_least", "Smallest beta", "", "Radiation pressure over gravity: the largest grains, which stay near the orbit."),
-    ("beta_greatest", "Greatest beta", "", "The smallest grains, driven away fastest. Above 1: submicron absorbing grains."),
+    (
+        "beta_least",
+        "Smallest beta",
+        "",
+        "Radiation pressure over gravity: the largest grains, which stay near the orbit.",
+    ),
+    (
+        "beta_greatest",
+        "Greatest beta",
+        "",
+        "The smallest grains, driven away fastest. Above 1: submicron absorbing grains.",
+    ),
     ("age_least_days", "Youngest dust", "days", "Dust released later than this is left out; 0 keeps the fresh dust."),
     ("age_greatest_days", "Oldest dust", "days", "Older dust lies farther along the orbit and makes longer tails."),
-    ("size_exponent", "Size exponent", "", "Grains per radius fall as radius to this power; higher puts more light into small grains."),
+    (
+        "size_exponent",
+        "Size exponent",
+        "",
+        "Grains per radius fall as radius to this power; higher puts more light into small grains.",
+    ),
     ("grain_density_g_cm3", "Grain density", "g/cm³", "Turns beta into a radius; moves no dust."),
     ("pressure_efficiency", "Pressure efficiency Qpr", "", "Turns beta into a radius; moves no dust."),
 ];
 
 const ACTIVITY: &[Words] = &[
-    ("activity_exponent", "Activity exponent", "", "Dust leaves as Sun distance to minus this power; higher gathers it about perihelion."),
+    (
+        "activity_exponent",
+        "Activity exponent",
+        "",
+        "Dust leaves as Sun distance to minus this power; higher gathers it about perihelion.",
+    ),
     ("activity_cutoff_au", "Activity cut-off", "au", "Beyond this distance from the Sun nothing leaves."),
-    ("activity_start_days", "Start of activity", "days", "From perihelion, negative before it: nothing leaves earlier. Empty: no start."),
-    ("outburst.middle_days", "Middle of an outburst", "days", "From perihelion: dust of that date stands out along its synchrone. Empty: none."),
+    (
+        "activity_start_days",
+        "Start of activity",
+        "days",
+        "From perihelion, negative before it: nothing leaves earlier. Empty: no start.",
+    ),
+    (
+        "outburst.middle_days",
+        "Middle of an outburst",
+        "days",
+        "From perihelion: dust of that date stands out along its synchrone. Empty: none.",
+    ),
     ("outburst.width_days", "Width of the outburst", "days", "Full width at half of its strength."),
     ("outburst.strength", "Strength of the outburst", "", "Peak rate over the quiet rate."),
 ];
 
 const EJECTION: &[Words] = &[
-    ("ejection_speed_km_s", "Ejection speed", "km/s", "Mean for beta 1 at 1 au; widens the tail, and throws dust sunward."),
+    (
+        "ejection_speed_km_s",
+        "Ejection speed",
+        "km/s",
+        "Mean for beta 1 at 1 au; widens the tail, and throws dust sunward.",
+    ),
     ("ejection_beta_exponent", "Speed with beta", "", "Speed grows as beta to this power: small grains leave faster."),
     ("ejection_distance_exponent", "Speed with Sun distance", "", "Speed falls as distance to this power."),
     ("ejection_spread", "Spread of speeds", "", "Standard deviation over the mean; blurs the edges."),
@@ -88,7 +123,8 @@ pub fn form() -> Vec<Group> {
     let outburst = Some(Outburst { middle_days: 0.0, width_days: 1.0, strength: 1.0 });
     let bounds = Tails { activity_start_days: Some(0.0), outburst, ..Tails::default() }.bounds();
     let range = |key: &str| {
-        let (least, greatest) = bounds.iter().find(|bound| bound.0 == key).map_or((0.0, 0.0), |bound| (bound.1, bound.2));
+        let (least, greatest) =
+            bounds.iter().find(|bound| bound.0 == key).map_or((0.0, 0.0), |bound| (bound.2, bound.3));
         let default = defaults.get(key).map_or("empty", String::as_str);
         format!("{} to {}, default {default}", plain(least), plain(greatest))
     };
@@ -140,13 +176,19 @@ pub fn tails(typed: &BTreeMap<String, String>) -> Result<Tails, Error> {
         for part in ["middle_days", "width_days", "strength"] {
             if !outburst.contains_key(part) {
                 let place = Place::Field(format!("tails.outburst.{part}"));
-                return Err(Error::new(Kind::Range, place, "nothing", "a number: an outburst needs all three, or none"));
+                return Err(Error::new(
+                    Kind::Range,
+                    place,
+                    "nothing",
+                    "a number: an outburst needs all three, or none",
+                ));
             }
         }
         laws.insert("outburst".to_owned(), Value::Object(outburst));
     }
-    serde_json::from_value(Value::Object(laws))
-        .map_err(|error| Error::new(Kind::Range, Place::Field("tails".to_owned()), error.to_string(), "the laws of the tails"))
+    serde_json::from_value(Value::Object(laws)).map_err(|error| {
+        Error::new(Kind::Range, Place::Field("tails".to_owned()), error.to_string(), "the laws of the tails")
+    })
 }
 
 /// The grain radius that belongs to a typed beta, in words; empty for what is no beta.
@@ -176,7 +218,10 @@ pub fn presets() -> Vec<Preset> {
             "gas-rich",
             Tails { beta_least: 0.1, age_greatest_days: 30.0, size_exponent: 4.0, ejection_speed_km_s: 0.6, ..plain() },
         ),
-        ("dusty", Tails { beta_least: 0.0003, beta_greatest: 1.5, age_greatest_days: 300.0, size_exponent: 3.7, ..plain() }),
+        (
+            "dusty",
+            Tails { beta_least: 0.0003, beta_greatest: 1.5, age_greatest_days: 300.0, size_exponent: 3.7, ..plain() },
+        ),
         (
             "old large grains",
             Tails {
@@ -198,6 +243,7 @@ pub fn presets() -> Vec<Preset> {
 }
 
 fn about(laws: &Tails) -> String {
-    let ages = format!("{} to {} days", quantity::figures(laws.age_least_days), quantity::figures(laws.age_greatest_days));
+    let ages =
+        format!("{} to {} days", quantity::figures(laws.age_least_days), quantity::figures(laws.age_greatest_days));
     format!("beta {} to {}, {ages}", laws.beta_least, laws.beta_greatest)
 }

@@ -1,14 +1,14 @@
 //! Which invented comets come with the page?
 //!
 //! None of them exists, nor does their hill. The first is what a newcomer sees: the observer close to the orbit plane, with
-//! negative velocity on the sunward side. The second is strongly hyperbolic, the third has a short period.
+//! old dust on the sunward side by perspective. The second is strongly hyperbolic, the third has a short period.
 
 use crate::body::observer::Observer;
 use crate::plan::Plan;
 use serde::Serialize;
 
 const PLANS: [(&str, &str); 3] = [
-    (include_str!("../../www/examples/alder.plan.json"), "orbit-plane crossing"),
+    (include_str!("../../www/examples/alder.plan.json"), "anti-tail night"),
     (include_str!("../../www/examples/rowan.plan.json"), "hyperbolic"),
     (include_str!("../../www/examples/hazel.plan.json"), "short period"),
 ];

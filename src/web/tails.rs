@@ -6,8 +6,6 @@ use crate::paint::canvas::CanvasPainter;
 use crate::paint::paint;
 use crate::plan::Plan;
 use crate::say;
-use crate::scene::layer::Layers;
-use crate::scene::theme::Theme;
 use crate::scene::{orbit_view, sheet_map};
 use crate::sky::column::whole_turn_deg;
 use crate::tail::cloud::Quality;
@@ -18,22 +16,8 @@ use wasm_bindgen::JsValue;
 use wasm_bindgen::prelude::wasm_bindgen;
 use web_sys::CanvasRenderingContext2d;
 
-/// How far below the brightest dust the picture goes, and from isophote to isophote, magnitudes.
-const DEPTH_MAG: f64 = 7.5;
-const ISOPHOTE_STEP_MAG: f64 = 1.0;
 /// A still picture has at most about so many cells: more would block the page for longer than a frame.
 const MOST_CELLS: f64 = 1_000_000.0;
-
-/// How the tails are drawn as long as nobody chose otherwise.
-pub fn default_wishes() -> Wishes {
-    Wishes {
-        layers: Layers::default(),
-        depth_mag: DEPTH_MAG,
-        isophote_step_mag: ISOPHOTE_STEP_MAG,
-        theme: Theme::Dark,
-        quality: Quality::DRAGGING,
-    }
-}
 
 /// Every control of the Tails bench, by group.
 #[wasm_bindgen]
@@ -86,7 +70,8 @@ impl Desk {
     pub fn set_still(&mut self, still: bool, ratio: f64) {
         let mut quality = if still { Quality::STILL } else { Quality::DRAGGING };
         let cells = self.view.width_px * self.view.height_px;
-        while cells / (quality.cell_px * quality.cell_px) as f64 > MOST_CELLS || (quality.cell_px as f64) * ratio < 0.999
+        while cells / (quality.cell_px * quality.cell_px) as f64 > MOST_CELLS
+            || (quality.cell_px as f64) * ratio < 0.999
         {
             quality.cell_px += 1;
         }

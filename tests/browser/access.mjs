@@ -94,7 +94,10 @@ export default (context) =>
     test("the sky plane zooms, pans and resets by keys, and tells what lies under the pointer", async () => {
       const { page, noise } = await open(context.browser, PAGE_ADDRESS);
       const canvas = await page.$('[data-view="sky"]');
-      const picture = () => canvas.evaluate((element) => element.toDataURL());
+      const picture = async () => {
+        await rested(page);
+        return canvas.evaluate((element) => element.toDataURL());
+      };
       const start = await picture();
       await canvas.focus();
       await page.keyboard.press("+");

@@ -74,10 +74,11 @@ export async function ready(page) {
 /** Waits two frames, so that what was asked for is drawn. */
 export const settled = (page) => page.evaluate(() => new Promise((done) => requestAnimationFrame(() => requestAnimationFrame(done))));
 
-/** Waits until scrubbing counts as rested and the address is written. */
+/** Waits until scrubbing counts as rested, the address is written, and the finer picture is drawn. */
 export async function rested(page) {
   await settled(page);
   await new Promise((done) => setTimeout(done, 700));
+  await page.waitForFunction(() => document.querySelector('[data-view="sky"]').dataset.picture === "fine");
   await settled(page);
 }
 

@@ -11,6 +11,7 @@ import gallery from "./gallery.mjs";
 import input from "./input.mjs";
 import layout from "./layout.mjs";
 import numbers from "./numbers.mjs";
+import tails from "./tails.mjs";
 import quiet from "./quiet.mjs";
 import time from "./time.mjs";
 
@@ -35,7 +36,7 @@ for (const name of wanted) {
         context.server.stop();
       }
     });
-    for (const part of [quiet, numbers, time, input, access, layout, gallery]) {
+    for (const part of [quiet, numbers, tails, time, input, access, layout, gallery]) {
       part(context);
     }
   });

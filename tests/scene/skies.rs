@@ -14,6 +14,7 @@ use tailvane::sky::trail::Trail;
 use tailvane::sky::viewpoint::Viewpoint;
 use tailvane::sky::{SiteSky, Sky};
 use tailvane::tail::grain::Vista;
+use tailvane::tail::law::Tails;
 use tailvane::time::Stamp;
 
 /// Position angles of the four hands, degrees; None where the direction is absent.
@@ -46,6 +47,7 @@ pub fn plan() -> Plan {
             height_m: 640.0,
         }),
         time: Some("2031-03-28T04:40:00Z".parse().expect("a date")),
+        tails: Tails { age_greatest_days: 100.0, ..Tails::default() },
         ..Plan::from(comet)
     }
 }

@@ -156,10 +156,11 @@ fn greatest_ratio(lines: &[[f32; 3]; 3]) -> f32 {
 /// Longest sides along anomaly and along root beta.
 fn sides(spots: &Spots) -> [f32; 2] {
     let apart = |a: &Spot, b: &Spot| ((a.x - b.x) * (a.x - b.x) + (a.y - b.y) * (a.y - b.y)).sqrt();
+    let length = |line: [&Spot; 3]| apart(line[0], line[1]) + apart(line[1], line[2]);
     let mut longest = [0.0_f32; 2];
-    for k in 0..3 {
-        longest[0] = longest[0].max(apart(&spots[0][k], &spots[1][k]) + apart(&spots[1][k], &spots[2][k]));
-        longest[1] = longest[1].max(apart(&spots[k][0], &spots[k][1]) + apart(&spots[k][1], &spots[k][2]));
+    for (k, line) in spots.iter().enumerate() {
+        longest[0] = longest[0].max(length([&spots[0][k], &spots[1][k], &spots[2][k]]));
+        longest[1] = longest[1].max(length(line.each_ref()));
     }
     longest
 }

@@ -14,6 +14,7 @@
 //! Surface density of cross section only: illumination and phase at the grain's own place are left out.
 
 mod cell;
+mod chebyshev;
 mod isophote;
 pub mod patch;
 mod picture;

@@ -8,14 +8,15 @@
 //! the centre of the speeds. Rectangles that lie wholly outside the picture are dropped.
 //! Source of the variables and of the accuracy to expect: measured on trial orbits; tests/cloud.rs measures it again.
 
-use crate::body::KM_S_PER_AU_D;
+use crate::body::{KM_S_PER_AU_D, State};
 use crate::orbit::conic::{SUN_GM_AU3_D2, propagate_with_response};
-use crate::tail::cloud::Raster;
+use crate::tail::cloud::{Raster, chebyshev};
 use crate::tail::grain::Vista;
 use crate::tail::weight::Weights;
 use nalgebra::{Matrix3, Vector3};
-use std::f64::consts::PI;
+use tailvane_lanes::respond::Response;
 use tailvane_lanes::row::{self, FUNCTIONS, ROW, Row, S_TERMS, T_TERMS};
+use tailvane_lanes::solve::{BLOCK, Block};
 
 /// Error of a place that is let stand, pixels, and of the spread by ejection.
 const PLACE_TOLERANCE_PX: f64 = 0.1;
@@ -62,10 +63,14 @@ impl Patch {
         self.release.iter().zip(terms).map(|(c, term)| c * term).sum::<f32>().max(0.0)
     }
 
-    /// What leaves over a part of it: the release integrated along anomaly, by Simpson's rule.
+    /// What leaves over a part of it: the release integrated along anomaly, by Gauss's rule of four places, which is
+    /// exact for eight terms.
     pub fn released(&self, [middle, half]: [f32; 2]) -> f64 {
-        let at = |a: f32| f64::from(self.release_at(middle + a * half));
-        self.anomaly[1] * f64::from(half) * (at(-1.0) + 4.0 * at(0.0) + at(1.0)) / 3.0
+        const PLACES: [(f32, f64); 2] =
+            [(0.339_981_04, 0.652_145_154_862_546_1), (0.861_136_3, 0.347_854_845_137_453_9)];
+        let at = |place: f32| f64::from(self.release_at(middle + place * half));
+        let mean: f64 = PLACES.iter().map(|(place, weight)| weight * (at(-place) + at(*place))).sum();
+        self.anomaly[1] * f64::from(half) * mean
     }
 
     /// Share of the light of the betas in a part of it.
@@ -95,15 +100,23 @@ pub struct Fitter {
     /// Values at the nodes to Chebyshev coefficients.
     s_fit: [[f64; S_TERMS]; S_TERMS],
     t_fit: [[f64; T_TERMS]; T_TERMS],
+    /// The grains of the nodes, and their response.
+    block: Block,
+    response: Response,
 }
+
+/// Nodes of a patch.
+const NODES: usize = S_TERMS * T_TERMS;
 
 impl Default for Fitter {
     fn default() -> Self {
         Fitter {
-            s_nodes: chebyshev_nodes(),
-            t_nodes: chebyshev_nodes(),
-            s_fit: chebyshev_fit(),
-            t_fit: chebyshev_fit(),
+            s_nodes: chebyshev::nodes(),
+            t_nodes: chebyshev::nodes(),
+            s_fit: chebyshev::fit(),
+            t_fit: chebyshev::fit(),
+            block: Block::default(),
+            response: [[[0.0; BLOCK]; 3]; 3],
         }
     }
 }
@@ -119,7 +132,7 @@ type Values = [[[f64; T_TERMS]; S_TERMS]; FUNCTIONS];
 
 impl Fitter {
     /// The patches of a release span (ages in days) that touch the picture, and the weight of all, seen or not.
-    pub fn cover(&self, subject: &Subject, spans: &[[f64; 2]], patches: &mut Vec<Patch>) -> (f64, Effort) {
+    pub fn cover(&mut self, subject: &Subject, spans: &[[f64; 2]], patches: &mut Vec<Patch>) -> (f64, Effort) {
         let mut effort = Effort::default();
         let mut whole = 0.0;
         patches.clear();
@@ -144,7 +157,7 @@ impl Fitter {
         (whole, effort)
     }
 
-    fn fit(&self, subject: &Subject, rectangle: &Rectangle) -> Fit {
+    fn fit(&mut self, subject: &Subject, rectangle: &Rectangle) -> Fit {
         let Subject { vista, weights, raster } = subject;
         let laws = weights.laws();
         let [s_middle, s_half] = rectangle.anomaly;
@@ -157,24 +170,43 @@ impl Fitter {
             libm::pow(u * u, laws.ejection_beta_exponent) * laws.ejection_speed_km_s / KM_S_PER_AU_D
         });
 
-        let mut values: Values = [[[0.0; T_TERMS]; S_TERMS]; FUNCTIONS];
         let mut release = [0.0; S_TERMS];
+        let mut thrown = [[State { position_au: Vector3::zeros(), velocity_au_d: Vector3::zeros() }; T_TERMS]; S_TERMS];
+        let mut axes = [Matrix3::zeros(); S_TERMS];
+        let now = vista.orbit.whole_anomaly(&vista.orbit.place_at(vista.seen).anomaly);
         for (k, s) in self.s_nodes.iter().enumerate() {
-            let (start, days) = vista.orbit.at_anomaly(s_middle + s_half * s);
+            let anomaly = s_middle + s_half * s;
+            let (start, days) = vista.orbit.at_anomaly(anomaly);
             let distance = start.position_au.norm();
             release[k] = weights.release_rate(distance, days) * distance;
             let slowing = libm::pow(distance, -laws.ejection_distance_exponent);
             let out = start.position_au / distance;
             let up = start.position_au.cross(&start.velocity_au_d).normalize();
-            let axes = Matrix3::from_columns(&[out, up.cross(&out), up]);
+            axes[k] = Matrix3::from_columns(&[out, up.cross(&out), up]) * slowing;
             for (j, t) in self.t_nodes.iter().enumerate() {
                 let u = u_middle + u_half * t;
-                let speed = speed_by_beta[j] * slowing;
-                let mut thrown = start;
-                thrown.velocity_au_d += out * (mean * speed);
-                let (end, response) = propagate_with_response(SUN_GM_AU3_D2 * (1.0 - u * u), &thrown, seen_days - days);
-                let place: Vector3<f64> = camera.turn * (end.position_au - vista.nucleus.position_au);
-                let slopes = camera.turn * response.position * axes * speed;
+                let velocity = start.velocity_au_d + out * (mean * speed_by_beta[j] * slowing);
+                thrown[k][j] = State { position_au: start.position_au, velocity_au_d: velocity };
+                let node = k * T_TERMS + j;
+                for axis in 0..3 {
+                    self.block.place[axis][node] = start.position_au[axis];
+                    self.block.velocity[axis][node] = velocity[axis];
+                }
+                self.block.mu[node] = SUN_GM_AU3_D2 * (1.0 - u * u);
+                self.block.time[node] = seen_days - days;
+                self.block.guess[node] = now - anomaly;
+            }
+        }
+        self.block.count = NODES;
+        self.block.solve();
+        self.block.respond(&mut self.response);
+
+        let mut values: Values = [[[0.0; T_TERMS]; S_TERMS]; FUNCTIONS];
+        for k in 0..S_TERMS {
+            for j in 0..T_TERMS {
+                let (end, response) = self.reached(k * T_TERMS + j, &thrown[k][j]);
+                let place = camera.turn * (end - vista.nucleus.position_au);
+                let slopes = camera.turn * response * axes[k] * speed_by_beta[j];
                 values[0][k][j] = place.x;
                 values[1][k][j] = place.y;
                 values[2][k][j] = place.z + camera.distance_au;
@@ -192,6 +224,18 @@ impl Fitter {
         self.finish(subject, rectangle, &values, &release, &light)
     }
 
+    /// Where the grain of a node is, and how that answers to its start velocity; by the slow solver where the fast one
+    /// doubts itself.
+    fn reached(&self, node: usize, start: &State) -> (Vector3<f64>, Matrix3<f64>) {
+        let block = &self.block;
+        if block.doubtful[node / 64] >> (node % 64) & 1 == 1 {
+            let (end, response) = propagate_with_response(block.mu[node], start, block.time[node]);
+            return (end.position_au, response.position);
+        }
+        let end = Vector3::from_fn(|axis, _| block.end[axis][node]);
+        (end, Matrix3::from_fn(|row, column| self.response[row][column][node]))
+    }
+
     /// Coefficients from values at the nodes, and whether they are good enough.
     fn finish(
         &self,
@@ -202,16 +246,16 @@ impl Fitter {
         light: &[f64; T_TERMS],
     ) -> Fit {
         let weights = subject.weights;
-        let release = transform(&self.s_fit, release);
-        let light_terms = transform(&self.t_fit, light);
+        let release = chebyshev::transform(&self.s_fit, release);
+        let light_terms = chebyshev::transform(&self.t_fit, light);
         let [low, high] = [-1.0, 1.0].map(|t| rectangle.root_beta[0] + t * rectangle.root_beta[1]);
-        let released = chebyshev_integral(&release) * rectangle.anomaly[1];
+        let released = chebyshev::integral(&release) * rectangle.anomaly[1];
         let mut patch = Patch {
             anomaly: rectangle.anomaly,
             root_beta: rectangle.root_beta,
             map: [[0.0; ROW]; S_TERMS],
             release: release.map(|term| term as f32),
-            light: powers(&light_terms).map(|term| term as f32),
+            light: chebyshev::powers(&light_terms).map(|term| term as f32),
             whole: released.max(0.0) * weights.light_between(low * low, high * high),
         };
         if patch.whole <= 0.0 || subject.raster.misses(values, weights.greatest_speed_factor()) {
@@ -221,19 +265,16 @@ impl Fitter {
         // The size of the last terms along each variable, function by function.
         let (mut s_last, mut t_last) = ([0.0; FUNCTIONS], [0.0; FUNCTIONS]);
         for function in 0..FUNCTIONS {
-            let along_t = values[function].map(|line| transform(&self.t_fit, &line));
-            let mut terms = [[0.0; T_TERMS]; S_TERMS];
-            for k in 0..S_TERMS {
-                for j in 0..T_TERMS {
-                    terms[k][j] = (0..S_TERMS).map(|n| self.s_fit[k][n] * along_t[n][j]).sum();
-                }
-            }
-            s_last[function] = last(&terms.map(|line| line.iter().map(|term| term.abs()).sum()));
+            let along_t = values[function].map(|line| chebyshev::transform(&self.t_fit, &line));
+            let terms: [[f64; T_TERMS]; S_TERMS] = std::array::from_fn(|k| {
+                std::array::from_fn(|j| (0..S_TERMS).map(|n| self.s_fit[k][n] * along_t[n][j]).sum())
+            });
+            s_last[function] = chebyshev::last(&terms.map(|line| line.iter().map(|term| term.abs()).sum()));
             let columns: [f64; T_TERMS] = std::array::from_fn(|j| terms.iter().map(|line| line[j].abs()).sum());
-            t_last[function] = last(&columns);
-            for k in 0..S_TERMS {
-                for (j, term) in powers(&terms[k]).iter().enumerate() {
-                    patch.map[k][function * T_TERMS + j] = *term as f32;
+            t_last[function] = chebyshev::last(&columns);
+            for (row, line) in patch.map.iter_mut().zip(&terms) {
+                for (out, power) in row[function * T_TERMS..].iter_mut().zip(chebyshev::powers(line)) {
+                    *out = power as f32;
                 }
             }
         }
@@ -246,8 +287,9 @@ impl Fitter {
             let slopes = last[3..9].iter().sum::<f64>() + reach * last[9..].iter().sum::<f64>();
             place.max(factor * slopes * scale / SPREAD_TOLERANCE_PX)
         };
-        let rate =
-            |terms: &[f64]| last(terms) / terms.iter().fold(0.0_f64, |sum, term| sum.max(term.abs())) / RATE_TOLERANCE;
+        let rate = |terms: &[f64]| {
+            chebyshev::last(terms) / terms.iter().fold(0.0_f64, |sum, term| sum.max(term.abs())) / RATE_TOLERANCE
+        };
         let s_excess = excess(&s_last).max(rate(&release));
         let t_excess = excess(&t_last).max(rate(&light_terms));
         let verdict = if s_excess <= 1.0 && t_excess <= 1.0 {
@@ -321,45 +363,4 @@ fn first_rectangles(subject: &Subject, spans: &[[f64; 2]]) -> Vec<Rectangle> {
 
 fn middle_and_half(low: f64, high: f64) -> [f64; 2] {
     [0.5 * (low + high), 0.5 * (high - low)]
-}
-
-fn chebyshev_nodes<const N: usize>() -> [f64; N] {
-    std::array::from_fn(|k| libm::cos(PI * (k as f64 + 0.5) / N as f64))
-}
-
-/// Rows: coefficient; columns: node.
-fn chebyshev_fit<const N: usize>() -> [[f64; N]; N] {
-    std::array::from_fn(|n| {
-        std::array::from_fn(|k| {
-            let value = libm::cos(PI * n as f64 * (k as f64 + 0.5) / N as f64);
-            value * if n == 0 { 1.0 } else { 2.0 } / N as f64
-        })
-    })
-}
-
-fn transform<const N: usize>(fit: &[[f64; N]; N], values: &[f64; N]) -> [f64; N] {
-    std::array::from_fn(|n| (0..N).map(|k| fit[n][k] * values[k]).sum())
-}
-
-/// The last term, or a quarter of the last but one: one of them may vanish by symmetry.
-fn last(terms: &[f64]) -> f64 {
-    let n = terms.len();
-    terms[n - 1].abs().max(0.25 * terms[n - 2].abs())
-}
-
-/// Integral of a Chebyshev sum from -1 to 1.
-fn chebyshev_integral(terms: &[f64]) -> f64 {
-    terms.iter().step_by(2).enumerate().map(|(half, term)| 2.0 * term / (1.0 - 4.0 * (half * half) as f64)).sum()
-}
-
-/// Powers from Chebyshev terms (six of them).
-fn powers(c: &[f64; T_TERMS]) -> [f64; T_TERMS] {
-    [
-        c[0] - c[2] + c[4],
-        c[1] - 3.0 * c[3] + 5.0 * c[5],
-        2.0 * c[2] - 8.0 * c[4],
-        4.0 * c[3] - 20.0 * c[5],
-        8.0 * c[4],
-        16.0 * c[5],
-    ]
 }
