@@ -15,7 +15,6 @@
 
 mod cell;
 mod chebyshev;
-mod isophote;
 pub mod patch;
 mod picture;
 mod sample;

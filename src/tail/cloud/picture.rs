@@ -105,13 +105,6 @@ impl Picture {
         }
     }
 
-    /// Densities at which isophotes are drawn: `count` of them, evenly in the logarithm over the depth, brightest first.
-    pub fn isophote_levels(&self, count: usize, depth_decades: f64) -> Vec<f32> {
-        let peak = f64::from(self.peak());
-        let level = |k: usize| peak * libm::pow(10.0, -depth_decades * (k as f64 + 0.5) / count as f64);
-        if peak > 0.0 { (0..count).map(|k| level(k) as f32).collect() } else { Vec::new() }
-    }
-
     pub fn effort(&self) -> Effort {
         self.effort
     }
