@@ -248,7 +248,7 @@ fn activity_that_releases_nothing_is_refused_and_spans_end_at_the_cut_off() {
 }
 
 #[test]
-fn tone_rises_with_density_and_isophotes_enclose_what_is_brighter() {
+fn tone_rises_with_density() {
     let (engine, sky) = SCENES[0].set();
     let vista = Vista::of(engine.orbit(), &sky);
     let weights = Weights::of(&Tails::default());

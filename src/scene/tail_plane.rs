@@ -15,7 +15,7 @@ use crate::tail::size::Material;
 use std::f64::consts::TAU;
 
 /// Between the diagonals over dust toward the Sun, in drawing units.
-const HATCH_GAP: f64 = 14.0;
+const HATCH_GAP: f64 = 8.0;
 /// Neighbouring synchrones stand at least this far apart where they begin, in drawing units, unless that lies farther
 /// out than this share of the ring's radius.
 const LEAST_APART: f64 = 5.0;

@@ -346,10 +346,9 @@ impl Theme {
                 pattern(self.curve(family), width, curve_dashes(family))
             }
             Role::CurveLabel(family) => letters(self.curve(family)),
-            // Light enough that the picture of the dust shows through.
-            Role::TowardSun => fill(p.toward_sun, 0.1),
-            Role::TowardSunLine => line(p.toward_sun, 2.2),
-            Role::TowardSunHatch => line(p.toward_sun, 0.6),
+            Role::TowardSun => fill(p.toward_sun, 0.16),
+            Role::TowardSunLine => line(p.toward_sun, 3.4),
+            Role::TowardSunHatch => line(p.toward_sun, 0.7),
             Role::OrbitPath => line(p.dial, 1.4),
             Role::OrbitArrow => fill(p.text, 1.0),
             Role::PlaneLine => line(p.dial, 1.4),
