@@ -19,13 +19,14 @@ use crate::plan::Plan;
 use crate::say::{self, Saying};
 use crate::sky::Sky;
 use crate::sky::avoidance;
-use crate::sky::dark::{self, Window};
+use crate::sky::dark::{self, Day, NODE_DAYS, NODES, Window};
 use crate::sky::trail::Trail;
 use crate::sky::viewpoint::{Ground, Viewpoint};
 use crate::tail::grain::Vista;
 use crate::tail::ion::Wedge;
 use crate::tail::perspective::{self, Perspective};
 use crate::time::Instant;
+use nalgebra::Vector3;
 
 /// Two-body motion is doubted this many days from the elements' epoch.
 const OLD_ELEMENTS_DAYS: f64 = 100.0;
@@ -127,11 +128,25 @@ impl Engine {
 
     /// When the comet is up in a dark sky within half a day of `time`; None for the geocentre.
     pub fn dark_windows(&mut self, time: Instant) -> Option<Vec<Window>> {
-        let Observer::Site(_) = &self.plan.observer else { return None };
-        Some(dark::windows(time, |time| {
-            let site = self.sky_at(time).ok()?.site?;
-            Some([site.altitude_rad.to_degrees(), site.sun_altitude_rad.to_degrees()])
-        }))
+        let day = self.day(time)?;
+        Some(dark::windows(time, |time| SPAN.contains(time).then(|| day.altitudes_deg(time))))
+    }
+
+    /// Comet and Sun over the site's day about `time`; None for the geocentre. Nodes beyond the ephemeris repeat
+    /// its last day.
+    fn day(&mut self, time: Instant) -> Option<Day> {
+        let mut comet = [Vector3::zeros(); NODES];
+        let mut sun = [Vector3::zeros(); NODES];
+        for (node, (comet, sun)) in comet.iter_mut().zip(&mut sun).enumerate() {
+            let days = time.tdb_days() + (node as f64 - 2.0) * NODE_DAYS;
+            let within = days.clamp(SPAN.first.tdb_days(), SPAN.last.tdb_days());
+            let sky = self.sky_at(Instant::from_tdb_days(within)).ok()?;
+            *comet = sky.axes.sight;
+            *sun = -sky.observer.position_au.normalize();
+        }
+        let ground = self.viewpoint(time).ok()?.ground?;
+        let pole = celestial_to_terrestrial(time.tdb_days(), time.ut1_days()).transpose() * Vector3::z();
+        Some(Day { middle: time, comet, sun, zenith: ground.horizon.up, pole })
     }
 
     fn cautions_of_elements(&self, time: Instant) -> Vec<Caution> {

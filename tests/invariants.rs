@@ -5,11 +5,13 @@
 use nalgebra::Vector3;
 use proptest::prelude::*;
 use tailvane::body::State;
+use tailvane::body::observer::{Observer, Site};
 use tailvane::engine::Engine;
 use tailvane::orbit::conic::{Orbit, SUN_GM_AU3_D2, propagate, propagate_bracketed, propagate_with_response};
 use tailvane::orbit::elements::{Comet, Elements};
 use tailvane::plan::Plan;
 use tailvane::sky::LIGHT_AU_D;
+use tailvane::sky::dark::{COMET_ABOVE_DEG, SUN_BELOW_DEG};
 use tailvane::time::{Instant, Stamp};
 
 /// Components of a place between 0.02 and 5 au.
@@ -156,5 +158,30 @@ proptest! {
         engine.sky_at(time.plus_days(step)).expect("a date in the span");
         let after = engine.sky_at(time).expect("a date in the span");
         prop_assert_eq!(fresh, after);
+    }
+}
+
+#[test]
+fn the_quick_altitudes_of_a_day_are_the_exact_ones() {
+    // A site at every latitude; comets from 0.05 au outward. The bar is the 0.01 degrees of the altitudes themselves.
+    for (latitude_deg, q) in [(37.1, 0.3), (-67.0, 1.2), (89.9, 0.7), (0.0, 0.98)] {
+        let site = Site { name: String::new(), longitude_deg: 23.4, latitude_deg, height_m: 640.0 };
+        let comet = Comet { name: "Invented".into(), elements: elements(q, 1.0002), brightness: Vec::new() };
+        let mut engine = Engine::new(Plan { observer: Observer::Site(site), ..Plan::from(comet) }).expect("a plan");
+        for step in 0..40 {
+            let middle = Instant::from_tdb_days(11_300.0 + 13.7 * f64::from(step));
+            let windows = engine.dark_windows(middle).expect("a site");
+            for window in windows {
+                for (time, above_deg) in [(window.begin, COMET_ABOVE_DEG), (window.end, COMET_ABOVE_DEG)] {
+                    let site = engine.sky_at(time).expect("within the span").site.expect("a site");
+                    let (comet, sun) = (site.altitude_rad.to_degrees(), site.sun_altitude_rad.to_degrees());
+                    let cut = (time.tdb_days() - middle.tdb_days()).abs() > 0.4999;
+                    let at_edge = (comet - above_deg).abs() < 0.01 || (sun - SUN_BELOW_DEG).abs() < 0.01;
+                    assert!(cut || at_edge, "{latitude_deg}: comet {comet}, Sun {sun}");
+                }
+                let highest = engine.sky_at(window.highest_at).expect("within the span").site.expect("a site");
+                assert!((highest.altitude_rad.to_degrees() - window.highest_deg).abs() < 0.01);
+            }
+        }
     }
 }
