@@ -333,7 +333,7 @@ fn beside(from: Point, step: Point, size: [f64; 2], gap: f64) -> Point {
 }
 
 /// True when two segments cross inside both.
-fn cross(one: &[Point; 2], other: &[Point; 2]) -> bool {
+pub fn cross(one: &[Point; 2], other: &[Point; 2]) -> bool {
     let side = |a: Point, b: Point, p: Point| (b[0] - a[0]) * (p[1] - a[1]) - (b[1] - a[1]) * (p[0] - a[0]);
     let [a, b] = *one;
     let [c, d] = *other;

@@ -10,7 +10,7 @@
 //! that of the drawing before is cheaper than any other.
 //! Which curve runs where is kept in a mesh of cells, so that a frame costs no search through segments.
 
-use super::label::Room;
+use super::label::{Room, cross};
 use super::lettering::{ABOVE, BELOW, Rect, width_px};
 use super::{Family, Point, Role, Scene};
 
@@ -111,14 +111,14 @@ fn cheapest(room: &Room, mesh: &Mesh, curves: &[PageCurve], index: usize, was: O
     let mut best: Option<(f64, Spot)> = None;
     for (words, text) in curve.words.iter().enumerate() {
         let half = [width_px(text, size_px, false) / 2.0, size_px * (ABOVE + BELOW) / 2.0];
-        let mut consider = |center: Point, cost: f64| {
+        let mut consider = |from: Point, center: Point, cost: f64| {
             let area = Rect::around(center, half[0], half[1]);
             let moved = was.map_or(0.0, |[x, y]| (libm::hypot(center[0] - x, center[1] - y) / unit).min(FARTHEST_MOVE));
             let cost = cost + SHORT_WORDS * words as f64 + MOVED * moved;
             if best.is_some_and(|(least, _)| cost >= least) {
                 return;
             }
-            if let Some(more) = judged(room, mesh, index, &area)
+            if let Some(more) = judged(room, mesh, index, from, &area)
                 && best.is_none_or(|(least, _)| cost + more < least)
             {
                 best = Some((cost + more, Spot { words, area }));
@@ -127,24 +127,24 @@ fn cheapest(room: &Room, mesh: &Mesh, curves: &[PageCurve], index: usize, was: O
         for share in SHARES {
             let (at, along) = place(piece, share);
             let cost = ASTRAY * (share - WISHED_SHARE).abs();
-            consider(at, cost);
+            consider(at, at, cost);
             let across = [-along[1], along[0]];
             let away = support(across, half) + 4.0 * unit;
             for side in [away, -away] {
-                consider([at[0] + across[0] * side, at[1] + across[1] * side], cost + BESIDE);
+                consider(at, [at[0] + across[0] * side, at[1] + across[1] * side], cost + BESIDE);
             }
         }
         if curve.ends {
             let (at, along) = place(piece, 1.0);
             let away = support(along, half) + 5.0 * unit;
-            consider([at[0] + along[0] * away, at[1] + along[1] * away], BEYOND);
+            consider(at, [at[0] + along[0] * away, at[1] + along[1] * away], BEYOND);
         }
     }
     best.map(|(_, spot)| spot)
 }
 
-/// What a box costs; None where it is not free.
-fn judged(room: &Room, mesh: &Mesh, index: usize, area: &Rect) -> Option<f64> {
+/// What a box costs that belongs to a point of its curve; None where it is not free, or a hand stands between.
+fn judged(room: &Room, mesh: &Mesh, index: usize, from: Point, area: &Rect) -> Option<f64> {
     let clear = area.grown(CLEAR * room.unit_px);
     if !room.area.contains(area) || room.taken.iter().any(|taken| taken.overlaps(&clear)) || room.meets_leader(&clear) {
         return None;
@@ -153,10 +153,10 @@ fn judged(room: &Room, mesh: &Mesh, index: usize, area: &Rect) -> Option<f64> {
     if met & mesh.kind(index) != 0 {
         return None;
     }
-    if room.hands.iter().any(|[a, b]| clear.cuts(*a, *b)) {
+    let center = area.center();
+    if room.hands.iter().any(|hand| clear.cuts(hand[0], hand[1]) || cross(&[from, center], hand)) {
         return None;
     }
-    let center = area.center();
     let inside = libm::hypot(center[0] - room.ring_center[0], center[1] - room.ring_center[1]) < room.ring_radius_px;
     Some(MEETS_OTHER_KIND * f64::from(met.count_ones()) + if inside { INSIDE_RING } else { 0.0 })
 }

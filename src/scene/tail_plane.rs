@@ -16,6 +16,8 @@ use std::f64::consts::TAU;
 
 /// Between the diagonals over dust toward the Sun, in drawing units.
 const HATCH_GAP: f64 = 8.0;
+/// A synchrone that comes away from another by less than this, in drawing units, is left out.
+const DISTINCT: f64 = 11.0;
 /// Neighbouring synchrones stand at least this far apart where they begin, in drawing units, unless that lies farther
 /// out than this share of the ring's radius.
 const LEAST_APART: f64 = 5.0;
@@ -69,15 +71,15 @@ fn clipped(family: Family, pieces: &[Vec<Point>], page: &Rect, words: [String; 2
     PageCurve { family, pieces: inside, ends, words }
 }
 
-/// Keeps synchrones from running together into a smear: leaves out those that lie on another for all of their visible
-/// length (as all do in the orbit plane), the outer ones staying, and cuts off the inner ends of the rest where they
+/// Keeps synchrones from running together into a smear: leaves out those that lie on another, or nearly, for all of their
+/// visible length (as all do in the orbit plane), the outer ones staying, and cuts off the inner ends of the rest where they
 /// crowd around the nucleus.
 pub fn part(curves: &mut Vec<PageCurve>, nucleus: Point, ring_radius_px: f64, unit_px: f64) {
     let synchrones: Vec<usize> = (0..curves.len()).filter(|&i| curves[i].family == Family::Synchrone).collect();
     let mut kept: Vec<usize> = Vec::new();
     for member in spot::outer_first(synchrones.len()) {
         let index = synchrones[member];
-        let apart = |other: &usize| apart_px(&curves[index], &curves[*other]) > LEAST_APART * unit_px;
+        let apart = |other: &usize| apart_px(&curves[index], &curves[*other]) > DISTINCT * unit_px;
         if kept.iter().all(apart) {
             kept.push(index);
         }
