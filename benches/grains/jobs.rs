@@ -11,7 +11,7 @@ use tailvane::tail::kernel::{self, Flight, Kernel};
 use tailvane::tail::law::Tails;
 use tailvane::tail::weight::Weights;
 use tailvane::time::Instant;
-use tailvane_lanes::solve::{BLOCK, Block};
+use tailvane_lanes::solve;
 
 /// Name, perihelion distance, eccentricity, inclination, node, argument, days from perihelion, field in degrees.
 pub const SCENES: [(&str, [f64; 7]); 4] = [
@@ -22,7 +22,7 @@ pub const SCENES: [(&str, [f64; 7]); 4] = [
 ];
 
 /// Grains of the timed blocks: enough that no branch predictor learns them by heart.
-pub const GRAINS: usize = 64 * BLOCK;
+pub const GRAINS: usize = 64 * solve::BLOCK;
 
 pub struct Jobs {
     engine: Engine,
@@ -32,8 +32,8 @@ pub struct Jobs {
     pub cloud: Cloud,
     pub rgba: Vec<u8>,
     pub flights: Vec<Flight>,
-    blocks: Vec<Block>,
-    across: [[f64; BLOCK]; 2],
+    blocks: Vec<solve::Block>,
+    across: [[f64; solve::BLOCK]; 2],
     kernel: Kernel,
 }
 
@@ -54,7 +54,7 @@ impl Jobs {
         let raster =
             Raster { width: 1200, height: 800, turn_px: [[-scale, 0.0], [0.0, -scale]], nucleus_px: [600.0, 400.0] };
         let flights = flights(&Vista::of(engine.orbit(), &sky), beta_greatest);
-        let blocks = flights.chunks(BLOCK).map(block).collect();
+        let blocks = flights.chunks(solve::BLOCK).map(block).collect();
         Jobs {
             engine,
             sky,
@@ -64,7 +64,7 @@ impl Jobs {
             rgba: Vec::new(),
             flights,
             blocks,
-            across: [[0.0; BLOCK]; 2],
+            across: [[0.0; solve::BLOCK]; 2],
             kernel: Kernel::new(),
         }
     }
@@ -76,7 +76,7 @@ impl Jobs {
         for block in &mut self.blocks {
             block.solve();
             block.project(&sight, &mut self.across);
-            sum += self.across[0][0] + self.across[1][BLOCK - 1];
+            sum += self.across[0][0] + self.across[1][solve::BLOCK - 1];
         }
         sum
     }
@@ -132,8 +132,8 @@ fn flights(vista: &Vista, beta_greatest: f64) -> Vec<Flight> {
         .collect()
 }
 
-fn block(flights: &[Flight]) -> Block {
-    let mut block = Block::default();
+fn block(flights: &[Flight]) -> solve::Block {
+    let mut block = solve::Block::default();
     for (k, flight) in flights.iter().enumerate() {
         for axis in 0..3 {
             block.place[axis][k] = flight.start.position_au[axis];
