@@ -275,7 +275,7 @@ impl Desk {
     pub fn draw(&mut self, context: &CanvasRenderingContext2d, theme: &str) {
         let theme = named_theme(theme);
         let wishes = Wishes { theme, ..self.wishes };
-        let scene = self.easel.frame(&self.engine, &self.seen.sky, &self.view, &wishes);
+        let scene = self.easel.sky(&self.engine, &self.seen.sky, &self.view, &wishes);
         paint(&scene, theme, &mut CanvasPainter::new(context));
     }
 

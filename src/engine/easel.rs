@@ -6,12 +6,10 @@
 
 use super::Engine;
 use crate::plan::Plan;
-use crate::scene::Point;
 use crate::scene::image::Image;
 use crate::scene::isophote::Isophotes;
 use crate::scene::layer::{Layers, TailLayers};
 use crate::scene::lettering::Rect;
-use crate::scene::spot::spots_of;
 use crate::scene::theme::Theme;
 use crate::scene::view::SkyView;
 use crate::scene::{Scene, sky_plane};
@@ -68,40 +66,17 @@ pub struct Easel {
     made: Option<Made>,
     picture: Option<Image>,
     isophotes: Option<Isophotes>,
-    /// Where the labels of curves stood in the last frame.
-    spots: Vec<(String, Point)>,
 }
 
 impl Easel {
-    /// The next frame of a screen: as [`Easel::sky`], but the labels of curves keep their spots from the frame before
-    /// where they can.
-    pub fn frame(&mut self, engine: &Engine, sky: &Sky, view: &SkyView, wishes: &Wishes) -> Scene {
-        let before = std::mem::take(&mut self.spots);
-        let scene = self.drawing(engine, sky, view, wishes, before);
-        self.spots = spots_of(&scene);
-        scene
-    }
-
-    /// The drawing of a sky of the engine's comet, the same whatever was drawn before.
+    /// The drawing of a sky of the engine's comet.
     pub fn sky(&mut self, engine: &Engine, sky: &Sky, view: &SkyView, wishes: &Wishes) -> Scene {
-        self.drawing(engine, sky, view, wishes, Vec::new())
-    }
-
-    fn drawing(
-        &mut self,
-        engine: &Engine,
-        sky: &Sky,
-        view: &SkyView,
-        wishes: &Wishes,
-        spots_before: Vec<(String, Point)>,
-    ) -> Scene {
         let mut tails = TailLayers::of(&engine.vista(sky), &engine.plan().tails, view, &wishes.layers);
         if wishes.layers.dust || wishes.layers.isophotes {
             self.look(engine, sky, view, wishes);
             tails.picture = self.picture.clone().filter(|_| wishes.layers.dust);
             tails.isophotes = self.isophotes.clone().filter(|_| wishes.layers.isophotes);
         }
-        tails.spots_before = spots_before;
         sky_plane::compose(engine.plan(), sky, &tails, view)
     }
 
