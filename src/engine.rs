@@ -1,27 +1,22 @@
 //! The one surface that both shells use: plain data in, plain data out.
 //!
-//! Holds a plan made ready to compute with, and recomputes only what changed: the orbit once per plan, the
-//! Earth's path once per 16 days ([`Track`]), the comet from the nearest of its anchors ([`Trail`]). None of that
-//! changes an answer by a single bit, whatever was asked before.
+//! Holds a plan made ready to compute with: the orbit is made once per plan, and what dates share is kept by its
+//! [`Watch`].
 
 pub mod easel;
 
 use crate::body::SPAN;
-use crate::body::earth::Track;
-use crate::body::moon;
-use crate::body::observer::{Observer, Site};
+use crate::body::observer::Observer;
 use crate::caution::Caution;
 use crate::error::Error;
 use crate::frame::earth_rotation::celestial_to_terrestrial;
-use crate::frame::horizon::Horizon;
 use crate::orbit::conic::Orbit;
 use crate::plan::Plan;
 use crate::say::{self, Saying};
 use crate::sky::Sky;
 use crate::sky::avoidance;
 use crate::sky::dark::{self, Day, NODE_DAYS, NODES, Window};
-use crate::sky::trail::Trail;
-use crate::sky::viewpoint::{Ground, Viewpoint};
+use crate::sky::watch::Watch;
 use crate::tail::grain::Vista;
 use crate::tail::ion::Wedge;
 use crate::tail::perspective::{self, Perspective};
@@ -34,9 +29,7 @@ const OLD_ELEMENTS_DAYS: f64 = 100.0;
 /// A plan made ready to compute with.
 pub struct Engine {
     plan: Plan,
-    orbit: Orbit,
-    track: Track,
-    trail: Trail,
+    watch: Watch,
 }
 
 /// A sky and all that is doubtful about it.
@@ -60,7 +53,8 @@ impl Engine {
     pub fn new(plan: Plan) -> Result<Self, Error> {
         plan.validate()?;
         let orbit = Orbit::new(&plan.comet.elements)?;
-        Ok(Engine { plan, orbit, track: Track::new(), trail: Trail::default() })
+        let watch = Watch::new(orbit, plan.observer.clone());
+        Ok(Engine { plan, watch })
     }
 
     pub fn plan(&self) -> &Plan {
@@ -68,7 +62,7 @@ impl Engine {
     }
 
     pub fn orbit(&self) -> &Orbit {
-        &self.orbit
+        self.watch.orbit()
     }
 
     pub fn has_site(&self) -> bool {
@@ -86,8 +80,7 @@ impl Engine {
     /// # Errors
     /// A time outside the span of the ephemeris.
     pub fn sky_at(&mut self, time: Instant) -> Result<Sky, Error> {
-        let viewpoint = self.viewpoint(time)?;
-        Ok(Sky::of(&self.orbit, &viewpoint, &mut self.trail))
+        self.watch.sky_at(time)
     }
 
     /// The sky and everything doubtful about it: the elements, the directions, the Sun.
@@ -98,18 +91,14 @@ impl Engine {
         let sky = self.sky_at(time)?;
         let mut cautions = self.cautions_of_elements(time);
         cautions.extend(sky.cautions.iter().cloned());
-        let site = match &self.plan.observer {
-            Observer::Site(site) => Some(site.clone()),
-            Observer::Geocentre => None,
-        };
-        cautions.extend(avoidance::cautions(&sky, |time| self.sun_altitude_deg(site.as_ref()?, time)));
+        cautions.extend(avoidance::cautions(&sky, |time| self.watch.sun_altitude_deg(time)));
         cautions.sort_by_key(|caution| std::cmp::Reverse(caution.weight()));
         Ok(View { sky, cautions })
     }
 
     /// The comet of a sky, ready for its tails.
     pub fn vista(&self, sky: &Sky) -> Vista<'_> {
-        Vista::of(&self.orbit, sky)
+        Vista::of(self.watch.orbit(), sky)
     }
 
     /// Where the plan's tails lie in a sky of its comet; takes about a millisecond.
@@ -144,7 +133,7 @@ impl Engine {
             *comet = sky.axes.sight;
             *sun = -sky.observer.position_au.normalize();
         }
-        let ground = self.viewpoint(time).ok()?.ground?;
+        let ground = self.watch.viewpoint(time).ok()?.ground?;
         let pole = celestial_to_terrestrial(time.tdb_days(), time.ut1_days()).transpose() * Vector3::z();
         Some(Day { middle: time, comet, sun, zenith: ground.horizon.up, pole })
     }
@@ -168,35 +157,5 @@ impl Engine {
             found.push(Caution::NongravitationalUnused);
         }
         found
-    }
-
-    /// The observer at a time: the Earth, and for a site its place on the turning globe, horizon and Moon.
-    fn viewpoint(&mut self, time: Instant) -> Result<Viewpoint, Error> {
-        let mut observer = self.track.state(time)?;
-        let ground = match &self.plan.observer {
-            Observer::Geocentre => None,
-            Observer::Site(site) => {
-                let rotation = celestial_to_terrestrial(time.tdb_days(), time.ut1_days());
-                let from_centre = site.geocentric(&rotation);
-                observer.position_au += from_centre.position_au;
-                observer.velocity_au_d += from_centre.velocity_au_d;
-                let geodetic = site.geodetic();
-                Some(Ground {
-                    horizon: Horizon::at(geodetic.longitude_rad, geodetic.latitude_rad, &rotation),
-                    moon_au: moon::geocentric_au(time)? - from_centre.position_au,
-                })
-            }
-        };
-        Ok(Viewpoint { time, observer, ground })
-    }
-
-    /// Altitude of the Sun's centre at a site, degrees; None outside the span of the ephemeris.
-    fn sun_altitude_deg(&mut self, site: &Site, time: Instant) -> Option<f64> {
-        let earth = self.track.state(time).ok()?;
-        let rotation = celestial_to_terrestrial(time.tdb_days(), time.ut1_days());
-        let geodetic = site.geodetic();
-        let horizon = Horizon::at(geodetic.longitude_rad, geodetic.latitude_rad, &rotation);
-        let to_sun = -(earth.position_au + site.geocentric(&rotation).position_au);
-        Some(horizon.altitude_rad(&to_sun).to_degrees())
     }
 }

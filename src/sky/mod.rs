@@ -17,6 +17,7 @@ pub mod column;
 pub mod dark;
 pub mod trail;
 pub mod viewpoint;
+pub mod watch;
 
 use crate::body::State;
 use crate::body::sun::heliographic_latitude_rad;
