@@ -9,11 +9,11 @@
 //! Left out: the Sun's motion about the barycentre of the solar system during a light time (0.009 arcsec).
 
 use super::moon::{Detail, series_au};
+use super::piece::{Fit, Piece};
 use super::{SPAN, State, barycentre};
 use crate::error::Error;
 use crate::time::Instant;
 use nalgebra::Vector3;
-use std::f64::consts::PI;
 
 /// Share of the geocentric place of the Moon by which the barycentre lies off the Earth's centre: 1 / (1 + the
 /// mass of the Earth in Moons), 81.300 568 22 in DE440.
@@ -55,9 +55,6 @@ fn from_barycentre_au(days: f64) -> Vector3<f64> {
 /// Pieces of a track are this long; a piece of the barycentre's table holds a whole number of them, so that no
 /// fit runs across a joint of the table.
 const PIECE_DAYS: f64 = 16.0;
-/// Values that fix one piece.
-const NODES: usize = 12;
-
 /// The path of the Earth for many times: the same states as [`earth`], from polynomials of 16 days and 12 terms, each
 /// fitted when a time in it is first asked for.
 ///
@@ -69,9 +66,6 @@ pub struct Track {
     first_piece: i64,
     pieces: Vec<Option<Box<Piece>>>,
 }
-
-/// Coefficients of the powers of x, lowest first; x runs from -1 to 1 over the piece.
-type Piece = [Vector3<f64>; NODES];
 
 impl Default for Track {
     fn default() -> Self {
@@ -97,60 +91,17 @@ impl Track {
         let number = (time.tdb_days() / PIECE_DAYS).floor();
         let start_days = number * PIECE_DAYS;
         let index = (number as i64 - self.first_piece) as usize;
-        let piece = self.pieces[index].get_or_insert_with(|| Box::new(self.fit.piece(start_days)));
+        let piece = self.pieces[index].get_or_insert_with(|| Box::new(piece(&self.fit, start_days)));
         let x = (time.tdb_days() - start_days) / (0.5 * PIECE_DAYS) - 1.0;
-        // Horner's rule for the polynomial and its derivative together.
-        let mut place = piece[NODES - 1];
-        let mut rate = Vector3::zeros();
-        for c in piece[..NODES - 1].iter().rev() {
-            rate = rate * x + place;
-            place = place * x + c;
-        }
-        Ok(State { position_au: place, velocity_au_d: rate / (0.5 * PIECE_DAYS) })
+        let (position_au, rate) = piece.place_and_rate(x);
+        Ok(State { position_au, velocity_au_d: rate / (0.5 * PIECE_DAYS) })
     }
 }
 
-/// How a piece is made from the Earth's place at its nodes.
-#[derive(Clone, Debug)]
-struct Fit {
-    /// Chebyshev's nodes, as x.
-    nodes: [f64; NODES],
-    /// By power of x, then node: what the value at the node adds to the coefficient.
-    powers_of_values: [[f64; NODES]; NODES],
-}
-
-impl Fit {
-    /// Discrete orthogonality gives the coefficients of the Chebyshev polynomials, whose own coefficients follow from
-    /// T(n+1) = 2 x T(n) - T(n-1).
-    fn new() -> Fit {
-        let angle = |node: usize| PI * (node as f64 + 0.5) / NODES as f64;
-        let mut chebyshev = [[0.0; NODES]; NODES];
-        chebyshev[0][0] = 1.0;
-        chebyshev[1][1] = 1.0;
-        for n in 2..NODES {
-            for power in 0..NODES {
-                let raised = if power == 0 { 0.0 } else { chebyshev[n - 1][power - 1] };
-                chebyshev[n][power] = 2.0 * raised - chebyshev[n - 2][power];
-            }
-        }
-        let mut powers_of_values = [[0.0; NODES]; NODES];
-        for (n, polynomial) in chebyshev.iter().enumerate() {
-            let share = if n == 0 { 1.0 } else { 2.0 } / NODES as f64;
-            for (row, coefficient) in powers_of_values.iter_mut().zip(polynomial) {
-                for (node, cell) in row.iter_mut().enumerate() {
-                    *cell += coefficient * share * libm::cos(n as f64 * angle(node));
-                }
-            }
-        }
-        Fit { nodes: std::array::from_fn(|node| libm::cos(angle(node))), powers_of_values }
-    }
-
-    fn piece(&self, start_days: f64) -> Piece {
-        let values = self.nodes.map(|x| {
-            let days = start_days + 0.5 * PIECE_DAYS * (x + 1.0);
-            barycentre::state(days).position_au + from_barycentre_au(days)
-        });
-        self.powers_of_values
-            .map(|row| row.iter().zip(&values).fold(Vector3::zeros(), |sum, (weight, value)| sum + value * *weight))
-    }
+/// The Earth's path from a time, as one piece.
+fn piece(fit: &Fit, start_days: f64) -> Piece {
+    fit.piece(&fit.nodes.map(|x| {
+        let days = start_days + 0.5 * PIECE_DAYS * (x + 1.0);
+        barycentre::state(days).position_au + from_barycentre_au(days)
+    }))
 }

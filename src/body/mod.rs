@@ -9,6 +9,7 @@ pub mod ellipsoid;
 mod lunar_terms;
 pub mod moon;
 pub mod observer;
+pub mod piece;
 pub mod site_code;
 pub mod sun;
 

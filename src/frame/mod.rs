@@ -18,10 +18,12 @@
 //! Left out: frame bias between J2000 and ICRF (0.042 arcsec in all), precession of the ecliptic.
 //! Sources: IAU 1976 obliquity; spherical formulas as in any textbook, checked against ERFA's unit tests.
 
+pub mod arc;
 pub mod earth_rotation;
 pub mod horizon;
 pub mod tangent;
 
+use arc::Legs;
 use nalgebra::Vector3;
 use std::f64::consts::TAU;
 
@@ -70,17 +72,37 @@ pub fn equatorial_to_ecliptic(v: &Vector3<f64>) -> Vector3<f64> {
 
 /// Right ascension of an equatorial vector, [0, 2 pi); zero on the axis.
 pub fn right_ascension_rad(v: &Vector3<f64>) -> f64 {
-    turn(libm::atan2(v.y, v.x))
+    unsigned(right_ascension(v).arc_rad())
+}
+
+/// Legs of the right ascension, whose arc [`unsigned`] finishes.
+pub fn right_ascension(v: &Vector3<f64>) -> Legs {
+    Legs { opposite: v.y, adjacent: v.x }
 }
 
 /// Declination of an equatorial vector, [-pi/2, pi/2]; zero for a zero vector.
 pub fn declination_rad(v: &Vector3<f64>) -> f64 {
-    libm::atan2(v.z, (v.x * v.x + v.y * v.y).sqrt())
+    declination(v).arc_rad()
+}
+
+/// Legs of the declination.
+pub fn declination(v: &Vector3<f64>) -> Legs {
+    Legs { opposite: v.z, adjacent: (v.x * v.x + v.y * v.y).sqrt() }
 }
 
 /// Angle between two vectors, [0, pi], without loss near 0 and pi; zero if either has no length.
 pub fn separation_rad(a: &Vector3<f64>, b: &Vector3<f64>) -> f64 {
-    libm::atan2(a.cross(b).norm(), a.dot(b))
+    separation(a, b).arc_rad()
+}
+
+/// Legs of the angle between two vectors.
+pub fn separation(a: &Vector3<f64>, b: &Vector3<f64>) -> Legs {
+    Legs { opposite: a.cross(b).norm(), adjacent: a.dot(b) }
+}
+
+/// Legs of the angle of `v` above (+) the plane whose normal is given, [-pi/2, pi/2].
+pub fn latitude(v: &Vector3<f64>, normal: &Vector3<f64>) -> Legs {
+    Legs { opposite: v.dot(normal), adjacent: v.cross(normal).norm() }
 }
 
 /// How a vector at the place of some axes lies on the sky.
@@ -103,7 +125,17 @@ impl Bearing {
     /// Position angle of a small displacement along the vector: north through east, [0, 2 pi). None when it has
     /// no length or lies along the line of sight to within 1e-8 rad.
     pub fn position_angle_rad(&self) -> Option<f64> {
-        (self.sine_to_sight >= LEAST_SINE).then(|| turn(libm::atan2(self.east, self.north)))
+        self.position_angle_of(self.legs().arc_rad())
+    }
+
+    /// The legs whose arc [`Bearing::position_angle_of`] wants, for several bearings at a time.
+    pub fn legs(&self) -> Legs {
+        Legs { opposite: self.east, adjacent: self.north }
+    }
+
+    /// The position angle, given the arc of [`Bearing::legs`].
+    pub fn position_angle_of(&self, arc_rad: f64) -> Option<f64> {
+        (self.sine_to_sight >= LEAST_SINE).then(|| unsigned(arc_rad))
     }
 }
 
@@ -116,6 +148,12 @@ pub fn position_angle_rad(v: &Vector3<f64>, axes: &Axes) -> Option<f64> {
 pub fn turn(angle_rad: f64) -> f64 {
     let turned = angle_rad - TAU * (angle_rad / TAU).floor();
     // The subtraction of a tiny negative angle rounds to exactly 2 pi.
+    if turned >= TAU { 0.0 } else { turned }
+}
+
+/// An arc in [-pi, pi] brought into [0, 2 pi): [`turn`] without its division.
+pub fn unsigned(arc_rad: f64) -> f64 {
+    let turned = arc_rad + if arc_rad < 0.0 { TAU } else { 0.0 };
     if turned >= TAU { 0.0 } else { turned }
 }
 

@@ -13,7 +13,8 @@ use super::elements::Elements;
 use super::universal::{Reached, Start};
 use crate::body::State;
 use crate::error::Error;
-use crate::frame::{ecliptic_to_equatorial, half_turn};
+use crate::frame::arc::Legs;
+use crate::frame::ecliptic_to_equatorial;
 use crate::time::Instant;
 use nalgebra::{Matrix3, Vector3};
 
@@ -36,6 +37,9 @@ pub struct Orbit {
     normal: Vector3<f64>,
     /// sqrt(mu q (1 + e)): the angular momentum, au^2/d.
     angular_momentum: f64,
+    /// The hodograph is a circle: its centre, and what turns a direction into the way from there, au/d.
+    hodograph_centre: Vector3<f64>,
+    hodograph_turn: Vector3<f64>,
 }
 
 /// Where a comet stands on its orbit.
@@ -76,14 +80,19 @@ impl Orbit {
             -sin_peri * sin_node + cos_peri * cos_node * cos_inc,
             cos_peri * sin_inc,
         );
+        let angular_momentum = (SUN_GM_AU3_D2 * q * (1.0 + e)).sqrt();
+        let hodograph_radius = SUN_GM_AU3_D2 / angular_momentum;
+        let (along_perihelion, normal) = (ecliptic_to_equatorial(&along), ecliptic_to_equatorial(&toward.cross(&along)));
         Ok(Orbit {
             perihelion_time: elements.perihelion_time.instant(),
             perihelion_distance_au: q,
             start: Start { mu: SUN_GM_AU3_D2, distance: q, eta: 0.0, binding: SUN_GM_AU3_D2 * (1.0 - e) / q },
             toward_perihelion: ecliptic_to_equatorial(&toward),
-            along_perihelion: ecliptic_to_equatorial(&along),
-            normal: ecliptic_to_equatorial(&toward.cross(&along)),
-            angular_momentum: (SUN_GM_AU3_D2 * q * (1.0 + e)).sqrt(),
+            along_perihelion,
+            normal,
+            angular_momentum,
+            hodograph_centre: along_perihelion * (hodograph_radius * e),
+            hodograph_turn: normal * hodograph_radius,
         })
     }
 
@@ -107,14 +116,17 @@ impl Orbit {
 
     /// The comet at an instant.
     pub fn place_at(&self, time: Instant) -> Place {
-        let days = self.days_from_perihelion(time);
+        self.place_after(self.days_from_perihelion(time))
+    }
+
+    /// The comet that many days after perihelion.
+    pub fn place_after(&self, days: f64) -> Place {
         self.place(&self.start.after(days))
     }
 
-    /// The comet at an instant, quicker: with a guess of its anomaly there.
-    pub fn place_near(&self, time: Instant, guess: &Anomaly) -> Place {
-        let days = self.days_from_perihelion(time);
-        self.place(&self.start.after_near(guess.s, guess.revolutions, days))
+    /// The velocity, au/d, at a place on the orbit, given its distance from the Sun.
+    pub fn velocity_at(&self, position_au: &Vector3<f64>, distance_au: f64) -> Vector3<f64> {
+        self.hodograph_centre + self.hodograph_turn.cross(position_au) * (1.0 / distance_au)
     }
 
     /// The comet where its universal anomaly, whole revolutions included, has that value, and days from perihelion.
@@ -137,9 +149,14 @@ impl Orbit {
         anomaly.s + anomaly.revolutions * std::f64::consts::TAU / self.start.binding.sqrt()
     }
 
-    /// Angle from perihelion to a place on the orbit, seen from the Sun: (-pi, pi], negative before perihelion.
+    /// Legs of the true anomaly, for several angles at a time.
+    pub fn true_anomaly(&self, position_au: &Vector3<f64>) -> Legs {
+        Legs { opposite: position_au.dot(&self.along_perihelion), adjacent: position_au.dot(&self.toward_perihelion) }
+    }
+
+    /// Angle from perihelion to a place on the orbit, seen from the Sun: [-pi, pi], negative before perihelion.
     pub fn true_anomaly_rad(&self, position_au: &Vector3<f64>) -> f64 {
-        half_turn(libm::atan2(position_au.dot(&self.along_perihelion), position_au.dot(&self.toward_perihelion)))
+        self.true_anomaly(position_au).arc_rad()
     }
 
     /// Days from the elements' perihelion, negative before it.

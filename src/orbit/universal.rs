@@ -106,14 +106,6 @@ impl Start {
         self.step_from(self.first_guess(rest), revolutions, rest)
     }
 
-    /// The same, quicker, from what was reached at a neighbouring time: its universal anomaly, carried over as well
-    /// as the caller can, and its revolutions.
-    pub fn after_near(&self, guess: f64, revolutions_there: f64, days: f64) -> Reached {
-        let (revolutions, rest) = self.reduce(days);
-        let guess = if revolutions == revolutions_there { guess } else { self.first_guess(rest) };
-        self.step_from(guess, revolutions, rest)
-    }
-
     /// The same by a bracketed search alone: slower, and it cannot fail.
     pub fn after_bracketed(&self, days: f64) -> Reached {
         let (revolutions, rest_days) = self.reduce(days);

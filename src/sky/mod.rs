@@ -20,9 +20,12 @@ pub mod viewpoint;
 pub mod watch;
 
 use crate::body::State;
-use crate::body::sun::heliographic_latitude_rad;
+use crate::body::sun::heliographic_latitude;
 use crate::caution::Caution;
-use crate::frame::{Axes, Bearing, declination_rad, position_angle_rad, right_ascension_rad, separation_rad};
+use crate::frame::arc::Legs;
+use crate::frame::{
+    Axes, Bearing, declination, latitude, position_angle_rad, right_ascension, separation, separation_rad, unsigned,
+};
 use crate::orbit::conic::Orbit;
 use crate::time::Instant;
 use nalgebra::Vector3;
@@ -114,40 +117,69 @@ impl Sky {
         let back = -v;
 
         let motion = Motion::of(&comet, &observer, &axes, observer_distance_au);
+        let antisolar = Bearing::of(&r, &axes);
+        let negative_velocity = Bearing::of(&back, &axes);
+        let moving = Bearing::of(&motion.rate, &axes);
+        let from_sun = separation(&sight_line, &to_sun);
+        let [
+            ascension_arc,
+            declination_rad,
+            phase_angle_rad,
+            elongation_rad,
+            observer_from_orbit_plane_rad,
+            antisolar_arc,
+            negative_velocity_arc,
+            negative_velocity_sight_angle_rad,
+            motion_arc,
+            true_anomaly_rad,
+            heliographic_latitude_rad,
+        ] = Legs::arcs_rad([
+            right_ascension(&sight_line),
+            declination(&sight_line),
+            separation(&r, &sight_line),
+            from_sun,
+            latitude(&-sight_line, &orbit.normal()),
+            antisolar.legs(),
+            negative_velocity.legs(),
+            separation(&back, &-sight_line),
+            moving.legs(),
+            orbit.true_anomaly(&r),
+            heliographic_latitude(&r),
+        ]);
+
         let mut cautions = Vec::new();
-        let mut angle = |direction: &Vector3<f64>, quantity: &'static str| {
-            let bearing = Bearing::of(direction, &axes);
-            let found = bearing.position_angle_rad();
+        let mut angle = |bearing: &Bearing, arc_rad: f64, quantity: &'static str| {
+            let found = bearing.position_angle_of(arc_rad);
             doubt(found, bearing.sine_to_sight, quantity, &mut cautions);
             found
         };
-        let antisolar_position_angle_rad = angle(&r, "antisolar direction");
-        let negative_velocity_position_angle_rad = angle(&back, "negative velocity");
+        let antisolar_position_angle_rad = angle(&antisolar, antisolar_arc, "antisolar direction");
+        let negative_velocity_position_angle_rad = angle(&negative_velocity, negative_velocity_arc, "negative velocity");
         if observer_distance_au < 0.1 {
             cautions.push(Caution::NearEarth { observer_distance_au });
         }
 
         Sky {
             time: viewpoint.time,
-            right_ascension_rad: right_ascension_rad(&sight_line),
-            declination_rad: declination_rad(&sight_line),
+            right_ascension_rad: unsigned(ascension_arc),
+            declination_rad,
             sun_distance_au,
             observer_distance_au,
-            phase_angle_rad: separation_rad(&r, &sight_line),
-            elongation_rad: separation_rad(&sight_line, &to_sun),
-            elongation_side: side(&sight_line, &to_sun),
-            observer_from_orbit_plane_rad: latitude_rad(&-sight_line, &orbit.normal()),
+            phase_angle_rad,
+            elongation_rad,
+            elongation_side: side(&sight_line, &to_sun, from_sun.opposite),
+            observer_from_orbit_plane_rad,
             antisolar_position_angle_rad,
             negative_velocity_position_angle_rad,
-            negative_velocity_sight_angle_rad: separation_rad(&back, &-sight_line),
+            negative_velocity_sight_angle_rad,
             motion_rad_d: (motion.east * motion.east + motion.north * motion.north).sqrt(),
-            motion_position_angle_rad: motion.position_angle_rad,
+            motion_position_angle_rad: moving.position_angle_of(motion_arc),
             motion_east_rad_d: motion.east,
             motion_north_rad_d: motion.north,
             days_from_perihelion: orbit.days_from_perihelion(viewpoint.time) - light_time_days,
-            true_anomaly_rad: orbit.true_anomaly_rad(&r),
+            true_anomaly_rad,
             sun_distance_rate_au_d: r.dot(&v) / sun_distance_au,
-            heliographic_latitude_rad: heliographic_latitude_rad(&r),
+            heliographic_latitude_rad,
             site: viewpoint.ground.as_ref().map(|ground| SiteSky::of(ground, &sight_line, &to_sun, &axes)),
             light_time_days,
             comet,
@@ -160,9 +192,9 @@ impl Sky {
 
 /// Rates of the astrometric direction, radians per day.
 struct Motion {
+    rate: Vector3<f64>,
     east: f64,
     north: f64,
-    position_angle_rad: Option<f64>,
 }
 
 impl Motion {
@@ -170,24 +202,16 @@ impl Motion {
     fn of(comet: &State, observer: &State, axes: &Axes, distance_au: f64) -> Self {
         let (v, w) = (comet.velocity_au_d, observer.velocity_au_d);
         let lag_rate = axes.sight.dot(&(v - w)) / (LIGHT_AU_D + axes.sight.dot(&v));
-        let rate = (v * (1.0 - lag_rate) - w) / distance_au;
-        Motion {
-            east: rate.dot(&axes.east),
-            north: rate.dot(&axes.north),
-            position_angle_rad: position_angle_rad(&rate, axes),
-        }
+        let rate = (v * (1.0 - lag_rate) - w) * (1.0 / distance_au);
+        Motion { rate, east: rate.dot(&axes.east), north: rate.dot(&axes.north) }
     }
 }
 
-/// Angle of `v` above (+) the plane whose unit normal is given, [-pi/2, pi/2].
-fn latitude_rad(v: &Vector3<f64>, normal: &Vector3<f64>) -> f64 {
-    libm::atan2(v.dot(normal), v.cross(normal).norm())
-}
-
-/// Evening where the comet stands east of the Sun in right ascension, so that it follows the Sun down.
-fn side(sight_line: &Vector3<f64>, to_sun: &Vector3<f64>) -> Option<Side> {
+/// Evening where the comet stands east of the Sun in right ascension, so that it follows the Sun down; `across` is the
+/// length of the cross product of the two.
+fn side(sight_line: &Vector3<f64>, to_sun: &Vector3<f64>, across: f64) -> Option<Side> {
     let east = to_sun.x * sight_line.y - to_sun.y * sight_line.x;
-    let aligned = sight_line.cross(to_sun).norm() < 1e-8 * sight_line.norm() * to_sun.norm();
+    let aligned = across * across < 1e-16 * sight_line.norm_squared() * to_sun.norm_squared();
     match (aligned || east == 0.0, east > 0.0) {
         (true, _) => None,
         (false, true) => Some(Side::Evening),
