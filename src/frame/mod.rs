@@ -49,14 +49,29 @@ impl Axes {
     /// The axes at a direction (any non-zero length). At a celestial pole, where east and north are
     /// free, right ascension counts as zero.
     pub fn at(direction: &Vector3<f64>) -> Self {
-        let sight = direction / direction.norm();
+        let sight = direction * (1.0 / direction.norm());
         let from_axis = (sight.x * sight.x + sight.y * sight.y).sqrt();
-        let (cos_ra, sin_ra) = if from_axis > 0.0 { (sight.x / from_axis, sight.y / from_axis) } else { (1.0, 0.0) };
+        let (cos_ra, sin_ra) = if from_axis > 0.0 {
+            let scale = 1.0 / from_axis;
+            (sight.x * scale, sight.y * scale)
+        } else {
+            (1.0, 0.0)
+        };
         Axes {
             sight,
             east: Vector3::new(-sin_ra, cos_ra, 0.0),
             north: Vector3::new(-sight.z * cos_ra, -sight.z * sin_ra, from_axis),
         }
+    }
+
+    /// Legs of the right ascension of the place, whose arc [`unsigned`] finishes.
+    pub fn right_ascension(&self) -> Legs {
+        Legs { opposite: -self.east.x, adjacent: self.east.y }
+    }
+
+    /// Legs of its declination.
+    pub fn declination(&self) -> Legs {
+        Legs { opposite: self.sight.z, adjacent: self.north.z }
     }
 }
 
@@ -72,22 +87,12 @@ pub fn equatorial_to_ecliptic(v: &Vector3<f64>) -> Vector3<f64> {
 
 /// Right ascension of an equatorial vector, [0, 2 pi); zero on the axis.
 pub fn right_ascension_rad(v: &Vector3<f64>) -> f64 {
-    unsigned(right_ascension(v).arc_rad())
-}
-
-/// Legs of the right ascension, whose arc [`unsigned`] finishes.
-pub fn right_ascension(v: &Vector3<f64>) -> Legs {
-    Legs { opposite: v.y, adjacent: v.x }
+    unsigned(Legs { opposite: v.y, adjacent: v.x }.arc_rad())
 }
 
 /// Declination of an equatorial vector, [-pi/2, pi/2]; zero for a zero vector.
 pub fn declination_rad(v: &Vector3<f64>) -> f64 {
-    declination(v).arc_rad()
-}
-
-/// Legs of the declination.
-pub fn declination(v: &Vector3<f64>) -> Legs {
-    Legs { opposite: v.z, adjacent: (v.x * v.x + v.y * v.y).sqrt() }
+    Legs { opposite: v.z, adjacent: (v.x * v.x + v.y * v.y).sqrt() }.arc_rad()
 }
 
 /// Angle between two vectors, [0, pi], without loss near 0 and pi; zero if either has no length.
@@ -110,16 +115,25 @@ pub fn latitude(v: &Vector3<f64>, normal: &Vector3<f64>) -> Legs {
 pub struct Bearing {
     east: f64,
     north: f64,
-    /// Sine of the angle to the line of sight, [0, 1]; zero for a zero vector.
-    pub sine_to_sight: f64,
+    /// Squares of its length across the line of sight, and in all.
+    across_square: f64,
+    square: f64,
 }
 
 impl Bearing {
     pub fn of(v: &Vector3<f64>, axes: &Axes) -> Self {
         let (east, north) = (v.dot(&axes.east), v.dot(&axes.north));
-        let square = v.norm_squared();
-        let sine_to_sight = if square > 0.0 { ((east * east + north * north) / square).sqrt() } else { 0.0 };
-        Bearing { east, north, sine_to_sight }
+        Bearing { east, north, across_square: east * east + north * north, square: v.norm_squared() }
+    }
+
+    /// Sine of the angle to the line of sight, [0, 1]; zero for a zero vector.
+    pub fn sine_to_sight(&self) -> f64 {
+        if self.square > 0.0 { (self.across_square / self.square).sqrt() } else { 0.0 }
+    }
+
+    /// Whether that sine reaches `sine`, without a root; never for a zero vector.
+    pub fn reaches(&self, sine: f64) -> bool {
+        self.square > 0.0 && self.across_square >= sine * sine * self.square
     }
 
     /// Position angle of a small displacement along the vector: north through east, [0, 2 pi). None when it has
@@ -135,7 +149,7 @@ impl Bearing {
 
     /// The position angle, given the arc of [`Bearing::legs`].
     pub fn position_angle_of(&self, arc_rad: f64) -> Option<f64> {
-        (self.sine_to_sight >= LEAST_SINE).then(|| unsigned(arc_rad))
+        self.reaches(LEAST_SINE).then(|| unsigned(arc_rad))
     }
 }
 

@@ -24,7 +24,7 @@ use crate::body::sun::heliographic_latitude;
 use crate::caution::Caution;
 use crate::frame::arc::Legs;
 use crate::frame::{
-    Axes, Bearing, declination, latitude, position_angle_rad, right_ascension, separation, separation_rad, unsigned,
+    Axes, Bearing, latitude, position_angle_rad, separation, separation_rad, unsigned,
 };
 use crate::orbit::conic::Orbit;
 use crate::time::Instant;
@@ -35,7 +35,8 @@ use viewpoint::{Ground, Viewpoint};
 /// Speed of light, au per day: 299 792 458 m/s with the au of IAU 2012 (149 597 870 700 m).
 pub const LIGHT_AU_D: f64 = 299_792_458.0 * 86_400.0 / 149_597_870_700.0;
 
-/// A position angle is called loose when 0.1 arcsec of place turns it by more than this.
+/// A position angle is called loose when this much of place (0.1 arcsec) turns it by more than that.
+const PLACE_DEG: f64 = 0.1 / 3600.0;
 const LOOSE_DEG: f64 = 0.01;
 
 /// On which side of the Sun the comet stands.
@@ -105,6 +106,7 @@ pub struct SiteSky {
 impl Sky {
     /// What is seen of a comet on `orbit` from `viewpoint`. `trail` is the orbit's own: it finds the
     /// comet sooner near a date that was asked for before, and answers the same bits whatever that was.
+    #[inline]
     pub fn of(orbit: &Orbit, viewpoint: &Viewpoint, trail: &mut Trail) -> Sky {
         let (comet, light_time_days) = trail.retarded(orbit, viewpoint);
         let (r, v) = (comet.position_au, comet.velocity_au_d);
@@ -120,7 +122,10 @@ impl Sky {
         let antisolar = Bearing::of(&r, &axes);
         let negative_velocity = Bearing::of(&back, &axes);
         let moving = Bearing::of(&motion.rate, &axes);
-        let from_sun = separation(&sight_line, &to_sun);
+        // Sun, comet and observer make one triangle: its area by two sides is that by any other two. The shorter of
+        // the two sides at the Sun rounds least.
+        let shorter = if r.norm_squared() < to_sun.norm_squared() { r } else { to_sun };
+        let across = shorter.cross(&sight_line).norm();
         let [
             ascension_arc,
             declination_rad,
@@ -134,10 +139,10 @@ impl Sky {
             true_anomaly_rad,
             heliographic_latitude_rad,
         ] = Legs::arcs_rad([
-            right_ascension(&sight_line),
-            declination(&sight_line),
-            separation(&r, &sight_line),
-            from_sun,
+            axes.right_ascension(),
+            axes.declination(),
+            Legs { opposite: across, adjacent: r.dot(&sight_line) },
+            Legs { opposite: across, adjacent: to_sun.dot(&sight_line) },
             latitude(&-sight_line, &orbit.normal()),
             antisolar.legs(),
             negative_velocity.legs(),
@@ -150,7 +155,7 @@ impl Sky {
         let mut cautions = Vec::new();
         let mut angle = |bearing: &Bearing, arc_rad: f64, quantity: &'static str| {
             let found = bearing.position_angle_of(arc_rad);
-            doubt(found, bearing.sine_to_sight, quantity, &mut cautions);
+            doubt(found, bearing, quantity, &mut cautions);
             found
         };
         let antisolar_position_angle_rad = angle(&antisolar, antisolar_arc, "antisolar direction");
@@ -167,7 +172,7 @@ impl Sky {
             observer_distance_au,
             phase_angle_rad,
             elongation_rad,
-            elongation_side: side(&sight_line, &to_sun, from_sun.opposite),
+            elongation_side: side(&sight_line, &to_sun, across),
             observer_from_orbit_plane_rad,
             antisolar_position_angle_rad,
             negative_velocity_position_angle_rad,
@@ -219,15 +224,12 @@ fn side(sight_line: &Vector3<f64>, to_sun: &Vector3<f64>, across: f64) -> Option
     }
 }
 
-/// Adds a caution where a position angle is missing or loose; `sine` is that of the angle to the line of sight.
-fn doubt(found: Option<f64>, sine: f64, quantity: &'static str, cautions: &mut Vec<Caution>) {
+/// Adds a caution where a position angle is missing or loose.
+fn doubt(found: Option<f64>, bearing: &Bearing, quantity: &'static str, cautions: &mut Vec<Caution>) {
     if found.is_none() {
         cautions.push(Caution::AngleUndefined { quantity });
-        return;
-    }
-    let uncertainty_deg = 0.1 / 3600.0 / sine;
-    if uncertainty_deg > LOOSE_DEG {
-        cautions.push(Caution::AngleLoose { quantity, uncertainty_deg });
+    } else if !bearing.reaches(PLACE_DEG / LOOSE_DEG) {
+        cautions.push(Caution::AngleLoose { quantity, uncertainty_deg: PLACE_DEG / bearing.sine_to_sight() });
     }
 }
 

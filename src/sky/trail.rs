@@ -15,7 +15,6 @@ use crate::body::State;
 use crate::body::piece::{Fit, Piece};
 use crate::orbit::conic::{Orbit, SUN_GM_AU3_D2};
 use crate::time::Instant;
-use nalgebra::Vector3;
 use std::collections::BTreeMap;
 
 /// Light time of one au, days.
