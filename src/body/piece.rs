@@ -62,13 +62,16 @@ impl Piece {
     }
 }
 
-/// How a piece is made from the places at its nodes.
+/// How a piece is made from the places at its nodes: through the coefficients of the Chebyshev polynomials, since those
+/// of the powers straight from the places would carry their rounding a thousandfold.
 #[derive(Clone, Debug)]
 pub struct Fit {
     /// Chebyshev's nodes, as x.
     pub nodes: [f64; NODES],
-    /// By power of x, then node: what the value at the node adds to the coefficient.
-    powers_of_values: [[f64; NODES]; NODES],
+    /// By polynomial, then node: what the value at the node adds to the coefficient (discrete orthogonality).
+    weights: [[f64; NODES]; NODES],
+    /// By polynomial, then power: its own coefficients, T(n+1) = 2 x T(n) - T(n-1).
+    polynomials: [[f64; NODES]; NODES],
 }
 
 impl Default for Fit {
@@ -78,41 +81,40 @@ impl Default for Fit {
 }
 
 impl Fit {
-    /// Discrete orthogonality gives the coefficients of the Chebyshev polynomials, whose own coefficients follow from
-    /// T(n+1) = 2 x T(n) - T(n-1).
     pub fn new() -> Fit {
         let angle = |node: usize| PI * (node as f64 + 0.5) / NODES as f64;
-        let mut chebyshev = [[0.0; NODES]; NODES];
-        chebyshev[0][0] = 1.0;
-        chebyshev[1][1] = 1.0;
+        let mut polynomials = [[0.0; NODES]; NODES];
+        polynomials[0][0] = 1.0;
+        polynomials[1][1] = 1.0;
         for n in 2..NODES {
             for power in 0..NODES {
-                let raised = if power == 0 { 0.0 } else { chebyshev[n - 1][power - 1] };
-                chebyshev[n][power] = 2.0 * raised - chebyshev[n - 2][power];
+                let raised = if power == 0 { 0.0 } else { polynomials[n - 1][power - 1] };
+                polynomials[n][power] = 2.0 * raised - polynomials[n - 2][power];
             }
         }
-        let mut powers_of_values = [[0.0; NODES]; NODES];
-        for (n, polynomial) in chebyshev.iter().enumerate() {
+        let weights = std::array::from_fn(|n| {
             let share = if n == 0 { 1.0 } else { 2.0 } / NODES as f64;
-            for (row, coefficient) in powers_of_values.iter_mut().zip(polynomial) {
-                for (node, cell) in row.iter_mut().enumerate() {
-                    *cell += coefficient * share * libm::cos(n as f64 * angle(node));
-                }
-            }
-        }
-        Fit { nodes: std::array::from_fn(|node| libm::cos(angle(node))), powers_of_values }
+            std::array::from_fn(|node| share * libm::cos(n as f64 * angle(node)))
+        });
+        Fit { nodes: std::array::from_fn(|node| libm::cos(angle(node))), weights, polynomials }
     }
 
     /// The piece through `places`, in the order of the nodes.
     pub fn piece(&self, places: &[Vector3<f64>; NODES]) -> Piece {
-        Piece(self.powers_of_values.map(|row| {
-            let mut sum = [0.0; 4];
-            for (weight, place) in row.iter().zip(places) {
+        let mut powers = [[0.0; 4]; NODES];
+        for (weights, polynomial) in self.weights.iter().zip(&self.polynomials) {
+            let mut term = [0.0; 4];
+            for (weight, place) in weights.iter().zip(places) {
                 for axis in 0..3 {
-                    sum[axis] += place[axis] * weight;
+                    term[axis] += place[axis] * weight;
                 }
             }
-            sum
-        }))
+            for (power, coefficient) in powers.iter_mut().zip(polynomial) {
+                for axis in 0..4 {
+                    power[axis] += term[axis] * coefficient;
+                }
+            }
+        }
+        Piece(powers)
     }
 }
