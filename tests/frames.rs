@@ -1,4 +1,4 @@
-//! Frames and angles against ERFA, astropy, wcslib and SPICE (tests/truth/make_frames.py).
+//! Frames and angles against ERFA, astropy, wcslib and SPICE and 40-digit arithmetic (tests/truth/make_frames.py).
 
 #[path = "truth/rows.rs"]
 mod rows;
@@ -6,6 +6,7 @@ mod rows;
 use nalgebra::{Matrix3, Vector3};
 use rows::{Row, table};
 use std::f64::consts::{PI, TAU};
+use tailvane::frame::arc::Legs;
 use tailvane::frame::horizon::Horizon;
 use tailvane::frame::{
     Axes, ecliptic_to_equatorial, equatorial_to_ecliptic, position_angle_rad, separation_rad, tangent,
@@ -51,6 +52,47 @@ fn a_mirrored_or_reversed_position_angle_would_be_seen() {
     // Due north and due south look the same in a mirror.
     assert_eq!(position_angle_misses(|v, axes| position_angle_rad(v, axes).map(|angle| TAU - angle)), rows - 2);
     assert_eq!(position_angle_misses(|v, axes| position_angle_rad(&-v, axes)), rows);
+}
+
+/// Rows of arcs.csv at which `arc` is off by more than two units in the last place.
+fn arc_misses(arc: impl Fn(Legs) -> f64) -> usize {
+    let miss = |row: &&Row| {
+        let [opposite, adjacent, arc_rad] = row.numbers(["opposite", "adjacent", "arc_rad"]);
+        let unit = f64::from_bits(arc_rad.abs().to_bits() + 1) - arc_rad.abs();
+        (arc(Legs { opposite, adjacent }) - arc_rad).abs() > 2.0 * unit
+    };
+    table("arcs.csv").iter().filter(miss).count()
+}
+
+#[test]
+fn arcs_equal_40_digit_arithmetic() {
+    assert_eq!(arc_misses(Legs::arc_rad), 0);
+}
+
+#[test]
+fn an_arc_of_exchanged_legs_or_off_by_an_attoturn_would_be_seen() {
+    let rows = table("arcs.csv").len();
+    let exchanged = |legs: Legs| Legs { opposite: legs.adjacent, adjacent: legs.opposite }.arc_rad();
+    // Equal legs of one sign look the same exchanged, and so does nearly the diagonal: seven units off it is seen.
+    assert!(arc_misses(exchanged) > rows * 9 / 10);
+    assert!(arc_misses(|legs| legs.arc_rad() * (1.0 + 8.0 * f64::EPSILON)) > rows * 9 / 10);
+}
+
+#[test]
+fn arcs_side_by_side_have_the_bits_of_arcs_alone_and_agree_with_libm() {
+    let rows = table("arcs.csv");
+    for eleven in rows.windows(11) {
+        let legs: [Legs; 11] = std::array::from_fn(|n| Legs {
+            opposite: eleven[n].number("opposite"),
+            adjacent: eleven[n].number("adjacent"),
+        });
+        let together = Legs::arcs_rad(legs);
+        for (legs, arc) in legs.into_iter().zip(together) {
+            assert_eq!(arc.to_bits(), legs.arc_rad().to_bits());
+            assert!((arc - libm::atan2(legs.opposite, legs.adjacent)).abs() <= 4.0 * f64::EPSILON * arc.abs());
+        }
+    }
+    assert_eq!(Legs { opposite: 0.0, adjacent: 0.0 }.arc_rad(), 0.0);
 }
 
 #[test]

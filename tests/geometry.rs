@@ -16,7 +16,7 @@ use tailvane::body::observer::Observer;
 use tailvane::caution::Caution;
 use tailvane::engine::Engine;
 use tailvane::frame::equatorial_to_ecliptic;
-use tailvane::orbit::conic::Orbit;
+use tailvane::orbit::conic::{Orbit, SUN_GM_AU3_D2};
 use tailvane::orbit::elements::Elements;
 use tailvane::sky::column::{COLUMNS, Value};
 use tailvane::sky::trail::Trail;
@@ -172,6 +172,43 @@ fn an_answer_does_not_depend_on_what_was_asked_before() {
         }
     }
     assert!(differing.is_empty(), "{} differ, the first: {}", differing.len(), differing[0]);
+}
+
+/// The share of its tolerance by which the state of a sky differs most from the conic solution at the same moment, over
+/// dates near and far from each perihelion; `change` may spoil the state first.
+fn worst_of_pieces(change: impl Fn(&mut State)) -> f64 {
+    let mut worst = 0.0_f64;
+    for row in table("sky_orbits.csv") {
+        let orbit = Orbit::new(&elements(&row)).expect("a sound orbit");
+        let mut engine = Engine::new(plan(elements(&row), Observer::Geocentre)).expect("a sound plan");
+        for step in -60..=60 {
+            let days = f64::from(step * step * step) * 0.003 + f64::from(step) * 0.011;
+            let Ok(mut sky) = engine.sky_at(orbit.perihelion_time().plus_days(days)) else { continue };
+            change(&mut sky.comet);
+            let left = sky.time.plus_days(-sky.light_time_days);
+            let place = orbit.place_at(left).state;
+            // Half a unit in the last place of the date, twice: in the conic, and in the light time that is taken off.
+            let date = f64::EPSILON * left.tdb_days().abs();
+            let (r, v) = (place.position_au.norm(), place.velocity_au_d.norm());
+            let pull = SUN_GM_AU3_D2 / (r * r);
+            worst = worst
+                .max((sky.comet.position_au - place.position_au).norm() / (2e-14 * r + date * v))
+                .max((sky.comet.velocity_au_d - place.velocity_au_d).norm() / (2e-14 * v + date * pull));
+        }
+    }
+    worst
+}
+
+#[test]
+fn the_pieces_of_a_path_are_the_conic_to_rounding() {
+    let worst = worst_of_pieces(|_| ());
+    assert!(worst <= 1.0, "{worst}");
+}
+
+#[test]
+fn a_path_off_by_a_metre_or_so_would_be_seen() {
+    assert!(worst_of_pieces(|state| state.position_au *= 1.0 + 1e-11) > 1.0);
+    assert!(worst_of_pieces(|state| state.velocity_au_d *= 1.0 + 1e-11) > 1.0);
 }
 
 fn is_undefined(sky: &Sky, quantity: &str) -> bool {

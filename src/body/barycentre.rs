@@ -19,22 +19,40 @@ const UNIT_AU: f64 = 5e-10;
 
 /// State at `days` of TDB from J2000.0. The caller keeps to the table: -36576 to 36960 days.
 pub(super) fn state(days: f64) -> State {
-    let piece = (days / PIECE_DAYS).floor();
-    // Minus one at the start of the piece, plus one at its end.
-    let x = 2.0 * (days - piece * PIECE_DAYS) / PIECE_DAYS - 1.0;
-    let row = (piece as i64 - FIRST_PIECE) as usize;
-    // Chebyshev polynomials of both kinds: T(n+1) = 2 x T(n) - T(n-1), dT(n)/dx = n U(n-1).
-    let (mut t, mut t_before) = (1.0, x);
-    let (mut u, mut u_before) = (0.0, -1.0);
-    let (mut place, mut rate) = (Vector3::zeros(), Vector3::zeros());
-    for n in 0..TERMS {
-        let c = coefficients(n, row);
-        place += c * t;
-        rate += c * (n as f64 * u);
-        (t, t_before) = (2.0 * x * t - t_before, t);
-        (u, u_before) = (2.0 * x * u - u_before, u);
+    Row::of(days).state(days)
+}
+
+/// A piece of the table, read once for several times in it.
+pub(super) struct Row {
+    start_days: f64,
+    counts: [Vector3<f64>; TERMS],
+}
+
+impl Row {
+    /// The piece that holds `days`; the caller keeps to the table.
+    pub(super) fn of(days: f64) -> Row {
+        let piece = (days / PIECE_DAYS).floor();
+        let row = (piece as i64 - FIRST_PIECE) as usize;
+        Row { start_days: piece * PIECE_DAYS, counts: std::array::from_fn(|term| coefficients(term, row)) }
     }
-    State { position_au: place * UNIT_AU, velocity_au_d: rate * (UNIT_AU * 2.0 / PIECE_DAYS) }
+
+    /// State at a time within the piece.
+    #[inline]
+    pub(super) fn state(&self, days: f64) -> State {
+        // Minus one at the start of the piece, plus one at its end.
+        let x = 2.0 * (days - self.start_days) / PIECE_DAYS - 1.0;
+        // Chebyshev polynomials of both kinds: T(n+1) = 2 x T(n) - T(n-1), dT(n)/dx = n U(n-1).
+        let (mut t, mut t_before) = (1.0, x);
+        let (mut u, mut u_before) = (0.0, -1.0);
+        let (mut place, mut rate) = (Vector3::zeros(), Vector3::zeros());
+        for (n, c) in self.counts.iter().enumerate() {
+            place += c * t;
+            rate += c * (n as f64 * u);
+            (t, t_before) = (2.0 * x * t - t_before, t);
+            (u, u_before) = (2.0 * x * u - u_before, u);
+        }
+        State { position_au: place * UNIT_AU, velocity_au_d: rate * (UNIT_AU * 2.0 / PIECE_DAYS) }
+    }
 }
 
 /// The counts of one term of one piece, by axis.

@@ -100,8 +100,9 @@ impl Track {
 
 /// The Earth's path from a time, as one piece.
 fn piece(fit: &Fit, start_days: f64) -> Piece {
+    let row = barycentre::Row::of(start_days);
     fit.piece(&fit.nodes.map(|x| {
         let days = start_days + 0.5 * PIECE_DAYS * (x + 1.0);
-        barycentre::state(days).position_au + from_barycentre_au(days)
+        row.state(days).position_au + from_barycentre_au(days)
     }))
 }

@@ -1,4 +1,4 @@
-"""Truth for frames: position angles, tangent plane, obliquity, horizon, by ERFA, astropy and wcslib.
+"""Truth for frames: position angles, tangent plane, obliquity, horizon, by ERFA, astropy and wcslib; arcs by mpmath.
 
 The first rows of each kind use the inputs of ERFA's own unit tests (t_erfa_c.c), the outputs are run here and
 agree with the values printed there.
@@ -14,6 +14,7 @@ import spiceypy as spice
 from astropy import units as u
 from astropy.coordinates import SkyCoord
 from astropy.wcs import WCS
+from mpmath import mp
 
 import table
 
@@ -57,6 +58,43 @@ def make_angles(folder):
             "works on unit vectors. Of the regeneration: 1e-12.",
         ],
         ["why", "a_lon_rad", "a_lat_rad", "b_lon_rad", "b_lat_rad", "position_angle_rad", "separation_rad"],
+        rows,
+    )
+
+
+def make_arcs(folder):
+    """The angle of two legs, correctly rounded from 40 digits."""
+    rows = []
+
+    def add(why, opposite, adjacent):
+        with mp.workdps(40):
+            rows.append([why, opposite, adjacent, float(mp.atan2(mp.mpf(opposite), mp.mpf(adjacent)))])
+
+    for opposite in (1.0, -1.0):
+        for adjacent in (1.0, -1.0, 1e-8, -1e-8, 1e8, -1e8, 1e-300, -1e-300):
+            add("octants and poles", opposite, adjacent)
+    for sign in (1.0, -1.0):
+        add("on an axis", 0.0, sign)
+        add("on an axis", sign, 0.0)
+    edge = math.tan(math.pi / 8)
+    for step in range(-4, 5):
+        add("where the method changes", edge * (1 + step * 2.0**-52), 1.0)
+        add("where the method changes", -1.0, edge * (1 + step * 2.0**-52))
+        add("where the method changes", 1.0 + step * 2.0**-52, -1.0)
+    chance = random.Random(1744)
+    for _ in range(120):
+        add("random", chance.uniform(-1, 1), chance.uniform(-1, 1))
+    for _ in range(40):
+        add("random size", chance.choice([-1, 1]) * 10 ** chance.uniform(-30, 30), chance.choice([-1, 1]) * 10 ** chance.uniform(-30, 30))
+    table.write(
+        os.path.join(folder, "arcs.csv"),
+        [
+            "Angle of the point (adjacent, opposite) from the first axis toward the second, (-pi, pi].",
+            "Source: " + table.versions("mpmath") + " (atan2 in 40 digits, rounded to the nearest double), make_frames.py.",
+            "Units: radians. Tolerance: two units in the last place; a unit and a half is what the method loses, half a unit the rounding of the table.",
+            "Of the regeneration: 1e-16 relative.",
+        ],
+        ["why", "opposite", "adjacent", "arc_rad"],
         rows,
     )
 
@@ -158,12 +196,14 @@ def make_horizon(folder):
 
 def make(folder):
     make_angles(folder)
+    make_arcs(folder)
     make_tangent(folder)
     make_rotation(folder)
     make_horizon(folder)
 
 
 CHECKS = {name: (1e-12, 1e-12) for name in ("position_angles.csv", "tangent.csv", "ecliptic.csv", "horizon.csv")}
+CHECKS["arcs.csv"] = (1e-16, 0.0)
 
 if __name__ == "__main__":
     make(os.path.dirname(os.path.abspath(__file__)))
