@@ -142,7 +142,8 @@ impl Bearing {
         self.position_angle_of(self.legs().arc_rad())
     }
 
-    /// The legs whose arc [`Bearing::position_angle_of`] wants, for several bearings at a time.
+    /// The legs whose arc [`Bearing::position_angle_of`] wants, for several bearings at a time: the parts of the vector
+    /// to the east (opposite) and to the north (adjacent).
     pub fn legs(&self) -> Legs {
         Legs { opposite: self.east, adjacent: self.north }
     }

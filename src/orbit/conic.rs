@@ -82,7 +82,8 @@ impl Orbit {
         );
         let angular_momentum = (SUN_GM_AU3_D2 * q * (1.0 + e)).sqrt();
         let hodograph_radius = SUN_GM_AU3_D2 / angular_momentum;
-        let (along_perihelion, normal) = (ecliptic_to_equatorial(&along), ecliptic_to_equatorial(&toward.cross(&along)));
+        let (along_perihelion, normal) =
+            (ecliptic_to_equatorial(&along), ecliptic_to_equatorial(&toward.cross(&along)));
         Ok(Orbit {
             perihelion_time: elements.perihelion_time.instant(),
             perihelion_distance_au: q,

@@ -23,9 +23,7 @@ use crate::body::State;
 use crate::body::sun::heliographic_latitude;
 use crate::caution::Caution;
 use crate::frame::arc::Legs;
-use crate::frame::{
-    Axes, Bearing, latitude, position_angle_rad, separation, separation_rad, unsigned,
-};
+use crate::frame::{Axes, Bearing, latitude, position_angle_rad, separation, separation_rad, unsigned};
 use crate::orbit::conic::Orbit;
 use crate::time::Instant;
 use nalgebra::Vector3;
@@ -118,10 +116,10 @@ impl Sky {
         let to_sun = -observer.position_au;
         let back = -v;
 
-        let motion = Motion::of(&comet, &observer, &axes, observer_distance_au);
         let antisolar = Bearing::of(&r, &axes);
         let negative_velocity = Bearing::of(&back, &axes);
-        let moving = Bearing::of(&motion.rate, &axes);
+        let moving = Bearing::of(&motion(&comet, &observer, &axes, observer_distance_au), &axes);
+        let motion = moving.legs();
         // Sun, comet and observer make one triangle: its area by two sides is that by any other two. The shorter of
         // the two sides at the Sun rounds least.
         let shorter = if r.norm_squared() < to_sun.norm_squared() { r } else { to_sun };
@@ -147,7 +145,7 @@ impl Sky {
             antisolar.legs(),
             negative_velocity.legs(),
             separation(&back, &-sight_line),
-            moving.legs(),
+            motion,
             orbit.true_anomaly(&r),
             heliographic_latitude(&r),
         ]);
@@ -159,7 +157,8 @@ impl Sky {
             found
         };
         let antisolar_position_angle_rad = angle(&antisolar, antisolar_arc, "antisolar direction");
-        let negative_velocity_position_angle_rad = angle(&negative_velocity, negative_velocity_arc, "negative velocity");
+        let negative_velocity_position_angle_rad =
+            angle(&negative_velocity, negative_velocity_arc, "negative velocity");
         if observer_distance_au < 0.1 {
             cautions.push(Caution::NearEarth { observer_distance_au });
         }
@@ -177,10 +176,10 @@ impl Sky {
             antisolar_position_angle_rad,
             negative_velocity_position_angle_rad,
             negative_velocity_sight_angle_rad,
-            motion_rad_d: (motion.east * motion.east + motion.north * motion.north).sqrt(),
+            motion_rad_d: (motion.opposite * motion.opposite + motion.adjacent * motion.adjacent).sqrt(),
             motion_position_angle_rad: moving.position_angle_of(motion_arc),
-            motion_east_rad_d: motion.east,
-            motion_north_rad_d: motion.north,
+            motion_east_rad_d: motion.opposite,
+            motion_north_rad_d: motion.adjacent,
             days_from_perihelion: orbit.days_from_perihelion(viewpoint.time) - light_time_days,
             true_anomaly_rad,
             sun_distance_rate_au_d: r.dot(&v) / sun_distance_au,
@@ -195,21 +194,11 @@ impl Sky {
     }
 }
 
-/// Rates of the astrometric direction, radians per day.
-struct Motion {
-    rate: Vector3<f64>,
-    east: f64,
-    north: f64,
-}
-
-impl Motion {
-    /// The comet is seen at t - tau, so its share of the rate is v (1 - dtau/dt).
-    fn of(comet: &State, observer: &State, axes: &Axes, distance_au: f64) -> Self {
-        let (v, w) = (comet.velocity_au_d, observer.velocity_au_d);
-        let lag_rate = axes.sight.dot(&(v - w)) / (LIGHT_AU_D + axes.sight.dot(&v));
-        let rate = (v * (1.0 - lag_rate) - w) * (1.0 / distance_au);
-        Motion { rate, east: rate.dot(&axes.east), north: rate.dot(&axes.north) }
-    }
+/// Rate of the astrometric direction, radians per day. The comet is seen at t - tau, so its share is v (1 - dtau/dt).
+fn motion(comet: &State, observer: &State, axes: &Axes, distance_au: f64) -> Vector3<f64> {
+    let (v, w) = (comet.velocity_au_d, observer.velocity_au_d);
+    let lag_rate = axes.sight.dot(&(v - w)) / (LIGHT_AU_D + axes.sight.dot(&v));
+    (v * (1.0 - lag_rate) - w) * (1.0 / distance_au)
 }
 
 /// Evening where the comet stands east of the Sun in right ascension, so that it follows the Sun down; `across` is the
