@@ -39,7 +39,9 @@ Tailvane.drawings = (function () {
       new ResizeObserver((entries) => {
         const { width, height } = entries[entries.length - 1].contentRect;
         drawing.size = width < 1 || height < 1 ? null : { width, height };
-        Tailvane.desk.redraw();
+        if (drawing.bench.open) {
+          Tailvane.desk.redraw();
+        }
       }).observe(drawing.canvas);
       drawing.bench.addEventListener("toggle", Tailvane.desk.redraw);
     }
