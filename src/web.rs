@@ -30,6 +30,7 @@ use crate::time::{Instant, Stamp};
 use answer::Refusal;
 use season::Season;
 use serde::{Deserialize, Serialize};
+use std::rc::Rc;
 use std::sync::Mutex;
 use wasm_bindgen::JsValue;
 use wasm_bindgen::prelude::wasm_bindgen;
@@ -110,8 +111,11 @@ pub struct Desk {
     time: Stamp,
     /// What is seen at `time`.
     seen: View,
-    /// The tails of what is seen.
-    tails: TailView,
+    /// The tails summed last, and whether they are those of what is seen.
+    tails: Option<Rc<TailView>>,
+    tails_fresh: bool,
+    /// Whether tails of a moment before will do.
+    hasty: bool,
     easel: Easel,
     wishes: Wishes,
     view: SkyView,
@@ -128,7 +132,9 @@ impl Desk {
     pub fn new(plan: &str) -> Result<Desk, JsValue> {
         let (engine, time, seen) = prepared(Plan::parse(plan).map_err(refusal)?).map_err(refusal)?;
         Ok(Desk {
-            tails: engine.tails_at(&seen.sky),
+            tails: None,
+            tails_fresh: false,
+            hasty: false,
             easel: Easel::default(),
             wishes: Wishes::default(),
             engine,
@@ -239,13 +245,19 @@ impl Desk {
         self.go(time)
     }
 
+    /// Whether tails summed for the time before serve until the next frame; the sums are the largest part of a reading.
+    pub fn set_hasty(&mut self, hasty: bool) {
+        self.hasty = hasty;
+    }
+
     /// Everything the page shows beside the drawings.
     pub fn reading(&mut self) -> JsValue {
         let visibility = match self.engine.dark_windows(self.seen.sky.time) {
             Some(windows) => say::when_up(&windows),
             None => "Give a site under Observer to see when the comet is up in a dark sky.".to_owned(),
         };
-        to_js(&answer::reading(&self.engine, &self.time, &self.seen, &self.tails, visibility))
+        let tails = self.tails();
+        to_js(&answer::reading(&self.engine, &self.time, &self.seen, &tails, visibility))
     }
 
     /// The read-out table as tabulated text.
@@ -284,7 +296,8 @@ impl Desk {
         let theme = named_theme(theme);
         let wishes = Wishes { theme, quality: Quality::STILL, ..self.wishes };
         let scene = self.easel.sky(&self.engine, &self.seen.sky, &self.view, &wishes);
-        let saying = self.engine.saying(&self.seen.sky, &self.tails);
+        let tails = self.tails();
+        let saying = self.engine.saying(&self.seen.sky, &tails);
         let title = format!("{}, {}", self.engine.plan().comet.name, self.seen.sky.time.utc_minute());
         svg::write(&scene, theme, &title, &saying.sentence)
     }
@@ -325,10 +338,23 @@ impl Desk {
         Plan { time: Some(self.time.clone()), ..self.engine.plan().clone() }
     }
 
+    /// The tails of what is seen: summed when first asked for, so not for a sky that is passed over before it is shown.
+    fn tails(&mut self) -> Rc<TailView> {
+        match &self.tails {
+            Some(tails) if self.tails_fresh || self.hasty => tails.clone(),
+            _ => {
+                let tails = Rc::new(self.engine.tails_at(&self.seen.sky));
+                self.tails = Some(tails.clone());
+                self.tails_fresh = true;
+                tails
+            }
+        }
+    }
+
     fn take(&mut self, plan: Plan) -> Result<JsValue, JsValue> {
         let (engine, time, seen) = prepared(plan).map_err(refusal)?;
         self.season = None;
-        self.tails = engine.tails_at(&seen.sky);
+        (self.tails, self.tails_fresh) = (None, false);
         (self.engine, self.time, self.seen) = (engine, time, seen);
         Ok(JsValue::TRUE)
     }
@@ -353,7 +379,7 @@ impl Desk {
 
     fn go(&mut self, time: Stamp) -> Result<f64, JsValue> {
         self.seen = self.engine.view_at(time.instant()).map_err(refusal)?;
-        self.tails = self.engine.tails_at(&self.seen.sky);
+        self.tails_fresh = false;
         self.time = time;
         Ok(self.seen.sky.time.tdb_days())
     }

@@ -13,20 +13,23 @@ Tailvane.core = (function () {
   let sitesText = null;
   let exports = null;
 
-  /** The bytes of a data block by name, or of the file of that name beside an unpacked page; null when there is neither. */
-  async function bytesOf(name) {
+  /**
+   * A data block by name, or the file of that name beside an unpacked page, as a response of a type; null when there is
+   * neither. A response, and not its bytes, so that the core is compiled while it is still being inflated.
+   */
+  async function answerOf(name, type) {
     const block = document.querySelector('script[data-block="' + name + '"]');
     if (block) {
       const packed = fromBase64(block.textContent);
       block.remove();
       const stream = new Blob([packed]).stream().pipeThrough(new DecompressionStream("deflate-raw"));
-      return new Uint8Array(await new Response(stream).arrayBuffer());
+      return new Response(stream, { headers: { "Content-Type": type } });
     }
     if (document.querySelector("script[data-block]") || location.protocol === "file:" || packedPage) {
       return null;
     }
     const answer = await fetch(name);
-    return answer.ok ? new Uint8Array(await answer.arrayBuffer()) : null;
+    return answer.ok ? answer : null;
   }
 
   const packedPage = document.querySelector("script[data-block]") !== null;
@@ -43,11 +46,11 @@ Tailvane.core = (function () {
     if (typeof WebAssembly === "undefined") {
       throw new Error("This browser has WebAssembly switched off, and the page computes with it. Switch it on, or use another browser.");
     }
-    const bytes = await bytesOf("core.wasm");
-    if (!bytes) {
+    const answer = await answerOf("core.wasm", "application/wasm");
+    if (!answer) {
       throw new Error("The core of the page is missing. Build the page with cargo page, and open target/page/tailvane.html.");
     }
-    module = await WebAssembly.compile(bytes);
+    module = await WebAssembly.compileStreaming(answer);
     return fresh();
   }
 
@@ -62,8 +65,8 @@ Tailvane.core = (function () {
   /** The text of the site table, unpacked when first asked for; "" when the page has none. */
   async function sites() {
     if (sitesText === null) {
-      const bytes = await bytesOf("sites.data");
-      sitesText = bytes ? linesOf(new TextDecoder().decode(bytes)) : "";
+      const answer = await answerOf("sites.data", "text/plain");
+      sitesText = answer ? linesOf(await answer.text()) : "";
     }
     return sitesText;
   }

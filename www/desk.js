@@ -7,18 +7,22 @@
  */
 Tailvane.desk = (function () {
   const REST_MS = 500;
+  /** In motion the tails are summed no more often than this. */
+  const SUMS_MS = 50;
   const frameListeners = [];
   const restListeners = [];
   let desk = null;
   let lastPlan = null;
   let asked = false;
   let restTimer = 0;
+  let moved = false;
+  let summedAt = -SUMS_MS;
   let refused = {};
 
+  /** Puts a plan on a new desk; draws nothing yet. */
   function start(plan) {
     desk = new (Tailvane.core.exports().Desk)(plan);
     lastPlan = plan;
-    redraw();
   }
 
   /**
@@ -59,29 +63,46 @@ Tailvane.desk = (function () {
     try {
       Tailvane.core.fresh();
       start(lastPlan);
+      redraw();
     } catch (again) {
       Tailvane.say.error("The page failed and could not start anew: " + words + ". Reload it.");
     }
   }
 
   function redraw() {
+    moved = true;
+    askFrame();
+  }
+
+  function askFrame() {
     if (!asked) {
       asked = true;
       requestAnimationFrame(frame);
     }
   }
 
-  function frame() {
-    asked = false;
+  /**
+   * Shows what changed. In motion some frames are hasty: they tell of tails that were summed a moment before. A hasty frame
+   * is followed by another, so that the last one of a motion has its own sums.
+   */
+  function frame(time) {
+    const hasty = moved && time - summedAt < SUMS_MS;
+    [asked, moved] = [false, false];
+    summedAt = hasty ? summedAt : time;
     let reading;
     try {
+      desk.set_hasty(hasty);
       reading = desk.reading();
       for (const listener of frameListeners) {
         listener(reading, desk);
       }
+      desk.set_hasty(false);
     } catch (failure) {
       fail(failure);
       return;
+    }
+    if (hasty) {
+      askFrame();
     }
     clearTimeout(restTimer);
     restTimer = setTimeout(rest, REST_MS, reading);

@@ -1,7 +1,8 @@
 /*
  * How are the small drawings shown: the orbit view, the map of the dust?
  *
- * The core draws and words them; this script gives each a canvas of its size, and only while its bench is open.
+ * The core draws and words them; this script gives each a canvas of its size. Behind a closed bench nothing is drawn or
+ * worded.
  */
 Tailvane.drawings = (function () {
   const drawings = [
@@ -9,16 +10,17 @@ Tailvane.drawings = (function () {
     { view: "map", words: "map-words", draw: "draw_map", say: "map_words" },
   ].map((drawing) => {
     const canvas = Tailvane.find("view", drawing.view);
-    return { ...drawing, canvas, context: canvas.getContext("2d", { alpha: false }), twin: document.getElementById(drawing.words) };
+    const context = canvas.getContext("2d", { alpha: false });
+    return { ...drawing, canvas, context, twin: document.getElementById(drawing.words), bench: canvas.closest("details"), size: null };
   });
 
   function frame(reading, desk) {
-    for (const { canvas, context, twin, draw, say } of drawings) {
-      Tailvane.write(twin, desk[say]());
-      const { clientWidth: width, clientHeight: height } = canvas;
-      if (width < 1 || height < 1) {
+    for (const { canvas, context, twin, bench, size, draw, say } of drawings) {
+      if (!bench.open || !size) {
         continue;
       }
+      Tailvane.write(twin, desk[say]());
+      const { width, height } = size;
       const ratio = window.devicePixelRatio || 1;
       const [across, down] = [Math.round(width * ratio), Math.round(height * ratio)];
       if (canvas.width !== across || canvas.height !== down) {
@@ -32,9 +34,16 @@ Tailvane.drawings = (function () {
 
   function start() {
     Tailvane.desk.onFrame(frame);
-    const observer = new ResizeObserver(() => Tailvane.desk.redraw());
-    for (const { canvas } of drawings) {
-      observer.observe(canvas.parentElement);
+    // Sizes are watched and not asked for: asking in the middle of a frame lays the page out once more.
+    for (const drawing of drawings) {
+      new ResizeObserver((entries) => {
+        const { width, height } = entries[entries.length - 1].contentRect;
+        drawing.size = width < 1 || height < 1 ? null : { width, height };
+        if (drawing.bench.open) {
+          Tailvane.desk.redraw();
+        }
+      }).observe(drawing.canvas);
+      drawing.bench.addEventListener("toggle", Tailvane.desk.redraw);
     }
   }
 

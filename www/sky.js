@@ -8,6 +8,7 @@ Tailvane.sky = (function () {
   const PAN_STEP_PX = 40;
   const PRINT_SCALE = 4;
   const STILL_MS = 140;
+  const WITHOUT_DUST = { syndynes: false, synchrones: false, neck_line: false, toward_sun: false, dust: false, isophotes: false };
   const canvas = Tailvane.find("view", "sky");
   const box = Tailvane.find("box", "sky");
   const hover = Tailvane.find("show", "hover");
@@ -38,8 +39,10 @@ Tailvane.sky = (function () {
   }
 
   function resize(width, height, ratio) {
-    size = { width, height, ratio };
-    Tailvane.desk.redraw();
+    if (width !== size.width || height !== size.height || ratio !== size.ratio) {
+      size = { width, height, ratio };
+      Tailvane.desk.redraw();
+    }
   }
 
   function firstSize() {
@@ -48,8 +51,15 @@ Tailvane.sky = (function () {
     size = { width: Math.max(width, 1), height: Math.max(height, 1), ratio: window.devicePixelRatio || 1 };
   }
 
-  /** Draws everything; in motion the dust is made coarser and sooner. */
-  function paint(desk, scale, still) {
+  /** The first picture of all: the directions without the dust, which takes longer. */
+  function drawDirections() {
+    firstSize();
+    Tailvane.desk.ask((desk) => paint(desk, size.ratio, false, { ...Tailvane.tails.layers(), ...WITHOUT_DUST }));
+    canvas.dataset.picture = "directions";
+  }
+
+  /** Draws the layers; in motion the dust is made coarser and sooner. */
+  function paint(desk, scale, still, layers = Tailvane.tails.layers()) {
     const width = Math.max(1, Math.round(size.width * scale));
     const height = Math.max(1, Math.round(size.height * scale));
     if (canvas.width !== width || canvas.height !== height) {
@@ -58,7 +68,7 @@ Tailvane.sky = (function () {
     }
     context.setTransform(1, 0, 0, 1, 0, 0);
     desk.resize(size.width, size.height);
-    desk.set_layers(Tailvane.tails.layers());
+    desk.set_layers(layers);
     desk.set_still(still, scale);
     context.setTransform(width / size.width, 0, 0, height / size.height, 0, 0);
     desk.draw(context, Tailvane.theme.name());
@@ -170,7 +180,6 @@ Tailvane.sky = (function () {
   }
 
   function start() {
-    firstSize();
     Tailvane.desk.onFrame(frame);
     watchSize();
     canvas.addEventListener("wheel", onWheel, { passive: false });
@@ -199,5 +208,5 @@ Tailvane.sky = (function () {
     Tailvane.onAct("up", () => Tailvane.desk.change((desk) => desk.set_zenith_up(!desk.zenith_up())));
   }
 
-  return { start, drawForPrint, refine };
+  return { start, drawDirections, drawForPrint, refine };
 })();

@@ -1,8 +1,8 @@
 /*
  * In which order does the page come to life?
  *
- * The first picture comes first: an invented comet, or the plan in the address. A bad plan in the address is said, and the
- * invented comet is shown.
+ * The first picture comes first, the directions alone: an invented comet, or the plan in the address. Dust, words and
+ * benches follow with the next frame. A bad plan in the address is said, and the invented comet is shown.
  */
 (async function () {
   const starting = Tailvane.find("show", "starting");
@@ -13,9 +13,6 @@
     return;
   }
   Tailvane.theme.start();
-  for (const part of ["sky", "season", "say", "numbers", "tails", "drawings", "comet", "observer", "plan"]) {
-    Tailvane[part].start();
-  }
   const invented = Tailvane.core.exports().examples()[0].plan;
   let refusal = null;
   try {
@@ -24,9 +21,23 @@
     refusal = failure;
     Tailvane.desk.start(invented);
   }
+  starting.remove();
+  Tailvane.sky.drawDirections();
+  await shown();
+  for (const part of ["sky", "season", "say", "numbers", "tails", "drawings", "comet", "observer", "plan"]) {
+    Tailvane[part].start();
+  }
   if (refusal) {
     Tailvane.say.error(refusal.message + ". An invented comet is shown instead.");
   }
-  starting.remove();
+  Tailvane.desk.redraw();
   document.documentElement.dataset.ready = "yes";
+
+  /** Waits until what was drawn is on the screen; a page that nobody sees has no frames and does not wait for one. */
+  function shown() {
+    return new Promise((done) => {
+      requestAnimationFrame(() => setTimeout(done));
+      setTimeout(done, 100);
+    });
+  }
 })();

@@ -16,10 +16,15 @@ Tailvane.tails = (function () {
   const layerChoices = [...document.querySelectorAll("[data-layer-choice]")];
   const fields = new Map();
   let shown = "";
-  let chosen = {};
+  let chosen = null;
 
   /** What is drawn, as the core takes it. */
-  const layers = () => chosen;
+  function layers() {
+    if (!chosen) {
+      restoreLayers();
+    }
+    return chosen;
+  }
 
   function readLayers() {
     chosen = {};
@@ -169,7 +174,6 @@ Tailvane.tails = (function () {
   }
 
   function start() {
-    restoreLayers();
     const core = Tailvane.core.exports();
     groups.replaceChildren(...core.tails_form().map(build));
     presets.replaceChildren(

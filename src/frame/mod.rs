@@ -75,6 +75,11 @@ impl Axes {
     }
 }
 
+/// Length of a vector in a plane. libm's hypot also holds out where squares overflow, and takes a hundred times as long in wasm.
+pub fn norm([x, y]: [f64; 2]) -> f64 {
+    (x * x + y * y).sqrt()
+}
+
 /// Ecliptic to equatorial components of the same vector.
 pub fn ecliptic_to_equatorial(v: &Vector3<f64>) -> Vector3<f64> {
     Vector3::new(v.x, v.y * COS_OBLIQUITY - v.z * SIN_OBLIQUITY, v.y * SIN_OBLIQUITY + v.z * COS_OBLIQUITY)

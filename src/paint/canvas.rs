@@ -16,9 +16,14 @@ use std::f64::consts::TAU;
 use wasm_bindgen::{Clamped, JsValue};
 use web_sys::{CanvasRenderingContext2d, ImageData};
 
-/// Paints on a two-dimensional canvas context.
+/// Paints on a two-dimensional canvas context. Styles go there as text, which costs more than the strokes, so that
+/// those of one kind that follow on each other are told once.
 pub struct CanvasPainter<'a> {
     context: &'a CanvasRenderingContext2d,
+    fill: Option<Color>,
+    pen: Option<Stroke>,
+    /// Size of the letters in pixels, and whether they are bold.
+    font: Option<(f64, bool)>,
 }
 
 impl<'a> CanvasPainter<'a> {
@@ -26,10 +31,20 @@ impl<'a> CanvasPainter<'a> {
         context.set_line_cap("round");
         context.set_line_join("round");
         context.set_text_baseline("alphabetic");
-        CanvasPainter { context }
+        CanvasPainter { context, fill: None, pen: None, font: None }
     }
 
-    fn pen(&self, stroke: &Stroke) {
+    fn fill(&mut self, color: Color) {
+        if self.fill.replace(color) != Some(color) {
+            self.context.set_fill_style_str(&color.css());
+        }
+    }
+
+    fn pen(&mut self, stroke: &Stroke) {
+        if self.pen.as_ref() == Some(stroke) {
+            return;
+        }
+        self.pen = Some(stroke.clone());
         self.context.set_stroke_style_str(&stroke.color.css());
         self.context.set_line_width(stroke.width_px);
         let dashes: js_sys::Array = stroke.dashes_px.iter().map(|&dash| JsValue::from_f64(dash)).collect();
@@ -38,9 +53,9 @@ impl<'a> CanvasPainter<'a> {
     }
 
     /// Fills and strokes the current path.
-    fn finish(&self, ink: &Ink) {
+    fn finish(&mut self, ink: &Ink) {
         if let Some(color) = ink.fill {
-            self.context.set_fill_style_str(&color.css());
+            self.fill(color);
             self.context.set_global_alpha(ink.fill_opacity);
             self.context.fill();
             self.context.set_global_alpha(1.0);
@@ -54,7 +69,7 @@ impl<'a> CanvasPainter<'a> {
 
 impl Painter for CanvasPainter<'_> {
     fn surface(&mut self, width_px: f64, height_px: f64, fill: Color) {
-        self.context.set_fill_style_str(&fill.css());
+        self.fill(fill);
         self.context.fill_rect(0.0, 0.0, width_px, height_px);
     }
 
@@ -104,8 +119,11 @@ impl Painter for CanvasPainter<'_> {
     }
 
     fn text(&mut self, text: &Text, ink: &Ink) {
-        let weight = if text.strong { "bold " } else { "" };
-        self.context.set_font(&format!("{weight}{}px system-ui, sans-serif", text.size_px));
+        let font = (text.size_px, text.strong);
+        if self.font.replace(font) != Some(font) {
+            let weight = if text.strong { "bold " } else { "" };
+            self.context.set_font(&format!("{weight}{}px system-ui, sans-serif", text.size_px));
+        }
         self.context.set_text_align(match text.anchor {
             Anchor::Start => "left",
             Anchor::Middle => "center",
@@ -114,7 +132,7 @@ impl Painter for CanvasPainter<'_> {
         let ([x, y], width) = (text.at, text.width_px());
         // Text calls fail only on a lost context; the next frame draws again.
         if let Some(color) = ink.fill {
-            self.context.set_fill_style_str(&color.css());
+            self.fill(color);
             let _ = self.context.fill_text_with_max_width(&text.words, x, y, width);
         }
         if let Some(stroke) = &ink.stroke {

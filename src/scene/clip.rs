@@ -66,6 +66,14 @@ pub fn outside_circle(line: &[Point], center: Point, radius: f64) -> Vec<Vec<Poi
 
 /// First and last share of a segment inside a rectangle, edges included; None where it passes by.
 fn shares(area: &Rect, a: Point, b: Point) -> Option<[f64; 2]> {
+    // Most segments lie wholly to one side.
+    if a[0].max(b[0]) < area.left
+        || a[0].min(b[0]) > area.right
+        || a[1].max(b[1]) < area.top
+        || a[1].min(b[1]) > area.bottom
+    {
+        return None;
+    }
     let (mut first, mut last) = (0.0_f64, 1.0_f64);
     for (start, step, low, high) in
         [(a[0], b[0] - a[0], area.left, area.right), (a[1], b[1] - a[1], area.top, area.bottom)]

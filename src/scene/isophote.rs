@@ -10,6 +10,7 @@
 
 use super::Point;
 use super::lettering::Rect;
+use crate::frame::norm;
 use std::collections::BTreeMap;
 
 /// Lines of equal brightness on the page, the brightest first.
@@ -62,7 +63,7 @@ impl Isophotes {
 }
 
 fn length(line: &[Point]) -> f64 {
-    line.windows(2).map(|pair| libm::hypot(pair[1][0] - pair[0][0], pair[1][1] - pair[0][1])).sum()
+    line.windows(2).map(|pair| norm([pair[1][0] - pair[0][0], pair[1][1] - pair[0][1]])).sum()
 }
 
 /// Means over blocks of cells; what does not fill a block is left out.

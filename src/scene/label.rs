@@ -9,6 +9,7 @@
 
 use super::Point;
 use super::lettering::Rect;
+use crate::frame::norm;
 
 /// What is already on the page.
 pub struct Room {
@@ -129,9 +130,9 @@ impl Room {
     fn cheapest(&self, wish: &Wish, places: Vec<(Rect, usize)>, rules: Rules) -> Option<Placed> {
         let mut best: Option<(f64, Placed)> = None;
         for (area, lines) in places {
-            let Some((cost, placed)) = self.judged(wish, area, lines, rules) else { continue };
-            if best.is_none_or(|(least, _)| cost < least) {
-                best = Some((cost, placed));
+            let limit = best.map_or(f64::INFINITY, |(least, _)| least);
+            if let Some(cheaper) = self.judged(wish, area, lines, rules, limit) {
+                best = Some(cheaper);
             }
         }
         best.map(|(_, placed)| placed)
@@ -176,14 +177,18 @@ impl Room {
         places
     }
 
-    /// The cost of a place and the leader it needs; None when it is not free.
-    fn judged(&self, wish: &Wish, area: Rect, lines: usize, rules: Rules) -> Option<(f64, Placed)> {
+    /// The cost of a place and the leader it needs; None when it is not free, or costs `limit` or more.
+    fn judged(&self, wish: &Wish, area: Rect, lines: usize, rules: Rules, limit: f64) -> Option<(f64, Placed)> {
+        let end = area.nearest(wish.from);
+        let distance = norm([end[0] - wish.from[0], end[1] - wish.from[1]]);
         let clear = area.grown(CLEAR * self.unit_px);
-        if !self.area.contains(&area) || self.taken.iter().any(|taken| taken.overlaps(&clear)) {
+        // The distance alone, first of the costs, rules most places out.
+        if distance / self.unit_px >= limit
+            || !self.area.contains(&area)
+            || self.taken.iter().any(|taken| taken.overlaps(&clear))
+        {
             return None;
         }
-        let end = area.nearest(wish.from);
-        let distance = libm::hypot(end[0] - wish.from[0], end[1] - wish.from[1]);
         let leader = (distance > LEAST_LEADER * self.unit_px).then_some([wish.from, end]);
         let mut meetings = self.leaders.iter().filter(|[a, b]| clear.cuts(*a, *b)).count();
         meetings += leader.map_or(0, |leader| self.boxes_met(&leader));
@@ -197,7 +202,7 @@ impl Room {
         if lines == 2 {
             cost += TWO_LINES;
         }
-        Some((cost, Placed { area, lines, leader }))
+        (cost < limit).then_some((cost, Placed { area, lines, leader }))
     }
 
     /// How many boxes a leader runs through, other than the one it starts in.
@@ -267,7 +272,7 @@ impl Room {
             }
             let [a, b] = leader;
             cost += self.leader_cost(&leader, &self.leaders) + self.leader_cost(&leader, &leaders);
-            cost += libm::hypot(b[0] - a[0], b[1] - a[1]) / self.unit_px / order.len() as f64;
+            cost += norm([b[0] - a[0], b[1] - a[1]]) / self.unit_px / order.len() as f64;
             leaders.push(leader);
             places.push((index, Placed { area, lines: 1, leader: Some(leader) }));
         }
@@ -275,7 +280,7 @@ impl Room {
     }
 
     fn ring_cost(&self, area: &Rect) -> f64 {
-        let away = |point: Point| libm::hypot(point[0] - self.ring_center[0], point[1] - self.ring_center[1]);
+        let away = |point: Point| norm([point[0] - self.ring_center[0], point[1] - self.ring_center[1]]);
         let nearest = away(area.nearest(self.ring_center));
         let corners =
             [[area.left, area.top], [area.right, area.top], [area.left, area.bottom], [area.right, area.bottom]];
@@ -294,7 +299,7 @@ impl Room {
 fn groups(wishes: &[Wish]) -> Vec<Vec<usize>> {
     let together = |a: usize, b: usize| {
         let (one, other) = (wishes[a].from, wishes[b].from);
-        libm::hypot(one[0] - other[0], one[1] - other[1]) < TOGETHER * wishes[a].one_line[1]
+        norm([one[0] - other[0], one[1] - other[1]]) < TOGETHER * wishes[a].one_line[1]
     };
     let mut groups: Vec<Vec<usize>> = Vec::new();
     for index in 0..wishes.len() {

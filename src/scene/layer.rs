@@ -8,6 +8,7 @@ use super::image::Image;
 use super::isophote::Isophotes;
 use super::sheet::Sheet;
 use super::view::SkyView;
+use crate::frame::norm;
 use crate::tail::curve::{self, Curve, Fineness};
 use crate::tail::grain::Vista;
 use crate::tail::ion::Wedge;
@@ -122,7 +123,7 @@ pub fn fineness(view: &SkyView) -> Fineness {
     let down = y.abs().max((view.height_px - y).abs());
     Fineness {
         tolerance_rad: TOLERANCE_PX * view.pixel_scale_rad,
-        field_tan: libm::hypot(across, down) * view.pixel_scale_rad,
+        field_tan: norm([across, down]) * view.pixel_scale_rad,
     }
 }
 

@@ -11,6 +11,7 @@ use super::lettering::{ABOVE, Anchor, BELOW, LINE, Rect, Text, width_px, wrapped
 use super::panel::Panel;
 use super::sheet::Sheet;
 use super::{Direction, Family, Point, Role, Scene, Shape, mark, note, quantity};
+use crate::frame::norm;
 use crate::orbit::conic::SUN_GM_AU3_D2;
 use crate::plan::Plan;
 use crate::sky::Sky;
@@ -213,7 +214,7 @@ fn draw_along_plane(scene: &mut Scene, stage: &Stage, area: Rect) {
     panel.line(scene, Role::Guide, &[observer, [observer[0], comet[1]]]);
     let beyond = panel.beyond(observer, comet);
     panel.line(scene, Role::SightLine, &[observer, beyond]);
-    let away = libm::hypot(observer[0] - comet[0], observer[1] - comet[1]);
+    let away = norm([observer[0] - comet[0], observer[1] - comet[1]]);
     let radius = (0.5 * away).min(44.0 * unit);
     let arc: Vec<Point> = (0..=24)
         .map(|i| {
@@ -312,7 +313,7 @@ fn plane_angle(angle_rad: f64) -> String {
 
 /// The name of the dust, at the part of the sheet that is seen farthest from the comet.
 fn dust_name(panel: &Panel, nodes: &[Option<Point>], comet: Point) -> Option<Name> {
-    let away = |p: &Point| libm::hypot(p[0] - comet[0], p[1] - comet[1]);
+    let away = |p: &Point| norm([p[0] - comet[0], p[1] - comet[1]]);
     let inside = panel.area.grown(-30.0);
     let seen = nodes.iter().flatten().copied().filter(|p| inside.holds(*p));
     let from = seen.max_by(|a, b| away(a).total_cmp(&away(b)))?;
@@ -327,14 +328,14 @@ fn dust_name(panel: &Panel, nodes: &[Option<Point>], comet: Point) -> Option<Nam
 /// Unit step from one point toward another; to the right where they are one.
 fn unit_step(from: Point, to: Point) -> Point {
     let step = [to[0] - from[0], to[1] - from[1]];
-    let long = libm::hypot(step[0], step[1]);
+    let long = norm(step);
     if long > 0.0 { [step[0] / long, step[1] / long] } else { [1.0, 0.0] }
 }
 
 /// A filled arrow head on the path, a little ahead of the comet.
 fn arrow(scene: &mut Scene, path: &[Point], comet: Point, motion: Point, unit: f64) {
     let ahead = |p: &Point| (p[0] - comet[0]) * motion[0] + (p[1] - comet[1]) * motion[1];
-    let away = |p: &Point| libm::hypot(p[0] - comet[0], p[1] - comet[1]);
+    let away = |p: &Point| norm([p[0] - comet[0], p[1] - comet[1]]);
     let wished = 30.0 * unit;
     let tip = path
         .iter()
@@ -388,7 +389,7 @@ fn two_rows(words: &str, rows: &[String]) -> Vec<String> {
 fn put(scene: &mut Scene, name: &Name, rows: &[String], placed: &Placed, size_px: f64) {
     // A label that stands beside its mark needs no leader; a longer one starts outside the mark.
     if let Some([from, to]) = placed.leader {
-        let (step, long) = (unit_step(from, to), libm::hypot(to[0] - from[0], to[1] - from[1]));
+        let (step, long) = (unit_step(from, to), norm([to[0] - from[0], to[1] - from[1]]));
         if long > 2.2 * size_px {
             let start = 0.8 * size_px;
             let line = vec![[from[0] + step[0] * start, from[1] + step[1] * start], to];

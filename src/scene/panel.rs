@@ -6,6 +6,7 @@ use super::clip::{figure_inside, line_inside, twice_area};
 use super::lettering::{ABOVE, Anchor, BELOW, Rect, Text};
 use super::note::{MARGIN, shortened};
 use super::{Point, Role, Scene, Shape, quantity};
+use crate::frame::norm;
 
 const CAPTION_SIZE: f64 = 12.0;
 /// Height of the caption's row.
@@ -54,14 +55,14 @@ impl Panel {
 
     /// Distance from the origin within which everything on the panel lies, au.
     pub fn farthest_au(&self) -> f64 {
-        let half = libm::hypot(self.area.width(), self.area.height()) / 2.0 * self.au_per_px;
-        half + libm::hypot(self.middle_au[0], self.middle_au[1])
+        let half = norm([self.area.width(), self.area.height()]) / 2.0 * self.au_per_px;
+        half + norm(self.middle_au)
     }
 
     /// Where a line from one point through another ends: a third of its length, or a little, beyond.
     pub fn beyond(&self, from: Point, through: Point) -> Point {
         let step = [through[0] - from[0], through[1] - from[1]];
-        let long = libm::hypot(step[0], step[1]).max(1e-9);
+        let long = norm(step).max(1e-9);
         let part = 1.0 + (0.35_f64).max(0.18 * self.area.width() / long);
         [from[0] + step[0] * part, from[1] + step[1] * part]
     }

@@ -15,7 +15,7 @@
 
 use super::quantity::{self, KM_PER_AU};
 use super::view::SkyView;
-use crate::frame::{self, half_turn, tangent};
+use crate::frame::{self, half_turn, norm, tangent};
 use crate::sky::Sky;
 use crate::tail::inverse;
 use std::f64::consts::PI;
@@ -57,7 +57,7 @@ pub struct Hover {
 pub fn hover(sky: &Sky, view: &SkyView, x_px: f64, y_px: f64) -> Hover {
     let [xi, eta] = view.to_sky(sky, x_px, y_px);
     let sight = tangent::unproject(xi, eta, &sky.axes);
-    let radius = libm::hypot(xi, eta);
+    let radius = norm([xi, eta]);
     let distance_rad = libm::atan(radius);
     let position_angle_rad = frame::position_angle_rad(&(sky.axes.east * xi + sky.axes.north * eta), &sky.axes);
     let along = |angle: Option<f64>, to_observer_rad: f64| match (position_angle_rad, angle) {

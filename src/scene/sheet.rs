@@ -11,7 +11,7 @@ use super::Point;
 use super::clip::{figure_beside, figure_inside, twice_area};
 use super::lettering::Rect;
 use super::view::Facing;
-use crate::frame::separation_rad;
+use crate::frame::{norm, separation_rad};
 use crate::tail::grain::Vista;
 use crate::tail::law::Tails;
 use nalgebra::Vector3;
@@ -108,7 +108,7 @@ impl Sheet {
             }
             let kept = figure_beside(&figure, beside(edges[0]));
             let kept = figure_inside(&figure_beside(&kept, beside(edges[1])), page);
-            let near = |p: &Point| libm::hypot(p[0] - nucleus[0], p[1] - nucleus[1]) < near_px;
+            let near = |p: &Point| norm([p[0] - nucleus[0], p[1] - nucleus[1]]) < near_px;
             if kept.is_empty() || kept.iter().all(near) {
                 continue;
             }
@@ -147,7 +147,7 @@ const NARROW: f64 = 3.0;
 
 impl TowardSun {
     fn of(mut figures: Vec<Vec<Point>>, nucleus: Point, unit_px: f64) -> Self {
-        let away = |p: &Point| libm::hypot(p[0] - nucleus[0], p[1] - nucleus[1]);
+        let away = |p: &Point| norm([p[0] - nucleus[0], p[1] - nucleus[1]]);
         let whole: f64 = figures.iter().map(|figure| 0.5 * twice_area(figure).abs()).sum();
         let reach = figures.iter().flatten().map(away).fold(0.0, f64::max);
         if whole < NARROW * unit_px * reach {
@@ -167,7 +167,7 @@ impl TowardSun {
 
 /// The two corners of a figure that lie farthest apart.
 fn longest(figure: &[Point]) -> [Point; 2] {
-    let length = |[a, b]: [Point; 2]| libm::hypot(b[0] - a[0], b[1] - a[1]);
+    let length = |[a, b]: [Point; 2]| norm([b[0] - a[0], b[1] - a[1]]);
     let mut ends = [figure[0], figure[0]];
     for (i, &a) in figure.iter().enumerate() {
         for &b in &figure[i + 1..] {

@@ -13,6 +13,7 @@
 use super::label::{Room, cross};
 use super::lettering::{ABOVE, BELOW, Rect, width_px};
 use super::{Family, Point, Role, Scene};
+use crate::frame::norm;
 
 /// A curve as it lies on the page.
 #[derive(Clone, Debug, PartialEq)]
@@ -103,17 +104,19 @@ pub fn outer_first(count: usize) -> Vec<usize> {
 fn cheapest(room: &Room, mesh: &Mesh, curves: &[PageCurve], index: usize, was: Option<Point>) -> Option<Spot> {
     let curve = &curves[index];
     let unit = room.unit_px;
-    let piece = curve.pieces.iter().max_by(|a, b| length(a).total_cmp(&length(b)))?;
-    if length(piece) < LEAST_LENGTH * unit {
+    let (piece, long) = curve.pieces.iter().map(|piece| (piece, length(piece))).max_by(|a, b| a.1.total_cmp(&b.1))?;
+    if long < LEAST_LENGTH * unit {
         return None;
     }
+    let places = SHARES.map(|share| place(piece, share * long));
+    let tip = place(piece, long);
     let size_px = LABEL_SIZE * unit;
     let mut best: Option<(f64, Spot)> = None;
     for (words, text) in curve.words.iter().enumerate() {
         let half = [width_px(text, size_px, false) / 2.0, size_px * (ABOVE + BELOW) / 2.0];
         let mut consider = |from: Point, center: Point, cost: f64| {
             let area = Rect::around(center, half[0], half[1]);
-            let moved = was.map_or(0.0, |[x, y]| (libm::hypot(center[0] - x, center[1] - y) / unit).min(FARTHEST_MOVE));
+            let moved = was.map_or(0.0, |[x, y]| (norm([center[0] - x, center[1] - y]) / unit).min(FARTHEST_MOVE));
             let cost = cost + SHORT_WORDS * words as f64 + MOVED * moved;
             if best.is_some_and(|(least, _)| cost >= least) {
                 return;
@@ -124,8 +127,7 @@ fn cheapest(room: &Room, mesh: &Mesh, curves: &[PageCurve], index: usize, was: O
                 best = Some((cost + more, Spot { words, area }));
             }
         };
-        for share in SHARES {
-            let (at, along) = place(piece, share);
+        for (share, (at, along)) in SHARES.into_iter().zip(places) {
             let cost = ASTRAY * (share - WISHED_SHARE).abs();
             consider(at, at, cost);
             let across = [-along[1], along[0]];
@@ -135,7 +137,7 @@ fn cheapest(room: &Room, mesh: &Mesh, curves: &[PageCurve], index: usize, was: O
             }
         }
         if curve.ends {
-            let (at, along) = place(piece, 1.0);
+            let (at, along) = tip;
             let away = support(along, half) + 5.0 * unit;
             consider(at, [at[0] + along[0] * away, at[1] + along[1] * away], BEYOND);
         }
@@ -157,7 +159,7 @@ fn judged(room: &Room, mesh: &Mesh, index: usize, from: Point, area: &Rect) -> O
     if room.hands.iter().any(|hand| clear.cuts(hand[0], hand[1]) || cross(&[from, center], hand)) {
         return None;
     }
-    let inside = libm::hypot(center[0] - room.ring_center[0], center[1] - room.ring_center[1]) < room.ring_radius_px;
+    let inside = norm([center[0] - room.ring_center[0], center[1] - room.ring_center[1]]) < room.ring_radius_px;
     Some(MEETS_OTHER_KIND * f64::from(met.count_ones()) + if inside { INSIDE_RING } else { 0.0 })
 }
 
@@ -167,16 +169,15 @@ fn support(step: Point, half: [f64; 2]) -> f64 {
 }
 
 fn length(line: &[Point]) -> f64 {
-    line.windows(2).map(|pair| libm::hypot(pair[1][0] - pair[0][0], pair[1][1] - pair[0][1])).sum()
+    line.windows(2).map(|pair| norm([pair[1][0] - pair[0][0], pair[1][1] - pair[0][1]])).sum()
 }
 
-/// The point at a share of a line's length, and the unit step along it there.
-fn place(line: &[Point], share: f64) -> (Point, Point) {
-    let mut left = share * length(line);
+/// The point so far along a line, and the unit step along it there.
+fn place(line: &[Point], mut left: f64) -> (Point, Point) {
     let mut found = (line[0], [1.0, 0.0]);
     for pair in line.windows(2) {
         let step = [pair[1][0] - pair[0][0], pair[1][1] - pair[0][1]];
-        let long = libm::hypot(step[0], step[1]);
+        let long = norm(step);
         if long == 0.0 {
             continue;
         }
@@ -237,7 +238,7 @@ impl Mesh {
     }
 
     fn mark(&mut self, a: Point, b: Point, bit: u64) {
-        let long = libm::hypot(b[0] - a[0], b[1] - a[1]);
+        let long = norm([b[0] - a[0], b[1] - a[1]]);
         let steps = (long / (0.5 * self.cell_px)).ceil().max(1.0);
         let mut step = 0.0;
         while step <= steps {

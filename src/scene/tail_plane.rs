@@ -79,7 +79,7 @@ pub fn part(curves: &mut Vec<PageCurve>, nucleus: Point, ring_radius_px: f64, un
     let mut kept: Vec<usize> = Vec::new();
     for member in spot::outer_first(synchrones.len()) {
         let index = synchrones[member];
-        let apart = |other: &usize| apart_px(&curves[index], &curves[*other]) > DISTINCT * unit_px;
+        let apart = |other: &usize| come_apart(&curves[index], &curves[*other], DISTINCT * unit_px);
         if kept.iter().all(apart) {
             kept.push(index);
         }
@@ -96,21 +96,22 @@ pub fn part(curves: &mut Vec<PageCurve>, nucleus: Point, ring_radius_px: f64, un
     });
 }
 
-/// How far a curve comes away from another.
-fn apart_px(one: &PageCurve, other: &PageCurve) -> f64 {
+/// Whether a curve anywhere lies farther than `by_px` from all of another. Looks from the far end, where curves part.
+fn come_apart(one: &PageCurve, other: &PageCurve, by_px: f64) -> bool {
     let away = |p: &Point| {
-        let segments = other.pieces.iter().flat_map(|piece| piece.windows(2));
-        segments.map(|pair| distance_px(*p, pair[0], pair[1])).fold(f64::INFINITY, f64::min)
+        let mut segments = other.pieces.iter().flat_map(|piece| piece.windows(2));
+        segments.all(|pair| distance_squared(*p, pair[0], pair[1]) > by_px * by_px)
     };
-    one.pieces.iter().flatten().map(away).fold(0.0, f64::max)
+    one.pieces.iter().flatten().rev().any(away)
 }
 
-/// Distance of a point from a segment.
-fn distance_px(p: Point, a: Point, b: Point) -> f64 {
+/// Square of the distance of a point from a segment.
+fn distance_squared(p: Point, a: Point, b: Point) -> f64 {
     let (step, to) = ([b[0] - a[0], b[1] - a[1]], [p[0] - a[0], p[1] - a[1]]);
     let square = step[0] * step[0] + step[1] * step[1];
     let part = if square > 0.0 { ((to[0] * step[0] + to[1] * step[1]) / square).clamp(0.0, 1.0) } else { 0.0 };
-    libm::hypot(to[0] - step[0] * part, to[1] - step[1] * part)
+    let across = [to[0] - step[0] * part, to[1] - step[1] * part];
+    across[0] * across[0] + across[1] * across[1]
 }
 
 /// The distance from the nucleus at which these curves stand apart: their number over the angle that they fill.

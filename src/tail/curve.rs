@@ -7,6 +7,7 @@
 //! in the Sun.
 
 use crate::body::State;
+use crate::frame::norm;
 use crate::tail::grain::Vista;
 use crate::tail::law::Tails;
 use crate::time::Instant;
@@ -212,7 +213,7 @@ impl<F: Fn(f64) -> Option<Point>> Tracer<'_, F> {
 }
 
 fn radius(point: &Point) -> f64 {
-    libm::hypot(point.offset[0], point.offset[1])
+    norm(point.offset)
 }
 
 /// Distance of a place from the straight line between two points.
@@ -221,7 +222,7 @@ fn from_chord(place: [f64; 2], a: &Point, b: &Point) -> f64 {
     let [px, py] = [place[0] - a.offset[0], place[1] - a.offset[1]];
     let length2 = dx * dx + dy * dy;
     let part = if length2 > 0.0 { ((px * dx + py * dy) / length2).clamp(0.0, 1.0) } else { 0.0 };
-    libm::hypot(px - part * dx, py - part * dy)
+    norm([px - part * dx, py - part * dy])
 }
 
 #[cfg(test)]

@@ -15,7 +15,7 @@
 //! Probstein 1968; of this way to solve it: none, it is derived above and tested by round trip.
 
 use crate::body::State;
-use crate::frame::{half_turn, tangent, turn};
+use crate::frame::{half_turn, norm, tangent, turn};
 use crate::orbit::conic::SUN_GM_AU3_D2;
 use crate::tail::grain::Vista;
 use crate::tail::law::Tails;
@@ -77,7 +77,7 @@ pub struct Landing {
 /// # Errors
 /// Why there is none.
 pub fn landings(vista: &Vista, offset: [f64; 2], laws: &Tails) -> Result<Vec<Landing>, Reason> {
-    if libm::hypot(offset[0], offset[1]) < LEAST_OFFSET_RAD {
+    if norm(offset) < LEAST_OFFSET_RAD {
         return Err(Reason::OnNucleus);
     }
     let point = Point::of(vista, &in_orbit_plane(vista, offset)?);

@@ -80,8 +80,9 @@ impl Desk {
 
     /// The ion axes for the slowest, the drawn and the fastest wind, in full precision: wind, position angle, angle from
     /// antisolar, aberration; degrees, null where there is none.
-    pub fn ion_axes(&self) -> JsValue {
-        let wedge = &self.tails.ion;
+    pub fn ion_axes(&mut self) -> JsValue {
+        let tails = self.tails();
+        let wedge = &tails.ion;
         let rows = [&wedge.slowest, &wedge.axis, &wedge.fastest].map(|axis| {
             (
                 axis.wind_km_s,
@@ -106,16 +107,18 @@ impl Desk {
     }
 
     /// Draws the map of dust by beta and age.
-    pub fn draw_map(&self, context: &CanvasRenderingContext2d, theme: &str, width_px: f64, height_px: f64) {
+    pub fn draw_map(&mut self, context: &CanvasRenderingContext2d, theme: &str, width_px: f64, height_px: f64) {
+        let tails = self.tails();
         let laws = &self.engine.plan().tails;
         let seen = self.engine.vista(&self.seen.sky).seen;
-        let scene = sheet_map::compose(&self.tails.perspective.map, laws, seen, width_px, height_px);
+        let scene = sheet_map::compose(&tails.perspective.map, laws, seen, width_px, height_px);
         paint(&scene, named_theme(theme), &mut CanvasPainter::new(context));
     }
 
     /// The map in words.
-    pub fn map_words(&self) -> String {
-        say::stage::map(self.engine.plan(), &self.seen.sky, &self.tails.perspective)
+    pub fn map_words(&mut self) -> String {
+        let tails = self.tails();
+        say::stage::map(self.engine.plan(), &self.seen.sky, &tails.perspective)
     }
 }
 
