@@ -164,6 +164,14 @@ impl Camera {
         [0.5 * f64::from(self.pixels_wide), 0.5 * f64::from(self.pixels_high)]
     }
 
+    /// How far from the nucleus the field reaches, tangent units, as drawn about a nucleus not far from the chip.
+    pub fn reach_tan(&self) -> f64 {
+        let half = self.half_px();
+        let diagonal = libm::hypot(half[0], half[1]);
+        let away = libm::hypot(self.nucleus_right_px, self.nucleus_up_px);
+        (diagonal + away.min(2.0 * diagonal)) * self.scale_tan()
+    }
+
     pub fn shorter_side_px(&self) -> f64 {
         f64::from(self.pixels_wide.min(self.pixels_high))
     }
