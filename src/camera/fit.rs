@@ -217,15 +217,24 @@ fn rotations(axes: &Axes, directions: &[Vector3<f64>], worth: Worth) -> Vec<Opti
 fn best(all: &[Option<(f64, Stand)>], directions: &[Vector3<f64>], worth: Worth) -> Vec<(f64, Stand)> {
     let value = |step: usize| all[step % STEPS].map_or(f64::NEG_INFINITY, |found| found.0);
     // Rotations better than both neighbours, the best of them first.
-    let mut peaks: Vec<(f64, Stand)> = (0..STEPS)
+    let peaks = (0..STEPS)
         .filter(|&step| value(step) >= value(step + 1) && value(step) >= value(step + STEPS - 1))
         .filter_map(|step| all[step])
         .collect();
-    peaks.sort_by(|a, b| b.0.total_cmp(&a.0));
-    peaks.truncate(FINALISTS);
-    let mut fine: Vec<(f64, Stand)> = peaks.into_iter().map(|peak| polished(peak, directions, worth)).collect();
-    fine.sort_by(|a, b| b.0.total_cmp(&a.0));
-    fine
+    let fine = best_first(peaks).into_iter().take(FINALISTS).map(|peak| polished(peak, directions, worth)).collect();
+    best_first(fine)
+}
+
+/// A few stands in the order of their worth; for so few a plain search does, and is the smallest code.
+fn best_first(mut stands: Vec<(f64, Stand)>) -> Vec<(f64, Stand)> {
+    for at in 0..stands.len() {
+        for other in at + 1..stands.len() {
+            if stands[other].0 > stands[at].0 {
+                stands.swap(at, other);
+            }
+        }
+    }
+    stands
 }
 
 /// A stand turned and moved as long as that makes it worth more.

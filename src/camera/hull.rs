@@ -1,37 +1,30 @@
 //! What is the smallest convex figure around some points of a plane?
 //!
 //! A gnomonic picture of a convex figure is convex, so whatever rectangle holds the corners of the hull holds all points.
-//! Andrew's monotone chain (1979).
+//! Gift wrapping (Jarvis 1973): no sorting, and the hulls here have few corners.
 
-/// Corners of the convex hull, in turn; fewer than three where the points lie on a line. Points that are not numbers are
-/// left out.
+/// Corners of the convex hull, in turn; two at most where the points lie on a line. Points that are not numbers are left
+/// out.
 pub fn hull(points: &[[f64; 2]]) -> Vec<[f64; 2]> {
-    let mut sorted: Vec<[f64; 2]> = points.iter().copied().filter(|p| p[0].is_finite() && p[1].is_finite()).collect();
-    sorted.sort_by(|a, b| a[0].total_cmp(&b[0]).then(a[1].total_cmp(&b[1])));
-    sorted.dedup();
-    if sorted.len() < 3 {
-        return sorted;
-    }
-    let mut corners = half(sorted.iter());
-    let mut upper = half(sorted.iter().rev());
-    corners.pop();
-    upper.pop();
-    corners.append(&mut upper);
-    corners
-}
-
-/// One side of the hull, from the first point to the last.
-fn half<'a>(points: impl Iterator<Item = &'a [f64; 2]>) -> Vec<[f64; 2]> {
-    let mut kept: Vec<[f64; 2]> = Vec::new();
-    for &p in points {
-        while let [.., a, b] = kept[..]
-            && (b[0] - a[0]) * (p[1] - a[1]) - (b[1] - a[1]) * (p[0] - a[0]) <= 0.0
-        {
-            kept.pop();
+    let finite = || points.iter().copied().filter(|p| p[0].is_finite() && p[1].is_finite());
+    let lower = |a: [f64; 2], b: [f64; 2]| if (b[0], b[1]) < (a[0], a[1]) { b } else { a };
+    let Some(first) = finite().reduce(lower) else { return Vec::new() };
+    let mut corners = vec![first];
+    loop {
+        let here = corners[corners.len() - 1];
+        // The point with all others to its left; of several in line, the farthest.
+        let next = finite().filter(|&p| p != here).reduce(|best, p| {
+            let (to_best, to_p) = ([best[0] - here[0], best[1] - here[1]], [p[0] - here[0], p[1] - here[1]]);
+            let left = to_best[0] * to_p[1] - to_best[1] * to_p[0];
+            let farther = to_p[0] * to_p[0] + to_p[1] * to_p[1] > to_best[0] * to_best[0] + to_best[1] * to_best[1];
+            if left < 0.0 || left == 0.0 && farther { p } else { best }
+        });
+        match next {
+            // Rounding may step past the first corner; no corner comes twice.
+            Some(next) if !corners.contains(&next) => corners.push(next),
+            _ => return corners,
         }
-        kept.push(p);
     }
-    kept
 }
 
 #[cfg(test)]

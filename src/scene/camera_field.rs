@@ -84,7 +84,8 @@ impl Frame {
         let size_px = LABEL_SIZE * room.unit_px;
         let half = [width_px(&self.words, size_px, false) / 2.0, size_px * (ABOVE + BELOW) / 2.0];
         let gap = (HANDLE + 5.0) * room.unit_px;
-        let sides = [[0.0, -1.0], [0.0, 1.0], [1.0, 0.0], [-1.0, 0.0], [0.8, -1.0], [-0.8, -1.0], [0.8, 1.0], [-0.8, 1.0]];
+        let sides =
+            [[0.0, -1.0], [0.0, 1.0], [1.0, 0.0], [-1.0, 0.0], [0.8, -1.0], [-0.8, -1.0], [0.8, 1.0], [-0.8, 1.0]];
         let area = [1.0, 1.7, 2.6]
             .into_iter()
             .flat_map(|far| sides.map(|side| (far, side)))

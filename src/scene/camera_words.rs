@@ -12,6 +12,10 @@ use crate::frame::half_turn;
 use crate::sky::Sky;
 use crate::tail::ion::Wedge;
 
+/// Where a pole stands in the way.
+pub const NO_POINTING: &str = "So near the celestial pole no pointing has this rotation at its middle and the nucleus at \
+                               this place of the chip: turn the camera or move the nucleus.";
+
 /// A quantity of the camera: its name, and what is to be said.
 pub type Line = (&'static str, String);
 
@@ -27,7 +31,11 @@ pub fn standing(camera: &Camera, field: &Field) -> Vec<Line> {
     let long = if camera.pixels_wide == camera.pixels_high {
         "none: the chip is square".to_owned()
     } else {
-        format!("position angle {}, which is also {}", position_angle(long), position_angle(long + std::f64::consts::PI))
+        format!(
+            "position angle {}, which is also {}",
+            position_angle(long),
+            position_angle(long + std::f64::consts::PI)
+        )
     };
     let parity = if camera.mirrored {
         "mirror-reversed: with north up, east is right"
@@ -42,8 +50,13 @@ pub fn standing(camera: &Camera, field: &Field) -> Vec<Line> {
         ("Image up", image_up),
         ("Long side", long),
         ("Parity", parity.to_owned()),
-        ("Rotator", format!("reads {:.1}\u{b0}", camera.rotator_reading_deg())),
-        ("After a meridian flip", format!("the image stands on its head: image up at {flipped:.1}\u{b0}")),
+        (
+            "Rotator",
+            format!(
+                "reads {:.1}\u{b0}; after a meridian flip the image stands on its head, image up at {flipped:.1}\u{b0}",
+                camera.rotator_reading_deg()
+            ),
+        ),
         ("Middle", quantity::place(right_ascension, declination)),
         ("Nucleus", nucleus(field)),
     ]
@@ -103,7 +116,8 @@ fn from_up(clockwise_rad: f64) -> String {
 /// One row of the night: time, altitude, turn of the field, antisolar direction, ion axis.
 pub fn hour(hour: &Hour) -> [String; 5] {
     let clock = hour.time.utc_minute().get(11..16).unwrap_or_default().to_owned();
-    let degrees = |angle: Option<f64>| angle.map_or_else(String::new, |angle| format!("{:.0}\u{b0}", angle.to_degrees()));
+    let degrees =
+        |angle: Option<f64>| angle.map_or_else(String::new, |angle| format!("{:.0}\u{b0}", angle.to_degrees()));
     let lies = |course: &Option<Course>| {
         let Some(course) = course else { return "none".to_owned() };
         let angle = format!("{:.0}\u{b0}", half_turn(course.clockwise_from_up_rad).to_degrees());
@@ -113,20 +127,24 @@ pub fn hour(hour: &Hour) -> [String; 5] {
         }
     };
     let out = hour.field.as_ref().is_none_or(|field| !field.holds(field.nucleus_px));
-    let [antisolar, ion] = if out {
-        ["nucleus off the chip".to_owned(), String::new()]
-    } else {
-        [lies(&hour.antisolar), lies(&hour.ion)]
-    };
-    [clock, degrees(hour.altitude_rad), degrees(hour.turned_rad), antisolar, ion].map(|text| text.replace('-', "\u{2212}"))
+    let [antisolar, ion] =
+        if out { ["nucleus off the chip".to_owned(), String::new()] } else { [lies(&hour.antisolar), lies(&hour.ion)] };
+    [clock, degrees(hour.altitude_rad), degrees(hour.turned_rad), antisolar, ion]
+        .map(|text| text.replace('-', "\u{2212}"))
 }
 
 /// What the mount does to the field.
 pub fn mount(mount: Mount) -> &'static str {
     match mount {
-        Mount::Equatorial => "An equatorial mount keeps the field's position angle; a meridian flip turns it by 180\u{b0}.",
-        Mount::Altazimuth => "On an altazimuth mount the field turns with the zenith; the rotation holds at the plan's time.",
-        Mount::FixedTripod => "On a fixed tripod the sky drifts through the field; the placement holds at the plan's time.",
+        Mount::Equatorial => {
+            "An equatorial mount keeps the field's position angle; a meridian flip turns it by 180\u{b0}. Angles run clockwise from image up."
+        }
+        Mount::Altazimuth => {
+            "On an altazimuth mount the field turns with the zenith; the rotation holds at the plan's time. Angles run clockwise from image up."
+        }
+        Mount::FixedTripod => {
+            "On a fixed tripod the sky drifts through the field; the placement holds at the plan's time. Angles run clockwise from image up."
+        }
     }
 }
 
@@ -143,12 +161,16 @@ pub fn fit(found: &Fit, before: &Camera) -> String {
             if camera.nucleus_up_px < 0.0 { "below" } else { "above" },
         ),
         Fit::TooLarge(short) => too_large(short, before),
-        Fit::AcrossPole { .. } => "A placement does, but the celestial pole lies between the nucleus and the middle of the \
+        Fit::AcrossPole { .. } => {
+            "A placement does, but the celestial pole lies between the nucleus and the middle of the \
              chip there: rotation and offset cannot say which way the camera points. Place the field by hand."
-            .to_owned(),
-        Fit::Hopeless => "No placement does: there is nothing to hold, the margin is wider than the chip, or the tails reach \
+                .to_owned()
+        }
+        Fit::Hopeless => {
+            "No placement does: there is nothing to hold, the margin is wider than the chip, or the tails reach \
              too far around the sky for one picture."
-            .to_owned(),
+                .to_owned()
+        }
     }
 }
 
@@ -156,7 +178,9 @@ fn too_large(short: &Shortfall, before: &Camera) -> String {
     let lens = match short.focal_length_mm {
         Some(focal) => format!("a focal length of {} mm or less", quantity::figures(focal)),
         // Rounded up, so that it still does.
-        None => format!("a scale of {:.2} arcsec per pixel or more", (short.scale_tan / ARCSEC_RAD * 100.0).ceil() / 100.0),
+        None => {
+            format!("a scale of {:.2} arcsec per pixel or more", (short.scale_tan / ARCSEC_RAD * 100.0).ceil() / 100.0)
+        }
     };
     let mosaic = match short.mosaic {
         Some(mosaic) if mosaic.across * mosaic.down > 1 => format!(

@@ -17,12 +17,12 @@ use crate::tail::ion::Wedge;
 /// Size of a card: inside the printable area of A4 and of letter paper, 96 pixels to the inch.
 pub const SIZE_PX: [f64; 2] = [700.0, 940.0];
 /// Height of the drawing at its top.
-pub const DRAWING_PX: [f64; 2] = [700.0, 430.0];
+pub const DRAWING_PX: [f64; 2] = [700.0, 440.0];
 
 const MARGIN: f64 = 14.0;
-const SIZE: f64 = 11.0;
+const SIZE: f64 = 10.5;
 const NAMES_WIDTH: f64 = 130.0;
-const ENTRY_GAP: f64 = 3.0;
+const ENTRY_GAP: f64 = 2.0;
 
 /// All that a card says beside its drawing.
 pub struct Card<'a> {
@@ -48,6 +48,10 @@ pub fn compose(card: &Card, drawing: Scene) -> Scene {
     for (words, strong) in heading(card) {
         pen.paragraph(&words, strong);
     }
+    // Danger first: it is never what does not fit.
+    for caution in card.cautions.iter().filter(|caution| caution.weight() == Weight::Danger) {
+        pen.paragraph(&caution.sentence(), true);
+    }
     let field = card.plan.camera.as_ref().and_then(|camera| Field::of(camera, &card.sky.axes.sight));
     if let (Some(camera), Some(field)) = (&card.plan.camera, &field) {
         pen.rule();
@@ -61,8 +65,8 @@ pub fn compose(card: &Card, drawing: Scene) -> Scene {
         pen.paragraph("No camera, so directions are given on the sky only.", false);
     }
     pen.rule();
-    for caution in card.cautions {
-        pen.paragraph(&caution.sentence(), caution.weight() == Weight::Danger);
+    for caution in card.cautions.iter().filter(|caution| caution.weight() != Weight::Danger) {
+        pen.paragraph(&caution.sentence(), false);
     }
     pen.paragraph(
         "Position angles are J2000, north through east. The picture is a model, relative. A direction is a prediction for gas or \
@@ -91,7 +95,7 @@ fn heading(card: &Card) -> Vec<(String, bool)> {
             .replace('-', "−")
     });
     let mut lines = vec![
-        (format!("{}   {}   {iso}", card.plan.comet.name, time.ut_decimal_day(2)), true),
+        (format!("{} · {} · {iso}", card.plan.comet.name, time.ut_decimal_day(2)), true),
         (format!("{site}{altitude}."), false),
         (card.headline.to_owned(), false),
     ];

@@ -67,7 +67,14 @@ pub fn compose(plan: &Plan, sky: &Sky, tails: &TailLayers, view: &SkyView) -> Sc
     tail_plane::part(&mut curves, vane.center, vane.radius_px, scene.unit_px);
     let wedge_px = vane.radius_px * mark::reach(Direction::IonAxis);
     let wedge = tail_plane::wedge_ends(tails, &facing, vane.center, wedge_px);
-    let lines = Lines { vane: &vane, hands: &hands, wedge: &wedge, curves: &curves, before: &tails.spots_before, frame: frame.as_ref() };
+    let lines = Lines {
+        vane: &vane,
+        hands: &hands,
+        wedge: &wedge,
+        curves: &curves,
+        before: &tails.spots_before,
+        frame: frame.as_ref(),
+    };
     let writing = Writing::of(&scene, &facing, notes, &lines);
 
     if let Some(image) = &tails.picture {

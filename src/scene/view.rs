@@ -58,7 +58,7 @@ impl SkyView {
     /// The view that a drawing with a camera opens with: a place `reach_tan` (tangent) from the nucleus is still on it.
     pub fn around(width_px: f64, height_px: f64, reach_tan: f64) -> Self {
         let half_px = 0.5 * width_px.min(height_px).max(1.0);
-        let pixel_scale_rad = (1.12 * reach_tan / half_px).clamp(FINEST_SCALE_RAD, COARSEST_SCALE_RAD);
+        let pixel_scale_rad = (reach_tan / half_px).clamp(FINEST_SCALE_RAD, COARSEST_SCALE_RAD);
         SkyView { pixel_scale_rad, ..SkyView::start(width_px, height_px) }
     }
 

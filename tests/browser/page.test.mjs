@@ -7,6 +7,7 @@ import { after, before, describe } from "node:test";
 import { existsSync } from "node:fs";
 import { BROWSERS, PAGE_FILE, serve } from "./browsers.mjs";
 import access from "./access.mjs";
+import camera from "./camera.mjs";
 import gallery from "./gallery.mjs";
 import input from "./input.mjs";
 import layout from "./layout.mjs";
@@ -36,7 +37,7 @@ for (const name of wanted) {
         context.server.stop();
       }
     });
-    for (const part of [quiet, numbers, tails, time, input, access, layout, gallery]) {
+    for (const part of [quiet, numbers, tails, camera, time, input, access, layout, gallery]) {
       part(context);
     }
   });
