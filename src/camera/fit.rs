@@ -16,9 +16,9 @@
 //!
 //! Measured against 10,000 random placements on each of 200 random geometries: tests/camera.rs.
 
-use super::Camera;
 use super::field::Field;
 use super::hull::hull;
+use super::{Camera, turn_deg};
 use crate::frame::{Axes, half_turn, position_angle_rad, tangent};
 use nalgebra::{Rotation3, Unit, Vector3};
 use std::f64::consts::PI;
@@ -270,7 +270,7 @@ fn settled(camera: &Camera, axes: &Axes, stand: &Stand, directions: &[Vector3<f6
     // Of the two ways round, the one nearer to how the camera stands now.
     let away = half_turn(upright - camera.image_up_position_angle_deg.to_radians()).abs();
     let over = if away > 0.5 * PI { -1.0 } else { 1.0 };
-    let turned_deg = (upright.to_degrees() + if over < 0.0 { 180.0 } else { 0.0 }).rem_euclid(360.0);
+    let turned_deg = turn_deg(upright.to_degrees() + if over < 0.0 { 180.0 } else { 0.0 });
     let scale = camera.scale_tan();
     let exact = Camera {
         image_up_position_angle_deg: turned_deg,
@@ -279,7 +279,7 @@ fn settled(camera: &Camera, axes: &Axes, stand: &Stand, directions: &[Vector3<f6
         ..camera.clone()
     };
     let round = Camera {
-        image_up_position_angle_deg: ((turned_deg * 100.0).round() / 100.0).rem_euclid(360.0),
+        image_up_position_angle_deg: turn_deg((turned_deg * 100.0).round() / 100.0),
         nucleus_right_px: exact.nucleus_right_px.round(),
         nucleus_up_px: exact.nucleus_up_px.round(),
         ..camera.clone()
@@ -353,7 +353,7 @@ fn mosaic(camera: &Camera, axes: &Axes, directions: &[Vector3<f64>], asked_px: f
         let count = across * down;
         if found.as_ref().is_none_or(|(fewest, fullest, _)| (count, filled) < (*fewest, *fullest)) {
             let upright = position_angle_rad(&stand.up, &Axes::at(&stand.sight))?;
-            let image_up_position_angle_deg = upright.to_degrees().round().rem_euclid(360.0);
+            let image_up_position_angle_deg = turn_deg(upright.to_degrees().round());
             found = Some((count, filled, Mosaic { across, down, image_up_position_angle_deg }));
         }
     }

@@ -178,9 +178,7 @@ impl Camera {
 
     /// What the rotator reads for this rotation, degrees, [0, 360).
     pub fn rotator_reading_deg(&self) -> f64 {
-        let reading = (self.image_up_position_angle_deg - self.rotator_offset_deg).rem_euclid(360.0);
-        // The remainder of a tiny negative number rounds to 360.
-        if reading >= 360.0 { 0.0 } else { reading }
+        turn_deg(self.image_up_position_angle_deg - self.rotator_offset_deg)
     }
 
     /// The same camera with the scale of another focal length, tangent units per pixel.
@@ -192,4 +190,11 @@ impl Camera {
         }
         camera
     }
+}
+
+/// Degrees brought into [0, 360), digits as typed where they lie there already.
+pub fn turn_deg(angle_deg: f64) -> f64 {
+    let turned = angle_deg - 360.0 * (angle_deg / 360.0).floor();
+    // A tiny negative number rounds to 360.
+    if turned >= 360.0 { 0.0 } else { turned }
 }

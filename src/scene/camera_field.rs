@@ -9,8 +9,8 @@ use super::label::Room;
 use super::lettering::{ABOVE, BELOW, Rect, Text, width_px};
 use super::view::{Facing, SkyView, Up};
 use super::{Point, Role, Scene, Shape, quantity};
-use crate::camera::Camera;
 use crate::camera::field::Field;
+use crate::camera::{Camera, turn_deg};
 use crate::frame::{Axes, tangent};
 use crate::sky::Sky;
 
@@ -63,9 +63,11 @@ impl Frame {
         Some(Frame { corners, stem, words })
     }
 
-    /// The box of the handle, which no label covers.
-    pub fn handle_area(&self, unit_px: f64) -> Option<Rect> {
-        self.stem.map(|[_, end]| Rect::around(end, (HANDLE + 2.0) * unit_px, (HANDLE + 2.0) * unit_px))
+    /// The boxes of handle and corners, which no label covers.
+    pub fn areas(&self, unit_px: f64) -> Vec<Rect> {
+        let around = |center, half: f64| Rect::around(center, half * unit_px, half * unit_px);
+        let handle = self.stem.map(|[_, end]| around(end, HANDLE + 2.0));
+        self.corners.iter().map(|&corner| around(corner, 5.0)).chain(handle).collect()
     }
 
     /// What lies within `reach_px` of a point of the page; the handle first.
@@ -191,7 +193,7 @@ pub fn turned_toward(camera: &Camera, sky: &Sky, view: &SkyView, at: Point) -> O
 /// The camera turned about its middle to a position angle, which is rounded to a tenth of a degree.
 pub fn turned_to(camera: &Camera, sky: &Sky, image_up_deg: f64) -> Option<Camera> {
     let field = Field::of(camera, &sky.axes.sight)?;
-    let turned = Camera { image_up_position_angle_deg: tenth(image_up_deg.rem_euclid(360.0)), ..camera.clone() };
+    let turned = Camera { image_up_position_angle_deg: turn_deg(tenth(image_up_deg)), ..camera.clone() };
     // Where the nucleus falls once the chip is turned about its middle.
     let axes = Axes::at(&field.sight);
     let (sine, cosine) = libm::sincos(turned.image_up_position_angle_deg.to_radians());

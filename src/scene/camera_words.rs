@@ -6,7 +6,7 @@ use super::quantity::{self, position_angle};
 use crate::camera::field::{Course, Field};
 use crate::camera::fit::{Fit, OVERLAP, Shortfall};
 use crate::camera::turn::Hour;
-use crate::camera::{Camera, Mount};
+use crate::camera::{Camera, Mount, turn_deg};
 use crate::frame::earth_rotation::ARCSEC_RAD;
 use crate::frame::half_turn;
 use crate::sky::Sky;
@@ -43,7 +43,7 @@ pub fn standing(camera: &Camera, field: &Field) -> Vec<Line> {
         "as on the sky: with north up, east is left"
     };
     let [right_ascension, declination] = field.middle_rad();
-    let flipped = (camera.image_up_position_angle_deg + 180.0).rem_euclid(360.0);
+    let flipped = turn_deg(camera.image_up_position_angle_deg + 180.0);
     vec![
         ("Field", format!("{across} × {down}")),
         ("Scale", format!("{} per pixel", quantity::arc(libm::atan(camera.scale_tan())))),

@@ -234,6 +234,7 @@ impl Writing {
         let page = page(scene);
         let mut room = Room::new(page.grown(-0.5 * MARGIN * unit), vane.center, vane.radius_px, unit);
         room.taken.extend(notes.areas());
+        room.taken.extend(frame.iter().flat_map(|frame| frame.areas(unit)));
         let in_sight = vane.is_in_sight(scene);
         let letters: Vec<Text> = if in_sight { vane.letters(scene, facing) } else { Vec::new() };
         let free = |letter: &Text| {
@@ -243,7 +244,6 @@ impl Writing {
         room.taken.extend(letters.iter().map(Text::area));
         room.taken.extend(hands.iter().map(|hand| mark::area(hand.end, unit)));
         room.taken.push(Rect::around(vane.center, 8.0 * unit, 8.0 * unit));
-        room.taken.extend(frame.and_then(|frame| frame.handle_area(unit)));
         room.hands.extend(hands.iter().map(|hand| [vane.center, hand.end]));
         room.hands.extend(wedge.iter().map(|&edge| [vane.center, edge]));
 
