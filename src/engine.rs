@@ -4,9 +4,12 @@
 //! [`Watch`].
 
 pub mod easel;
+pub mod sheet;
 
 use crate::body::SPAN;
 use crate::body::observer::Observer;
+use crate::camera::Camera;
+use crate::camera::turn::{self, Hour};
 use crate::caution::Caution;
 use crate::error::Error;
 use crate::frame::earth_rotation::celestial_to_terrestrial;
@@ -59,6 +62,25 @@ impl Engine {
 
     pub fn plan(&self) -> &Plan {
         &self.plan
+    }
+
+    /// Takes other cameras; nothing that was computed depends on them.
+    ///
+    /// # Errors
+    /// What [`Camera::validate`] refuses.
+    pub fn set_cameras(&mut self, camera: Option<Camera>, cameras: Vec<Camera>) -> Result<(), Error> {
+        if let Some(camera) = &camera {
+            camera.validate("camera")?;
+        }
+        (self.plan.camera, self.plan.cameras) = (camera, cameras);
+        Ok(())
+    }
+
+    /// The field of the plan's camera through some times, set up at `start`; None without a camera, or where its mount needs
+    /// a site.
+    pub fn camera_hours(&mut self, start: Instant, times: &[Instant]) -> Option<Vec<Hour>> {
+        let camera = self.plan.camera.as_ref()?;
+        turn::through(&mut self.watch, camera, &self.plan.tails, start, times)
     }
 
     pub fn orbit(&self) -> &Orbit {

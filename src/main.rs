@@ -24,6 +24,9 @@ tailvane: where a comet's tails lie on the sky
   tailvane dust PLAN [--at TIME ...] [--beta B,...] [--ages D,...] [--json]
       dust of each beta at each age (days), without ejection speed;
       what is left out is chosen within the plan's ranges
+  tailvane camera PLAN [--at TIME ...] [--json]
+      how the plan's camera stands, and where on its chip the tails lie;
+      its mount carries it from the plan's time on
   tailvane draw PLAN --view VIEW --out FILE.svg [--at TIME]
       [--width PX] [--height PX] [--theme THEME]
       the picture of the page; the views and themes are named when one is wrong

@@ -6,6 +6,7 @@
 
 mod answer;
 mod bench;
+mod camera;
 mod examples;
 mod season;
 mod tails;
@@ -13,6 +14,8 @@ mod typed;
 
 use crate::body::observer::Observer;
 use crate::body::site_code;
+use crate::camera::Camera;
+use crate::camera::field::Field;
 use crate::engine::easel::{Easel, Wishes};
 use crate::engine::{Engine, TailView, View};
 use crate::error::{Error, Kind, Place};
@@ -22,6 +25,7 @@ use crate::paint::canvas::CanvasPainter;
 use crate::paint::{paint, svg};
 use crate::plan::{Plan, paste};
 use crate::say;
+use crate::scene::camera_field;
 use crate::scene::pointer;
 use crate::scene::theme::Theme;
 use crate::scene::view::{SkyView, Up};
@@ -121,6 +125,8 @@ pub struct Desk {
     view: SkyView,
     /// Whether a person zoomed or panned; until then the view follows the size of the drawing.
     view_chosen: bool,
+    /// How the view opens for the plan's camera; a camera that is only moved or turned keeps it.
+    opening_tan: Option<f64>,
     season: Option<Season>,
     read: Vec<Entry>,
 }
@@ -135,6 +141,7 @@ impl Desk {
             tails: None,
             tails_fresh: false,
             hasty: false,
+            opening_tan: engine.plan().camera.as_ref().map(Camera::reach_tan),
             easel: Easel::default(),
             wishes: Wishes::default(),
             engine,
@@ -279,7 +286,11 @@ impl Desk {
         if self.view_chosen {
             self.view = SkyView { width_px, height_px, ..self.view };
         } else {
-            self.view = SkyView { up: self.view.up, ..SkyView::start(width_px, height_px) };
+            let opening = match self.opening_tan {
+                Some(reach_tan) => SkyView::around(width_px, height_px, reach_tan),
+                None => SkyView::start(width_px, height_px),
+            };
+            self.view = SkyView { up: self.view.up, ..opening };
         }
     }
 
@@ -287,7 +298,8 @@ impl Desk {
     pub fn draw(&mut self, context: &CanvasRenderingContext2d, theme: &str) {
         let theme = named_theme(theme);
         let wishes = Wishes { theme, ..self.wishes };
-        let scene = self.easel.sky(&self.engine, &self.seen.sky, &self.view, &wishes);
+        let view = self.facing_view();
+        let scene = self.easel.sky(&self.engine, &self.seen.sky, &view, &wishes);
         paint(&scene, theme, &mut CanvasPainter::new(context));
     }
 
@@ -295,7 +307,8 @@ impl Desk {
     pub fn svg(&mut self, theme: &str) -> String {
         let theme = named_theme(theme);
         let wishes = Wishes { theme, quality: Quality::STILL, ..self.wishes };
-        let scene = self.easel.sky(&self.engine, &self.seen.sky, &self.view, &wishes);
+        let view = self.facing_view();
+        let scene = self.easel.sky(&self.engine, &self.seen.sky, &view, &wishes);
         let tails = self.tails();
         let saying = self.engine.saying(&self.seen.sky, &tails);
         let title = format!("{}, {}", self.engine.plan().comet.name, self.seen.sky.time.utc_minute());
@@ -304,7 +317,7 @@ impl Desk {
 
     /// What lies under the pointer, in words, one fact to a line.
     pub fn hover(&self, x_px: f64, y_px: f64) -> String {
-        let place = pointer::hover(&self.seen.sky, &self.view, x_px, y_px).words();
+        let place = pointer::hover(&self.seen.sky, &self.facing_view(), x_px, y_px).words();
         format!("{place}\n{}", self.landing_words(x_px, y_px))
     }
 
@@ -351,11 +364,33 @@ impl Desk {
         }
     }
 
+    /// The view with the camera's upright as it stands under this sky; north up where there is none.
+    fn facing_view(&self) -> SkyView {
+        if !matches!(self.view.up, Up::Camera { .. }) {
+            return self.view;
+        }
+        let sky = &self.seen.sky;
+        let camera = self.engine.plan().camera.as_ref();
+        let field = camera.and_then(|camera| Field::of(camera, &sky.axes.sight));
+        SkyView { up: field.map_or(Up::North, |field| camera_field::up(&field)), ..self.view }
+    }
+
+    /// Opens the view anew for the plan's camera.
+    fn reopen(&mut self) {
+        self.opening_tan = self.engine.plan().camera.as_ref().map(Camera::reach_tan);
+        self.reset_view();
+    }
+
     fn take(&mut self, plan: Plan) -> Result<JsValue, JsValue> {
         let (engine, time, seen) = prepared(plan).map_err(refusal)?;
         self.season = None;
         (self.tails, self.tails_fresh) = (None, false);
+        let size = |engine: &Engine| engine.plan().camera.as_ref().map(|camera| (camera.half_px(), camera.scale_tan()));
+        let resized = size(&self.engine) != size(&engine);
         (self.engine, self.time, self.seen) = (engine, time, seen);
+        if resized {
+            self.reopen();
+        }
         Ok(JsValue::TRUE)
     }
 

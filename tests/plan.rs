@@ -90,7 +90,7 @@ fn refusals_name_key_line_and_what_is_allowed() {
         &["unknown key `ecc`", "comet.elements", "`eccentricity`", "line 7, column"],
     );
     refuses("\"height_m\"", "\"tails\": 1, \"height_m\"", &["unknown key `tails`"]);
-    refuses("\"observer\"", "\"camera\": {}, \"observer\"", &["unknown key `camera`"]);
+    refuses("\"observer\"", "\"camera\": {}, \"observer\"", &["no `pixels_wide` at camera"]);
     refuses("0.52", "\"0.52\"", &["string \"0.52\"", "comet.elements.perihelion_distance_au", "a number"]);
     refuses("0.52", "-0.52", &["line 6, column 33", "-0.52", "comet.elements.perihelion_distance_au", "above 0"]);
     refuses("0.52", "0", &["above 0"]);

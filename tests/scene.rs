@@ -1,5 +1,7 @@
 //! Is what is drawn readable, true to the sky, and the same every time?
 
+#[path = "scene/camera.rs"]
+mod camera;
 #[path = "scene/contrast.rs"]
 mod contrast;
 #[path = "scene/gallery.rs"]

@@ -2,11 +2,11 @@
 
 use super::{Call, Limits, Stop, in_words, text};
 use tailvane::engine::easel::{Easel, Wishes};
+use tailvane::engine::sheet;
 use tailvane::engine::{Engine, View};
 use tailvane::error::{Error, Kind, Place};
 use tailvane::paint::svg;
 use tailvane::scene::theme::Theme;
-use tailvane::scene::view::SkyView;
 use tailvane::scene::{Scene, orbit_view};
 use tailvane::tail::cloud::Quality;
 
@@ -14,9 +14,9 @@ use tailvane::tail::cloud::Quality;
 type Drawing = (&'static str, Draw);
 
 /// Makes the scene of a view, in the theme that will paint it, of a size in pixels.
-type Draw = fn(&Engine, &View, Theme, [f64; 2]) -> Scene;
+type Draw = fn(&mut Engine, &View, Theme, [f64; 2]) -> Scene;
 
-const VIEWS: &[Drawing] = &[("sky", sky), ("orbit", orbit)];
+const VIEWS: &[Drawing] = &[("sky", sky), ("orbit", orbit), ("card", card)];
 
 const PIXELS: Limits = Limits { least: 64.0, greatest: 16_384.0 };
 
@@ -46,19 +46,24 @@ pub fn run(arguments: lexopt::Parser) -> Result<(), Stop> {
     let view = engine.view_at(time)?;
     let title = format!("{}, {}", engine.plan().comet.name, time.utc_minute());
     let saying = engine.saying(&view.sky, &engine.tails_at(&view.sky));
-    let scene = drawing(&engine, &view, theme, size_px);
+    let scene = drawing(&mut engine, &view, theme, size_px);
     let file = svg::write(&scene, theme, &title, &saying.sentence);
     std::fs::write(&out, file).map_err(|error| {
         Error::new(Kind::File, Place::Field(out.clone()), error.to_string(), "a file that can be written").into()
     })
 }
 
-fn sky(engine: &Engine, view: &View, theme: Theme, [width_px, height_px]: [f64; 2]) -> Scene {
+fn sky(engine: &mut Engine, view: &View, theme: Theme, [width_px, height_px]: [f64; 2]) -> Scene {
     let wishes = Wishes { theme, quality: Quality::STILL, ..Wishes::default() };
-    Easel::default().sky(engine, &view.sky, &SkyView::start(width_px, height_px), &wishes)
+    Easel::default().sky(engine, &view.sky, &sheet::opening(engine, width_px, height_px), &wishes)
 }
 
-fn orbit(engine: &Engine, view: &View, _theme: Theme, [width_px, height_px]: [f64; 2]) -> Scene {
+/// The field card has the size of its sheet.
+fn card(engine: &mut Engine, view: &View, theme: Theme, _size_px: [f64; 2]) -> Scene {
+    sheet::field_card(engine, view, theme, &Wishes::default())
+}
+
+fn orbit(engine: &mut Engine, view: &View, _theme: Theme, [width_px, height_px]: [f64; 2]) -> Scene {
     orbit_view::compose(engine.plan(), &view.sky, &engine.vista(&view.sky), width_px, height_px)
 }
 

@@ -1,5 +1,6 @@
 //! Which commands are there, and what do they share: files, times, lists of numbers, and why a call stops?
 
+mod camera;
 mod draw;
 mod dust;
 mod elements;
@@ -17,8 +18,14 @@ use tailvane::time::{Instant, Stamp};
 /// A command by its name.
 type Command = (&'static str, fn(lexopt::Parser) -> Result<(), Stop>);
 
-pub const COMMANDS: &[Command] =
-    &[("sky", sky::run), ("ion", ion::run), ("dust", dust::run), ("draw", draw::run), ("elements", elements::run)];
+pub const COMMANDS: &[Command] = &[
+    ("sky", sky::run),
+    ("ion", ion::run),
+    ("dust", dust::run),
+    ("camera", camera::run),
+    ("draw", draw::run),
+    ("elements", elements::run),
+];
 
 /// The names of the commands, as a list in words.
 pub fn names() -> String {

@@ -82,7 +82,7 @@ impl Easel {
 
     /// Makes picture and isophotes unless those at hand still serve.
     fn look(&mut self, engine: &Engine, sky: &Sky, view: &SkyView, wishes: &Wishes) {
-        if self.plan.as_ref() != Some(engine.plan()) {
+        if !self.plan.as_ref().is_some_and(|plan| same_dust(plan, engine.plan())) {
             self.plan = Some(engine.plan().clone());
             self.weights = None;
             self.made = None;
@@ -110,6 +110,11 @@ impl Easel {
             self.isophotes = Some(Isophotes::of(cells, |y| picture.line(y), &area, steps));
         }
     }
+}
+
+/// Whether two plans have the same dust at the same time; a camera moves none.
+fn same_dust(one: &Plan, other: &Plan) -> bool {
+    one.tails == other.tails && one.comet == other.comet && one.observer == other.observer
 }
 
 /// Whether what was made is what is wanted, or finer.

@@ -24,6 +24,31 @@ pub fn unproject(xi: f64, eta: f64, axes: &Axes) -> Vector3<f64> {
     direction / direction.norm()
 }
 
+/// Unit vector toward the tangent point at which `direction` has the offset (xi east, eta north). Of the two that there may be
+/// near a pole, the one from which the way to the direction does not lead over it; None where there is none, since
+/// the direction stands nearer to a pole than xi asks for. Source: the relations of the spherical triangle, as in ERFA's tpors.
+pub fn tangent_point(direction: &Vector3<f64>, xi: f64, eta: f64) -> Option<Vector3<f64>> {
+    // The offset vector, sight + xi east + eta north, has this length, and lies along the direction.
+    let to = direction * ((1.0 + xi * xi + eta * eta).sqrt() / direction.norm());
+    let from_axis = (to.x * to.x + to.y * to.y).sqrt();
+    let square = from_axis * from_axis - xi * xi;
+    if square < 0.0 {
+        return None;
+    }
+    let along = square.sqrt();
+    let one = 1.0 + eta * eta;
+    let (sine, cosine) = ((to.z - eta * along) / one, (along + to.z * eta) / one);
+    // A negative cosine is a tangent point beyond the pole, where north would be south.
+    if cosine < 0.0 {
+        return None;
+    }
+    // The tangent point's meridian is turned from the direction's by the angle whose tangent is xi / along.
+    let (cos_ra, sin_ra) = if from_axis > 0.0 { (to.x / from_axis, to.y / from_axis) } else { (1.0, 0.0) };
+    let (cos_turn, sin_turn) = if from_axis > 0.0 { (along / from_axis, xi / from_axis) } else { (1.0, 0.0) };
+    let (x, y) = (cos_ra * cos_turn + sin_ra * sin_turn, sin_ra * cos_turn - cos_ra * sin_turn);
+    Some(Vector3::new(cosine * x, cosine * y, sine))
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;

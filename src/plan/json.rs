@@ -29,7 +29,9 @@ fn refusal(text: &str, path: &str, error: &serde_json::Error) -> Error {
         (format!("{key} twice"), "each key once".into())
     } else if error.is_data() {
         match message.split_once(", expected ") {
-            Some((found, allowed)) => (found.to_string(), allowed.replace("f64", "a number")),
+            Some((found, allowed)) => {
+                (found.to_string(), allowed.replace("f64", "a number").replace("u32", "a whole number"))
+            }
             None => (message.to_string(), "a valid value".into()),
         }
     } else {

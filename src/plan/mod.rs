@@ -12,11 +12,14 @@
 //! | `sites` | more sites | yes |
 //! | `time` | a date in any form of [`Stamp`] | yes |
 //! | `tails` | [`Tails`]: winds, dust, activity, ejection | yes, and any key in it |
+//! | `camera` | a [`Camera`], the one in use | yes |
+//! | `cameras` | more cameras | yes |
 
 mod json;
 pub mod paste;
 
 use crate::body::observer::{Observer, Site};
+use crate::camera::Camera;
 use crate::error::{Error, Kind, Place};
 use crate::orbit::elements::Comet;
 use crate::tail::law::Tails;
@@ -36,6 +39,10 @@ pub struct Plan {
     pub time: Option<Stamp>,
     /// Which tails are drawn, and what the dust is assumed to be.
     pub tails: Tails,
+    /// The camera in use, if any.
+    pub camera: Option<Camera>,
+    /// More cameras the person keeps.
+    pub cameras: Vec<Camera>,
 }
 
 /// The plan as its JSON lies; later sections become fields here and in [`Plan`].
@@ -52,6 +59,10 @@ struct Text {
     time: Option<Stamp>,
     #[serde(default, skip_serializing_if = "Tails::is_default")]
     tails: Tails,
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    camera: Option<Camera>,
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    cameras: Vec<Camera>,
 }
 
 /// The version alone, so that a newer plan is refused as newer and not for its new keys.
@@ -64,7 +75,15 @@ struct Header {
 impl From<Comet> for Plan {
     /// A comet seen from the geocentre, without a time.
     fn from(comet: Comet) -> Self {
-        Plan { comet, observer: Observer::Geocentre, sites: Vec::new(), time: None, tails: Tails::default() }
+        Plan {
+            comet,
+            observer: Observer::Geocentre,
+            sites: Vec::new(),
+            time: None,
+            tails: Tails::default(),
+            camera: None,
+            cameras: Vec::new(),
+        }
     }
 }
 
@@ -89,6 +108,8 @@ impl Plan {
             sites: read.sites,
             time: read.time,
             tails: read.tails,
+            camera: read.camera,
+            cameras: read.cameras,
         };
         plan.validate().map_err(|error| json::located(text, "", error))?;
         Ok(plan)
@@ -118,6 +139,8 @@ impl Plan {
             sites: self.sites.clone(),
             time: self.time.clone(),
             tails: self.tails.clone(),
+            camera: self.camera.clone(),
+            cameras: self.cameras.clone(),
         }
     }
 
@@ -131,7 +154,14 @@ impl Plan {
         for (index, site) in self.sites.iter().enumerate() {
             site.validate(&format!("sites[{index}]"))?;
         }
-        self.tails.validate()
+        self.tails.validate()?;
+        if let Some(camera) = &self.camera {
+            camera.validate("camera")?;
+        }
+        for (index, camera) in self.cameras.iter().enumerate() {
+            camera.validate(&format!("cameras[{index}]"))?;
+        }
+        Ok(())
     }
 }
 

@@ -10,6 +10,9 @@
 //! A drawing is made by one function per view: [`sky_plane::compose`], [`orbit_view::compose`],
 //! [`sheet_map::compose`]. New drawings need new roles, not new shapes.
 
+pub mod camera_field;
+pub mod camera_words;
+pub mod card;
 pub mod clip;
 pub mod image;
 pub mod isophote;
@@ -163,6 +166,11 @@ pub enum Role {
     Observer,
     /// Name of a place or line.
     PlaceLabel,
+    /// The camera's field: outline, strong corners, the handle at image up, its label.
+    CameraFrame,
+    CameraCorner,
+    CameraHandle,
+    CameraLabel,
     /// Brightness of a cell, from 0 (none) to [`theme::TONES`] - 1.
     Tone(u8),
     /// Hatch over cells.
@@ -172,6 +180,9 @@ pub enum Role {
     ScaleBar,
     /// Name of what is drawn.
     Title,
+    /// Body text of a card, and a rule between its parts.
+    CardText,
+    CardRule,
     /// Scale, field and orientation in words.
     Note,
     /// Something absent or doubtful, in words.

@@ -127,6 +127,10 @@ impl Notes {
                 format!("zenith up, at {}", quantity::position_angle(facing.up_position_angle_rad))
             }
             (Up::Zenith, None) => "no zenith here: north up, east left".to_string(),
+            (Up::Camera { mirrored, .. }, _) => {
+                let up = quantity::position_angle(facing.up_position_angle_rad);
+                format!("camera up, at {up}{}", if mirrored { ", mirror-reversed" } else { "" })
+            }
             (Up::North, _) => "north up, east left".to_string(),
         };
         let at = [scene.width_px - margin, foot - BELOW * size];

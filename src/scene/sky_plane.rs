@@ -6,6 +6,7 @@
 //! keep to the edges, letters to the ring, labels of hands find room, labels of curves take what is left, numbers are
 //! left out where anything else stands; then every curve makes room for every text.
 
+use super::camera_field::{self, Frame};
 use super::label::{Placed, Room, Wish};
 use super::layer::TailLayers;
 use super::lettering::{ABOVE, Anchor, BELOW, LINE, Rect, Text, width_px};
@@ -15,6 +16,7 @@ use super::spot::PageCurve;
 use super::vane::Vane;
 use super::view::{Facing, SkyView};
 use super::{Direction, Node, Point, Role, Scene, Shape, Slope, mark, quantity, spot, tail_plane};
+use crate::camera::field::Field;
 use crate::caution::Caution;
 use crate::plan::Plan;
 use crate::sky::Sky;
@@ -55,14 +57,24 @@ pub fn compose(plan: &Plan, sky: &Sky, tails: &TailLayers, view: &SkyView) -> Sc
     let vane = Vane::of(&scene, &facing);
     let page = page(&scene);
     let toward_sun = toward_sun(sky, tails, &facing, &page, scene.unit_px);
-    let legend = tail_plane::legend(tails, &toward_sun);
+    let field = plan.camera.as_ref().and_then(|camera| Field::of(camera, &sky.axes.sight));
+    let frame = field.as_ref().and_then(|field| Frame::of(field, &sky.axes, &facing, &page, scene.unit_px));
+    let mut legend = tail_plane::legend(tails, &toward_sun);
+    legend.extend(plan.camera.iter().map(|camera| camera_field::legend(camera, field.as_ref())));
     let notes = Notes::of(&scene, plan, sky, view, &facing, &legend);
     let hands = if vane.is_in_sight(&scene) { hands(sky, tails, &facing, &vane) } else { Vec::new() };
     let mut curves = tail_plane::curves(tails, &facing, &page);
     tail_plane::part(&mut curves, vane.center, vane.radius_px, scene.unit_px);
     let wedge_px = vane.radius_px * mark::reach(Direction::IonAxis);
     let wedge = tail_plane::wedge_ends(tails, &facing, vane.center, wedge_px);
-    let lines = Lines { vane: &vane, hands: &hands, wedge: &wedge, curves: &curves, before: &tails.spots_before };
+    let lines = Lines {
+        vane: &vane,
+        hands: &hands,
+        wedge: &wedge,
+        curves: &curves,
+        before: &tails.spots_before,
+        frame: frame.as_ref(),
+    };
     let writing = Writing::of(&scene, &facing, notes, &lines);
 
     if let Some(image) = &tails.picture {
@@ -76,6 +88,9 @@ pub fn compose(plan: &Plan, sky: &Sky, tails: &TailLayers, view: &SkyView) -> Sc
     }
     hatch_sunward_half(&mut scene, sky, &facing);
     tail_plane::draw(&mut scene, tails, toward_sun, &curves, &writing.areas());
+    if let Some(frame) = &frame {
+        frame.draw(&mut scene, &writing.areas());
+    }
     if vane.is_in_sight(&scene) {
         vane.draw(&mut scene, &facing);
         tail_plane::draw_wedge(&mut scene, tails, &facing, vane.center, wedge_px);
@@ -201,6 +216,7 @@ struct Lines<'a> {
     curves: &'a [PageCurve],
     /// Where labels of curves stood before.
     before: &'a [(String, Point)],
+    frame: Option<&'a Frame>,
 }
 
 /// Every text of a drawing, placed, and the leaders of labels.
@@ -213,11 +229,12 @@ struct Writing {
 
 impl Writing {
     fn of(scene: &Scene, facing: &Facing, notes: Notes, lines: &Lines) -> Self {
-        let Lines { vane, hands, wedge, curves, before } = *lines;
+        let Lines { vane, hands, wedge, curves, before, frame } = *lines;
         let unit = scene.unit_px;
         let page = page(scene);
         let mut room = Room::new(page.grown(-0.5 * MARGIN * unit), vane.center, vane.radius_px, unit);
         room.taken.extend(notes.areas());
+        room.taken.extend(frame.iter().flat_map(|frame| frame.areas(unit)));
         let in_sight = vane.is_in_sight(scene);
         let letters: Vec<Text> = if in_sight { vane.letters(scene, facing) } else { Vec::new() };
         let free = |letter: &Text| {
@@ -241,6 +258,8 @@ impl Writing {
             let leader = leader(hand, wish, &placed, unit);
             writing.leaders.extend(leader.map(|line| (Role::Leader(hand.direction), line)));
         }
+        let label = frame.and_then(|frame| frame.label(&mut room));
+        writing.texts.extend(label.map(|text| (Role::CameraLabel, text)));
         let spots = spot::find(&mut room, curves, before);
         writing.texts.extend(tail_plane::labels(curves, &spots, unit));
         writing.texts.extend(letters.into_iter().map(|letter| (Role::Cardinal, letter)));

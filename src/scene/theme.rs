@@ -360,6 +360,10 @@ impl Theme {
             Role::SheetEdgeOn => line(p.sheet, 4.0),
             Role::Observer => Look { fill: Some(p.ground), ..line(p.text, 1.8) },
             Role::PlaceLabel => letters(p.text),
+            Role::CameraFrame => line(p.text, 1.0),
+            Role::CameraCorner => line(p.text, 2.6),
+            Role::CameraHandle => Look { fill: Some(p.ground), ..line(p.text, 1.8) },
+            Role::CameraLabel => letters(p.text),
             Role::Tone(level) => {
                 let share = f64::from(level.min(TONES - 1)) / f64::from(TONES - 1);
                 fill(self.dust_color(BRIGHTEST_CELL * share), 1.0)
@@ -368,6 +372,8 @@ impl Theme {
             Role::Axis => line(p.dial, 1.0),
             Role::ScaleBar => line(p.text, 1.4),
             Role::Title => letters(p.text),
+            Role::CardText => Look { fill: Some(p.text), ..BARE },
+            Role::CardRule => line(p.rule, 1.0),
             Role::Note => letters(p.quiet),
             Role::Caution => letters(p.caution),
         }

@@ -2,20 +2,21 @@
 //!
 //! Sky: gnomonic offsets from the nucleus, xi east and eta north, tangent values (radians near the
 //! nucleus). Page: pixels, x right, y down. With north up, east is to the left, as one sees the sky; that
-//! one reversal is made in [`Facing::leftward`] and nowhere else in the crate.
-//!
-//! Left out: mirrored or turned camera pictures.
+//! one reversal is made in [`Facing::leftward`] and nowhere else in the crate, and left out there for the picture of a
+//! mirror-reversed camera.
 
 use super::Point;
 use crate::sky::Sky;
 
 /// What points up on the page.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[derive(Clone, Copy, Debug, PartialEq)]
 pub enum Up {
     /// Celestial north, J2000.
     North,
     /// The zenith of the observer's site; north where there is no site, or the comet stands in the zenith.
     Zenith,
+    /// Image up of a camera, at this position angle at the nucleus; east to the right where the camera is mirror-reversed.
+    Camera { position_angle_rad: f64, mirrored: bool },
 }
 
 /// What part of the sky is drawn, and how large.
@@ -44,6 +45,7 @@ pub struct Facing {
     pub up_position_angle_rad: f64,
     sin_up: f64,
     cos_up: f64,
+    mirrored: bool,
 }
 
 impl SkyView {
@@ -51,6 +53,13 @@ impl SkyView {
     pub fn start(width_px: f64, height_px: f64) -> Self {
         let pixel_scale_rad = 5.0_f64.to_radians() / width_px.min(height_px).max(1.0);
         SkyView { width_px, height_px, pixel_scale_rad, offset_px: [0.0, 0.0], up: Up::North }
+    }
+
+    /// The view that a drawing with a camera opens with: a place `reach_tan` (tangent) from the nucleus is still on it.
+    pub fn around(width_px: f64, height_px: f64, reach_tan: f64) -> Self {
+        let half_px = 0.5 * width_px.min(height_px).max(1.0);
+        let pixel_scale_rad = (reach_tan / half_px).clamp(FINEST_SCALE_RAD, COARSEST_SCALE_RAD);
+        SkyView { pixel_scale_rad, ..SkyView::start(width_px, height_px) }
     }
 
     /// The view with everything `factor` times larger about a point of the page, which stays where it is.
@@ -80,9 +89,18 @@ impl SkyView {
         let up_position_angle_rad = match self.up {
             Up::North => 0.0,
             Up::Zenith => sky.site.as_ref().and_then(|site| site.zenith_position_angle_rad).unwrap_or(0.0),
+            Up::Camera { position_angle_rad, .. } => position_angle_rad,
         };
+        let mirrored = matches!(self.up, Up::Camera { mirrored: true, .. });
         let (sin_up, cos_up) = libm::sincos(up_position_angle_rad);
-        Facing { nucleus: self.nucleus(), pixel_scale_rad: self.pixel_scale_rad, up_position_angle_rad, sin_up, cos_up }
+        Facing {
+            nucleus: self.nucleus(),
+            pixel_scale_rad: self.pixel_scale_rad,
+            up_position_angle_rad,
+            sin_up,
+            cos_up,
+            mirrored,
+        }
     }
 
     /// Where a tangent-plane offset falls on the page for `sky`.
@@ -123,8 +141,8 @@ impl Facing {
 
     /// An offset (east, north) turned so that up is up, with east to the left: page right and page up.
     /// Its own inverse but for the turn. The one place where the sky is seen from inside.
-    fn leftward(east: f64, north: f64) -> [f64; 2] {
-        [-east, north]
+    fn leftward(&self, east: f64, north: f64) -> [f64; 2] {
+        [if self.mirrored { east } else { -east }, north]
     }
 
     /// Where a tangent-plane offset (xi east, eta north) falls on the page.
@@ -137,7 +155,7 @@ impl Facing {
     pub fn to_sky(&self, x_px: f64, y_px: f64) -> [f64; 2] {
         let right = (x_px - self.nucleus[0]) * self.pixel_scale_rad;
         let above = (self.nucleus[1] - y_px) * self.pixel_scale_rad;
-        let [east, north] = Self::leftward(right, above);
+        let [east, north] = self.leftward(right, above);
         [east * self.cos_up + north * self.sin_up, north * self.cos_up - east * self.sin_up]
     }
 
@@ -150,7 +168,7 @@ impl Facing {
     fn step(&self, east: f64, north: f64) -> [f64; 2] {
         let turned_east = east * self.cos_up - north * self.sin_up;
         let turned_north = east * self.sin_up + north * self.cos_up;
-        let [right, above] = Self::leftward(turned_east, turned_north);
+        let [right, above] = self.leftward(turned_east, turned_north);
         [right, -above]
     }
 }

@@ -128,7 +128,7 @@ impl Desk {
         let sky = &self.seen.sky;
         let vista = self.engine.vista(sky);
         let laws = &self.engine.plan().tails;
-        let offset = self.view.to_sky(sky, x_px, y_px);
+        let offset = self.facing_view().to_sky(sky, x_px, y_px);
         say::stage::landings(&inverse::landings(&vista, offset, laws), &vista, laws)
     }
 }

@@ -7,6 +7,7 @@ import { after, before, describe } from "node:test";
 import { existsSync } from "node:fs";
 import { BROWSERS, PAGE_FILE, serve } from "./browsers.mjs";
 import access from "./access.mjs";
+import camera from "./camera.mjs";
 import gallery from "./gallery.mjs";
 import input from "./input.mjs";
 import layout from "./layout.mjs";
@@ -38,7 +39,7 @@ describe("the page", { concurrency: wanted.length }, () => {
           context.server.stop();
         }
       });
-      for (const part of [quiet, numbers, tails, time, input, access, layout, gallery]) {
+      for (const part of [quiet, numbers, tails, camera, time, input, access, layout, gallery]) {
         part(context);
       }
     });

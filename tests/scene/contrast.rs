@@ -58,7 +58,8 @@ fn every_text_of_the_page_stands_out_at_4_5_to_1() {
 #[test]
 fn every_text_of_a_drawing_stands_out_at_4_5_to_1() {
     let labels = DIRECTIONS.map(Role::Label);
-    let others = [Role::DialNumber, Role::Cardinal, Role::Title, Role::Note, Role::Caution, Role::PlaceLabel];
+    let others =
+        [Role::DialNumber, Role::Cardinal, Role::Title, Role::Note, Role::Caution, Role::PlaceLabel, Role::CameraLabel];
     for theme in Theme::ALL {
         let ground = theme.look(Role::Ground).fill.expect("a ground").css();
         for role in labels.into_iter().chain(FAMILIES.map(Role::CurveLabel)).chain(others) {
@@ -97,6 +98,9 @@ fn controls_and_what_a_drawing_must_show_stand_out_at_3_to_1() {
             Role::SheetEdgeOn,
             Role::Observer,
             Role::Axis,
+            Role::CameraFrame,
+            Role::CameraCorner,
+            Role::CameraHandle,
         ];
         for role in lines.chain(FAMILIES.map(Role::Curve)).chain(others) {
             let ratio = contrast(&theme.look(role).pen.expect("a line").color.css(), &colors["--ground"]);
