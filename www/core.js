@@ -18,18 +18,20 @@ Tailvane.core = (function () {
    * neither. A response, and not its bytes, so that the core is compiled while it is still being inflated.
    */
   async function answerOf(name, type) {
+    const headers = { "Content-Type": type };
     const block = document.querySelector('script[data-block="' + name + '"]');
     if (block) {
       const packed = fromBase64(block.textContent);
       block.remove();
       const stream = new Blob([packed]).stream().pipeThrough(new DecompressionStream("deflate-raw"));
-      return new Response(stream, { headers: { "Content-Type": type } });
+      return new Response(stream, { headers });
     }
     if (document.querySelector("script[data-block]") || location.protocol === "file:" || packedPage) {
       return null;
     }
     const answer = await fetch(name);
-    return answer.ok ? answer : null;
+    // Servers add to the type, or know none; the compiler takes it bare.
+    return answer.ok ? new Response(answer.body, { headers }) : null;
   }
 
   const packedPage = document.querySelector("script[data-block]") !== null;
