@@ -1,7 +1,7 @@
 /*
  * Where does the core come from, and what happens when it fails?
  *
- * The packed page carries the wasm in an inert data block; the unpacked page fetches it from beside itself. A core
+ * The packed page carries the wasm in an inert block (see unpack.js); the unpacked page fetches it from beside itself. A core
  * that panicked is thrown away: `Tailvane.core.fresh()` makes a new one from the module that was kept.
  * No astronomy here or in any script of the page.
  */
@@ -13,29 +13,16 @@ Tailvane.core = (function () {
   let sitesText = null;
   let exports = null;
 
-  /** The bytes of a data block by name, or of the file of that name beside an unpacked page; null when there is neither. */
+  /** The bytes of a part of the packed page, or of the file of that name beside an unpacked one; null when there is neither. */
   async function bytesOf(name) {
-    const block = document.querySelector('script[data-block="' + name + '"]');
-    if (block) {
-      const packed = fromBase64(block.textContent);
-      block.remove();
-      const stream = new Blob([packed]).stream().pipeThrough(new DecompressionStream("deflate-raw"));
-      return new Uint8Array(await new Response(stream).arrayBuffer());
+    if (typeof tailvanePart === "function") {
+      return tailvanePart(name);
     }
-    if (document.querySelector("script[data-block]") || location.protocol === "file:" || packedPage) {
+    if (location.protocol === "file:") {
       return null;
     }
     const answer = await fetch(name);
     return answer.ok ? new Uint8Array(await answer.arrayBuffer()) : null;
-  }
-
-  const packedPage = document.querySelector("script[data-block]") !== null;
-
-  function fromBase64(text) {
-    if (Uint8Array.fromBase64) {
-      return Uint8Array.fromBase64(text);
-    }
-    return Uint8Array.from(atob(text), (letter) => letter.charCodeAt(0));
   }
 
   /** Loads and compiles the core once. Throws an Error with a plain sentence where that cannot be done. */

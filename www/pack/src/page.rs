@@ -1,15 +1,17 @@
 //! How do the parts become one file under a strict policy?
 //!
-//! www/index.html is a legal page that also runs unpacked. Here its style sheet and its classic scripts
-//! are put inline, the wasm and the site table become inert data blocks (deflate, base64), and a content
-//! security policy is written last that allows exactly these scripts and styles, and no network at all.
+//! www/index.html is a legal page that also runs unpacked. Here its style sheets are put inline; its classic scripts
+//! become one text, which travels with the wasm in an inert block; the site table has a block of its own, opened when a
+//! person looks for a site. One script stands as such: www/unpack.js, which opens the blocks and hands the scripts
+//! to the browser. A content security policy is written last that allows exactly these two scripts and these
+//! styles, each by its hash, and no network at all.
 
+use crate::block::block;
 use crate::wasm::Build;
 use base64::Engine;
 use base64::engine::general_purpose::STANDARD;
 use sha2::{Digest, Sha256};
 use std::fs;
-use std::num::NonZeroU64;
 use std::path::{Path, PathBuf};
 
 /// The packed page.
@@ -24,6 +26,9 @@ pub const GLUE: &str = "glue.js";
 pub const WASM: &str = "core.wasm";
 /// The site table of the unpacked page, and the name of its data block in the packed one.
 pub const SITES: &str = "sites.data";
+/// The script that opens the blocks, and the name under which it finds the other scripts.
+const UNPACK: &str = "unpack.js";
+const SCRIPTS: &str = "scripts.js";
 
 /// The site table column by column, which packs a fifth smaller than line by line: each column on a line, its fields
 /// separated by tabs. Remarks are left out; the page puts the lines together again.
@@ -67,28 +72,18 @@ fn site_table(root: &Path) -> Result<Option<Vec<u8>>, String> {
 pub fn pack(root: &Path, build: &Build) -> Result<Packed, String> {
     let www = root.join("www");
     let read = |name: &str| fs::read_to_string(www.join(name)).map_err(|e| format!("www/{name}: {e}"));
-    let mut blocks = data_block(WASM, &build.wasm)?;
-    if let Some(table) = site_columns(root)? {
-        blocks.push_str(&data_block(SITES, &table)?);
-    }
-    let html =
-        assemble(&read("index.html")?, |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) }, &blocks)?;
+    let sites = site_columns(root)?;
+    let sites = sites.map(|table| block(&[(SITES, &table)])).transpose()?.unwrap_or_default();
+    let html = assemble(
+        &read("index.html")?,
+        &read(UNPACK)?,
+        |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) },
+        |scripts| Ok(block(&[(SCRIPTS, scripts.as_bytes()), (WASM, &build.wasm)])? + &sites),
+    )?;
     let path = root.join("target/page/tailvane.html");
     fs::create_dir_all(path.parent().expect("the page lies in a folder")).map_err(|e| format!("target/page: {e}"))?;
     fs::write(&path, &html).map_err(|e| format!("{}: {e}", path.display()))?;
     Ok(Packed { path, bytes: html.len() })
-}
-
-/// An inert block that carries bytes: deflate without a header, base64.
-fn data_block(name: &str, bytes: &[u8]) -> Result<String, String> {
-    let mut packed = Vec::new();
-    // One round: more gain a thousandth.
-    let options = zopfli::Options { iteration_count: NonZeroU64::MIN, ..zopfli::Options::default() };
-    zopfli::compress(options, zopfli::Format::Deflate, bytes, &mut packed).map_err(|e| format!("{name}: {e}"))?;
-    Ok(format!(
-        "<script type=\"application/octet-stream\" data-block=\"{name}\">{}</script>\n",
-        STANDARD.encode(packed)
-    ))
 }
 
 const STYLE_OPEN: &str = "<link rel=\"stylesheet\" href=\"";
@@ -96,11 +91,19 @@ const SCRIPT_OPEN: &str = "<script src=\"";
 /// Keeps browsers from asking the server for an icon.
 const NO_ICON: &str = "<link rel=\"icon\" href=\"data:,\">";
 const CHARSET: &str = "<meta charset=\"utf-8\">";
+/// Holds the place of the blocks until the scripts are all read; no text of a page has this character.
+const HERE: &str = "\0";
 
-/// The one file: styles and scripts inline in their order, the data blocks before the first script, the policy on top.
-fn assemble(index: &str, text_of: impl Fn(&str) -> Result<String, String>, blocks: &str) -> Result<String, String> {
+/// The one file: styles inline in their order; in the place of the scripts the blocks that `packed` makes of them, and
+/// the script that opens these; the policy on top.
+fn assemble(
+    index: &str,
+    unpack: &str,
+    text_of: impl Fn(&str) -> Result<String, String>,
+    packed: impl Fn(&str) -> Result<String, String>,
+) -> Result<String, String> {
     let mut style_hashes = Vec::new();
-    let mut script_hashes = Vec::new();
+    let mut scripts = String::new();
     let mut body = String::new();
     for line in index.lines() {
         let trimmed = line.trim();
@@ -110,13 +113,10 @@ fn assemble(index: &str, text_of: impl Fn(&str) -> Result<String, String>, block
             style_hashes.push(hash(&text));
             body.push_str(&format!("<style>{text}</style>\n"));
         } else if let Some(name) = between(trimmed, SCRIPT_OPEN, "\"></script>") {
-            let text = bare(&text_of(name)?);
-            refuse_end_tag(name, &text, "</script")?;
-            if script_hashes.is_empty() {
-                body.push_str(blocks);
+            if scripts.is_empty() {
+                body.push_str(HERE);
             }
-            script_hashes.push(hash(&text));
-            body.push_str(&format!("<script>{text}</script>\n"));
+            scripts.push_str(&bare(&text_of(name)?));
         } else if trimmed == NO_ICON {
             body.push_str(line);
             body.push('\n');
@@ -129,16 +129,20 @@ fn assemble(index: &str, text_of: impl Fn(&str) -> Result<String, String>, block
             body.push('\n');
         }
     }
+    let unpack = bare(unpack);
+    refuse_end_tag(UNPACK, &unpack, "</script")?;
     let policy = format!(
-        "{CHARSET}\n<meta http-equiv=\"Content-Security-Policy\" content=\"default-src 'none'; script-src {} 'wasm-unsafe-eval'; style-src {}; \
+        "{CHARSET}\n<meta http-equiv=\"Content-Security-Policy\" content=\"default-src 'none'; script-src {} {} 'wasm-unsafe-eval'; style-src {}; \
          img-src blob: data:; worker-src blob:; connect-src 'none'; base-uri 'none'; form-action 'none'\">",
-        script_hashes.join(" "),
+        hash(&unpack),
+        hash(&scripts),
         style_hashes.join(" ")
     );
-    if body.matches(CHARSET).count() != 1 || script_hashes.is_empty() || style_hashes.is_empty() {
+    if body.matches(CHARSET).count() != 1 || scripts.is_empty() || style_hashes.is_empty() {
         return Err(format!("www/index.html: expected one {CHARSET}, a style sheet and scripts"));
     }
-    Ok(body.replacen(CHARSET, &policy, 1))
+    let blocks = packed(&scripts)? + &format!("<script>{unpack}</script>\n");
+    Ok(body.replacen(CHARSET, &policy, 1).replacen(HERE, &blocks, 1))
 }
 
 /// A script or style sheet without indentation, empty lines and comments that fill their lines. No source of the
@@ -177,7 +181,7 @@ fn hash(text: &str) -> String {
 
 #[cfg(test)]
 mod tests {
-    use super::{assemble, bare, data_block, hash};
+    use super::{assemble, bare, hash};
 
     const INDEX: &str = "<head>\n<meta charset=\"utf-8\">\n<link rel=\"stylesheet\" href=\"a.css\">\n</head>\n<script src=\"a.js\"></script>\n";
 
@@ -185,14 +189,20 @@ mod tests {
         Ok(format!("{{{name}}}\n"))
     }
 
+    fn packed(scripts: &str) -> Result<String, String> {
+        Ok(format!("BLOCK of {scripts}"))
+    }
+
     #[test]
-    fn every_inline_block_is_named_in_the_policy_by_its_hash() {
-        let html = assemble(INDEX, text_of, "BLOCK\n").unwrap();
+    fn every_style_and_script_is_named_in_the_policy_by_its_hash() {
+        let index = INDEX.to_owned() + "<script src=\"b.js\"></script>\n";
+        let html = assemble(&index, "open();", text_of, packed).unwrap();
         assert!(html.contains("<style>{a.css}\n</style>"));
-        assert!(html.contains("BLOCK\n<script>{a.js}\n</script>"));
+        assert!(html.ends_with("BLOCK of {a.js}\n{b.js}\n<script>open();\n</script>\n"));
         assert!(html.contains(&format!(
-            "script-src {} 'wasm-unsafe-eval'; style-src {};",
-            hash("{a.js}\n"),
+            "script-src {} {} 'wasm-unsafe-eval'; style-src {};",
+            hash("open();\n"),
+            hash("{a.js}\n{b.js}\n"),
             hash("{a.css}\n")
         )));
     }
@@ -212,17 +222,8 @@ mod tests {
 
     #[test]
     fn an_address_outside_the_page_is_refused() {
-        assert!(assemble(&INDEX.replace("<script src", "<script defer src"), text_of, "").is_err());
-        assert!(assemble(INDEX, |_| Ok("</SCRIPT>".into()), "").is_err());
-    }
-
-    #[test]
-    fn a_data_block_inflates_to_the_same_bytes() {
-        use base64::Engine;
-        let bytes: Vec<u8> = (0..5000u32).map(|i| (i * i % 251) as u8).collect();
-        let block = data_block("x", &bytes).unwrap();
-        let text = block.split('>').nth(1).unwrap().split('<').next().unwrap();
-        let packed = base64::engine::general_purpose::STANDARD.decode(text).unwrap();
-        assert_eq!(miniz_oxide::inflate::decompress_to_vec(&packed).unwrap(), bytes);
+        assert!(assemble(&INDEX.replace("<script src", "<script defer src"), "", text_of, packed).is_err());
+        assert!(assemble(INDEX, "", |_| Ok("</STYLE>".into()), packed).is_err());
+        assert!(assemble(INDEX, "</SCRIPT>", text_of, packed).is_err());
     }
 }
