@@ -1,10 +1,10 @@
 //! How do the parts become one file under a strict policy?
 //!
-//! www/index.html is a legal page that also runs unpacked. Here its style sheets are put inline; its classic scripts
-//! become one text, which travels with the wasm in an inert block; the site table has a block of its own, opened when a
-//! person looks for a site. One script stands as such: www/unpack.js, which opens the blocks and hands the scripts
-//! to the browser. A content security policy is written last that allows exactly these two scripts and these
-//! styles, each by its hash, and no network at all.
+//! www/index.html is a legal page that also runs unpacked. Here what its body shows, its style sheets, its classic
+//! scripts and the wasm travel in one inert block; the site table has a block of its own, opened when a person looks
+//! for a site. One script stands as such: www/unpack.js, which opens the blocks and puts all in its place. A
+//! content security policy is written last that allows exactly these styles and scripts, by their hashes, and no
+//! network at all.
 
 use crate::block::block;
 use crate::wasm::Build;
@@ -26,8 +26,10 @@ pub const GLUE: &str = "glue.js";
 pub const WASM: &str = "core.wasm";
 /// The site table of the unpacked page, and the name of its data block in the packed one.
 pub const SITES: &str = "sites.data";
-/// The script that opens the blocks, and the name under which it finds the other scripts.
+/// The script that opens the blocks, and the names under which it finds the other parts of the page.
 const UNPACK: &str = "unpack.js";
+const BODY: &str = "body.html";
+const STYLES: &str = "styles.css";
 const SCRIPTS: &str = "scripts.js";
 
 /// The site table column by column, which packs a fifth smaller than line by line: each column on a line, its fields
@@ -74,12 +76,16 @@ pub fn pack(root: &Path, build: &Build) -> Result<Packed, String> {
     let read = |name: &str| fs::read_to_string(www.join(name)).map_err(|e| format!("www/{name}: {e}"));
     let sites = site_columns(root)?;
     let sites = sites.map(|table| block(&[(SITES, &table)])).transpose()?.unwrap_or_default();
-    let html = assemble(
-        &read("index.html")?,
-        &read(UNPACK)?,
-        |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) },
-        |scripts| Ok(block(&[(SCRIPTS, scripts.as_bytes()), (WASM, &build.wasm)])? + &sites),
-    )?;
+    let parts = taken_apart(&read("index.html")?, |name| {
+        if name == GLUE { Ok(build.glue.clone()) } else { read(name) }
+    })?;
+    let start = block(&[
+        (BODY, parts.body.as_bytes()),
+        (STYLES, parts.styles.as_bytes()),
+        (SCRIPTS, parts.scripts.as_bytes()),
+        (WASM, &build.wasm),
+    ])?;
+    let html = assembled(&parts, &read(UNPACK)?, &(start + &sites))?;
     let path = root.join("target/page/tailvane.html");
     fs::create_dir_all(path.parent().expect("the page lies in a folder")).map_err(|e| format!("target/page: {e}"))?;
     fs::write(&path, &html).map_err(|e| format!("{}: {e}", path.display()))?;
@@ -91,58 +97,73 @@ const SCRIPT_OPEN: &str = "<script src=\"";
 /// Keeps browsers from asking the server for an icon.
 const NO_ICON: &str = "<link rel=\"icon\" href=\"data:,\">";
 const CHARSET: &str = "<meta charset=\"utf-8\">";
-/// Holds the place of the blocks until the scripts are all read; no text of a page has this character.
-const HERE: &str = "\0";
+const NO_SCRIPT: &str = "<noscript>";
 
-/// The one file: styles inline in their order; in the place of the scripts the blocks that `packed` makes of them, and
-/// the script that opens these; the policy on top.
-fn assemble(
-    index: &str,
-    unpack: &str,
-    text_of: impl Fn(&str) -> Result<String, String>,
-    packed: impl Fn(&str) -> Result<String, String>,
-) -> Result<String, String> {
-    let mut style_hashes = Vec::new();
-    let mut scripts = String::new();
-    let mut body = String::new();
-    for line in index.lines() {
+/// www/index.html, taken apart: each is text without its tags.
+#[derive(Default)]
+struct Parts {
+    /// What stays in the head, one tag to a line.
+    head: String,
+    /// What the body shows, without what it says where scripts are switched off.
+    body: String,
+    without_scripts: String,
+    styles: String,
+    scripts: String,
+}
+
+/// The parts of a page whose style sheets, scripts and `noscript` stand alone on their lines, with nothing but their
+/// address.
+fn taken_apart(index: &str, text_of: impl Fn(&str) -> Result<String, String>) -> Result<Parts, String> {
+    let (head, body) = tag(index, "head").zip(tag(index, "body")).ok_or("www/index.html: expected a head and a body")?;
+    let mut parts = Parts::default();
+    for (line, of_head) in head.lines().map(|line| (line, true)).chain(body.lines().map(|line| (line, false))) {
         let trimmed = line.trim();
         if let Some(name) = between(trimmed, STYLE_OPEN, "\">") {
-            let text = bare(&text_of(name)?);
-            refuse_end_tag(name, &text, "</style")?;
-            style_hashes.push(hash(&text));
-            body.push_str(&format!("<style>{text}</style>\n"));
+            parts.styles.push_str(&bare(&text_of(name)?));
         } else if let Some(name) = between(trimmed, SCRIPT_OPEN, "\"></script>") {
-            if scripts.is_empty() {
-                body.push_str(HERE);
-            }
-            scripts.push_str(&bare(&text_of(name)?));
-        } else if trimmed == NO_ICON {
-            body.push_str(line);
-            body.push('\n');
-        } else if trimmed.contains("<script") || trimmed.contains("<link") || trimmed.contains("<style") {
+            parts.scripts.push_str(&bare(&text_of(name)?));
+        } else if trimmed.starts_with(NO_SCRIPT) {
+            parts.without_scripts.push_str(trimmed);
+        } else if trimmed != NO_ICON && ["<script", "<link", "<style"].iter().any(|open| trimmed.contains(open)) {
             return Err(format!(
                 "www/index.html: found {trimmed}; expected each style sheet and script alone on its line, with nothing but its address"
             ));
-        } else {
-            body.push_str(line);
-            body.push('\n');
+        } else if !trimmed.is_empty() {
+            let part = if of_head { &mut parts.head } else { &mut parts.body };
+            part.push_str(trimmed);
+            part.push('\n');
         }
     }
+    Ok(parts)
+}
+
+/// What the first tag of this name holds.
+fn tag<'a>(html: &'a str, name: &str) -> Option<&'a str> {
+    let (_, rest) = html.split_once(&format!("<{name}>\n"))?;
+    rest.split_once(&format!("</{name}>")).map(|(held, _)| held)
+}
+
+/// The one file: the policy on top of the head; in the body the blocks and the script that opens them.
+fn assembled(parts: &Parts, unpack: &str, blocks: &str) -> Result<String, String> {
     let unpack = bare(unpack);
-    refuse_end_tag(UNPACK, &unpack, "</script")?;
+    if unpack.to_ascii_lowercase().contains("</script") {
+        return Err(format!("www/{UNPACK}: holds </script, which would end its block"));
+    }
     let policy = format!(
         "{CHARSET}\n<meta http-equiv=\"Content-Security-Policy\" content=\"default-src 'none'; script-src {} {} 'wasm-unsafe-eval'; style-src {}; \
          img-src blob: data:; worker-src blob:; connect-src 'none'; base-uri 'none'; form-action 'none'\">",
         hash(&unpack),
-        hash(&scripts),
-        style_hashes.join(" ")
+        hash(&parts.scripts),
+        hash(&parts.styles)
     );
-    if body.matches(CHARSET).count() != 1 || scripts.is_empty() || style_hashes.is_empty() {
+    if parts.head.matches(CHARSET).count() != 1 || parts.scripts.is_empty() || parts.styles.is_empty() {
         return Err(format!("www/index.html: expected one {CHARSET}, a style sheet and scripts"));
     }
-    let blocks = packed(&scripts)? + &format!("<script>{unpack}</script>\n");
-    Ok(body.replacen(CHARSET, &policy, 1).replacen(HERE, &blocks, 1))
+    let head = parts.head.replacen(CHARSET, &policy, 1);
+    Ok(format!(
+        "<!DOCTYPE html>\n<html lang=\"en\">\n<head>\n{head}</head>\n<body>\n{}\n{blocks}<script>{unpack}</script>\n</body>\n</html>\n",
+        parts.without_scripts
+    ))
 }
 
 /// A script or style sheet without indentation, empty lines and comments that fill their lines. No source of the
@@ -166,14 +187,6 @@ fn between<'a>(line: &'a str, open: &str, close: &str) -> Option<&'a str> {
     line.strip_prefix(open)?.strip_suffix(close).filter(|name| !name.contains('"'))
 }
 
-fn refuse_end_tag(name: &str, text: &str, tag: &str) -> Result<(), String> {
-    if text.to_ascii_lowercase().contains(tag) {
-        Err(format!("www/{name}: holds {tag}, which would end its block"))
-    } else {
-        Ok(())
-    }
-}
-
 /// The hash of a block's exact text, as the policy names it.
 fn hash(text: &str) -> String {
     format!("'sha256-{}'", STANDARD.encode(Sha256::digest(text.as_bytes())))
@@ -181,24 +194,30 @@ fn hash(text: &str) -> String {
 
 #[cfg(test)]
 mod tests {
-    use super::{assemble, bare, hash};
+    use super::{assembled, bare, hash, taken_apart};
 
-    const INDEX: &str = "<head>\n<meta charset=\"utf-8\">\n<link rel=\"stylesheet\" href=\"a.css\">\n</head>\n<script src=\"a.js\"></script>\n";
+    const INDEX: &str = "<!DOCTYPE html>\n<html lang=\"en\">\n<head>\n<meta charset=\"utf-8\">\n<link rel=\"stylesheet\" href=\"a.css\">\n</head>\n\
+        <body>\n<main>\n  <p>Shown</p>\n</main>\n<noscript>Not shown</noscript>\n<script src=\"a.js\"></script>\n<script src=\"b.js\"></script>\n</body>\n</html>\n";
 
     fn text_of(name: &str) -> Result<String, String> {
         Ok(format!("{{{name}}}\n"))
     }
 
-    fn packed(scripts: &str) -> Result<String, String> {
-        Ok(format!("BLOCK of {scripts}"))
+    #[test]
+    fn a_page_is_taken_apart_and_nothing_is_lost() {
+        let parts = taken_apart(INDEX, text_of).unwrap();
+        assert_eq!(parts.head, "<meta charset=\"utf-8\">\n");
+        assert_eq!(parts.body, "<main>\n<p>Shown</p>\n</main>\n");
+        assert_eq!(parts.without_scripts, "<noscript>Not shown</noscript>");
+        assert_eq!(parts.styles, "{a.css}\n");
+        assert_eq!(parts.scripts, "{a.js}\n{b.js}\n");
     }
 
     #[test]
-    fn every_style_and_script_is_named_in_the_policy_by_its_hash() {
-        let index = INDEX.to_owned() + "<script src=\"b.js\"></script>\n";
-        let html = assemble(&index, "open();", text_of, packed).unwrap();
-        assert!(html.contains("<style>{a.css}\n</style>"));
-        assert!(html.ends_with("BLOCK of {a.js}\n{b.js}\n<script>open();\n</script>\n"));
+    fn styles_and_scripts_are_named_in_the_policy_by_their_hashes() {
+        let parts = taken_apart(INDEX, text_of).unwrap();
+        let html = assembled(&parts, "open();", "BLOCKS\n").unwrap();
+        assert!(html.ends_with("<noscript>Not shown</noscript>\nBLOCKS\n<script>open();\n</script>\n</body>\n</html>\n"));
         assert!(html.contains(&format!(
             "script-src {} {} 'wasm-unsafe-eval'; style-src {};",
             hash("open();\n"),
@@ -222,8 +241,9 @@ mod tests {
 
     #[test]
     fn an_address_outside_the_page_is_refused() {
-        assert!(assemble(&INDEX.replace("<script src", "<script defer src"), "", text_of, packed).is_err());
-        assert!(assemble(INDEX, "", |_| Ok("</STYLE>".into()), packed).is_err());
-        assert!(assemble(INDEX, "</SCRIPT>", text_of, packed).is_err());
+        assert!(taken_apart(&INDEX.replace("<script src", "<script defer src"), text_of).is_err());
+        assert!(taken_apart(&INDEX.replace("<body>", ""), text_of).is_err());
+        let parts = taken_apart(INDEX, text_of).unwrap();
+        assert!(assembled(&parts, "</SCRIPT>", "").is_err());
     }
 }
