@@ -2,8 +2,12 @@
 //!
 //! serde reads the values; this module turns its refusals into [`Error`]s with line, column and path, and finds the
 //! place of a path for refusals that come later, such as a value out of range. Columns count characters from 1.
+//! `layout` prints.
+
+mod layout;
 
 use crate::error::{Error, Kind, Place};
+pub(super) use layout::print;
 use serde::de::DeserializeOwned;
 use std::ops::Range;
 
@@ -95,6 +99,13 @@ pub(super) fn located(text: &str, prefix: &str, error: Error) -> Error {
     let place = place(text, path.strip_prefix(prefix).unwrap_or(path));
     let found = format!("{} at {path}", error.found);
     Error { found, place, ..error }
+}
+
+/// The text of a value of the object that is this valid JSON, by its key.
+pub(super) fn member<'a>(text: &'a str, key: &str) -> Option<&'a str> {
+    let named = |of: &Range<usize>| text[of.clone()].trim_matches('"') == key;
+    let (_, value) = children(text, skip_blanks(text, 0)).into_iter().find(|(of, _)| of.as_ref().is_some_and(named))?;
+    Some(&text[value])
 }
 
 /// Line and column of the value at `path` (as `sites[0].height_m`) in valid JSON; of the innermost part that exists.

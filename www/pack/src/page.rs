@@ -76,9 +76,8 @@ pub fn pack(root: &Path, build: &Build) -> Result<Packed, String> {
     let read = |name: &str| fs::read_to_string(www.join(name)).map_err(|e| format!("www/{name}: {e}"));
     let sites = site_columns(root)?;
     let sites = sites.map(|table| block(&[(SITES, &table)])).transpose()?.unwrap_or_default();
-    let parts = taken_apart(&read("index.html")?, |name| {
-        if name == GLUE { Ok(build.glue.clone()) } else { read(name) }
-    })?;
+    let parts =
+        taken_apart(&read("index.html")?, |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) })?;
     let start = block(&[
         (BODY, parts.body.as_bytes()),
         (STYLES, parts.styles.as_bytes()),
@@ -114,7 +113,8 @@ struct Parts {
 /// The parts of a page whose style sheets, scripts and `noscript` stand alone on their lines, with nothing but their
 /// address.
 fn taken_apart(index: &str, text_of: impl Fn(&str) -> Result<String, String>) -> Result<Parts, String> {
-    let (head, body) = tag(index, "head").zip(tag(index, "body")).ok_or("www/index.html: expected a head and a body")?;
+    let (head, body) =
+        tag(index, "head").zip(tag(index, "body")).ok_or("www/index.html: expected a head and a body")?;
     let mut parts = Parts::default();
     for (line, of_head) in head.lines().map(|line| (line, true)).chain(body.lines().map(|line| (line, false))) {
         let trimmed = line.trim();
@@ -217,7 +217,9 @@ mod tests {
     fn styles_and_scripts_are_named_in_the_policy_by_their_hashes() {
         let parts = taken_apart(INDEX, text_of).unwrap();
         let html = assembled(&parts, "open();", "BLOCKS\n").unwrap();
-        assert!(html.ends_with("<noscript>Not shown</noscript>\nBLOCKS\n<script>open();\n</script>\n</body>\n</html>\n"));
+        assert!(
+            html.ends_with("<noscript>Not shown</noscript>\nBLOCKS\n<script>open();\n</script>\n</body>\n</html>\n")
+        );
         assert!(html.contains(&format!(
             "script-src {} {} 'wasm-unsafe-eval'; style-src {};",
             hash("open();\n"),
