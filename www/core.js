@@ -49,16 +49,27 @@ Tailvane.core = (function () {
   /** The text of the site table, unpacked when first asked for; "" when the page has none. */
   async function sites() {
     if (sitesText === null) {
-      const bytes = await bytesOf("sites.data");
-      sitesText = bytes ? linesOf(new TextDecoder().decode(bytes)) : "";
+      const [words, numbers] = [await bytesOf("sites.data"), await bytesOf("sites.numbers")];
+      sitesText = words && numbers ? linesOf(new TextDecoder().decode(words), numbers) : "";
     }
     return sitesText;
   }
 
-  /** The table line by line again; it travels column by column, which packs smaller. */
-  function linesOf(columns) {
-    const [first, ...others] = columns.split("\n").map((column) => column.split("\t"));
-    return first.map((code, at) => [code, ...others.map((column) => column[at])].join("\t")).join("\n");
+  /** The lines of the site table, which travels as www/pack/src/sites.rs says. */
+  function linesOf(words, numbers) {
+    const [codes, names] = words.split("\n").map((column) => column.split("\t"));
+    const number = (column, row) =>
+      [3, 2, 1, 0].reduce((sum, byte) => sum * 256 + numbers[(4 * column + byte) * codes.length + row], 0);
+    return codes
+      .map((code, row) => {
+        const along = number(1, row) / 1e6;
+        const left = number(2, row);
+        const size = left >> 1;
+        const surface = Math.floor(Math.sqrt(Math.max(0, 1 - along * along) * 0.99330562) * 1e6 + 0.5);
+        const across = surface + (size % 2 ? -(size + 1) / 2 : size / 2);
+        return [code, number(0, row) / 1e5, along, (left % 2 ? -across : across) / 1e6, names[row]].join("\t");
+      })
+      .join("\n");
   }
 
   /** What the last panic said, or "". */

@@ -7,6 +7,7 @@
 //! network at all.
 
 use crate::block::block;
+use crate::sites;
 use crate::wasm::Build;
 use base64::Engine;
 use base64::engine::general_purpose::STANDARD;
@@ -24,48 +25,14 @@ pub struct Packed {
 pub const GLUE: &str = "glue.js";
 /// The wasm of the unpacked page, and the name of its data block in the packed one.
 pub const WASM: &str = "core.wasm";
-/// The site table of the unpacked page, and the name of its data block in the packed one.
+/// The two halves of the site table of the unpacked page, and their names in the block of the packed one.
 pub const SITES: &str = "sites.data";
+pub const SITE_NUMBERS: &str = "sites.numbers";
 /// The script that opens the blocks, and the names under which it finds the other parts of the page.
 const UNPACK: &str = "unpack.js";
 const BODY: &str = "body.html";
 const STYLES: &str = "styles.css";
 const SCRIPTS: &str = "scripts.js";
-
-/// The site table column by column, which packs a fifth smaller than line by line: each column on a line, its fields
-/// separated by tabs. Remarks are left out; the page puts the lines together again.
-///
-/// # Errors
-/// A table that cannot be read, or whose lines differ in their number of fields.
-pub fn site_columns(root: &Path) -> Result<Option<Vec<u8>>, String> {
-    let Some(table) = site_table(root)? else { return Ok(None) };
-    let text = String::from_utf8(table).map_err(|e| format!("the site table: {e}"))?;
-    let rows: Vec<Vec<&str>> = text
-        .lines()
-        .filter(|line| !line.is_empty() && !line.starts_with('#'))
-        .map(|line| line.split('\t').collect())
-        .collect();
-    let count = rows.first().map_or(0, Vec::len);
-    if rows.iter().any(|row| row.len() != count) {
-        return Err("the site table: its lines differ in their number of fields".into());
-    }
-    let column = |at: usize| rows.iter().map(|row| row[at]).collect::<Vec<_>>().join("\t");
-    Ok(Some((0..count).map(column).collect::<Vec<_>>().join("\n").into_bytes()))
-}
-
-/// The site table, when the project has one.
-fn site_table(root: &Path) -> Result<Option<Vec<u8>>, String> {
-    let folder = root.join("src/body");
-    let mut found: Vec<PathBuf> = fs::read_dir(&folder)
-        .map_err(|e| format!("{}: {e}", folder.display()))?
-        .filter_map(|entry| entry.ok().map(|entry| entry.path()))
-        .filter(|path| {
-            path.file_stem().is_some_and(|stem| stem == "site_codes") && path.extension().is_some_and(|e| e != "rs")
-        })
-        .collect();
-    found.sort();
-    found.first().map(|path| fs::read(path).map_err(|e| format!("{}: {e}", path.display()))).transpose()
-}
 
 /// Packs www/ and the built core into target/page/tailvane.html.
 ///
@@ -74,8 +41,8 @@ fn site_table(root: &Path) -> Result<Option<Vec<u8>>, String> {
 pub fn pack(root: &Path, build: &Build) -> Result<Packed, String> {
     let www = root.join("www");
     let read = |name: &str| fs::read_to_string(www.join(name)).map_err(|e| format!("www/{name}: {e}"));
-    let sites = site_columns(root)?;
-    let sites = sites.map(|table| block(&[(SITES, &table)])).transpose()?.unwrap_or_default();
+    let sites = sites::read(root)?;
+    let sites = block(&[(SITES, sites.words.as_bytes()), (SITE_NUMBERS, &sites.numbers)])?;
     let parts =
         taken_apart(&read("index.html")?, |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) })?;
     let start = block(&[
