@@ -2,12 +2,8 @@
 //!
 //! serde reads the values; this module turns its refusals into [`Error`]s with line, column and path, and finds the
 //! place of a path for refusals that come later, such as a value out of range. Columns count characters from 1.
-//! `layout` prints.
-
-mod layout;
 
 use crate::error::{Error, Kind, Place};
-pub(super) use layout::print;
 use serde::de::DeserializeOwned;
 use std::ops::Range;
 

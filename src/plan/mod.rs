@@ -99,12 +99,12 @@ impl Plan {
     /// The plan as indented JSON with a line end, keys in the module's order. Reading it gives this plan back, if it is
     /// valid.
     pub fn print(&self) -> String {
-        json::print(&self.text(), true) + "\n"
+        serde_json::to_string_pretty(&self.text()).unwrap_or_default() + "\n"
     }
 
     /// The plan as JSON on one line, without a line end.
     pub fn print_line(&self) -> String {
-        json::print(&self.text(), false)
+        serde_json::to_string(&self.text()).unwrap_or_default()
     }
 
     fn text(&self) -> Text {
