@@ -14,6 +14,7 @@ use crate::caution::Caution;
 use crate::error::Error;
 use crate::frame::earth_rotation::celestial_to_terrestrial;
 use crate::orbit::conic::Orbit;
+use crate::order;
 use crate::plan::Plan;
 use crate::say::{self, Saying};
 use crate::sky::Sky;
@@ -114,7 +115,7 @@ impl Engine {
         let mut cautions = self.cautions_of_elements(time);
         cautions.extend(sky.cautions.iter().cloned());
         cautions.extend(avoidance::cautions(&sky, |time| self.watch.sun_altitude_deg(time)));
-        cautions.sort_by_key(|caution| std::cmp::Reverse(caution.weight()));
+        order::by_rank(&mut cautions, |caution| u64::MAX - caution.weight() as u64);
         Ok(View { sky, cautions })
     }
 

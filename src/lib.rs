@@ -5,6 +5,7 @@
 //! | module | the question it answers |
 //! | --- | --- |
 //! | [`error`] | what was refused, where, and what is allowed? |
+//! | [`order`] | in which order do things stand? |
 //! | [`time`] | which instant does a typed date mean? |
 //! | [`caution`] | what was computed but is doubtful, and why? |
 //! | [`frame`] | how do directions turn into angles, and one frame into another? |
@@ -21,6 +22,7 @@
 #![forbid(unsafe_code)]
 
 pub mod error;
+pub mod order;
 pub mod time;
 pub mod caution;
 pub mod frame;

@@ -1,7 +1,7 @@
 /*
  * Where does the core come from, and what happens when it fails?
  *
- * The packed page carries the wasm in an inert data block; the unpacked page fetches it from beside itself. A core
+ * The packed page carries the wasm in an inert block (see unpack.js); the unpacked page fetches it from beside itself. A core
  * that panicked is thrown away: `Tailvane.core.fresh()` makes a new one from the module that was kept.
  * No astronomy here or in any script of the page.
  */
@@ -13,34 +13,16 @@ Tailvane.core = (function () {
   let sitesText = null;
   let exports = null;
 
-  /**
-   * A data block by name, or the file of that name beside an unpacked page, as a response of a type; null when there is
-   * neither. A response, and not its bytes, so that the core is compiled while it is still being inflated.
-   */
-  async function answerOf(name, type) {
-    const headers = { "Content-Type": type };
-    const block = document.querySelector('script[data-block="' + name + '"]');
-    if (block) {
-      const packed = fromBase64(block.textContent);
-      block.remove();
-      const stream = new Blob([packed]).stream().pipeThrough(new DecompressionStream("deflate-raw"));
-      return new Response(stream, { headers });
+  /** The bytes of a part of the packed page, or of the file of that name beside an unpacked one; null when there is neither. */
+  async function bytesOf(name) {
+    if (typeof tailvanePart === "function") {
+      return tailvanePart(name);
     }
-    if (document.querySelector("script[data-block]") || location.protocol === "file:" || packedPage) {
+    if (location.protocol === "file:") {
       return null;
     }
     const answer = await fetch(name);
-    // Servers add to the type, or know none; the compiler takes it bare.
-    return answer.ok ? new Response(answer.body, { headers }) : null;
-  }
-
-  const packedPage = document.querySelector("script[data-block]") !== null;
-
-  function fromBase64(text) {
-    if (Uint8Array.fromBase64) {
-      return Uint8Array.fromBase64(text);
-    }
-    return Uint8Array.from(atob(text), (letter) => letter.charCodeAt(0));
+    return answer.ok ? new Uint8Array(await answer.arrayBuffer()) : null;
   }
 
   /** Loads and compiles the core once. Throws an Error with a plain sentence where that cannot be done. */
@@ -48,11 +30,11 @@ Tailvane.core = (function () {
     if (typeof WebAssembly === "undefined") {
       throw new Error("This browser has WebAssembly switched off, and the page computes with it. Switch it on, or use another browser.");
     }
-    const answer = await answerOf("core.wasm", "application/wasm");
-    if (!answer) {
+    const bytes = await bytesOf("core.wasm");
+    if (!bytes) {
       throw new Error("The core of the page is missing. Build the page with cargo page, and open target/page/tailvane.html.");
     }
-    module = await WebAssembly.compileStreaming(answer);
+    module = await WebAssembly.compile(bytes);
     return fresh();
   }
 
@@ -67,16 +49,27 @@ Tailvane.core = (function () {
   /** The text of the site table, unpacked when first asked for; "" when the page has none. */
   async function sites() {
     if (sitesText === null) {
-      const answer = await answerOf("sites.data", "text/plain");
-      sitesText = answer ? linesOf(await answer.text()) : "";
+      const [words, numbers] = [await bytesOf("sites.data"), await bytesOf("sites.numbers")];
+      sitesText = words && numbers ? linesOf(new TextDecoder().decode(words), numbers) : "";
     }
     return sitesText;
   }
 
-  /** The table line by line again; it travels column by column, which packs smaller. */
-  function linesOf(columns) {
-    const [first, ...others] = columns.split("\n").map((column) => column.split("\t"));
-    return first.map((code, at) => [code, ...others.map((column) => column[at])].join("\t")).join("\n");
+  /** The lines of the site table, which travels as www/pack/src/sites.rs says. */
+  function linesOf(words, numbers) {
+    const [codes, names] = words.split("\n").map((column) => column.split("\t"));
+    const number = (column, row) =>
+      [3, 2, 1, 0].reduce((sum, byte) => sum * 256 + numbers[(4 * column + byte) * codes.length + row], 0);
+    return codes
+      .map((code, row) => {
+        const along = number(1, row) / 1e6;
+        const left = number(2, row);
+        const size = left >> 1;
+        const surface = Math.floor(Math.sqrt(Math.max(0, 1 - along * along) * 0.99330562) * 1e6 + 0.5);
+        const across = surface + (size % 2 ? -(size + 1) / 2 : size / 2);
+        return [code, number(0, row) / 1e5, along, (left % 2 ? -across : across) / 1e6, names[row]].join("\t");
+      })
+      .join("\n");
   }
 
   /** What the last panic said, or "". */

@@ -64,7 +64,7 @@ Tailvane.observer = (function () {
       fields.hidden = false;
       fields.querySelector("input").focus();
     });
-    if (document.querySelector('script[data-block="sites.data"]') || location.pathname.includes("/unpacked/")) {
+    if (document.querySelector('script[data-block~="sites.data"]') || location.pathname.includes("/unpacked/")) {
       Tailvane.find("box", "codes").hidden = false;
       search.addEventListener("input", findCodes);
     }

@@ -13,14 +13,13 @@ use std::ops::Range;
 /// [`Kind::Plan`], with line, column and path.
 pub(super) fn read<T: DeserializeOwned>(text: &str) -> Result<T, Error> {
     let mut deserializer = serde_json::Deserializer::from_str(text);
-    let value = serde_path_to_error::deserialize(&mut deserializer)
-        .map_err(|error| refusal(text, &error.path().to_string(), error.inner()))?;
-    deserializer.end().map_err(|error| refusal(text, ".", &error))?;
+    let value = T::deserialize(&mut deserializer).map_err(|error| refusal(text, &error))?;
+    deserializer.end().map_err(|error| refusal(text, &error))?;
     Ok(value)
 }
 
 /// serde's refusal in our words.
-fn refusal(text: &str, path: &str, error: &serde_json::Error) -> Error {
+fn refusal(text: &str, error: &serde_json::Error) -> Error {
     let message = error.to_string();
     let message = message.rsplit_once(" at line ").map_or(message.as_str(), |(head, _)| head);
     let (mut found, allowed) = if let Some(key) = message.strip_prefix("missing field ") {
@@ -42,15 +41,54 @@ fn refusal(text: &str, path: &str, error: &serde_json::Error) -> Error {
             found = format!("{plain}{rest}");
         }
     }
-    // For an unknown key the path ends in that key itself.
-    if error.is_data() && path != "." {
-        found = format!("{found} at {path}");
-    }
     let line = error.line().max(1);
     let bytes = error.column();
-    let content = text.split('\n').nth(line - 1).unwrap_or("");
+    let start: usize = text.split_inclusive('\n').take(line - 1).map(str::len).sum();
+    let content = text[start..].split('\n').next().unwrap_or("");
     let column = content.char_indices().take_while(|&(start, _)| start < bytes).count().max(1);
+    if error.is_data() {
+        // What is refused for what it lacks is refused once its last bracket is read.
+        let whole = message.starts_with("missing field ") || message.starts_with("invalid length ");
+        let mut path = path_to(text, start + bytes, whole);
+        // For an unknown key the path ends in that key itself, for one that came before in the object.
+        if message.starts_with("duplicate field ") {
+            path.truncate(path.rfind('.').unwrap_or(0));
+        }
+        if !path.is_empty() {
+            found = format!("{found} at {path}");
+        }
+    }
     Error::new(Kind::Plan, Place::Line { line, column }, found, allowed)
+}
+
+/// The path of the value that serde was reading when it had read this many bytes of valid JSON; empty for the whole.
+/// Where these end with a list or object, it is that one if `whole`, else the last one in it.
+fn path_to(text: &str, read: usize, whole: bool) -> String {
+    let mut path = String::new();
+    let mut start = skip_blanks(text, 0);
+    while read < end_of_value(text, start) + usize::from(!whole) {
+        let begun = |child: &(usize, (Option<Range<usize>>, Range<usize>))| {
+            let (key, value) = &child.1;
+            key.as_ref().unwrap_or(value).start <= read
+        };
+        let Some((index, (key, value))) = children(text, start).into_iter().enumerate().take_while(begun).last() else {
+            break;
+        };
+        match key {
+            Some(key) => {
+                let key = &text[key];
+                let dot = if path.is_empty() { "" } else { "." };
+                path.push_str(dot);
+                path.push_str(&serde_json::from_str(key).unwrap_or_else(|_| key.to_owned()));
+            }
+            None => path.push_str(&format!("[{index}]")),
+        }
+        if read <= value.start {
+            break;
+        }
+        start = value.start;
+    }
+    path
 }
 
 /// `error` moved from its path, read below `prefix`, to its line and column in `text`; the path joins what was found.
@@ -59,6 +97,13 @@ pub(super) fn located(text: &str, prefix: &str, error: Error) -> Error {
     let place = place(text, path.strip_prefix(prefix).unwrap_or(path));
     let found = format!("{} at {path}", error.found);
     Error { found, place, ..error }
+}
+
+/// The text of a value of the object that is this valid JSON, by its key.
+pub(super) fn member<'a>(text: &'a str, key: &str) -> Option<&'a str> {
+    let named = |of: &Range<usize>| text[of.clone()].trim_matches('"') == key;
+    let (_, value) = children(text, skip_blanks(text, 0)).into_iter().find(|(of, _)| of.as_ref().is_some_and(named))?;
+    Some(&text[value])
 }
 
 /// Line and column of the value at `path` (as `sites[0].height_m`) in valid JSON; of the innermost part that exists.

@@ -69,7 +69,8 @@ struct Text {
 #[derive(Deserialize)]
 #[serde(expecting = "a plan: a JSON object with `tailvane_plan` and `comet`")]
 struct Header {
-    tailvane_plan: Option<serde_json::Value>,
+    /// Its text is looked at where it stands.
+    tailvane_plan: Option<serde::de::IgnoredAny>,
 }
 
 impl From<Comet> for Plan {
@@ -100,7 +101,8 @@ impl Plan {
             return Err(Error::new(Kind::Plan, Place::Line { line: 1, column: 1 }, "nothing", allowed));
         }
         let header: Header = json::read(text)?;
-        check_version(header.tailvane_plan.as_ref()).map_err(|error| error.at(json::place(text, "tailvane_plan")))?;
+        let version = header.tailvane_plan.and_then(|_| json::member(text, "tailvane_plan"));
+        check_version(version).map_err(|error| error.at(json::place(text, "tailvane_plan")))?;
         let read: Text = json::read(text)?;
         let plan = Plan {
             comet: read.comet,
@@ -118,9 +120,7 @@ impl Plan {
     /// The plan as indented JSON with a line end, keys in the module's order. Reading it gives this plan back, if it is
     /// valid.
     pub fn print(&self) -> String {
-        let mut text = serde_json::to_string_pretty(&self.text()).unwrap_or_default();
-        text.push('\n');
-        text
+        serde_json::to_string_pretty(&self.text()).unwrap_or_default() + "\n"
     }
 
     /// The plan as JSON on one line, without a line end.
@@ -165,12 +165,12 @@ impl Plan {
     }
 }
 
-fn check_version(version: Option<&serde_json::Value>) -> Result<(), Error> {
+fn check_version(version: Option<&str>) -> Result<(), Error> {
     let refuse = |found: String, allowed: String| Err(Error::new(Kind::Plan, Place::Whole, found, allowed));
     match version {
         None => refuse("no `tailvane_plan`".into(), format!("`\"tailvane_plan\": {VERSION}`, the version of the plan")),
-        Some(version) if version.as_u64() == Some(u64::from(VERSION)) => Ok(()),
-        Some(version) if version.as_f64().is_some_and(|version| version > f64::from(VERSION)) => refuse(
+        Some(version) if version == VERSION.to_string() => Ok(()),
+        Some(version) if version.parse::<f64>().is_ok_and(|version| version > f64::from(VERSION)) => refuse(
             format!("a plan of version {version}"),
             format!("version {VERSION}, the newest that this Tailvane reads; a newer Tailvane wrote the plan"),
         ),

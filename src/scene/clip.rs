@@ -5,6 +5,7 @@
 
 use super::Point;
 use super::lettering::Rect;
+use crate::order;
 
 /// The parts of an open line inside a rectangle.
 pub fn line_inside(line: &[Point], area: &Rect) -> Vec<Vec<Point>> {
@@ -24,7 +25,7 @@ pub fn line_outside(line: &[Point], areas: &[Rect]) -> Vec<Vec<Point>> {
     for pair in line.windows(2) {
         let (a, b) = (pair[0], pair[1]);
         let mut covered: Vec<[f64; 2]> = areas.iter().filter_map(|area| shares(area, a, b)).collect();
-        covered.sort_by(|one, other| one[0].total_cmp(&other[0]));
+        order::by_number(&mut covered, |share| share[0]);
         let mut from = 0.0;
         for [first, last] in covered {
             if first > from {

@@ -10,6 +10,7 @@
 use super::Point;
 use super::lettering::Rect;
 use crate::frame::norm;
+use crate::order;
 
 /// What is already on the page.
 pub struct Room {
@@ -306,10 +307,11 @@ fn groups(wishes: &[Wish]) -> Vec<Vec<usize>> {
         let (near, far): (Vec<_>, Vec<_>) =
             groups.into_iter().partition(|group| group.iter().any(|&member| together(member, index)));
         let mut joined: Vec<usize> = near.into_iter().flatten().chain([index]).collect();
-        joined.sort_unstable();
+        order::by_rank(&mut joined, |&index| index as u64);
         groups = far;
         groups.push(joined);
-        groups.sort();
+        // No two groups share a member.
+        order::by_rank(&mut groups, |group| group[0] as u64);
     }
     groups
 }
@@ -318,7 +320,7 @@ fn groups(wishes: &[Wish]) -> Vec<Vec<usize>> {
 fn orders(wishes: &[Wish], group: &[usize]) -> [Vec<usize>; 3] {
     let sorted = |axis: usize, sign: f64| {
         let mut order = group.to_vec();
-        order.sort_by(|&a, &b| (sign * wishes[a].from[axis]).total_cmp(&(sign * wishes[b].from[axis])));
+        order::by_number(&mut order, |&index| sign * wishes[index].from[axis]);
         order
     };
     [sorted(1, 1.0), sorted(0, 1.0), sorted(0, -1.0)]

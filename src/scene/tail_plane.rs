@@ -10,6 +10,7 @@ use super::sheet::TowardSun;
 use super::spot::{self, PageCurve, Spot};
 use super::view::Facing;
 use super::{Family, Point, Role, Scene, Shape, Slope, quantity};
+use crate::order;
 use crate::tail::curve::{Curve, Held};
 use crate::tail::size::Material;
 use std::f64::consts::TAU;
@@ -119,7 +120,7 @@ fn inner_px(members: &[usize], curves: &[PageCurve], nucleus: Point, unit_px: f6
     let end = |&index: &usize| curves[index].pieces.last()?.last().copied();
     let mut angles: Vec<f64> =
         members.iter().filter_map(end).map(|[x, y]| libm::atan2(y - nucleus[1], x - nucleus[0])).collect();
-    angles.sort_by(f64::total_cmp);
+    order::by_number(&mut angles, |angle| *angle);
     let Some(&first) = angles.first() else { return 0.0 };
     // The circle less its widest gap between neighbours is what the curves fill.
     let next = angles.iter().copied().skip(1).chain([first + TAU]);

@@ -9,7 +9,6 @@ use crate::tail::law::{Outburst, Tails};
 use crate::tail::size::Material;
 use crate::web::typed::number;
 use serde::Serialize;
-use serde_json::{Map, Value};
 use std::collections::BTreeMap;
 
 /// Key, name, unit, effect.
@@ -158,23 +157,23 @@ pub fn texts(tails: &Tails) -> BTreeMap<String, String> {
 /// # Errors
 /// A field that is no number, by its place in the plan. Ranges are the plan's to judge.
 pub fn tails(typed: &BTreeMap<String, String>) -> Result<Tails, Error> {
-    let mut laws = Map::new();
-    let mut outburst = Map::new();
+    let mut laws = Vec::new();
+    let mut outburst = Vec::new();
     let defaults = texts(&Tails::default());
     for (key, text) in typed {
         let place = format!("tails.{key}");
         if text.trim().is_empty() && !defaults.contains_key(key) {
             continue;
         }
-        let value = Value::from(number(text, &place)?);
+        let value = number(text, &place)?;
         match key.strip_prefix("outburst.") {
-            Some(part) => outburst.insert(part.to_owned(), value),
-            None => laws.insert(key.clone(), value),
+            Some(part) => outburst.push(format!("\"{part}\":{value}")),
+            None => laws.push(format!("\"{key}\":{value}")),
         };
     }
     if !outburst.is_empty() {
         for part in ["middle_days", "width_days", "strength"] {
-            if !outburst.contains_key(part) {
+            if !outburst.iter().any(|member| member.contains(part)) {
                 let place = Place::Field(format!("tails.outburst.{part}"));
                 return Err(Error::new(
                     Kind::Range,
@@ -184,9 +183,9 @@ pub fn tails(typed: &BTreeMap<String, String>) -> Result<Tails, Error> {
                 ));
             }
         }
-        laws.insert("outburst".to_owned(), Value::Object(outburst));
+        laws.push(format!("\"outburst\":{{{}}}", outburst.join(",")));
     }
-    serde_json::from_value(Value::Object(laws)).map_err(|error| {
+    serde_json::from_str(&format!("{{{}}}", laws.join(","))).map_err(|error| {
         Error::new(Kind::Range, Place::Field("tails".to_owned()), error.to_string(), "the laws of the tails")
     })
 }

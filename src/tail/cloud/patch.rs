@@ -10,6 +10,7 @@
 
 use crate::body::{KM_S_PER_AU_D, State};
 use crate::orbit::conic::{SUN_GM_AU3_D2, propagate_with_response};
+use crate::order;
 use crate::tail::cloud::{Raster, chebyshev};
 use crate::tail::grain::Vista;
 use crate::tail::weight::Weights;
@@ -348,7 +349,7 @@ fn first_rectangles(subject: &Subject, spans: &[[f64; 2]]) -> Vec<Rectangle> {
             let flanks = [-2.0, -0.7, 0.0, 0.7, 2.0].map(|widths| now - burst.middle_days + widths * burst.width_days);
             ages.extend(flanks.into_iter().filter(|age| (young..old).contains(age)));
         }
-        ages.sort_by(f64::total_cmp);
+        order::by_number(&mut ages, |age| *age);
         let edges: Vec<f64> = ages.into_iter().map(anomaly).collect();
         for pair in edges.windows(2) {
             found.push(Rectangle {

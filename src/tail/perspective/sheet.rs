@@ -11,6 +11,7 @@
 
 use crate::body::KM_S_PER_AU_D;
 use crate::orbit::conic::{SUN_GM_AU3_D2, propagate_with_response};
+use crate::order;
 use crate::tail::grain::Vista;
 use crate::tail::law::Tails;
 use nalgebra::Vector3;
@@ -159,7 +160,7 @@ fn row_ages(vista: &Vista, tails: &Tails) -> Vec<f64> {
     ages.push(oldest);
     let now = vista.orbit.days_from_perihelion(vista.seen);
     ages.extend(breaks_days(tails).into_iter().map(|days| now - days).filter(|age| youngest < *age && *age < oldest));
-    ages.sort_by(f64::total_cmp);
+    order::by_number(&mut ages, |age| *age);
     ages.dedup();
     ages
 }

@@ -3,9 +3,13 @@
     python fit_tables.py OUTDIR      writes OUTDIR/barycentre.bin and OUTDIR/lunar_terms.rs
 
 barycentre.bin: the heliocentric Earth-Moon barycentre (DE440 body 3 less body 10), ICRF, TDB, as Chebyshev
-pieces of 96 days and 10 terms from 36576 days before J2000.0 to 36960 days after it. 32-bit integers
-in units of 5e-10 au, ordered by term, then axis, then piece, as four planes of bytes: the lowest bytes of all, then
-the next ones (the order that compresses best: a fifth less than whole integers).
+pieces of 96 days and 10 terms from 36576 days before J2000.0 to 36960 days after it: integers in units of 5e-10 au.
+An orbit is smooth, so each integer is foretold from those that are known by then, and only what is left is written:
+a third of the bytes once compressed, and not a bit lost. Known are the higher terms of the same piece and all terms
+of the two pieces before, on the same axis; a linear rule for each term, the same on all axes, fitted by least
+squares. The first two pieces are foretold as zeros. What is left is ordered by term, the highest first, then axis, then piece; 0, -1, 1, -2 ... become 0, 1, 2, 3 ...;
+32-bit numbers as four planes of bytes, the lowest bytes of all, then the next ones. Before it stand the weights of the
+rules, in the order of `known`: doubles without their two lowest bytes, as six planes.
 
 lunar_terms.rs: a trigonometric series of the Moon's longitude, latitude and distance in the mean ecliptic
 and equinox of date. Fundamental arguments: Chapront-Touze & Chapront (1988, 1991) as printed in Meeus,
@@ -57,17 +61,47 @@ def fit_barycentre(path):
     series[:, 0] *= 0.5
     table = np.rint(series / UNIT_AU)
     assert np.abs(table).max() < 2**31
-    table = table.astype("<i4")
-    whole = table.transpose(1, 2, 0).tobytes()
+    weights, left = foretold(table.transpose(1, 2, 0))
+    assert np.abs(left).max() < 2**31
+    code = np.where(left >= 0, 2 * left, -2 * left - 1).astype("<u4").tobytes()
     with open(path, "wb") as file:
+        for plane in range(2, 8):
+            file.write(weights.astype("<f8").tobytes()[plane::8])
         for plane in range(4):
-            file.write(whole[plane::4])
+            file.write(code[plane::4])
     worst = 0.0
     x = np.linspace(-1, 1, 41)
     check = np.cos(np.outer(np.arange(TERMS), np.arccos(x)))
     for m, c in zip(middle, table * UNIT_AU):
         worst = max(worst, np.linalg.norm(check.T @ c - barycentre_au(m + 48.0 * x), axis=1).max())
     print(f"barycentre: {len(pieces)} pieces, worst distance from DE440 {worst:.2e} au")
+
+
+def known(table, term, axis):
+    """What foretells a term in every piece: the higher terms, then those of the piece before and of the one before it,
+    each from the lowest; nothing lies before the first piece."""
+    before = [np.concatenate([np.zeros(lag), table[n, axis][:-lag]]) for lag in (1, 2) for n in range(TERMS)]
+    return [*table[term + 1:, axis], *before]
+
+
+def foretold(table):
+    """The weights of all rules in one row, and what they leave of a table of (term, axis, piece)."""
+    rules, left = [], []
+    for term in reversed(range(TERMS)):
+        rows = [np.array(known(table, term, axis))[:, 2:] for axis in range(3)]
+        matrix = np.concatenate(rows, axis=1).T
+        scale = np.abs(matrix).max(axis=0)
+        rule = np.linalg.lstsq(matrix / scale, table[term, :, 2:].ravel(), rcond=1e-15)[0] / scale
+        rule = (rule.view(np.int64) & ~0xFFFF).view(float)
+        rules.append(rule)
+        for axis in range(3):
+            # Added one by one in this order, as the reader does, so that both round alike.
+            guess = np.zeros(table.shape[2])
+            for weight, value in zip(rule, known(table, term, axis)):
+                guess = guess + weight * value
+            guess[:2] = 0
+            left.append(table[term, axis] - np.floor(guess + 0.5))
+    return np.concatenate(rules), np.array(left).astype(np.int64)
 
 
 def arguments(days, anomaly_arcsec=(0.0, 0.0, 0.0)):

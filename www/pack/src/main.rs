@@ -7,14 +7,18 @@
 //! | module | the question it answers |
 //! | --- | --- |
 //! | [`wasm`] | how do the Rust sources become wasm and bindings? |
+//! | [`block`] | how do bytes lie in an HTML file? |
 //! | [`page`] | how do the parts become one file under a strict policy? |
+//! | [`sites`] | how does the table of sites travel? |
 //! | [`serve`] | how is the page served on loopback? |
 //! | [`open`] | how is a file or address opened in the default browser? |
 #![forbid(unsafe_code)]
 
+mod block;
 mod open;
 mod page;
 mod serve;
+mod sites;
 mod wasm;
 
 use std::path::{Path, PathBuf};

@@ -1,15 +1,18 @@
 //! How do the parts become one file under a strict policy?
 //!
-//! www/index.html is a legal page that also runs unpacked. Here its style sheet and its classic scripts
-//! are put inline, the wasm and the site table become inert data blocks (deflate, base64), and a content
-//! security policy is written last that allows exactly these scripts and styles, and no network at all.
+//! www/index.html is a legal page that also runs unpacked. Here what its body shows, its style sheets, its classic
+//! scripts and the wasm travel in one inert block; the site table has a block of its own, opened when a person looks
+//! for a site. One script stands as such: www/unpack.js, which opens the blocks and puts all in its place. A
+//! content security policy is written last that allows exactly these styles and scripts, by their hashes, and no
+//! network at all.
 
+use crate::block::block;
+use crate::sites;
 use crate::wasm::Build;
 use base64::Engine;
 use base64::engine::general_purpose::STANDARD;
 use sha2::{Digest, Sha256};
 use std::fs;
-use std::num::NonZeroU64;
 use std::path::{Path, PathBuf};
 
 /// The packed page.
@@ -22,43 +25,14 @@ pub struct Packed {
 pub const GLUE: &str = "glue.js";
 /// The wasm of the unpacked page, and the name of its data block in the packed one.
 pub const WASM: &str = "core.wasm";
-/// The site table of the unpacked page, and the name of its data block in the packed one.
+/// The two halves of the site table of the unpacked page, and their names in the block of the packed one.
 pub const SITES: &str = "sites.data";
-
-/// The site table column by column, which packs a fifth smaller than line by line: each column on a line, its fields
-/// separated by tabs. Remarks are left out; the page puts the lines together again.
-///
-/// # Errors
-/// A table that cannot be read, or whose lines differ in their number of fields.
-pub fn site_columns(root: &Path) -> Result<Option<Vec<u8>>, String> {
-    let Some(table) = site_table(root)? else { return Ok(None) };
-    let text = String::from_utf8(table).map_err(|e| format!("the site table: {e}"))?;
-    let rows: Vec<Vec<&str>> = text
-        .lines()
-        .filter(|line| !line.is_empty() && !line.starts_with('#'))
-        .map(|line| line.split('\t').collect())
-        .collect();
-    let count = rows.first().map_or(0, Vec::len);
-    if rows.iter().any(|row| row.len() != count) {
-        return Err("the site table: its lines differ in their number of fields".into());
-    }
-    let column = |at: usize| rows.iter().map(|row| row[at]).collect::<Vec<_>>().join("\t");
-    Ok(Some((0..count).map(column).collect::<Vec<_>>().join("\n").into_bytes()))
-}
-
-/// The site table, when the project has one.
-fn site_table(root: &Path) -> Result<Option<Vec<u8>>, String> {
-    let folder = root.join("src/body");
-    let mut found: Vec<PathBuf> = fs::read_dir(&folder)
-        .map_err(|e| format!("{}: {e}", folder.display()))?
-        .filter_map(|entry| entry.ok().map(|entry| entry.path()))
-        .filter(|path| {
-            path.file_stem().is_some_and(|stem| stem == "site_codes") && path.extension().is_some_and(|e| e != "rs")
-        })
-        .collect();
-    found.sort();
-    found.first().map(|path| fs::read(path).map_err(|e| format!("{}: {e}", path.display()))).transpose()
-}
+pub const SITE_NUMBERS: &str = "sites.numbers";
+/// The script that opens the blocks, and the names under which it finds the other parts of the page.
+const UNPACK: &str = "unpack.js";
+const BODY: &str = "body.html";
+const STYLES: &str = "styles.css";
+const SCRIPTS: &str = "scripts.js";
 
 /// Packs www/ and the built core into target/page/tailvane.html.
 ///
@@ -67,28 +41,21 @@ fn site_table(root: &Path) -> Result<Option<Vec<u8>>, String> {
 pub fn pack(root: &Path, build: &Build) -> Result<Packed, String> {
     let www = root.join("www");
     let read = |name: &str| fs::read_to_string(www.join(name)).map_err(|e| format!("www/{name}: {e}"));
-    let mut blocks = data_block(WASM, &build.wasm)?;
-    if let Some(table) = site_columns(root)? {
-        blocks.push_str(&data_block(SITES, &table)?);
-    }
-    let html =
-        assemble(&read("index.html")?, |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) }, &blocks)?;
+    let sites = sites::read(root)?;
+    let sites = block(&[(SITES, sites.words.as_bytes()), (SITE_NUMBERS, &sites.numbers)])?;
+    let parts =
+        taken_apart(&read("index.html")?, |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) })?;
+    let start = block(&[
+        (BODY, parts.body.as_bytes()),
+        (STYLES, parts.styles.as_bytes()),
+        (SCRIPTS, parts.scripts.as_bytes()),
+        (WASM, &build.wasm),
+    ])?;
+    let html = assembled(&parts, &read(UNPACK)?, &(start + &sites))?;
     let path = root.join("target/page/tailvane.html");
     fs::create_dir_all(path.parent().expect("the page lies in a folder")).map_err(|e| format!("target/page: {e}"))?;
     fs::write(&path, &html).map_err(|e| format!("{}: {e}", path.display()))?;
     Ok(Packed { path, bytes: html.len() })
-}
-
-/// An inert block that carries bytes: deflate without a header, base64.
-fn data_block(name: &str, bytes: &[u8]) -> Result<String, String> {
-    let mut packed = Vec::new();
-    // One round: more gain a thousandth.
-    let options = zopfli::Options { iteration_count: NonZeroU64::MIN, ..zopfli::Options::default() };
-    zopfli::compress(options, zopfli::Format::Deflate, bytes, &mut packed).map_err(|e| format!("{name}: {e}"))?;
-    Ok(format!(
-        "<script type=\"application/octet-stream\" data-block=\"{name}\">{}</script>\n",
-        STANDARD.encode(packed)
-    ))
 }
 
 const STYLE_OPEN: &str = "<link rel=\"stylesheet\" href=\"";
@@ -96,49 +63,74 @@ const SCRIPT_OPEN: &str = "<script src=\"";
 /// Keeps browsers from asking the server for an icon.
 const NO_ICON: &str = "<link rel=\"icon\" href=\"data:,\">";
 const CHARSET: &str = "<meta charset=\"utf-8\">";
+const NO_SCRIPT: &str = "<noscript>";
 
-/// The one file: styles and scripts inline in their order, the data blocks before the first script, the policy on top.
-fn assemble(index: &str, text_of: impl Fn(&str) -> Result<String, String>, blocks: &str) -> Result<String, String> {
-    let mut style_hashes = Vec::new();
-    let mut script_hashes = Vec::new();
-    let mut body = String::new();
-    for line in index.lines() {
+/// www/index.html, taken apart: each is text without its tags.
+#[derive(Default)]
+struct Parts {
+    /// What stays in the head, one tag to a line.
+    head: String,
+    /// What the body shows, without what it says where scripts are switched off.
+    body: String,
+    without_scripts: String,
+    styles: String,
+    scripts: String,
+}
+
+/// The parts of a page whose style sheets, scripts and `noscript` stand alone on their lines, with nothing but their
+/// address.
+fn taken_apart(index: &str, text_of: impl Fn(&str) -> Result<String, String>) -> Result<Parts, String> {
+    let (head, body) =
+        tag(index, "head").zip(tag(index, "body")).ok_or("www/index.html: expected a head and a body")?;
+    let mut parts = Parts::default();
+    for (line, of_head) in head.lines().map(|line| (line, true)).chain(body.lines().map(|line| (line, false))) {
         let trimmed = line.trim();
         if let Some(name) = between(trimmed, STYLE_OPEN, "\">") {
-            let text = bare(&text_of(name)?);
-            refuse_end_tag(name, &text, "</style")?;
-            style_hashes.push(hash(&text));
-            body.push_str(&format!("<style>{text}</style>\n"));
+            parts.styles.push_str(&bare(&text_of(name)?));
         } else if let Some(name) = between(trimmed, SCRIPT_OPEN, "\"></script>") {
-            let text = bare(&text_of(name)?);
-            refuse_end_tag(name, &text, "</script")?;
-            if script_hashes.is_empty() {
-                body.push_str(blocks);
-            }
-            script_hashes.push(hash(&text));
-            body.push_str(&format!("<script>{text}</script>\n"));
-        } else if trimmed == NO_ICON {
-            body.push_str(line);
-            body.push('\n');
-        } else if trimmed.contains("<script") || trimmed.contains("<link") || trimmed.contains("<style") {
+            parts.scripts.push_str(&bare(&text_of(name)?));
+        } else if trimmed.starts_with(NO_SCRIPT) {
+            parts.without_scripts.push_str(trimmed);
+        } else if trimmed != NO_ICON && ["<script", "<link", "<style"].iter().any(|open| trimmed.contains(open)) {
             return Err(format!(
                 "www/index.html: found {trimmed}; expected each style sheet and script alone on its line, with nothing but its address"
             ));
-        } else {
-            body.push_str(line);
-            body.push('\n');
+        } else if !trimmed.is_empty() {
+            let part = if of_head { &mut parts.head } else { &mut parts.body };
+            part.push_str(trimmed);
+            part.push('\n');
         }
     }
+    Ok(parts)
+}
+
+/// What the first tag of this name holds.
+fn tag<'a>(html: &'a str, name: &str) -> Option<&'a str> {
+    let (_, rest) = html.split_once(&format!("<{name}>\n"))?;
+    rest.split_once(&format!("</{name}>")).map(|(held, _)| held)
+}
+
+/// The one file: the policy on top of the head; in the body the blocks and the script that opens them.
+fn assembled(parts: &Parts, unpack: &str, blocks: &str) -> Result<String, String> {
+    let unpack = bare(unpack);
+    if unpack.to_ascii_lowercase().contains("</script") {
+        return Err(format!("www/{UNPACK}: holds </script, which would end its block"));
+    }
     let policy = format!(
-        "{CHARSET}\n<meta http-equiv=\"Content-Security-Policy\" content=\"default-src 'none'; script-src {} 'wasm-unsafe-eval'; style-src {}; \
+        "{CHARSET}\n<meta http-equiv=\"Content-Security-Policy\" content=\"default-src 'none'; script-src {} {} 'wasm-unsafe-eval'; style-src {}; \
          img-src blob: data:; worker-src blob:; connect-src 'none'; base-uri 'none'; form-action 'none'\">",
-        script_hashes.join(" "),
-        style_hashes.join(" ")
+        hash(&unpack),
+        hash(&parts.scripts),
+        hash(&parts.styles)
     );
-    if body.matches(CHARSET).count() != 1 || script_hashes.is_empty() || style_hashes.is_empty() {
+    if parts.head.matches(CHARSET).count() != 1 || parts.scripts.is_empty() || parts.styles.is_empty() {
         return Err(format!("www/index.html: expected one {CHARSET}, a style sheet and scripts"));
     }
-    Ok(body.replacen(CHARSET, &policy, 1))
+    let head = parts.head.replacen(CHARSET, &policy, 1);
+    Ok(format!(
+        "<!DOCTYPE html>\n<html lang=\"en\">\n<head>\n{head}</head>\n<body>\n{}\n{blocks}<script>{unpack}</script>\n</body>\n</html>\n",
+        parts.without_scripts
+    ))
 }
 
 /// A script or style sheet without indentation, empty lines and comments that fill their lines. No source of the
@@ -162,14 +154,6 @@ fn between<'a>(line: &'a str, open: &str, close: &str) -> Option<&'a str> {
     line.strip_prefix(open)?.strip_suffix(close).filter(|name| !name.contains('"'))
 }
 
-fn refuse_end_tag(name: &str, text: &str, tag: &str) -> Result<(), String> {
-    if text.to_ascii_lowercase().contains(tag) {
-        Err(format!("www/{name}: holds {tag}, which would end its block"))
-    } else {
-        Ok(())
-    }
-}
-
 /// The hash of a block's exact text, as the policy names it.
 fn hash(text: &str) -> String {
     format!("'sha256-{}'", STANDARD.encode(Sha256::digest(text.as_bytes())))
@@ -177,22 +161,36 @@ fn hash(text: &str) -> String {
 
 #[cfg(test)]
 mod tests {
-    use super::{assemble, bare, data_block, hash};
+    use super::{assembled, bare, hash, taken_apart};
 
-    const INDEX: &str = "<head>\n<meta charset=\"utf-8\">\n<link rel=\"stylesheet\" href=\"a.css\">\n</head>\n<script src=\"a.js\"></script>\n";
+    const INDEX: &str = "<!DOCTYPE html>\n<html lang=\"en\">\n<head>\n<meta charset=\"utf-8\">\n<link rel=\"stylesheet\" href=\"a.css\">\n</head>\n\
+        <body>\n<main>\n  <p>Shown</p>\n</main>\n<noscript>Not shown</noscript>\n<script src=\"a.js\"></script>\n<script src=\"b.js\"></script>\n</body>\n</html>\n";
 
     fn text_of(name: &str) -> Result<String, String> {
         Ok(format!("{{{name}}}\n"))
     }
 
     #[test]
-    fn every_inline_block_is_named_in_the_policy_by_its_hash() {
-        let html = assemble(INDEX, text_of, "BLOCK\n").unwrap();
-        assert!(html.contains("<style>{a.css}\n</style>"));
-        assert!(html.contains("BLOCK\n<script>{a.js}\n</script>"));
+    fn a_page_is_taken_apart_and_nothing_is_lost() {
+        let parts = taken_apart(INDEX, text_of).unwrap();
+        assert_eq!(parts.head, "<meta charset=\"utf-8\">\n");
+        assert_eq!(parts.body, "<main>\n<p>Shown</p>\n</main>\n");
+        assert_eq!(parts.without_scripts, "<noscript>Not shown</noscript>");
+        assert_eq!(parts.styles, "{a.css}\n");
+        assert_eq!(parts.scripts, "{a.js}\n{b.js}\n");
+    }
+
+    #[test]
+    fn styles_and_scripts_are_named_in_the_policy_by_their_hashes() {
+        let parts = taken_apart(INDEX, text_of).unwrap();
+        let html = assembled(&parts, "open();", "BLOCKS\n").unwrap();
+        assert!(
+            html.ends_with("<noscript>Not shown</noscript>\nBLOCKS\n<script>open();\n</script>\n</body>\n</html>\n")
+        );
         assert!(html.contains(&format!(
-            "script-src {} 'wasm-unsafe-eval'; style-src {};",
-            hash("{a.js}\n"),
+            "script-src {} {} 'wasm-unsafe-eval'; style-src {};",
+            hash("open();\n"),
+            hash("{a.js}\n{b.js}\n"),
             hash("{a.css}\n")
         )));
     }
@@ -212,17 +210,9 @@ mod tests {
 
     #[test]
     fn an_address_outside_the_page_is_refused() {
-        assert!(assemble(&INDEX.replace("<script src", "<script defer src"), text_of, "").is_err());
-        assert!(assemble(INDEX, |_| Ok("</SCRIPT>".into()), "").is_err());
-    }
-
-    #[test]
-    fn a_data_block_inflates_to_the_same_bytes() {
-        use base64::Engine;
-        let bytes: Vec<u8> = (0..5000u32).map(|i| (i * i % 251) as u8).collect();
-        let block = data_block("x", &bytes).unwrap();
-        let text = block.split('>').nth(1).unwrap().split('<').next().unwrap();
-        let packed = base64::engine::general_purpose::STANDARD.decode(text).unwrap();
-        assert_eq!(miniz_oxide::inflate::decompress_to_vec(&packed).unwrap(), bytes);
+        assert!(taken_apart(&INDEX.replace("<script src", "<script defer src"), text_of).is_err());
+        assert!(taken_apart(&INDEX.replace("<body>", ""), text_of).is_err());
+        let parts = taken_apart(INDEX, text_of).unwrap();
+        assert!(assembled(&parts, "</SCRIPT>", "").is_err());
     }
 }

@@ -5,7 +5,8 @@
 //! can read through it.
 
 use crate::open::open;
-use crate::page::{GLUE, SITES, WASM, site_columns};
+use crate::page::{GLUE, SITE_NUMBERS, SITES, WASM};
+use crate::sites;
 use crate::wasm::Build;
 use std::fs;
 use std::io::{BufRead, BufReader, Read, Write};
@@ -91,7 +92,8 @@ fn content(path: &str, root: &Path, build: &Build, page: &Path) -> Option<(&'sta
     match part {
         GLUE => return Some(("text/javascript", build.glue.clone().into_bytes())),
         WASM => return Some(("application/wasm", build.wasm.clone())),
-        SITES => return site_columns(root).ok()?.map(|table| ("application/octet-stream", table)),
+        SITES => return Some(("text/plain", sites::read(root).ok()?.words.into_bytes())),
+        SITE_NUMBERS => return Some(("application/octet-stream", sites::read(root).ok()?.numbers)),
         _ => {}
     }
     // Names without folders only, so that nothing outside www/ can be reached.

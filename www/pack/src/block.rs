@@ -1,0 +1,99 @@
+//! How do bytes lie in an HTML file?
+//!
+//! As an inert script block that www/unpack.js reads: a raw LZMA stream, written in base 94. Measured on this page: LZMA
+//! takes 15 % less than the best deflate, base 94 8 % less than base64; reading both costs the page some ten milliseconds.
+//! Sources: Igor Pavlov, LZMA specification (2015, public domain); the digits are our own.
+
+use lzma_rust2::{EncodeMode, LzmaOptions, LzmaWriter, MfType};
+use std::io::Write;
+
+/// A block that carries these parts, each a name without spaces and its bytes, one behind the other.
+///
+/// # Errors
+/// A failure of the encoder, which memory cannot cause.
+pub fn block(parts: &[(&str, &[u8])]) -> Result<String, String> {
+    let names: Vec<&str> = parts.iter().map(|(name, _)| *name).collect();
+    let sizes: Vec<String> = parts.iter().map(|(_, bytes)| bytes.len().to_string()).collect();
+    let bytes: Vec<u8> = parts.iter().flat_map(|(_, bytes)| *bytes).copied().collect();
+    let packed = squeezed(&bytes).map_err(|e| format!("{}: {e}", names.join(" ")))?;
+    Ok(format!(
+        "<script type=\"application/octet-stream\" data-block=\"{}\" data-bytes=\"{}\">{}</script>\n",
+        names.join(" "),
+        sizes.join(" "),
+        digits(&packed)
+    ))
+}
+
+/// A raw LZMA stream: three bits of literal context and none of position, which suit wasm best; no header, no end mark.
+fn squeezed(bytes: &[u8]) -> std::io::Result<Vec<u8>> {
+    let options = LzmaOptions {
+        dict_size: (bytes.len() as u32).max(1 << 16),
+        lc: 3,
+        lp: 0,
+        pb: 0,
+        mode: EncodeMode::Normal,
+        nice_len: LzmaOptions::NICE_LEN_MAX,
+        mf: MfType::Bt4,
+        depth_limit: 1000,
+        preset_dict: None,
+    };
+    let mut writer = LzmaWriter::new_no_header(Vec::new(), &options, false)?;
+    writer.write_all(bytes)?;
+    writer.finish()
+}
+
+/// Bytes in base 94, highest first: 9 of them are 11 digits (94^11 > 2^72). The digits are the printable characters of
+/// ASCII from space on, without `<`, so that nothing in a block can look like its end. Zeros fill the last nine bytes.
+fn digits(bytes: &[u8]) -> String {
+    let mut text = String::with_capacity(bytes.len().div_ceil(9) * 11);
+    for nine in bytes.chunks(9) {
+        let mut number = (0..9).fold(0_u128, |sum, at| sum << 8 | u128::from(nine.get(at).copied().unwrap_or(0)));
+        let mut group = [0; 11];
+        for digit in group.iter_mut().rev() {
+            let place = (number % 94) as u8 + b' ';
+            *digit = if place < b'<' { place } else { place + 1 };
+            number /= 94;
+        }
+        text.extend(group.map(char::from));
+    }
+    text
+}
+
+#[cfg(test)]
+mod tests {
+    use super::{block, digits, squeezed};
+    use std::io::Read;
+
+    #[test]
+    fn nine_bytes_are_eleven_printable_digits_and_none_opens_a_tag() {
+        assert_eq!(digits(&[0; 9]), " ".repeat(11));
+        assert_eq!(digits(&[0, 0, 0, 0, 0, 0, 0, 0, 93]), format!("{}~", " ".repeat(10)));
+        // 94 is one and nothing; 28 is the first digit behind the sign that is left out.
+        assert_eq!(digits(&[0, 0, 0, 0, 0, 0, 0, 0, 94]), format!("{}! ", " ".repeat(9)));
+        assert_eq!(digits(&[0, 0, 0, 0, 0, 0, 0, 0, 27]), format!("{};", " ".repeat(10)));
+        assert_eq!(digits(&[0, 0, 0, 0, 0, 0, 0, 0, 28]), format!("{}=", " ".repeat(10)));
+        let all: Vec<u8> = (0..=255).cycle().take(9000).collect();
+        let text = digits(&all);
+        assert_eq!(text.len(), 11000);
+        assert!(text.bytes().all(|digit| (b' '..=b'~').contains(&digit) && digit != b'<'));
+        // The highest number of nine bytes fits: 2^72 - 1 < 94^11.
+        assert_eq!(digits(&[255; 9]).len(), 11);
+    }
+
+    #[test]
+    fn a_stream_is_read_back_by_another_reader() {
+        let bytes: Vec<u8> = (0..50_000_u32).map(|i| (i * i % 251 / (1 + i % 7)) as u8).collect();
+        let packed = squeezed(&bytes).unwrap();
+        let size = bytes.len() as u64;
+        let mut reader = lzma_rust2::LzmaReader::new(packed.as_slice(), size, 3, 0, 0, 1 << 20, None).unwrap();
+        let mut read = Vec::new();
+        reader.read_to_end(&mut read).unwrap();
+        assert!(read == bytes && packed.len() < bytes.len());
+    }
+
+    #[test]
+    fn a_block_names_its_parts_and_their_sizes() {
+        let text = block(&[("a.js", b"one"), ("b", b"four")]).unwrap();
+        assert!(text.contains("data-block=\"a.js b\" data-bytes=\"3 4\">"));
+    }
+}

@@ -1,0 +1,230 @@
+/*
+ * How does the packed page become a page?
+ *
+ * Only in the packed page, and its only script that stands there as such. A block holds one part or several, one behind the
+ * other: a raw LZMA stream, a sixth smaller than deflate makes it, which no browser reads by itself; written in base 94, 11
+ * characters for 9 bytes where base64 takes 12. www/pack/src/block.rs writes what is read here. What the body shows, the
+ * styles and the scripts come out of a block too; the policy of the page names styles and scripts by their hashes.
+ * Source: Igor Pavlov, LZMA specification (2015, public domain).
+ */
+"use strict";
+const tailvanePart = (function () {
+  /** The bytes of a text: 11 digits are 9 bytes, highest first. The digits are space to ~ in their order, without <. */
+  function bytesOf(text) {
+    const bytes = new Uint8Array((text.length / 11) * 9);
+    for (let from = 0, to = 0; from < text.length; to += 9) {
+      let [high, middle, low] = [0, 0, 0];
+      for (const end = from + 11; from < end; from++) {
+        const place = text.charCodeAt(from) - 32;
+        low = low * 94 + (place > 28 ? place - 1 : place);
+        middle = middle * 94 + (low >>> 24);
+        high = high * 94 + (middle >>> 24);
+        low &= 0xffffff;
+        middle &= 0xffffff;
+      }
+      for (let byte = 0; byte < 3; byte++) {
+        bytes[to + byte] = high >>> (16 - 8 * byte);
+        bytes[to + 3 + byte] = middle >>> (16 - 8 * byte);
+        bytes[to + 6 + byte] = low >>> (16 - 8 * byte);
+      }
+    }
+    return bytes;
+  }
+
+  // Where each kind of choice keeps its odds: how often it was a zero, of 2048.
+  const IS_MATCH = 0;
+  const IS_AGAIN = 12;
+  const IS_AGAIN_0 = 24;
+  const IS_AGAIN_1 = 36;
+  const IS_AGAIN_2 = 48;
+  const IS_LONG_AGAIN_0 = 60;
+  const LENGTH = 72;
+  const LENGTH_AGAIN = LENGTH + 274;
+  const SLOT = LENGTH_AGAIN + 274;
+  const LOW_DISTANCE = SLOT + 4 * 64;
+  const ALIGN = LOW_DISTANCE + 128;
+  const LITERAL = ALIGN + 16;
+  const KINDS = LITERAL + 8 * 768;
+
+  // One stream is read at a time: its odds and bytes; range, code and place of the range coder, in an array that keeps
+  // them as plain 32 bits. Out here, where the browser compiles them best.
+  const odds = new Uint16Array(KINDS);
+  const coder = new Uint32Array(3);
+  let packed = null;
+
+  function bit(kind) {
+    const chance = odds[kind];
+    const bound = (coder[0] >>> 11) * chance;
+    const one = coder[1] >= bound;
+    if (one) {
+      coder[0] -= bound;
+      coder[1] -= bound;
+      odds[kind] = chance - (chance >>> 5);
+    } else {
+      coder[0] = bound;
+      odds[kind] = chance + ((2048 - chance) >>> 5);
+    }
+    refill();
+    return one ? 1 : 0;
+  }
+
+  function refill() {
+    if (coder[0] < 0x1000000) {
+      coder[0] <<= 8;
+      coder[1] = (coder[1] << 8) | packed[coder[2]++];
+    }
+  }
+
+  /** A number of `bits` bits, highest first, each with odds that depend on those before. */
+  function tree(kinds, bits) {
+    let node = 1;
+    for (let left = bits; left > 0; left--) {
+      node = 2 * node + bit(kinds + node);
+    }
+    return node - (1 << bits);
+  }
+
+  /** The same, lowest bit first. */
+  function reversed(kinds, bits) {
+    let [node, value] = [1, 0];
+    for (let place = 0; place < bits; place++) {
+      const one = bit(kinds + node);
+      node = 2 * node + one;
+      value |= one << place;
+    }
+    return value;
+  }
+
+  /** Bits without odds. */
+  function even(bits) {
+    let value = 0;
+    for (let left = bits; left > 0; left--) {
+      coder[0] >>>= 1;
+      const one = coder[1] >= coder[0] ? 1 : 0;
+      coder[1] -= one * coder[0];
+      value = 2 * value + one;
+      refill();
+    }
+    return value;
+  }
+
+  function lengthOf(kinds) {
+    if (!bit(kinds)) {
+      return 2 + tree(kinds + 2, 3);
+    }
+    return bit(kinds + 1) ? 18 + tree(kinds + 18, 8) : 10 + tree(kinds + 10, 3);
+  }
+
+  function distanceOf(length) {
+    const slot = tree(SLOT + 64 * Math.min(length - 2, 3), 6);
+    if (slot < 4) {
+      return slot;
+    }
+    const bits = (slot >>> 1) - 1;
+    const base = (2 | (slot & 1)) << bits;
+    return slot < 14
+      ? base + reversed(LOW_DISTANCE + base - slot, bits)
+      : base + (even(bits - 4) << 4) + reversed(ALIGN, 4);
+  }
+
+  /** One byte; after a match its odds depend on the byte that a longer match would have given. */
+  function literal(out, at, state, distance) {
+    const kinds = LITERAL + 768 * (at > 0 ? out[at - 1] >>> 5 : 0);
+    let node = 1;
+    if (state > 6) {
+      let expected = out[at - distance - 1];
+      while (node < 256) {
+        const foreseen = (expected >>> 7) & 1;
+        const one = bit(kinds + ((1 + foreseen) << 8) + node);
+        node = 2 * node + one;
+        expected <<= 1;
+        if (one !== foreseen) {
+          break;
+        }
+      }
+    }
+    while (node < 256) {
+      node = 2 * node + bit(kinds + node);
+    }
+    return node;
+  }
+
+  /** The `size` bytes of a raw LZMA stream with 3 bits of literal context and no bits of position. */
+  function expand(stream, size) {
+    const out = new Uint8Array(size);
+    packed = stream;
+    odds.fill(1024);
+    coder.set([0xffffffff, new DataView(stream.buffer).getUint32(1), 5]);
+    // The latest distances, less one each, newest first; `state` tells the kinds of the latest choices.
+    let [first, second, third, fourth] = [0, 0, 0, 0];
+    let state = 0;
+    for (let at = 0; at < size; ) {
+      if (!bit(IS_MATCH + state)) {
+        out[at] = literal(out, at, state, first);
+        at += 1;
+        state = state < 4 ? 0 : state < 10 ? state - 3 : state - 6;
+        continue;
+      }
+      let length;
+      if (!bit(IS_AGAIN + state)) {
+        length = lengthOf(LENGTH);
+        [first, second, third, fourth] = [distanceOf(length), first, second, third];
+        state = state < 7 ? 7 : 10;
+      } else {
+        let long = true;
+        if (!bit(IS_AGAIN_0 + state)) {
+          long = bit(IS_LONG_AGAIN_0 + state) === 1;
+        } else if (!bit(IS_AGAIN_1 + state)) {
+          [first, second] = [second, first];
+        } else if (!bit(IS_AGAIN_2 + state)) {
+          [first, second, third] = [third, first, second];
+        } else {
+          [first, second, third, fourth] = [fourth, first, second, third];
+        }
+        length = long ? lengthOf(LENGTH_AGAIN) : 1;
+        state = long ? (state < 7 ? 8 : 11) : state < 7 ? 9 : 11;
+      }
+      for (const end = at + length; at < end; at++) {
+        out[at] = out[at - first - 1];
+      }
+    }
+    return out;
+  }
+
+  const opened = new Map();
+
+  /** The bytes of a part by its name; null when the page has none of that name. */
+  function part(name) {
+    if (!opened.has(name)) {
+      const block = document.querySelector('script[data-block~="' + name + '"]');
+      if (!block) {
+        return null;
+      }
+      const sizes = block.dataset.bytes.split(" ").map(Number);
+      const bytes = expand(bytesOf(block.textContent), sizes.reduce((sum, size) => sum + size));
+      let from = 0;
+      for (const [at, held] of block.dataset.block.split(" ").entries()) {
+        opened.set(held, bytes.subarray(from, (from += sizes[at])));
+      }
+    }
+    return opened.get(name);
+  }
+
+  return part;
+})();
+
+(function () {
+  const text = (name) => new TextDecoder().decode(tailvanePart(name));
+
+  function put(kind, name) {
+    const element = document.createElement(kind);
+    element.textContent = text(name);
+    document.head.append(element);
+  }
+
+  // A copy that a browser saved as it stood holds all this already, grown old.
+  document.querySelectorAll("head > style, head > script, body > :not(script, noscript)").forEach((old) => old.remove());
+  put("style", "styles.css");
+  document.body.insertAdjacentHTML("afterbegin", text("body.html"));
+  put("script", "scripts.js");
+})();
