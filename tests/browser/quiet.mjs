@@ -86,4 +86,3 @@ export default (context) =>
       await page.close();
     });
   });
-  });
