@@ -12,12 +12,14 @@
 //! | `sites` | more sites | yes |
 //! | `time` | a date in any form of [`Stamp`] | yes |
 //! | `tails` | [`Tails`]: winds, dust, activity, ejection | yes, and any key in it |
+//! | `night` | [`NightLaw`]: limits of the dark time, scale and trail of the pictures | yes, and any key in it |
 
 mod json;
 pub mod paste;
 
 use crate::body::observer::{Observer, Site};
 use crate::error::{Error, Kind, Place};
+use crate::night::law::NightLaw;
 use crate::orbit::elements::Comet;
 use crate::tail::law::Tails;
 use crate::time::Stamp;
@@ -36,6 +38,8 @@ pub struct Plan {
     pub time: Option<Stamp>,
     /// Which tails are drawn, and what the dust is assumed to be.
     pub tails: Tails,
+    /// What counts as dark, as up, as sharp.
+    pub night: NightLaw,
 }
 
 /// The plan as its JSON lies; later sections become fields here and in [`Plan`].
@@ -52,6 +56,8 @@ struct Text {
     time: Option<Stamp>,
     #[serde(default, skip_serializing_if = "Tails::is_default")]
     tails: Tails,
+    #[serde(default, skip_serializing_if = "NightLaw::is_default")]
+    night: NightLaw,
 }
 
 /// The version alone, so that a newer plan is refused as newer and not for its new keys.
@@ -64,7 +70,14 @@ struct Header {
 impl From<Comet> for Plan {
     /// A comet seen from the geocentre, without a time.
     fn from(comet: Comet) -> Self {
-        Plan { comet, observer: Observer::Geocentre, sites: Vec::new(), time: None, tails: Tails::default() }
+        Plan {
+            comet,
+            observer: Observer::Geocentre,
+            sites: Vec::new(),
+            time: None,
+            tails: Tails::default(),
+            night: NightLaw::default(),
+        }
     }
 }
 
@@ -89,6 +102,7 @@ impl Plan {
             sites: read.sites,
             time: read.time,
             tails: read.tails,
+            night: read.night,
         };
         plan.validate().map_err(|error| json::located(text, "", error))?;
         Ok(plan)
@@ -118,6 +132,7 @@ impl Plan {
             sites: self.sites.clone(),
             time: self.time.clone(),
             tails: self.tails.clone(),
+            night: self.night.clone(),
         }
     }
 
@@ -131,7 +146,8 @@ impl Plan {
         for (index, site) in self.sites.iter().enumerate() {
             site.validate(&format!("sites[{index}]"))?;
         }
-        self.tails.validate()
+        self.tails.validate()?;
+        self.night.validate()
     }
 }
 
