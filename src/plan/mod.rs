@@ -8,6 +8,7 @@
 //! | --- | --- | --- |
 //! | `tailvane_plan` | the version, 1 | no |
 //! | `comet` | [`Comet`]: `name`, `elements`, `brightness` | no |
+//! | `comets` | more comets | yes |
 //! | `observer` | a [`Site`]: `name`, `longitude_deg`, `latitude_deg`, `height_m` | yes: the geocentre |
 //! | `sites` | more sites | yes |
 //! | `time` | a date in any form of [`Stamp`] | yes |
@@ -32,6 +33,8 @@ pub const VERSION: u32 = 1;
 #[derive(Clone, Debug, PartialEq)]
 pub struct Plan {
     pub comet: Comet,
+    /// More comets the person keeps.
+    pub comets: Vec<Comet>,
     pub observer: Observer,
     /// More observers the person keeps.
     pub sites: Vec<Site>,
@@ -48,6 +51,8 @@ pub struct Plan {
 struct Text {
     tailvane_plan: u32,
     comet: Comet,
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    comets: Vec<Comet>,
     #[serde(default, skip_serializing_if = "Option::is_none")]
     observer: Option<Site>,
     #[serde(default, skip_serializing_if = "Vec::is_empty")]
@@ -72,6 +77,7 @@ impl From<Comet> for Plan {
     fn from(comet: Comet) -> Self {
         Plan {
             comet,
+            comets: Vec::new(),
             observer: Observer::Geocentre,
             sites: Vec::new(),
             time: None,
@@ -98,6 +104,7 @@ impl Plan {
         let read: Text = json::read(text)?;
         let plan = Plan {
             comet: read.comet,
+            comets: read.comets,
             observer: read.observer.map_or(Observer::Geocentre, Observer::Site),
             sites: read.sites,
             time: read.time,
@@ -125,6 +132,7 @@ impl Plan {
         Text {
             tailvane_plan: VERSION,
             comet: self.comet.clone(),
+            comets: self.comets.clone(),
             observer: match &self.observer {
                 Observer::Geocentre => None,
                 Observer::Site(site) => Some(site.clone()),
@@ -140,6 +148,9 @@ impl Plan {
     /// The first value outside its range, at its path.
     pub fn validate(&self) -> Result<(), Error> {
         self.comet.validate()?;
+        for (index, comet) in self.comets.iter().enumerate() {
+            comet.validate().map_err(|error| kept(index, error))?;
+        }
         if let Observer::Site(site) = &self.observer {
             site.validate("observer")?;
         }
@@ -149,6 +160,15 @@ impl Plan {
         self.tails.validate()?;
         self.night.validate()
     }
+}
+
+/// An error of a kept comet, which names itself `comet`, at its own path.
+fn kept(index: usize, error: Error) -> Error {
+    let path = match &error.place {
+        Place::Field(path) => format!("comets[{index}]{}", path.strip_prefix("comet").unwrap_or(path)),
+        _ => format!("comets[{index}]"),
+    };
+    error.at(Place::Field(path))
 }
 
 fn check_version(version: Option<&serde_json::Value>) -> Result<(), Error> {

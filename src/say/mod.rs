@@ -8,6 +8,7 @@ mod dust;
 mod figure;
 pub mod night;
 pub mod stage;
+pub mod table;
 
 use crate::body::observer::Observer;
 use crate::plan::Plan;
