@@ -5,6 +5,7 @@
 
 pub mod easel;
 mod night;
+pub mod season;
 
 use crate::body::SPAN;
 use crate::body::observer::Observer;

@@ -7,8 +7,8 @@
 //! plane, so only the Earth's path counts, which is the same for all comets.
 //! Accuracy beside a night of its own: altitude 0.02 degrees beyond 0.05 au.
 //!
-//! How dust lies sunward takes a millisecond for each comet, so it is not part of an entry: [`Board::sunward`] says it
-//! of one comet, for callers that spread the work.
+//! How dust lies sunward takes longer than all the rest, so it is not part of an entry: [`sunward`] says it of one comet,
+//! for callers that spread the work.
 
 use super::evening::Evening;
 use super::law::NightLaw;
@@ -25,7 +25,9 @@ use crate::sky::watch::Lookout;
 use crate::sky::{Sky, magnitude};
 use crate::tail::grain::Vista;
 use crate::tail::law::Tails;
-use crate::tail::perspective::{self, Grade};
+use crate::tail::perspective::Verdict;
+use crate::tail::perspective::glimpse::glimpse;
+use crate::tail::weight::Weights;
 use crate::time::Instant;
 use nalgebra::Vector3;
 
@@ -86,13 +88,13 @@ pub struct Entry {
     pub next_crossing: Option<Crossing>,
 }
 
-/// How dust lies sunward of one comet.
+/// How dust lies sunward of one comet, by a quick look.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Sunward {
-    /// By perspective alone, of dust without ejection speed.
-    pub grade: Grade,
-    /// Share of the light in the anti-tail sector.
+    pub verdict: Verdict,
+    /// Share of the light in the anti-tail sector with the chosen ejection, and of dust without ejection speed.
     pub share: f64,
+    pub share_at_rest: f64,
 }
 
 impl Board {
@@ -197,12 +199,12 @@ impl Board {
             .map(|(away, back)| libm::cos(away - back) < 0.0);
         Some(Crossing { time: low, opposite })
     }
+}
 
-    /// How dust lies sunward of the comet of an entry, by the laws of the plan; takes about a millisecond.
-    pub fn sunward(orbit: &Orbit, entry: &Entry, tails: &Tails) -> Sunward {
-        let dust = perspective::assess(&Vista::of(orbit, &entry.sky), &entry.sky, tails).at_rest;
-        Sunward { grade: dust.grade, share: dust.anti_tail.map_or(0.0, |part| part.share) }
-    }
+/// A quick look at how dust lies sunward of the comet of an entry, by the laws of the plan; `weights` are theirs.
+pub fn sunward(orbit: &Orbit, entry: &Entry, tails: &Tails, weights: &Weights) -> Sunward {
+    let found = glimpse(&Vista::of(orbit, &entry.sky), &entry.sky, tails, weights);
+    Sunward { verdict: found.verdict, share: found.share, share_at_rest: found.share_at_rest }
 }
 
 /// Lagrange's weights of values at 0, 1, 2, 3, 4, at `x`.
