@@ -25,9 +25,7 @@ use crate::sky::watch::Lookout;
 use crate::sky::{Sky, magnitude};
 use crate::tail::grain::Vista;
 use crate::tail::law::Tails;
-use crate::tail::perspective::Verdict;
-use crate::tail::perspective::glimpse::glimpse;
-use crate::tail::weight::Weights;
+use crate::tail::perspective::{self, Verdict};
 use crate::time::Instant;
 use nalgebra::Vector3;
 
@@ -88,13 +86,12 @@ pub struct Entry {
     pub next_crossing: Option<Crossing>,
 }
 
-/// How dust lies sunward of one comet, by a quick look.
+/// How dust lies sunward of one comet.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Sunward {
     pub verdict: Verdict,
-    /// Share of the light in the anti-tail sector with the chosen ejection, and of dust without ejection speed.
+    /// Share of the light in the anti-tail sector, with the chosen ejection.
     pub share: f64,
-    pub share_at_rest: f64,
 }
 
 impl Board {
@@ -201,10 +198,10 @@ impl Board {
     }
 }
 
-/// A quick look at how dust lies sunward of the comet of an entry, by the laws of the plan; `weights` are theirs.
-pub fn sunward(orbit: &Orbit, entry: &Entry, tails: &Tails, weights: &Weights) -> Sunward {
-    let found = glimpse(&Vista::of(orbit, &entry.sky), &entry.sky, tails, weights);
-    Sunward { verdict: found.verdict, share: found.share, share_at_rest: found.share_at_rest }
+/// How dust lies sunward of the comet of an entry, by the laws of the plan; takes a millisecond.
+pub fn sunward(orbit: &Orbit, entry: &Entry, tails: &Tails) -> Sunward {
+    let found = perspective::assess(&Vista::of(orbit, &entry.sky), &entry.sky, tails);
+    Sunward { verdict: found.verdict, share: found.ejected.anti_tail.map_or(0.0, |part| part.share) }
 }
 
 /// Lagrange's weights of values at 0, 1, 2, 3, 4, at `x`.
