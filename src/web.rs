@@ -7,6 +7,7 @@
 mod answer;
 mod bench;
 mod examples;
+mod night;
 mod season;
 mod share;
 mod tails;
@@ -120,6 +121,7 @@ pub struct Desk {
     view_chosen: bool,
     season: Option<Season>,
     read: Vec<Entry>,
+    night: night::Kept,
 }
 
 #[wasm_bindgen]
@@ -139,6 +141,7 @@ impl Desk {
             view_chosen: false,
             season: None,
             read: Vec::new(),
+            night: night::Kept::default(),
         })
     }
 
@@ -329,6 +332,7 @@ impl Desk {
     fn take(&mut self, plan: Plan) -> Result<JsValue, JsValue> {
         let (engine, time, seen) = prepared(plan).map_err(refusal)?;
         self.season = None;
+        self.night.plan_changed();
         self.tails = engine.tails_at(&seen.sky);
         (self.engine, self.time, self.seen) = (engine, time, seen);
         Ok(JsValue::TRUE)

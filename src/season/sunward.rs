@@ -76,7 +76,8 @@ pub(super) fn windows<'a>(looks: impl Iterator<Item = &'a Look>, stretch: &Stret
             window.end = time;
             let worth = |strength: &Strength| (strength.grade, strength.share);
             // A best date outside the stretch would be no use.
-            if !stretch.holds(window.best.time) || (stretch.holds(time) && worth(&look.strength) > worth(&window.best)) {
+            if !stretch.holds(window.best.time) || (stretch.holds(time) && worth(&look.strength) > worth(&window.best))
+            {
                 window.best = look.strength;
             }
         }

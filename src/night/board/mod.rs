@@ -10,6 +10,8 @@
 //! How dust lies sunward takes longer than all the rest, so it is not part of an entry: [`sunward`] says it of one comet,
 //! for callers that spread the work.
 
+pub mod column;
+
 use super::evening::Evening;
 use super::law::NightLaw;
 use super::moment::no_site;
