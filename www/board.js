@@ -6,8 +6,9 @@
  */
 Tailvane.board = (function () {
   const FIRST_ROWS = 50;
-  /** Comets whose sunward dust is looked at in one piece: some ten milliseconds. */
-  const PIECE = 8;
+  /** So long the sunward dust is looked at in one piece, milliseconds. */
+  const PIECE_MS = 10;
+  const REFILL_MS = 700;
   const bench = Tailvane.find("bench", "board");
   const box = Tailvane.find("box", "board");
   const none = Tailvane.find("show", "board-none");
@@ -16,12 +17,14 @@ Tailvane.board = (function () {
   const form = Tailvane.find("control", "board-form");
   const done = Tailvane.find("show", "board-done");
   const more = Tailvane.find("act", "board-more");
+  const onlyUp = Tailvane.find("control", "board-up");
   let made = "";
   let sort = "total_magnitude";
   let descending = false;
   let most = FIRST_ROWS;
   let total = 0;
   let timer = 0;
+  let filled = 0;
 
   const ask = (act) => Tailvane.desk.ask(act);
 
@@ -54,10 +57,13 @@ Tailvane.board = (function () {
 
   /** Looks at the sunward dust of a few more comets, those shown first. */
   function lookOn() {
-    const left = ask((desk) => desk.board_sunward(PIECE));
-    const words = left ? "Sunward dust: " + left + " of " + total + " still to be looked at." : "";
-    Tailvane.write(progress, words);
-    if (!left || left % 40 < PIECE) {
+    const begun = performance.now();
+    let left;
+    do {
+      left = ask((desk) => desk.board_sunward(1));
+    } while (left && performance.now() - begun < PIECE_MS);
+    Tailvane.write(progress, left ? "Sunward dust: " + left + " comets still to be looked at." : "");
+    if (!left || begun - filled > REFILL_MS) {
       fill();
     }
     if (left && bench.open) {
@@ -66,10 +72,14 @@ Tailvane.board = (function () {
   }
 
   function fill() {
-    const sheet = ask((desk) => desk.board_rows(sort, descending, most));
-    if (!sheet) {
+    const answer = ask((desk) => desk.board_rows(sort, descending, onlyUp.checked, most));
+    if (!answer) {
       return;
     }
+    const [sheet, count] = answer;
+    filled = performance.now();
+    const empty = count ? "" : "None of these " + total + " comets is up in dark time on this night.";
+    Tailvane.write(Tailvane.find("show", "board-empty"), empty);
     Tailvane.write(Tailvane.find("show", "board-title"), ask((desk) => desk.board_title()));
     if (!table.tHead.rows.length) {
       table.tHead.append(Tailvane.element("tr", "", ...sheet.columns.map(head)));
@@ -96,7 +106,7 @@ Tailvane.board = (function () {
       const again = table.querySelector('[data-comet="' + focused + '"]');
       again && again.focus();
     }
-    more.hidden = total <= most;
+    more.hidden = count <= most;
   }
 
   function head([key, words, unit]) {
@@ -106,12 +116,19 @@ Tailvane.board = (function () {
     button.addEventListener("click", () => {
       descending = sort === key && !descending;
       sort = key;
-      fill();
+      refill();
     });
     const cell = Tailvane.element("th", "", button);
     cell.scope = "col";
     cell.dataset.column = key;
     return cell;
+  }
+
+  /** Shows it anew, and goes on with what is then in sight. */
+  function refill() {
+    fill();
+    clearTimeout(timer);
+    lookOn();
   }
 
   function pick(number) {
@@ -124,8 +141,9 @@ Tailvane.board = (function () {
     bench.addEventListener("toggle", Tailvane.desk.redraw);
     more.addEventListener("click", () => {
       most += 200;
-      fill();
+      refill();
     });
+    onlyUp.addEventListener("change", refill);
     Tailvane.onAct("save-board", () => Tailvane.save("board.csv", "text/csv", ask((desk) => desk.board_text("csv"))));
     Tailvane.onAct("copy-board", () => Tailvane.copy(ask((desk) => desk.board_text(form.value)), (words) => Tailvane.write(done, words)));
   }

@@ -82,6 +82,7 @@ Tailvane.night = (function () {
     const heads = ["UTC", ...sheet.columns.map(([, words, unit]) => Tailvane.headed(words, unit))];
     table.tHead.replaceChildren(Tailvane.element("tr", "", ...heads.map((words) => Tailvane.element("th", words))));
     table.tHead.querySelectorAll("th").forEach((head) => (head.scope = "col"));
+    table.tHead.rows[0].cells[1].dataset.cell = "event";
     table.tBodies[0].replaceChildren(
       ...sheet.rows.map((row, at) => {
         const time = Tailvane.element("button", times[at].slice(11, 16));

@@ -121,7 +121,8 @@ fn draw_scales(scene: &mut Scene, plane: &Plane, level: f64, size_px: f64, top_d
     while altitude <= top_deg.min(90.0) {
         let y = plane.to_page(0.0, altitude)[1];
         axis.push(vec![[area.left - 4.0 * unit, y], [area.left, y]]);
-        let words = format!("{altitude:.0}\u{b0}").replace('-', "\u{2212}");
+        // Adding zero takes the sign off a zero.
+        let words = format!("{:.0}\u{b0}", altitude + 0.0).replace('-', "\u{2212}");
         text(Role::Note, words, [area.left - 7.0 * unit, y + (ABOVE - BELOW) / 2.0 * size_px], Anchor::End, false);
         altitude += step;
     }
@@ -172,19 +173,16 @@ fn draw_bodies(
         let length = libm::hypot(off[0], off[1]);
         let inside = length < 1e-9;
         let outward = if inside { [0.0, -1.0] } else { [off[0] / length, off[1] / length] };
-        let role = if body == Body::Sun { Direction::Sunward } else { Direction::Zenith };
         if !inside {
             // An arrow that points to where the body is.
             let across = [-outward[1], outward[0]];
             let point = |along: f64, aside: f64| {
                 [0, 1].map(|axis| at[axis] + unit * (along * outward[axis] + aside * across[axis]))
             };
-            scene.add(
-                Role::Course(body),
-                Shape::Lines(vec![vec![point(-4.0, -4.5), point(5.0, 0.0), point(-4.0, 4.5)]]),
-            );
+            let role = if body == Body::Sun { Role::Mark(Direction::Sunward) } else { Role::Observer };
+            scene.add(role, Shape::Polyline(vec![point(-4.0, -4.5), point(5.0, 0.0), point(-4.0, 4.5)]));
         } else if body == Body::Sun {
-            mark::draw(scene, role, at, outward);
+            mark::draw(scene, Direction::Sunward, at, outward);
         } else {
             scene.add(Role::Observer, Shape::Circle { center: at, radius_px: 6.0 * unit });
         }

@@ -248,10 +248,12 @@ fn write(
         let points: Vec<Point> = pieces.iter().flatten().copied().collect();
         let spot = [0.5, 0.4, 0.6, 0.3, 0.7, 0.2, 0.8, 0.12, 0.88]
             .into_iter()
-            .flat_map(|share| [-1.0, 1.0].map(|side| (share, side)))
-            .filter_map(|(share, side)| {
+            .flat_map(|share| [[0.0, -1.0], [0.0, 1.0], [1.0, -0.4], [-1.0, -0.4]].map(|side| (share, side)))
+            .filter_map(|(share, [aside, along])| {
                 let at = *points.get((points.len() as f64 * share) as usize)?;
-                let text = Text::centered(*name, [at[0], at[1] + side * 12.0 * unit], size_px, true);
+                let half = 0.5 * super::lettering::width_px(name, size_px, true) + 8.0 * unit;
+                let center = [at[0] + aside * half, at[1] + along * 12.0 * unit];
+                let text = Text::centered(*name, center, size_px, true);
                 let clear = text.area().grown(2.0 * unit);
                 let cut = lines.iter().any(|(_, _, pieces)| {
                     pieces.iter().any(|piece| piece.windows(2).any(|pair| clear.cuts(pair[0], pair[1])))

@@ -181,7 +181,7 @@ impl Desk {
             best_days: course.best.map_or(middle, |best| best.highest_at).tdb_days(),
             criterion: say::night::criterion(law),
             absences: say::night::absences(course, law),
-            words: minus(&say::night::course(course, law)),
+            words: say::night::course(course, law),
             horizon: say::night::horizon(&moment),
             exposure: say::night::exposure(&moment, law),
             magnitude,
@@ -326,9 +326,10 @@ impl Desk {
         self.night.roster.as_ref().map_or(String::new(), |roster| roster.title.clone())
     }
 
-    /// Sorts the board by a column and gives its first rows.
-    pub fn board_rows(&mut self, key: &str, descending: bool, most: usize) -> JsValue {
+    /// Sorts the board by a column and gives its first rows, all or only those up in dark time, and how many there are.
+    pub fn board_rows(&mut self, key: &str, descending: bool, only_up: bool, most: usize) -> JsValue {
         let Some(roster) = &mut self.night.roster else { return JsValue::NULL };
+        roster.order = (0..roster.lines.len()).filter(|&at| !only_up || roster.lines[at].entry.up.is_some()).collect();
         let lines = &roster.lines;
         if let Some(column) = BOARD_COLUMNS.iter().find(|column| column.key == key) {
             roster.order.sort_by(|&a, &b| column.order(&lines[a], &lines[b], descending).then(a.cmp(&b)));
@@ -358,7 +359,7 @@ impl Desk {
                 })
                 .collect(),
         };
-        to_js(&sheet)
+        to_js(&(sheet, roster.order.len()))
     }
 
     /// Looks at the sunward dust of the next comets in order that have not been looked at; gives how many are left.

@@ -10,6 +10,7 @@ import access from "./access.mjs";
 import gallery from "./gallery.mjs";
 import input from "./input.mjs";
 import layout from "./layout.mjs";
+import night from "./night.mjs";
 import numbers from "./numbers.mjs";
 import tails from "./tails.mjs";
 import quiet from "./quiet.mjs";
@@ -36,7 +37,7 @@ for (const name of wanted) {
         context.server.stop();
       }
     });
-    for (const part of [quiet, numbers, tails, time, input, access, layout, gallery]) {
+    for (const part of [quiet, numbers, tails, night, time, input, access, layout, gallery]) {
       part(context);
     }
   });
