@@ -78,7 +78,7 @@ Tailvane.board = (function () {
     }
     const [sheet, count] = answer;
     filled = performance.now();
-    const empty = count ? "" : "None of these " + total + " comets is up in dark time on this night.";
+    const empty = count ? "" : "None of the comets at hand (" + total + ") is up in dark time on this night.";
     Tailvane.write(Tailvane.find("show", "board-empty"), empty);
     Tailvane.write(Tailvane.find("show", "board-title"), ask((desk) => desk.board_title()));
     if (!table.tHead.rows.length) {

@@ -15,9 +15,9 @@ use crate::say::night::compass;
 const SIZE: f64 = 11.0;
 /// Least and greatest length of a hand, as shares of the smaller side of the picture.
 const HAND_SHARES: [f64; 2] = [0.2, 0.34];
-/// Altitudes shown: at least so far below the horizon, so far above the comet, and up to here.
+/// Altitudes shown: at least so far below the horizon, so far about the comet, and up to here.
 const BELOW_DEG: f64 = 7.0;
-const ABOVE_COMET_DEG: f64 = 22.0;
+const ABOUT_COMET_DEG: f64 = 22.0;
 const LEAST_TOP_DEG: f64 = 45.0;
 
 /// Where azimuths and altitudes lie on the page.
@@ -57,8 +57,8 @@ pub fn compose(moment: &Moment, wide_px: f64, height_px: f64) -> Scene {
         return scene;
     }
     let altitude_deg = moment.altitude_rad.to_degrees();
-    let low_deg = (-BELOW_DEG).min(altitude_deg - 12.0);
-    let top_deg = LEAST_TOP_DEG.max(altitude_deg + ABOVE_COMET_DEG);
+    let low_deg = (-BELOW_DEG).min(altitude_deg - ABOUT_COMET_DEG);
+    let top_deg = LEAST_TOP_DEG.max(altitude_deg + ABOUT_COMET_DEG);
     let plane = Plane {
         area,
         px_per_deg: area.height() / (top_deg - low_deg),
@@ -214,7 +214,16 @@ fn draw_hands(
         let (left, up) = libm::sincos(angle);
         let outward = [-left, -up];
         let share = HAND_SHARES[1] - (HAND_SHARES[1] - HAND_SHARES[0]) * number as f64 / 2.0;
-        let length = side * share;
+        // No farther than the end mark stays on the picture.
+        let inner = area.grown(-10.0 * unit);
+        let room_px = |axis: usize, low: f64, high: f64| match outward[axis] {
+            step if step > 1e-9 => (high - comet[axis]) / step,
+            step if step < -1e-9 => (low - comet[axis]) / step,
+            _ => f64::INFINITY,
+        };
+        let edge = room_px(0, inner.left, inner.right).min(room_px(1, inner.top, inner.bottom));
+        // Shortened alike, so that marks of directions that fall together do not meet.
+        let length = (side * share).min(edge * share / HAND_SHARES[1]);
         let end = [comet[0] + outward[0] * length, comet[1] + outward[1] * length];
         scene.add(Role::Hand(direction), Shape::Polyline(vec![comet, end]));
         room.hands.push([comet, end]);

@@ -112,12 +112,12 @@ pub fn compose(course: &Course, site: &str, now: Instant, width_px: f64, height_
     }
     text(Role::Note, "air mass".to_owned(), [width_px - margin, margin + ABOVE * size_px], Anchor::End, false);
     let foot = height_px - margin - BELOW * size_px;
+    text(Role::Note, "UTC".to_owned(), [margin, foot], Anchor::Start, false);
     for (time, words) in hours(&plane, unit) {
         let x = plane.x(time);
         axis.push(vec![[x, area.bottom], [x, area.bottom + 4.0 * unit]]);
         text(Role::Note, words, [x, foot], Anchor::Middle, false);
     }
-    text(Role::Note, "UTC".to_owned(), [margin, foot], Anchor::Start, false);
     scene.add(Role::Axis, Shape::Lines(axis));
     scene.add(Role::Horizon, Shape::Polyline(vec![[area.left, plane.y(0.0)], [area.right, plane.y(0.0)]]));
 
@@ -239,7 +239,7 @@ fn write(
     let mut taken: Vec<Rect> = Vec::new();
     for (role, text) in texts {
         let box_px = text.area();
-        if page.contains(&box_px) && !taken.iter().any(|other| other.overlaps(&box_px.grown(1.5 * unit))) {
+        if page.contains(&box_px) && !taken.iter().any(|other| other.overlaps(&box_px.grown(3.0 * unit))) {
             taken.push(box_px);
             scene.add(role, Shape::Text(text));
         }

@@ -4,6 +4,7 @@ use crate::labels::faults;
 use crate::skies;
 use tailvane::engine::Engine;
 use tailvane::plan::Plan;
+use tailvane::scene::lettering::Rect;
 use tailvane::scene::{Body, Direction, Point, Role, Scene, Shape, horizon, night_strip};
 use tailvane::time::Instant;
 
@@ -15,6 +16,23 @@ fn engine() -> Engine {
 
 fn evening_time(text: &str) -> Instant {
     text.parse::<tailvane::time::Stamp>().expect("a time").instant()
+}
+
+/// End marks that touch a text of any kind, in words.
+fn on_any_text(scene: &Scene) -> Vec<String> {
+    let mut found = Vec::new();
+    for node in &scene.nodes {
+        let (Role::Mark(_), Shape::Circle { center, radius_px }) = (node.role, &node.shape) else { continue };
+        let mark = Rect::around(*center, *radius_px, *radius_px);
+        let page = Rect { left: 0.0, top: 0.0, right: scene.width_px, bottom: scene.height_px };
+        if !page.contains(&mark) {
+            found.push(format!("{:?} leaves the page", node.role));
+        }
+        for (_, text) in scene.texts().filter(|(_, text)| text.area().overlaps(&mark)) {
+            found.push(format!("{:?} on {:?}", text.words, node.role));
+        }
+    }
+    found
 }
 
 /// The points of every line under a role.
@@ -92,6 +110,7 @@ fn hands_over_the_horizon_lean_as_the_angles_say() {
         for (width, height) in SIZES {
             let scene = horizon::compose(&moment, width, height);
             assert_eq!(faults(&scene), Vec::<String>::new(), "{width} {hour}");
+            assert!(on_any_text(&scene).is_empty(), "{:?}", on_any_text(&scene));
             for (direction, angle) in [
                 (Direction::Antisolar, moment.sky.antisolar_position_angle_rad),
                 (Direction::IonAxis, moment.ion_position_angle_rad),
