@@ -5,6 +5,8 @@
 
 pub mod easel;
 pub mod sheet;
+mod night;
+pub mod season;
 
 use crate::body::SPAN;
 use crate::body::observer::Observer;
@@ -112,11 +114,17 @@ impl Engine {
     /// A time outside the span of the ephemeris.
     pub fn view_at(&mut self, time: Instant) -> Result<View, Error> {
         let sky = self.sky_at(time)?;
-        let mut cautions = self.cautions_of_elements(time);
-        cautions.extend(sky.cautions.iter().cloned());
-        cautions.extend(avoidance::cautions(&sky, |time| self.watch.sun_altitude_deg(time)));
-        order::by_rank(&mut cautions, |caution| u64::MAX - caution.weight() as u64);
+        let cautions = self.cautions_of(&sky);
         Ok(View { sky, cautions })
+    }
+
+    /// Everything doubtful about a sky, the heaviest first.
+    fn cautions_of(&mut self, sky: &Sky) -> Vec<Caution> {
+        let mut cautions = self.cautions_of_elements(sky.time);
+        cautions.extend(sky.cautions.iter().cloned());
+        cautions.extend(avoidance::cautions(sky, |time| self.watch.sun_altitude_deg(time)));
+        order::by_rank(&mut cautions, |caution| u64::MAX - caution.weight() as u64);
+        cautions
     }
 
     /// The comet of a sky, ready for its tails.
@@ -141,7 +149,8 @@ impl Engine {
     /// When the comet is up in a dark sky within half a day of `time`; None for the geocentre.
     pub fn dark_windows(&mut self, time: Instant) -> Option<Vec<Window>> {
         let day = self.day(time)?;
-        Some(dark::windows(time, |time| SPAN.contains(time).then(|| day.altitudes_deg(time))))
+        let limits = self.plan.night.limits();
+        Some(dark::windows(time, &limits, |time| SPAN.contains(time).then(|| day.altitudes_deg(time))))
     }
 
     /// Comet and Sun over the site's day about `time`; None for the geocentre. Nodes beyond the ephemeris repeat

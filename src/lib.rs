@@ -13,6 +13,8 @@
 //! | [`orbit`] | what do published elements say, and where does the comet move? |
 //! | [`sky`] | what does the observer see: place, angles, directions, motion? |
 //! | [`tail`] | where does what leaves the nucleus lie on the sky? |
+//! | [`season`] | when does what happen: curves over dates, events, windows? |
+//! | [`night`] | what does one night hold for a comet and a site? |
 //! | [`camera`] | which part of the sky does a camera take in, and where on it do the tails lie? |
 //! | [`plan`] | what did a person set up? |
 //! | [`say`] | what do the numbers mean, in words? |
@@ -30,6 +32,8 @@ pub mod body;
 pub mod orbit;
 pub mod sky;
 pub mod tail;
+pub mod season;
+pub mod night;
 pub mod camera;
 pub mod plan;
 pub mod say;

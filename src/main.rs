@@ -27,6 +27,10 @@ tailvane: where a comet's tails lie on the sky
   tailvane camera PLAN [--at TIME ...] [--json]
       how the plan's camera stands, and where on its chip the tails lie;
       its mount carries it from the plan's time on
+  tailvane night PLAN [--date DATE] [--step 10m] [--json]
+      the night that begins on the evening of DATE (2031-03-20, local mean solar
+      date of the site; without one, the night of the plan's time): comet, Sun and
+      Moon over the horizon, twilights, dark time, the best window
   tailvane draw PLAN --view VIEW --out FILE.svg [--at TIME]
       [--width PX] [--height PX] [--theme THEME]
       the picture of the page; the views and themes are named when one is wrong

@@ -8,7 +8,9 @@ mod answer;
 mod bench;
 mod camera;
 mod examples;
+mod night;
 mod season;
+mod share;
 mod tails;
 mod typed;
 
@@ -129,6 +131,7 @@ pub struct Desk {
     opening_tan: Option<f64>,
     season: Option<Season>,
     read: Vec<Entry>,
+    night: night::Kept,
 }
 
 #[wasm_bindgen]
@@ -151,6 +154,7 @@ impl Desk {
             view_chosen: false,
             season: None,
             read: Vec::new(),
+            night: night::Kept::default(),
         })
     }
 
@@ -260,7 +264,7 @@ impl Desk {
     /// Everything the page shows beside the drawings.
     pub fn reading(&mut self) -> JsValue {
         let visibility = match self.engine.dark_windows(self.seen.sky.time) {
-            Some(windows) => say::when_up(&windows),
+            Some(windows) => say::when_up(&windows, &self.engine.plan().night.limits()),
             None => "Give a site under Observer to see when the comet is up in a dark sky.".to_owned(),
         };
         let tails = self.tails();
@@ -385,6 +389,7 @@ impl Desk {
         let (engine, time, seen) = prepared(plan).map_err(refusal)?;
         self.season = None;
         (self.tails, self.tails_fresh) = (None, false);
+        self.night.plan_changed();
         let size = |engine: &Engine| engine.plan().camera.as_ref().map(|camera| (camera.half_px(), camera.scale_tan()));
         let resized = size(&self.engine) != size(&engine);
         (self.engine, self.time, self.seen) = (engine, time, seen);

@@ -191,10 +191,13 @@ fn only_the_theme_names_a_colour() {
 #[test]
 fn position_angles_are_made_in_one_place() {
     // The arc of (east, north) outside frame would be a second maker.
-    let found: Vec<String> = lines_with(&sources("src", &[".rs"]), &["atan2(xi", "atan2(east", "opposite: xi", "opposite: east", ".east), "])
-        .into_iter()
-        .filter(|line| !line.starts_with("src/frame/"))
-        .collect();
+    let found: Vec<String> = lines_with(
+        &sources("src", &[".rs"]),
+        &["atan2(xi", "atan2(east", "opposite: xi", "opposite: east", ".east), "],
+    )
+    .into_iter()
+    .filter(|line| !line.starts_with("src/frame/"))
+    .collect();
     assert!(found.is_empty(), "{found:#?}");
 }
 

@@ -24,7 +24,7 @@
   starting.remove();
   Tailvane.sky.drawDirections();
   await shown();
-  for (const part of ["sky", "season", "say", "numbers", "tails", "drawings", "camera", "comet", "observer", "plan"]) {
+  for (const part of ["sky", "season", "say", "numbers", "tails", "drawings", "camera", "comet", "observer", "plan", "night", "board"]) {
     Tailvane[part].start();
   }
   if (refusal) {

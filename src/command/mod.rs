@@ -6,6 +6,7 @@ mod dust;
 mod elements;
 mod grains;
 mod ion;
+mod night;
 mod sky;
 mod table;
 
@@ -23,6 +24,7 @@ pub const COMMANDS: &[Command] = &[
     ("ion", ion::run),
     ("dust", dust::run),
     ("camera", camera::run),
+    ("night", night::run),
     ("draw", draw::run),
     ("elements", elements::run),
 ];

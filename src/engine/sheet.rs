@@ -17,7 +17,8 @@ const FILLED: f64 = 0.74;
 
 /// The field card of a view, image up where there is a camera.
 pub fn field_card(engine: &mut Engine, view: &View, theme: Theme, wishes: &Wishes) -> Scene {
-    let when_up = engine.dark_windows(view.sky.time).map(|windows| say::when_up(&windows));
+    let limits = engine.plan().night.limits();
+    let when_up = engine.dark_windows(view.sky.time).map(|windows| say::when_up(&windows, &limits));
     let [width_px, height_px] = DRAWING_PX;
     let mut sky_view = opening(engine, width_px, height_px);
     let camera = engine.plan().camera.as_ref();

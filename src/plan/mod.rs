@@ -8,12 +8,14 @@
 //! | --- | --- | --- |
 //! | `tailvane_plan` | the version, 1 | no |
 //! | `comet` | [`Comet`]: `name`, `elements`, `brightness` | no |
+//! | `comets` | more comets | yes |
 //! | `observer` | a [`Site`]: `name`, `longitude_deg`, `latitude_deg`, `height_m` | yes: the geocentre |
 //! | `sites` | more sites | yes |
 //! | `time` | a date in any form of [`Stamp`] | yes |
 //! | `tails` | [`Tails`]: winds, dust, activity, ejection | yes, and any key in it |
 //! | `camera` | a [`Camera`], the one in use | yes |
 //! | `cameras` | more cameras | yes |
+//! | `night` | [`NightLaw`]: limits of the dark time, scale and trail of the pictures | yes, and any key in it |
 
 mod json;
 pub mod paste;
@@ -21,6 +23,7 @@ pub mod paste;
 use crate::body::observer::{Observer, Site};
 use crate::camera::Camera;
 use crate::error::{Error, Kind, Place};
+use crate::night::law::NightLaw;
 use crate::orbit::elements::Comet;
 use crate::tail::law::Tails;
 use crate::time::Stamp;
@@ -33,6 +36,8 @@ pub const VERSION: u32 = 1;
 #[derive(Clone, Debug, PartialEq)]
 pub struct Plan {
     pub comet: Comet,
+    /// More comets the person keeps.
+    pub comets: Vec<Comet>,
     pub observer: Observer,
     /// More observers the person keeps.
     pub sites: Vec<Site>,
@@ -43,6 +48,8 @@ pub struct Plan {
     pub camera: Option<Camera>,
     /// More cameras the person keeps.
     pub cameras: Vec<Camera>,
+    /// What counts as dark, as up, as sharp.
+    pub night: NightLaw,
 }
 
 /// The plan as its JSON lies; later sections become fields here and in [`Plan`].
@@ -51,6 +58,8 @@ pub struct Plan {
 struct Text {
     tailvane_plan: u32,
     comet: Comet,
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    comets: Vec<Comet>,
     #[serde(default, skip_serializing_if = "Option::is_none")]
     observer: Option<Site>,
     #[serde(default, skip_serializing_if = "Vec::is_empty")]
@@ -63,6 +72,8 @@ struct Text {
     camera: Option<Camera>,
     #[serde(default, skip_serializing_if = "Vec::is_empty")]
     cameras: Vec<Camera>,
+    #[serde(default, skip_serializing_if = "NightLaw::is_default")]
+    night: NightLaw,
 }
 
 /// The version alone, so that a newer plan is refused as newer and not for its new keys.
@@ -78,12 +89,14 @@ impl From<Comet> for Plan {
     fn from(comet: Comet) -> Self {
         Plan {
             comet,
+            comets: Vec::new(),
             observer: Observer::Geocentre,
             sites: Vec::new(),
             time: None,
             tails: Tails::default(),
             camera: None,
             cameras: Vec::new(),
+            night: NightLaw::default(),
         }
     }
 }
@@ -106,12 +119,14 @@ impl Plan {
         let read: Text = json::read(text)?;
         let plan = Plan {
             comet: read.comet,
+            comets: read.comets,
             observer: read.observer.map_or(Observer::Geocentre, Observer::Site),
             sites: read.sites,
             time: read.time,
             tails: read.tails,
             camera: read.camera,
             cameras: read.cameras,
+            night: read.night,
         };
         plan.validate().map_err(|error| json::located(text, "", error))?;
         Ok(plan)
@@ -132,6 +147,7 @@ impl Plan {
         Text {
             tailvane_plan: VERSION,
             comet: self.comet.clone(),
+            comets: self.comets.clone(),
             observer: match &self.observer {
                 Observer::Geocentre => None,
                 Observer::Site(site) => Some(site.clone()),
@@ -141,6 +157,7 @@ impl Plan {
             tails: self.tails.clone(),
             camera: self.camera.clone(),
             cameras: self.cameras.clone(),
+            night: self.night.clone(),
         }
     }
 
@@ -148,6 +165,9 @@ impl Plan {
     /// The first value outside its range, at its path.
     pub fn validate(&self) -> Result<(), Error> {
         self.comet.validate()?;
+        for (index, comet) in self.comets.iter().enumerate() {
+            comet.validate().map_err(|error| kept(index, error))?;
+        }
         if let Observer::Site(site) = &self.observer {
             site.validate("observer")?;
         }
@@ -161,8 +181,17 @@ impl Plan {
         for (index, camera) in self.cameras.iter().enumerate() {
             camera.validate(&format!("cameras[{index}]"))?;
         }
-        Ok(())
+        self.night.validate()
     }
+}
+
+/// An error of a kept comet, which names itself `comet`, at its own path.
+fn kept(index: usize, error: Error) -> Error {
+    let path = match &error.place {
+        Place::Field(path) => format!("comets[{index}]{}", path.strip_prefix("comet").unwrap_or(path)),
+        _ => format!("comets[{index}]"),
+    };
+    error.at(Place::Field(path))
 }
 
 fn check_version(version: Option<&str>) -> Result<(), Error> {

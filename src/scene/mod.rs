@@ -14,12 +14,14 @@ pub mod camera_field;
 pub mod camera_words;
 pub mod card;
 pub mod clip;
+pub mod horizon;
 pub mod image;
 pub mod isophote;
 pub mod label;
 pub mod layer;
 pub mod lettering;
 pub mod mark;
+pub mod night_strip;
 pub mod note;
 pub mod orbit_view;
 pub mod panel;
@@ -110,6 +112,14 @@ pub enum Family {
     NeckLine,
 }
 
+/// What stands over the horizon.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
+pub enum Body {
+    Comet,
+    Sun,
+    Moon,
+}
+
 /// What a node means.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
 pub enum Role {
@@ -178,6 +188,19 @@ pub enum Role {
     /// Frame and ticks of a map.
     Axis,
     ScaleBar,
+    /// How light the sky is while the Sun stands so high: 0 for night to [`theme::LIGHTS`] - 1 for day.
+    SkyLight(u8),
+    /// What lies below the horizon, and the horizon itself.
+    BelowHorizon,
+    Horizon,
+    /// The altitude of a body through the night, and its name.
+    Course(Body),
+    CourseLabel(Body),
+    /// Dark time with the comet up, and the best of it.
+    DarkTime,
+    BestTime,
+    /// The chosen time.
+    Now,
     /// Name of what is drawn.
     Title,
     /// Body text of a card, and a rule between its parts.

@@ -8,7 +8,7 @@
 //! Contrast (tested): every text at least 4.5:1 and every control border at least 3:1 on its ground, by
 //! WCAG 2.2 relative luminance.
 
-use super::{Direction, Family, Role};
+use super::{Body, Direction, Family, Role};
 
 /// A colour scheme.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -58,6 +58,10 @@ pub struct Stop {
 
 /// Steps of brightness that a cell of a map may have ([`Role::Tone`]).
 pub const TONES: u8 = 12;
+/// Steps of the light of the sky ([`Role::SkyLight`]): night, three twilights, day.
+pub const LIGHTS: u8 = 5;
+/// How much one step of light changes the ground.
+const LIGHT_STEP: f64 = 0.09;
 /// Cells of a map use the tone map up to here, so that a hatch stands out on the brightest.
 const BRIGHTEST_CELL: f64 = 0.62;
 
@@ -371,6 +375,22 @@ impl Theme {
             Role::MapHatch => line(p.text, 1.0),
             Role::Axis => line(p.dial, 1.0),
             Role::ScaleBar => line(p.text, 1.4),
+            Role::SkyLight(level) => {
+                // On paper day is the white of the page, elsewhere night is the ground.
+                let steps = if self == Theme::Paper { LIGHTS - 1 - level.min(LIGHTS - 1) } else { level };
+                fill(p.border, LIGHT_STEP * f64::from(steps))
+            }
+            Role::BelowHorizon => fill(p.panel, 0.75),
+            Role::Horizon => line(p.text, 1.4),
+            Role::Course(Body::Comet) => line(p.text, 2.4),
+            Role::Course(Body::Moon) => pattern(p.quiet, 1.6, &[7.0, 5.0]),
+            Role::Course(Body::Sun) => pattern(p.antisolar, 2.2, &[0.1, 5.0]),
+            Role::CourseLabel(Body::Comet) => letters(p.text),
+            Role::CourseLabel(Body::Moon) => letters(p.quiet),
+            Role::CourseLabel(Body::Sun) => letters(p.antisolar),
+            Role::DarkTime => Look { fill: Some(p.panel), ..line(p.border, 1.2) },
+            Role::BestTime => fill(p.zenith, 1.0),
+            Role::Now => line(p.focus, 1.6),
             Role::Title => letters(p.text),
             Role::CardText => Look { fill: Some(p.text), ..BARE },
             Role::CardRule => line(p.rule, 1.0),

@@ -11,6 +11,7 @@ import camera from "./camera.mjs";
 import gallery from "./gallery.mjs";
 import input from "./input.mjs";
 import layout from "./layout.mjs";
+import night from "./night.mjs";
 import numbers from "./numbers.mjs";
 import tails from "./tails.mjs";
 import quiet from "./quiet.mjs";
@@ -39,7 +40,7 @@ describe("the page", { concurrency: wanted.length }, () => {
           context.server.stop();
         }
       });
-      for (const part of [quiet, numbers, tails, camera, time, input, access, layout, gallery]) {
+      for (const part of [quiet, numbers, tails, night, camera, time, input, access, layout, gallery]) {
         part(context);
       }
     });
