@@ -8,6 +8,7 @@ mod answer;
 mod bench;
 mod examples;
 mod season;
+mod share;
 mod tails;
 mod typed;
 

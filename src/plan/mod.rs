@@ -8,6 +8,7 @@
 //! | --- | --- | --- |
 //! | `tailvane_plan` | the version, 1 | no |
 //! | `comet` | [`Comet`]: `name`, `elements`, `brightness` | no |
+//! | `comets` | more comets | yes |
 //! | `observer` | a [`Site`]: `name`, `longitude_deg`, `latitude_deg`, `height_m` | yes: the geocentre |
 //! | `sites` | more sites | yes |
 //! | `time` | a date in any form of [`Stamp`] | yes |
@@ -30,6 +31,8 @@ pub const VERSION: u32 = 1;
 #[derive(Clone, Debug, PartialEq)]
 pub struct Plan {
     pub comet: Comet,
+    /// More comets the person keeps.
+    pub comets: Vec<Comet>,
     pub observer: Observer,
     /// More observers the person keeps.
     pub sites: Vec<Site>,
@@ -44,6 +47,8 @@ pub struct Plan {
 struct Text {
     tailvane_plan: u32,
     comet: Comet,
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    comets: Vec<Comet>,
     #[serde(default, skip_serializing_if = "Option::is_none")]
     observer: Option<Site>,
     #[serde(default, skip_serializing_if = "Vec::is_empty")]
@@ -64,7 +69,14 @@ struct Header {
 impl From<Comet> for Plan {
     /// A comet seen from the geocentre, without a time.
     fn from(comet: Comet) -> Self {
-        Plan { comet, observer: Observer::Geocentre, sites: Vec::new(), time: None, tails: Tails::default() }
+        Plan {
+            comet,
+            comets: Vec::new(),
+            observer: Observer::Geocentre,
+            sites: Vec::new(),
+            time: None,
+            tails: Tails::default(),
+        }
     }
 }
 
@@ -85,6 +97,7 @@ impl Plan {
         let read: Text = json::read(text)?;
         let plan = Plan {
             comet: read.comet,
+            comets: read.comets,
             observer: read.observer.map_or(Observer::Geocentre, Observer::Site),
             sites: read.sites,
             time: read.time,
@@ -111,6 +124,7 @@ impl Plan {
         Text {
             tailvane_plan: VERSION,
             comet: self.comet.clone(),
+            comets: self.comets.clone(),
             observer: match &self.observer {
                 Observer::Geocentre => None,
                 Observer::Site(site) => Some(site.clone()),
@@ -125,6 +139,9 @@ impl Plan {
     /// The first value outside its range, at its path.
     pub fn validate(&self) -> Result<(), Error> {
         self.comet.validate()?;
+        for (index, comet) in self.comets.iter().enumerate() {
+            comet.validate().map_err(|error| kept(index, error))?;
+        }
         if let Observer::Site(site) = &self.observer {
             site.validate("observer")?;
         }
@@ -133,6 +150,15 @@ impl Plan {
         }
         self.tails.validate()
     }
+}
+
+/// An error of a kept comet, which names itself `comet`, at its own path.
+fn kept(index: usize, error: Error) -> Error {
+    let path = match &error.place {
+        Place::Field(path) => format!("comets[{index}]{}", path.strip_prefix("comet").unwrap_or(path)),
+        _ => format!("comets[{index}]"),
+    };
+    error.at(Place::Field(path))
 }
 
 fn check_version(version: Option<&serde_json::Value>) -> Result<(), Error> {

@@ -7,6 +7,7 @@
 mod dust;
 mod figure;
 pub mod stage;
+pub mod table;
 
 use crate::body::observer::Observer;
 use crate::plan::Plan;

@@ -99,7 +99,7 @@ prop_compose! {
 }
 
 prop_compose! {
-    pub fn plans()(comet in comets(), observer in prop::option::of(sites()), sites in prop::collection::vec(sites(), 0..3), time in prop::option::of(stamps())) -> Plan {
-        Plan { observer: observer.map_or(Observer::Geocentre, Observer::Site), sites, time, ..Plan::from(comet) }
+    pub fn plans()(comet in comets(), comets in prop::collection::vec(comets(), 0..3), observer in prop::option::of(sites()), sites in prop::collection::vec(sites(), 0..3), time in prop::option::of(stamps())) -> Plan {
+        Plan { comets, observer: observer.map_or(Observer::Geocentre, Observer::Site), sites, time, ..Plan::from(comet) }
     }
 }
