@@ -24,6 +24,10 @@ tailvane: where a comet's tails lie on the sky
   tailvane dust PLAN [--at TIME ...] [--beta B,...] [--ages D,...] [--json]
       dust of each beta at each age (days), without ejection speed;
       what is left out is chosen within the plan's ranges
+  tailvane season PLAN --from TIME --to TIME [--json | --calendar | --table FORM]
+      events seen from the Earth's centre: crossings of the orbit plane, greatest
+      and least angles, windows of sunward dust and more; as CSV, JSON, an
+      iCalendar file, or a table in the form plain, markdown or wiki
   tailvane draw PLAN --view VIEW --out FILE.svg [--at TIME]
       [--width PX] [--height PX] [--theme THEME]
       the picture of the page; the views and themes are named when one is wrong

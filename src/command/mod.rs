@@ -5,6 +5,7 @@ mod dust;
 mod elements;
 mod grains;
 mod ion;
+mod season;
 mod sky;
 mod table;
 
@@ -18,7 +19,7 @@ use tailvane::time::{Instant, Stamp};
 type Command = (&'static str, fn(lexopt::Parser) -> Result<(), Stop>);
 
 pub const COMMANDS: &[Command] =
-    &[("sky", sky::run), ("ion", ion::run), ("dust", dust::run), ("draw", draw::run), ("elements", elements::run)];
+    &[("sky", sky::run), ("ion", ion::run), ("dust", dust::run), ("season", season::run), ("draw", draw::run), ("elements", elements::run)];
 
 /// The names of the commands, as a list in words.
 pub fn names() -> String {

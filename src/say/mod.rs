@@ -6,6 +6,7 @@
 
 mod dust;
 mod figure;
+pub mod season;
 pub mod stage;
 pub mod table;
 
