@@ -168,22 +168,6 @@ fn the_scan_sees_an_event_left_out_and_one_made_up() {
     assert_eq!(dense::differences(&scanned, &events, within, 10.0 * STEP).len(), 1);
 }
 
-/// `cargo test --release --test season -- --ignored --nocapture`: ten minutes.
-#[test]
-#[ignore = "the whole comparison: 200 orbits, two years each, in one-minute steps"]
-fn two_hundred_orbits_have_the_events_of_a_scan_in_one_minute_steps() {
-    let (mut seen, mut wrong) = (0, Vec::new());
-    for (number, elements) in dense::orbits(200).into_iter().enumerate() {
-        let (found, differing) = dense::compare(&[elements], 730.0, STEP);
-        println!("orbit {number}: {found} events, {} wrong", differing.len());
-        differing.iter().for_each(|words| println!("  {words}"));
-        seen += found;
-        wrong.extend(differing);
-    }
-    println!("{seen} events, {} missed, doubled or false", wrong.len());
-    assert!(wrong.is_empty(), "{wrong:#?}");
-}
-
 /// A comet whose dust gets sunward by perspective near a crossing, with ejection for longer, and not at all before.
 fn dusty() -> Elements {
     Elements { numbers: [0.62, 1.0003, 63.0, 118.0, 62.0], perihelion_time: "2031-02-22.18374 TT".to_owned() }
