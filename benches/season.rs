@@ -38,7 +38,10 @@ fn speed() -> ExitCode {
         let geometry_ms = median(|| drop(black_box(geometric_events(&elements.engine(), part))));
         let mut looks = 0;
         let whole_ms = median(|| looks = whole(elements.engine().season_search(part)).strengths.len());
-        println!("q {} au: geometry {geometry_ms:.1} ms, with sunward dust {whole_ms:.1} ms ({looks} looks)", numbers[0]);
+        println!(
+            "q {} au: geometry {geometry_ms:.1} ms, with sunward dust {whole_ms:.1} ms ({looks} looks)",
+            numbers[0]
+        );
     }
     ExitCode::SUCCESS
 }
@@ -56,8 +59,15 @@ fn median(mut work: impl FnMut()) -> f64 {
 }
 
 fn scan() -> ExitCode {
+    // Two numbers after the word scan only a part: from, and up to but without.
+    let numbers: Vec<usize> = std::env::args().filter_map(|word| word.parse().ok()).collect();
+    let [from, to] = numbers[..] else { return scan_part(0, ORBITS) };
+    scan_part(from, to)
+}
+
+fn scan_part(from: usize, to: usize) -> ExitCode {
     let (mut seen, mut wrong) = (0, 0);
-    for (number, elements) in dense::orbits(ORBITS).into_iter().enumerate() {
+    for (number, elements) in dense::orbits(ORBITS).into_iter().enumerate().take(to).skip(from) {
         let (found, differing) = dense::compare(&[elements], YEARS_DAYS, SCAN_STEP_DAYS);
         println!("orbit {number}: {found} events, {} wrong", differing.len());
         differing.iter().for_each(|words| println!("  {words}"));

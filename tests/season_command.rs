@@ -54,7 +54,8 @@ fn csv_has_the_fixed_columns_in_order_of_time_and_json_the_same_numbers() {
     assert_eq!(&row("perihelion")[0], "2031-03-04T12:23:47.264Z");
     assert_eq!((&row("perihelion")[2], &row("perihelion")[3]), ("0.52", "au"));
     let crossing = row("orbit-plane crossing");
-    let opposite = rows.iter().any(|row| &row[1] == "orbit-plane crossing" && row[4].contains("old dust can lie sunward"));
+    let opposite =
+        rows.iter().any(|row| &row[1] == "orbit-plane crossing" && row[4].contains("old dust can lie sunward"));
     assert!(opposite && crossing[4].contains("uncertain by"), "{text}");
     assert!(crossing[5].contains("days from their epoch"), "{}", &crossing[5]);
     let json: serde_json::Value = serde_json::from_str(&said(&["--json"], &plan("Invented comet"))).expect("JSON");

@@ -18,8 +18,14 @@ use tailvane::time::{Instant, Stamp};
 /// A command by its name.
 type Command = (&'static str, fn(lexopt::Parser) -> Result<(), Stop>);
 
-pub const COMMANDS: &[Command] =
-    &[("sky", sky::run), ("ion", ion::run), ("dust", dust::run), ("season", season::run), ("draw", draw::run), ("elements", elements::run)];
+pub const COMMANDS: &[Command] = &[
+    ("sky", sky::run),
+    ("ion", ion::run),
+    ("dust", dust::run),
+    ("season", season::run),
+    ("draw", draw::run),
+    ("elements", elements::run),
+];
 
 /// The names of the commands, as a list in words.
 pub fn names() -> String {

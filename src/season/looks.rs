@@ -125,7 +125,8 @@ impl Looks {
         let mut look = |step: i64| {
             *self.by_step.entry(step).or_insert_with(|| Look::at(survey, tails, step as f64 / STEPS_PER_DAY))
         };
-        let mut dates: Vec<i64> = crossings.iter().filter(|days| begin < **days && **days < end).map(|d| step(*d)).collect();
+        let mut dates: Vec<i64> =
+            crossings.iter().filter(|days| begin < **days && **days < end).map(|d| step(*d)).collect();
         dates.extend([step(begin), step(end)]);
         dates.sort_unstable();
         dates.dedup();

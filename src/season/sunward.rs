@@ -76,7 +76,8 @@ pub(super) fn windows<'a>(looks: impl Iterator<Item = &'a Look>, stretch: &Stret
             window.end = time;
             let worth = |strength: &Strength| (strength.grade, strength.share);
             // A best date outside the stretch would be no use.
-            if !stretch.holds(window.best.time) || (stretch.holds(time) && worth(&look.strength) > worth(&window.best)) {
+            if !stretch.holds(window.best.time) || (stretch.holds(time) && worth(&look.strength) > worth(&window.best))
+            {
                 window.best = look.strength;
             }
         }
@@ -111,7 +112,9 @@ pub(super) fn events(windows: &[Window]) -> Vec<Event> {
             Grade::Possible => "possible",
             Grade::Faint | Grade::None => "faint",
         };
-        let note = format!("at its best {grade}, looked at {}", best.time.utc_minute());
+        let minute = best.time.utc_minute();
+        let day = minute.split(' ').next().unwrap_or_default();
+        let note = format!("at its best {grade}, about {day}, with this share of the light");
         let mut push = |end: usize, kind: EventKind, time: Instant| {
             if !window.cut[end] {
                 found.push(Event {

@@ -150,7 +150,9 @@ pub fn compare(orbits: &[Elements], days: f64, step_days: f64) -> (usize, Vec<St
         let events = geometric_events(&engine, stretch(within[0], within[1]));
         let scanned = scan(&mut engine, within, step_days);
         seen += scanned.len();
-        wrong.extend(differences(&scanned, &events, within, step_days).iter().map(|words| format!("{elements:?}: {words}")));
+        wrong.extend(
+            differences(&scanned, &events, within, step_days).iter().map(|words| format!("{elements:?}: {words}")),
+        );
     }
     (seen, wrong)
 }
