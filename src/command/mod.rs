@@ -7,6 +7,7 @@ mod elements;
 mod grains;
 mod ion;
 mod night;
+mod season;
 mod sky;
 mod table;
 
@@ -23,8 +24,9 @@ pub const COMMANDS: &[Command] = &[
     ("sky", sky::run),
     ("ion", ion::run),
     ("dust", dust::run),
-    ("camera", camera::run),
+    ("season", season::run),
     ("night", night::run),
+    ("camera", camera::run),
     ("draw", draw::run),
     ("elements", elements::run),
 ];
