@@ -8,7 +8,8 @@
 //! Contrast (tested): every text at least 4.5:1 and every control border at least 3:1 on its ground, by
 //! WCAG 2.2 relative luminance.
 
-use super::{Direction, Family, Role};
+use super::{Direction, Family, Lane, Role};
+use crate::season::series::Curve;
 
 /// A colour scheme.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -87,6 +88,15 @@ struct Palette {
     toward_sun: Color,
     /// The dust sheet in the orbit view.
     sheet: Color,
+    /// Curves of the season ribbon that are no direction.
+    phase_angle: Color,
+    elongation: Color,
+    sun_distance: Color,
+    observer_distance: Color,
+    magnitude: Color,
+    /// Bands of the season ribbon.
+    dark_hours: Color,
+    near_sun: Color,
     dust: [Stop; 5],
 }
 
@@ -122,6 +132,13 @@ const DARK: Palette = Palette {
     isophote: rgb(0x8a7660),
     toward_sun: rgb(0xe0a860),
     sheet: rgb(0xd9b38c),
+    phase_angle: rgb(0xd58fd8),
+    elongation: rgb(0x86c5ea),
+    sun_distance: rgb(0xd8a08a),
+    observer_distance: rgb(0xb4bccb),
+    magnitude: rgb(0xc9d77e),
+    dark_hours: rgb(0x7186c9),
+    near_sun: rgb(0xc07a58),
     // The first stop is the ground: a sky without dust stays dark.
     dust: [stop(0.0, 0x0a0d12), stop(0.1, 0x1a130d), stop(0.45, 0x5e452e), stop(0.8, 0xcba478), stop(1.0, 0xfff1d6)],
 };
@@ -149,6 +166,13 @@ const RED: Palette = Palette {
     isophote: rgb(0x8c0000),
     toward_sun: rgb(0xd00000),
     sheet: rgb(0xff0000),
+    phase_angle: rgb(0xff0000),
+    elongation: rgb(0xff0000),
+    sun_distance: rgb(0xff0000),
+    observer_distance: rgb(0xff0000),
+    magnitude: rgb(0xff0000),
+    dark_hours: rgb(0xb00000),
+    near_sun: rgb(0xb00000),
     dust: [stop(0.0, 0x000000), stop(0.1, 0x140000), stop(0.45, 0x4c0000), stop(0.8, 0xa60000), stop(1.0, 0xff0000)],
 };
 
@@ -175,6 +199,13 @@ const PAPER: Palette = Palette {
     isophote: rgb(0xa08a6c),
     toward_sun: rgb(0xa86a1c),
     sheet: rgb(0x9a7040),
+    phase_angle: rgb(0x8a2f8f),
+    elongation: rgb(0x0b5f8f),
+    sun_distance: rgb(0x8a3f22),
+    observer_distance: rgb(0x4b5566),
+    magnitude: rgb(0x55620a),
+    dark_hours: rgb(0x5a6fb8),
+    near_sun: rgb(0xa4532c),
     dust: [stop(0.0, 0xffffff), stop(0.1, 0xf8f2e8), stop(0.45, 0xe3cfae), stop(0.8, 0xb28a5a), stop(1.0, 0x6e4d26)],
 };
 
@@ -203,6 +234,19 @@ const fn curve_dashes(family: Family) -> &'static [f64] {
         Family::Syndyne => &[],
         Family::Synchrone => &[4.5, 4.0],
         Family::NeckLine => &[9.0, 4.0, 0.1, 4.0, 0.1, 4.0],
+    }
+}
+
+/// Line pattern of a curve on the season ribbon; the two directions keep those of their hands.
+const fn season_dashes(curve: Curve) -> &'static [f64] {
+    match curve {
+        Curve::OrbitPlane | Curve::Antisolar => &[],
+        Curve::NegativeVelocity => dashes(Direction::NegativeVelocity),
+        Curve::PhaseAngle => &[0.1, 4.5],
+        Curve::Elongation => &[6.0, 4.5],
+        Curve::SunDistance => &[10.0, 4.0, 0.1, 4.0],
+        Curve::ObserverDistance => &[3.0, 4.0],
+        Curve::Magnitude => &[8.0, 4.0, 0.1, 3.5, 0.1, 4.0],
     }
 }
 
@@ -283,6 +327,29 @@ impl Theme {
             Family::Syndyne => p.syndyne,
             Family::Synchrone => p.synchrone,
             Family::NeckLine => p.neck_line,
+        }
+    }
+
+    fn season_curve(self, curve: Curve) -> Color {
+        let p = self.palette();
+        match curve {
+            Curve::OrbitPlane => p.text,
+            Curve::Antisolar => p.antisolar,
+            Curve::NegativeVelocity => p.negative_velocity,
+            Curve::PhaseAngle => p.phase_angle,
+            Curve::Elongation => p.elongation,
+            Curve::SunDistance => p.sun_distance,
+            Curve::ObserverDistance => p.observer_distance,
+            Curve::Magnitude => p.magnitude,
+        }
+    }
+
+    fn band(self, lane: Lane) -> Color {
+        let p = self.palette();
+        match lane {
+            Lane::SunwardDust => p.toward_sun,
+            Lane::DarkHours => p.dark_hours,
+            Lane::NearSun => p.near_sun,
         }
     }
 
@@ -367,6 +434,29 @@ impl Theme {
             Role::MapHatch => line(p.text, 1.0),
             Role::Axis => line(p.dial, 1.0),
             Role::ScaleBar => line(p.text, 1.4),
+            Role::SeasonCurve(curve) => {
+                let width = match curve {
+                    Curve::OrbitPlane => 2.2,
+                    Curve::PhaseAngle => 2.2,
+                    _ => 1.5,
+                };
+                pattern(self.season_curve(curve), width, season_dashes(curve))
+            }
+            Role::CurveLeader(curve) => line(self.season_curve(curve), 0.8),
+            Role::CurveName(curve) | Role::CurveNumber(curve) => letters(self.season_curve(curve)),
+            Role::TrackEdge | Role::LaneRule => line(p.rule, 1.0),
+            Role::TrackZero => pattern(p.dial, 1.0, &[1.5, 4.0]),
+            Role::LaneName(_) => letters(p.quiet),
+            Role::Band(lane) => fill(self.band(lane), if lane == Lane::DarkHours { 0.75 } else { 0.3 }),
+            Role::BandRim(lane) => line(self.band(lane), 1.2),
+            Role::BandHatch(lane) => line(self.band(lane), 1.0),
+            Role::EventMark => fill(p.text, 1.0),
+            Role::EventStroke => line(p.quiet, 1.0),
+            Role::EventGuide => pattern(p.dial, 0.8, &[1.5, 3.5]),
+            Role::EventName => letters(p.text),
+            Role::Handle => line(p.text, 1.6),
+            Role::HandleGrip => Look { fill: Some(p.text), ..line(p.ground, 1.5) },
+            Role::HandleRidge => line(p.ground, 1.0),
             Role::Title => letters(p.text),
             Role::Note => letters(p.quiet),
             Role::Caution => letters(p.caution),
