@@ -12,6 +12,7 @@
 //! | [`orbit`] | what do published elements say, and where does the comet move? |
 //! | [`sky`] | what does the observer see: place, angles, directions, motion? |
 //! | [`tail`] | where does what leaves the nucleus lie on the sky? |
+//! | [`season`] | when does what happen: curves over dates, events, windows? |
 //! | [`plan`] | what did a person set up? |
 //! | [`say`] | what do the numbers mean, in words? |
 //! | [`scene`] | what is drawn, fully resolved? |
@@ -27,6 +28,7 @@ pub mod body;
 pub mod orbit;
 pub mod sky;
 pub mod tail;
+pub mod season;
 pub mod plan;
 pub mod say;
 pub mod scene;
