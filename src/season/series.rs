@@ -8,7 +8,7 @@ use crate::time::Instant;
 use std::f64::consts::TAU;
 
 /// A quantity that is drawn over dates.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
 pub enum Curve {
     OrbitPlane,
     Antisolar,

@@ -9,7 +9,7 @@ use crate::caution::Caution;
 use crate::time::Instant;
 
 /// Elongation below which the Sun is minded, degrees.
-const NEAR_SUN_DEG: f64 = 30.0;
+pub const NEAR_SUN_DEG: f64 = 30.0;
 
 /// Geometric altitude of the Sun's centre at rising and setting: 34' of refraction and 16' of radius.
 /// Common almanac practice.
