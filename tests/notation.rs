@@ -18,7 +18,7 @@ fn one_comet_reads_the_same_in_every_notation() {
         assert_invented(&comet(&format!("\u{feff}\n\n{text}\n\n")));
         assert_invented(&comet(&text.trim_end().replace('-', "\u{2212}").replace("+/\u{2212}", "+/-")));
     }
-    let law = Brightness { absolute_magnitude: 6.5, photometric_index_n: 4.0, from: None, to: None };
+    let law = Brightness::with_index(6.5, 4.0);
     assert_eq!(comet(ONE_LINE).brightness, std::slice::from_ref(&law));
     assert_eq!(comet(PAIRS).brightness, [law]);
     let push = comet(PAIRS).elements.nongravitational.unwrap();
@@ -121,7 +121,7 @@ fn one_line_records_vary_in_length() {
     without_epoch.replace_range(81..89, "        ");
     assert!(comet(&without_epoch).elements.epoch.is_none());
     assert_eq!(comet(&ONE_LINE.replace(" 6.5  4.0", "-1.5 10.0")).brightness[0].absolute_magnitude, -1.5);
-    assert_eq!(comet(&ONE_LINE.replace(" 6.5  4.0", "6.55 4.25")).brightness[0].photometric_index_n, 4.25);
+    assert_eq!(comet(&ONE_LINE.replace(" 6.5  4.0", "6.55 4.25")).brightness[0].photometric_index_n, Some(4.25));
     assert_eq!(comet(&format!("{ONE_LINE}   and more text")).name, "C/2031 A1 (Invented)");
     let moved_up = ONE_LINE.split_whitespace().collect::<Vec<_>>().join(" ");
     refuses(&moved_up, 1, 0, &["column"]);
@@ -277,7 +277,7 @@ fn derived_quantities_must_agree_with_q_and_e_within_their_rounding() {
         refuses(&block(extra), 8, 0, &[given, derived, "q 1.353211 and e 0.612304"]);
     }
     // Beside H an n of 1 or more is the photometric index.
-    assert_eq!(comet(&block("H = 10.0  n = 6.0")).brightness[0].photometric_index_n, 6.0);
+    assert_eq!(comet(&block("H = 10.0  n = 6.0")).brightness[0].photometric_index_n, Some(6.0));
     refuses(&block("H = 10.0  n = 0.6"), 8, 0, &["n (mean motion) 0.6"]);
     refuses(&block("n = 6.0"), 8, 0, &["n (mean motion) 6"]);
 }

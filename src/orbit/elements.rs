@@ -42,16 +42,81 @@ pub struct Nongravitational {
     pub delay_days: f64,
 }
 
-/// One branch of the total-magnitude law m = H + 5 log10 Delta + 2.5 n log10 r.
+/// One branch of the total-magnitude law m = H + 5 log10 Delta + 2.5 n log10 r; see [`crate::sky`]'s `magnitude`.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
 #[serde(deny_unknown_fields, expecting = "an object with one branch of the brightness law")]
 pub struct Brightness {
     pub absolute_magnitude: f64,
-    pub photometric_index_n: f64,
+    /// The index n. Either this or [`Brightness::slope_2_5n`] is given, in the form in which it was published.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub photometric_index_n: Option<f64>,
+    /// The slope 2.5 n of log r.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub slope_2_5n: Option<f64>,
+    /// Light of the dust over light of the gas at phase angle 90 degrees; given, the law includes how dust scatters.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub dust_over_gas_at_90_deg: Option<f64>,
+    /// The branch holds from this observing time on.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub from: Option<Stamp>,
+    /// The branch holds up to this observing time.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub to: Option<Stamp>,
+}
+
+impl Brightness {
+    /// A branch with an index n, for all times, without a phase function.
+    pub fn with_index(absolute_magnitude: f64, photometric_index_n: f64) -> Self {
+        Brightness {
+            absolute_magnitude,
+            photometric_index_n: Some(photometric_index_n),
+            slope_2_5n: None,
+            dust_over_gas_at_90_deg: None,
+            from: None,
+            to: None,
+        }
+    }
+
+    /// The factor of log10 r, 2.5 n, whichever of the two forms was given.
+    pub fn slope(&self) -> f64 {
+        self.slope_2_5n.unwrap_or_else(|| 2.5 * self.photometric_index_n.unwrap_or(0.0))
+    }
+
+    /// `path` makes the plan's path of a key.
+    fn validate(&self, path: impl Fn(&str) -> String) -> Result<(), Error> {
+        let magnitude = self.absolute_magnitude;
+        require(&path("absolute_magnitude"), magnitude, magnitude.abs() <= 100.0, "a magnitude from -100 to 100")?;
+        match (self.photometric_index_n, self.slope_2_5n) {
+            (Some(n), None) => {
+                require(
+                    &path("photometric_index_n"),
+                    n,
+                    n.abs() <= 100.0,
+                    "an index n from -100 to 100, in 2.5 n log r",
+                )?;
+            }
+            (None, Some(slope)) => {
+                require(&path("slope_2_5n"), slope, slope.abs() <= 250.0, "a slope 2.5 n from -250 to 250")?;
+            }
+            (given, _) => {
+                let found = if given.is_some() { "both of them" } else { "neither" };
+                let allowed = "either `photometric_index_n` or `slope_2_5n`, which is 2.5 times that index";
+                let place = Place::Field(path("absolute_magnitude"));
+                return Err(Error::new(Kind::Range, place, found, allowed));
+            }
+        }
+        if let Some(ratio) = self.dust_over_gas_at_90_deg {
+            let allowed = "a ratio from 0 to 1000; 1 is a comet rich in gas, 10 a dusty one";
+            require(&path("dust_over_gas_at_90_deg"), ratio, (0.0..=1000.0).contains(&ratio), allowed)?;
+        }
+        if let (Some(from), Some(to)) = (&self.from, &self.to)
+            && from.instant() > to.instant()
+        {
+            let place = Place::Field(path("to"));
+            return Err(Error::new(Kind::Range, place, to.to_string(), format!("a time not before `from`, {from}")));
+        }
+        Ok(())
+    }
 }
 
 /// A comet as published: its name and elements, and its brightness law if one was given.
@@ -120,21 +185,7 @@ impl Comet {
         }
         self.elements.validate()?;
         for (index, branch) in self.brightness.iter().enumerate() {
-            let path = |key: &str| format!("comet.brightness[{index}].{key}");
-            let (magnitude, n) = (branch.absolute_magnitude, branch.photometric_index_n);
-            require(&path("absolute_magnitude"), magnitude, magnitude.abs() <= 100.0, "a magnitude from -100 to 100")?;
-            require(&path("photometric_index_n"), n, n.abs() <= 100.0, "an index n from -100 to 100, in 2.5 n log r")?;
-            if let (Some(from), Some(to)) = (&branch.from, &branch.to)
-                && from.instant() > to.instant()
-            {
-                let place = Place::Field(path("to"));
-                return Err(Error::new(
-                    Kind::Range,
-                    place,
-                    to.to_string(),
-                    format!("a time not before `from`, {from}"),
-                ));
-            }
+            branch.validate(|key| format!("comet.brightness[{index}].{key}"))?;
         }
         Ok(())
     }

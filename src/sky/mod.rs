@@ -15,6 +15,7 @@
 pub mod avoidance;
 pub mod column;
 pub mod dark;
+pub mod magnitude;
 pub mod trail;
 pub mod viewpoint;
 pub mod watch;

@@ -297,7 +297,7 @@ impl Record {
         self.blank(96, 96)?;
         match (magnitude, self.magnitude(&SLOPE)?) {
             (Some(absolute_magnitude), Some(photometric_index_n)) => {
-                Ok(vec![Brightness { absolute_magnitude, photometric_index_n, from: None, to: None }])
+                Ok(vec![Brightness::with_index(absolute_magnitude, photometric_index_n)])
             }
             (None, None) => Ok(Vec::new()),
             _ => {

@@ -259,7 +259,7 @@ impl<'a> Draft<'a> {
         for (label, value, event) in &self.values {
             if let (Label::Brightness, Value::Text(text)) = (label, value) {
                 let branch = branch(text).ok_or_else(|| {
-                    let allowed = "brightness as `H 6.5, n 4.0`, perhaps with `, from` and `, to` and a date each";
+                    let allowed = "brightness as `H 6.5, n 4.0` or `H 6.5, slope 10.0`, perhaps with `, dust 3`, `, from` and `, to` and a date each";
                     refusal(event.line, event.column, super::quote(text), allowed)
                 })?;
                 branches.push(branch);
@@ -279,8 +279,7 @@ impl<'a> Draft<'a> {
         }
         match (magnitude, index) {
             (Some((magnitude, _)), Some(photometric_index_n)) => {
-                let absolute_magnitude = magnitude.value;
-                branches.insert(0, Brightness { absolute_magnitude, photometric_index_n, from: None, to: None });
+                branches.insert(0, Brightness::with_index(magnitude.value, photometric_index_n));
             }
             (None, None) => {}
             _ => notices.push((
@@ -297,17 +296,27 @@ fn mean_motion_deg_d(q: f64, e: f64) -> f64 {
     MOTION_DEG_D * libm::pow((1.0 - e) / q, 1.5)
 }
 
-/// `H 6.5, n 4.0, from 2031-01-01 TT, to 2031-03-04.5 TT`, the last two optional.
+/// `H 6.5, n 4.0, dust 3, from 2031-01-01 TT, to 2031-03-04.5 TT`, or with `slope 10.0` in place of n; the last three optional.
 fn branch(text: &str) -> Option<Brightness> {
-    let mut parts = text.split(',').map(|part| part.trim().split_once(' '));
-    let mut figure = |key: &str| {
-        let (found, value) = parts.next()??;
-        (found == key).then(|| super::token::number(value.trim()).map(|number| number.value)).flatten()
-    };
-    let (absolute_magnitude, photometric_index_n) = (figure("H")?, figure("n")?);
-    let mut branch = Brightness { absolute_magnitude, photometric_index_n, from: None, to: None };
-    for part in parts {
-        let (key, value) = part?;
+    let mut branch = Brightness::with_index(f64::NAN, 0.0);
+    branch.photometric_index_n = None;
+    for (place, part) in text.split(',').enumerate() {
+        let (key, value) = part.trim().split_once(' ')?;
+        let number = || super::token::number(value.trim()).map(|number| number.value);
+        let figure = match (key, place) {
+            ("H", 0) => {
+                branch.absolute_magnitude = number()?;
+                continue;
+            }
+            ("n", 1) => Some(&mut branch.photometric_index_n),
+            ("slope", 1) => Some(&mut branch.slope_2_5n),
+            ("dust", 2) => Some(&mut branch.dust_over_gas_at_90_deg),
+            _ => None,
+        };
+        if let Some(figure) = figure {
+            *figure = Some(number()?);
+            continue;
+        }
         let limit = match key {
             "from" if branch.from.is_none() => &mut branch.from,
             "to" if branch.to.is_none() => &mut branch.to,
@@ -315,5 +324,7 @@ fn branch(text: &str) -> Option<Brightness> {
         };
         *limit = Some(value.trim().parse().ok()?);
     }
-    Some(branch)
+    let whole =
+        branch.absolute_magnitude.is_finite() && (branch.photometric_index_n.is_some() || branch.slope_2_5n.is_some());
+    whole.then_some(branch)
 }

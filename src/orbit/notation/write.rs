@@ -29,13 +29,24 @@ pub fn write(comet: &Comet) -> String {
         line("A3", format!("{:?} au/d^2", push.a3_au_d2));
         line("delay", format!("{:?} days", push.delay_days));
     }
-    if let [Brightness { absolute_magnitude, photometric_index_n, from: None, to: None }] = comet.brightness.as_slice()
+    if let [branch] = comet.brightness.as_slice()
+        && let Some(n) = branch.photometric_index_n
+        && *branch == Brightness::with_index(branch.absolute_magnitude, n)
     {
-        line("H", format!("{absolute_magnitude:?}"));
-        line("photometric index n", format!("{photometric_index_n:?}"));
+        line("H", format!("{:?}", branch.absolute_magnitude));
+        line("photometric index n", format!("{n:?}"));
     } else {
         for branch in &comet.brightness {
-            let mut value = format!("H {:?}, n {:?}", branch.absolute_magnitude, branch.photometric_index_n);
+            let mut value = format!("H {:?}", branch.absolute_magnitude);
+            for (word, figure) in [
+                ("n", branch.photometric_index_n),
+                ("slope", branch.slope_2_5n),
+                ("dust", branch.dust_over_gas_at_90_deg),
+            ] {
+                if let Some(figure) = figure {
+                    let _ = write!(value, ", {word} {figure:?}");
+                }
+            }
             for (word, limit) in [("from", &branch.from), ("to", &branch.to)] {
                 if let Some(limit) = limit {
                     let _ = write!(value, ", {word} {limit}");
