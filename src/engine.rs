@@ -4,6 +4,7 @@
 //! [`Watch`].
 
 pub mod easel;
+pub mod outlook;
 pub mod season;
 
 use crate::body::SPAN;

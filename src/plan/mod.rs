@@ -12,9 +12,11 @@
 //! | `sites` | more sites | yes |
 //! | `time` | a date in any form of [`Stamp`] | yes |
 //! | `tails` | [`Tails`]: winds, dust, activity, ejection | yes, and any key in it |
+//! | `season` | [`season::Season`]: `from`, `to` of the season ribbon | yes: chosen from the orbit |
 
 mod json;
 pub mod paste;
+pub mod season;
 
 use crate::body::observer::{Observer, Site};
 use crate::error::{Error, Kind, Place};
@@ -36,6 +38,8 @@ pub struct Plan {
     pub time: Option<Stamp>,
     /// Which tails are drawn, and what the dust is assumed to be.
     pub tails: Tails,
+    /// The stretch of time of the season ribbon, where a person chose one.
+    pub season: Option<season::Season>,
 }
 
 /// The plan as its JSON lies; later sections become fields here and in [`Plan`].
@@ -52,6 +56,8 @@ struct Text {
     time: Option<Stamp>,
     #[serde(default, skip_serializing_if = "Tails::is_default")]
     tails: Tails,
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    season: Option<season::Season>,
 }
 
 /// The version alone, so that a newer plan is refused as newer and not for its new keys.
@@ -64,7 +70,14 @@ struct Header {
 impl From<Comet> for Plan {
     /// A comet seen from the geocentre, without a time.
     fn from(comet: Comet) -> Self {
-        Plan { comet, observer: Observer::Geocentre, sites: Vec::new(), time: None, tails: Tails::default() }
+        Plan {
+            comet,
+            observer: Observer::Geocentre,
+            sites: Vec::new(),
+            time: None,
+            tails: Tails::default(),
+            season: None,
+        }
     }
 }
 
@@ -89,6 +102,7 @@ impl Plan {
             sites: read.sites,
             time: read.time,
             tails: read.tails,
+            season: read.season,
         };
         plan.validate().map_err(|error| json::located(text, "", error))?;
         Ok(plan)
@@ -118,6 +132,7 @@ impl Plan {
             sites: self.sites.clone(),
             time: self.time.clone(),
             tails: self.tails.clone(),
+            season: self.season.clone(),
         }
     }
 
@@ -131,7 +146,8 @@ impl Plan {
         for (index, site) in self.sites.iter().enumerate() {
             site.validate(&format!("sites[{index}]"))?;
         }
-        self.tails.validate()
+        self.tails.validate()?;
+        self.season.as_ref().map_or(Ok(()), |season| season.stretch().map(|_| ()))
     }
 }
 

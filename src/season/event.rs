@@ -11,7 +11,9 @@ use crate::time::Instant;
 pub enum EventKind {
     /// The Earth passes through the comet's orbit plane: antisolar direction and negative velocity have one position
     /// angle (`opposite` false: old dust lies antisolar) or two that differ by 180 degrees (true: it lies sunward).
-    OrbitPlaneCrossing { opposite: bool },
+    OrbitPlaneCrossing {
+        opposite: bool,
+    },
     /// The comet at its least distance from the Sun, by its own clock: the light comes later.
     Perihelion,
     /// Least distance from the Earth.

@@ -129,7 +129,13 @@ pub fn ticks(from: Instant, to: Instant, width: f64, size_px: f64) -> Vec<Tick> 
         let fits = |words: &str| x >= free_from && x + width_px(words, size_px, false) + 0.4 * size_px <= width;
         let long = name(named, date, minute, with_year);
         let short = name(named, date, minute, false);
-        let words = if fits(&long) { long } else if fits(&short) { short } else { String::new() };
+        let words = if fits(&long) {
+            long
+        } else if fits(&short) {
+            short
+        } else {
+            String::new()
+        };
         if !words.is_empty() {
             free_from = x + width_px(&words, size_px, false) + 0.7 * size_px;
             year_said = Some(date.year);

@@ -13,7 +13,7 @@ use crate::season::event::{Event, EventKind};
 use crate::season::sunward::Origin;
 
 /// Events of this rank or heavier have a diamond, the others a stroke.
-const DIAMOND: u8 = 2;
+pub const WEIGHTY: u8 = 2;
 /// A name may stand this far aside from its mark, in letter sizes.
 const FAR_ASIDE: f64 = 6.0;
 /// Clear space about a name, in drawing units.
@@ -60,8 +60,7 @@ pub fn draw(ribbon: &mut Ribbon, strip: &Strip) {
     let frame = ribbon.frame;
     let unit = ribbon.scene.unit_px;
     let head = frame.plot.top;
-    let mut events: Vec<&Event> =
-        strip.season.events.iter().filter(|event| ribbon.stretch.holds(event.time)).collect();
+    let mut events: Vec<&Event> = strip.season.events.iter().filter(|event| ribbon.stretch.holds(event.time)).collect();
     events.sort_by_key(|event| rank(event.kind));
     let roomy = frame.plot.width() / ribbon.stretch.days() >= ROOMY * unit;
     let mut flags: Vec<Flag> = Vec::new();
@@ -70,7 +69,7 @@ pub fn draw(ribbon: &mut Ribbon, strip: &Strip) {
     for event in &events {
         let x = ribbon.x_of(event.time);
         let rank = rank(event.kind);
-        if rank <= DIAMOND {
+        if rank <= WEIGHTY {
             let half = 4.0 * unit;
             let middle = head - half;
             diamonds.push(vec![[x, middle - half], [x + half, middle], [x, head], [x - half, middle]]);

@@ -1,9 +1,9 @@
 //! Where on the ribbon do plot, lanes, labels and dates lie?
 
+use super::super::Point;
 use super::super::lettering::{ABOVE, Anchor, BELOW, Rect, Text, width_px};
 use super::scale::{Scale, words};
 use super::{Strip, lane};
-use super::super::Point;
 use crate::season::series::Curve;
 
 /// Size of letters, in drawing units.
@@ -75,10 +75,8 @@ impl Frame {
         let numbers_px = number_width + 9.0 * unit;
         let (left, right) = if beside {
             let names = lane::NAMES.iter().map(|(_, words)| width_px(words, size, false)).fold(0.0, f64::max);
-            let ends = scales
-                .iter()
-                .map(|(curve, scale)| width_px(&label(*curve, scale), size, false))
-                .fold(0.0, f64::max);
+            let ends =
+                scales.iter().map(|(curve, scale)| width_px(&label(*curve, scale), size, false)).fold(0.0, f64::max);
             (numbers_px.max(names + 9.0 * unit) + 0.3 * side, ends + 40.0 * unit)
         } else {
             (numbers_px.max(side), side)
@@ -103,7 +101,8 @@ impl Frame {
         while plot(&heights) < least && heights.flags > 0.5 * row {
             heights.flags = (heights.flags - row).max(0.0);
         }
-        for give in [|h: &mut Heights| h.legend = 0.0, |h: &mut Heights| h.lanes = 0.0, |h: &mut Heights| h.dates = 0.0] {
+        for give in [|h: &mut Heights| h.legend = 0.0, |h: &mut Heights| h.lanes = 0.0, |h: &mut Heights| h.dates = 0.0]
+        {
             if plot(&heights) < least {
                 give(&mut heights);
             }

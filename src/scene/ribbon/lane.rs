@@ -14,11 +14,8 @@ use crate::tail::perspective::Grade;
 use crate::time::Instant;
 
 /// The lanes from the top, and their names.
-pub const NAMES: [(Lane, &str); 3] = [
-    (Lane::SunwardDust, "dust toward the Sun"),
-    (Lane::DarkHours, "dark, comet up"),
-    (Lane::NearSun, "near the Sun"),
-];
+pub const NAMES: [(Lane, &str); 3] =
+    [(Lane::SunwardDust, "dust toward the Sun"), (Lane::DarkHours, "dark, comet up"), (Lane::NearSun, "near the Sun")];
 /// A night of so many dark hours with the comet up fills its lane.
 pub const FULL_HOURS: f64 = 8.0;
 /// Nights wider than this show their windows, in drawing units.
@@ -37,7 +34,8 @@ pub fn draw(ribbon: &mut Ribbon, strip: &Strip) {
     let unit = ribbon.scene.unit_px;
     let plot = frame.plot;
     for (number, &(lane, name)) in NAMES.iter().enumerate().take(frame.lanes) {
-        let bottom = frame.lanes_top + frame.lane_step * number as f64
+        let bottom = frame.lanes_top
+            + frame.lane_step * number as f64
             + if frame.beside { frame.band_px } else { frame.lane_step - 2.0 * unit };
         let area = Rect { left: plot.left, top: bottom - frame.band_px, right: plot.right, bottom };
         let rule = vec![[area.left, area.bottom], [area.right, area.bottom]];
@@ -124,9 +122,8 @@ fn near_sun(ribbon: &mut Ribbon, strip: &Strip, area: Rect) {
 fn dark(ribbon: &mut Ribbon, nights: &[DarkNight], area: Rect) {
     let px_per_day = area.width() / ribbon.stretch.days();
     let role = Role::Band(Lane::DarkHours);
-    let box_of = |left: f64, right: f64, top: f64| {
-        vec![[left, area.bottom], [left, top], [right, top], [right, area.bottom]]
-    };
+    let box_of =
+        |left: f64, right: f64, top: f64| vec![[left, area.bottom], [left, top], [right, top], [right, area.bottom]];
     if px_per_day >= WINDOW_PX * ribbon.scene.unit_px {
         let spans = nights.iter().flat_map(|night| &night.windows);
         let boxes = spans.filter_map(|&[begin, end]| span(ribbon, begin, end, &area));

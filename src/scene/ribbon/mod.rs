@@ -13,7 +13,7 @@
 
 pub mod dates;
 mod ending;
-mod flag;
+pub mod flag;
 mod frame;
 mod lane;
 pub mod scale;

@@ -132,7 +132,9 @@ impl Scale {
         match kind(curve) {
             Kind::Plane => format!("±{}°", figures(head)),
             // More than a turn cannot be told from its ends.
-            Kind::PositionAngle if head - foot > 360.0 => format!("{} turns", figures(libm::round((head - foot) / 36.0) / 10.0)),
+            Kind::PositionAngle if head - foot > 360.0 => {
+                format!("{} turns", figures(libm::round((head - foot) / 36.0) / 10.0))
+            }
             Kind::PositionAngle => format!("{}–{}°", whole_turn(foot), whole_turn(head)),
             Kind::Angle => format!("0–{}°", figures(head)),
             Kind::Distance => format!("0–{}\u{a0}au", figures(head)),

@@ -24,7 +24,8 @@ pub fn words(strip: &Strip, time: Instant, values: &[(Curve, f64)], reach_days: 
     if season.near_sun.iter().any(|&[begin, end]| within(begin, end)) {
         said.push(format!("within {NEAR_SUN_DEG}° of the Sun"));
     }
-    let night = strip.nights.unwrap_or_default().iter().min_by(|a, b| away(a.middle, time).total_cmp(&away(b.middle, time)));
+    let night =
+        strip.nights.unwrap_or_default().iter().min_by(|a, b| away(a.middle, time).total_cmp(&away(b.middle, time)));
     if let Some(night) = night.filter(|night| away(night.middle, time) <= 0.5) {
         said.push(match lane::hours(night) {
             hours if hours < 0.05 => "not up in a dark sky that night".to_owned(),
