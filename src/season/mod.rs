@@ -11,7 +11,10 @@
 //! - [`series`]: curves over dates.
 
 pub mod event;
+mod fit;
+mod geometry;
 pub mod search;
 pub mod series;
 pub mod stretch;
 pub mod sunward;
+mod tell;
