@@ -14,6 +14,7 @@ mod typed;
 use crate::body::observer::Observer;
 use crate::body::site_code;
 use crate::engine::easel::{Easel, Wishes};
+use crate::engine::outlook::Outlook;
 use crate::engine::{Engine, TailView, View};
 use crate::error::{Error, Kind, Place};
 use crate::orbit::elements::Comet;
@@ -28,7 +29,6 @@ use crate::scene::view::{SkyView, Up};
 use crate::tail::cloud::Quality;
 use crate::time::{Instant, Stamp};
 use answer::Refusal;
-use season::Season;
 use serde::{Deserialize, Serialize};
 use std::sync::Mutex;
 use wasm_bindgen::JsValue;
@@ -117,7 +117,7 @@ pub struct Desk {
     view: SkyView,
     /// Whether a person zoomed or panned; until then the view follows the size of the drawing.
     view_chosen: bool,
-    season: Option<Season>,
+    season: Option<Outlook>,
     read: Vec<Entry>,
 }
 
@@ -253,15 +253,6 @@ impl Desk {
         answer::table_text(&self.engine, &self.time, &self.seen.sky)
     }
 
-    /// The stretch of time that the slider covers, with ticks and events for a track of this width.
-    pub fn season(&mut self, months: f64, width_px: f64) -> JsValue {
-        let perihelion = self.engine.plan().comet.elements.perihelion_time.instant();
-        let season = Season::around(self.season.take(), perihelion, self.seen.sky.time, months);
-        let answer = season.answer(width_px, perihelion);
-        self.season = Some(season);
-        to_js(&answer)
-    }
-
     /// Gives the sky plane its size in CSS pixels. A chosen scale and place stay; others follow the size.
     pub fn resize(&mut self, width_px: f64, height_px: f64) {
         if self.view_chosen {
@@ -327,7 +318,9 @@ impl Desk {
 
     fn take(&mut self, plan: Plan) -> Result<JsValue, JsValue> {
         let (engine, time, seen) = prepared(plan).map_err(refusal)?;
-        self.season = None;
+        if let Some(season) = &mut self.season {
+            season.renew(&engine, seen.sky.time);
+        }
         self.tails = engine.tails_at(&seen.sky);
         (self.engine, self.time, self.seen) = (engine, time, seen);
         Ok(JsValue::TRUE)

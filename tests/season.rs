@@ -19,6 +19,14 @@ fn quick() {
     let mut search = engine.season_search(stretch);
     search.advance(1e9);
     for e in search.season().events {
-        println!("{} {} {:?} {} {} {:.1} min", e.time.utc_iso_ms(), e.kind.words(), e.value, e.unit, e.note, e.uncertainty_days*1440.0);
+        println!(
+            "{} {} {:?} {} {} {:.1} min",
+            e.time.utc_iso_ms(),
+            e.kind.words(),
+            e.value,
+            e.unit,
+            e.note,
+            e.uncertainty_days * 1440.0
+        );
     }
 }

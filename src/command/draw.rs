@@ -92,8 +92,13 @@ fn season(call: &Call, mut plan: Plan, curves: &str, theme: Theme, size_px: [Opt
     engine.check_span(about)?;
     let mut outlook = Outlook::new(&engine, about);
     while outlook.advance(&mut engine, f64::MAX) < 1.0 {}
-    let ribbon =
-        outlook.ribbon(&mut engine, &outlook::curves(curves)?, size_px[0].unwrap_or(SIZE_PX[0]), size_px[1])?;
+    let ribbon = outlook.ribbon(
+        &mut engine,
+        &outlook::curves(curves)?,
+        size_px[0].unwrap_or(SIZE_PX[0]),
+        size_px[1],
+        f64::MAX,
+    )?;
     let scene = time.map_or_else(|| ribbon.scene.clone(), |time| ribbon.with_handle(time));
     let title = format!("Season of {}", engine.plan().comet.name);
     Ok(svg::write(&scene, theme, &title, &outlook.sentence()))

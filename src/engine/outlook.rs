@@ -8,10 +8,11 @@
 use super::Engine;
 use crate::body::SPAN;
 use crate::error::{Error, Kind, Place};
-use crate::scene::ribbon::{self, DarkNight, Ribbon, Strip, flag, scale};
+use crate::scene::ribbon::{self, DarkNight, Ribbon, Strip, flag, lane, scale};
 use crate::season::search::{Search, Season, Subject};
 use crate::season::series::{Column, Curve, Series, unwrap};
 use crate::season::stretch::{LONGEST_DAYS, Stretch};
+use crate::sky::avoidance::NEAR_SUN_DEG;
 use crate::sky::magnitude;
 use crate::time::Instant;
 
@@ -52,9 +53,18 @@ struct Drawn {
     version: u32,
     curves: Vec<Curve>,
     width_px: f64,
-    height_px: Option<f64>,
+    /// As asked for, and at most.
+    height_px: (Option<f64>, f64),
     series: Series,
     ribbon: Ribbon,
+}
+
+/// A window of the season, for people.
+pub struct WindowWords {
+    pub words: String,
+    pub from: Instant,
+    pub to: Instant,
+    pub note: String,
 }
 
 impl Engine {
@@ -192,7 +202,7 @@ impl Outlook {
             }
         } else if let Some(first) = self.next_night {
             let last = self.local_day(engine, self.season.to()) + 1;
-            let next = (first + (libm::ceil(days) as i64).max(1)).min(last + 1);
+            let next = first.saturating_add((libm::ceil(days) as i64).max(1)).min(last + 1);
             for day in first..next {
                 // Local midnight: noon and half a day.
                 let middle = Instant::from_ut1_days(day as f64 + 0.5 - longitude_days(engine));
@@ -266,8 +276,8 @@ impl Outlook {
         Stretch::new(from, from.plus_days(days)).unwrap_or(self.season)
     }
 
-    /// The ribbon of the view over a width; at the height that shows everything where none is given. Drawn anew only
-    /// when something changed.
+    /// The ribbon of the view over a width; where no height is given, at that which shows everything, but at most `most_px`.
+    /// Drawn anew only when something changed.
     ///
     /// # Errors
     /// None within the span of the ephemeris, where every season lies.
@@ -277,21 +287,23 @@ impl Outlook {
         curves: &[Curve],
         width_px: f64,
         height_px: Option<f64>,
+        most_px: f64,
     ) -> Result<&Ribbon, Error> {
         let stale = self.drawn.as_ref().is_none_or(|drawn| {
             drawn.version != self.version
                 || drawn.curves != curves
                 || drawn.width_px != width_px
-                || drawn.height_px != height_px
+                || drawn.height_px != (height_px, most_px)
         });
         if stale {
             let count = ((width_px / PX_PER_DATE) as usize).clamp(FEWEST_DATES, MOST_DATES);
             let series = engine.series(&self.view, count, curves)?;
             let strip = self.strip(&series);
-            let height = height_px.unwrap_or_else(|| ribbon::natural_height_px(&strip, width_px));
+            let height = height_px.unwrap_or_else(|| ribbon::natural_height_px(&strip, width_px).min(most_px));
             let ribbon = ribbon::compose(&strip, width_px, height);
             let curves = curves.to_vec();
-            self.drawn = Some(Drawn { version: self.version, curves, width_px, height_px, series, ribbon });
+            let version = self.version;
+            self.drawn = Some(Drawn { version, curves, width_px, height_px: (height_px, most_px), series, ribbon });
         }
         Ok(&self.drawn.as_ref().expect("drawn just now").ribbon)
     }
@@ -333,6 +345,40 @@ impl Outlook {
             .map(|event| format!("{} on {}", event.kind.words(), day(event.time)))
             .collect();
         if events.is_empty() { format!("{range}.") } else { format!("{range}: {}.", events.join(", ")) }
+    }
+
+    /// Every window of the season in words, kind by kind.
+    pub fn windows(&self) -> Vec<WindowWords> {
+        let mut found: Vec<WindowWords> = Vec::new();
+        for window in &self.found.sunward {
+            let best = &window.best;
+            let note = format!("{}, best {}", lane::grade(best.grade), best.time.utc_minute());
+            found.push(WindowWords { words: lane::words(window).to_owned(), from: window.begin, to: window.end, note });
+        }
+        for &[from, to] in &self.found.near_sun {
+            let words = format!("within {NEAR_SUN_DEG}° of the Sun");
+            found.push(WindowWords { words, from, to, note: String::new() });
+        }
+        // Nights that follow each other count as one window.
+        let mut run: Option<(Instant, Instant, usize, f64)> = None;
+        let mut close = |run: &mut Option<(Instant, Instant, usize, f64)>| {
+            if let Some((from, to, nights, most)) = run.take() {
+                let note = format!("{nights} nights, up to {most:.1} h");
+                found.push(WindowWords { words: "dark with the comet up".to_owned(), from, to, note });
+            }
+        };
+        for night in &self.nights {
+            let hours = lane::hours(night);
+            match (night.windows.first(), night.windows.last(), &mut run) {
+                (Some(_), Some(last), Some((_, to, nights, most))) => {
+                    (*to, *nights, *most) = (last[1], *nights + 1, most.max(hours));
+                }
+                (Some(first), Some(last), None) => run = Some((first[0], last[1], 1, hours)),
+                _ => close(&mut run),
+            }
+        }
+        close(&mut run);
+        found
     }
 
     fn strip<'a>(&'a self, series: &'a Series) -> Strip<'a> {

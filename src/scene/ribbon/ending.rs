@@ -44,12 +44,12 @@ fn beside(ribbon: &mut Ribbon, series: &Series) {
     for (curve, scale, from, y) in ends {
         let start = plot.right + GAP * unit;
         let x = start + PIECE * unit;
-        if scale.foot.is_finite() {
+        if scale.has_values() {
             let leader = vec![[plot.right + 1.5 * unit, from], [start, y]];
             ribbon.scene.add(Role::CurveLeader(curve), Shape::Polyline(leader));
             sample(ribbon, curve, [start, y], x);
         }
-        let text = frame::from_left(frame::label(curve, &scale), [x + 8.0 * unit, y], frame.size_px);
+        let text = frame::from_left(frame::label(curve, &scale), [x + frame::SAMPLE_GAP * unit, y], frame.size_px);
         ribbon.scene.add(Role::CurveName(curve), Shape::Text(text));
     }
 }
@@ -85,7 +85,8 @@ fn below(ribbon: &mut Ribbon) {
             (x, y) = (side, y + row);
         }
         sample(ribbon, curve, [x, y], x + SAMPLE * unit);
-        let text = frame::from_left(frame::label(curve, &scale), [x + (SAMPLE + 6.0) * unit, y], frame.size_px);
+        let text =
+            frame::from_left(frame::label(curve, &scale), [x + (SAMPLE + frame::SAMPLE_GAP) * unit, y], frame.size_px);
         ribbon.scene.add(Role::CurveName(curve), Shape::Text(text));
         x += width;
     }

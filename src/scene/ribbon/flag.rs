@@ -16,10 +16,10 @@ use crate::season::sunward::Origin;
 pub const WEIGHTY: u8 = 2;
 /// A name may stand this far aside from its mark, in letter sizes.
 const FAR_ASIDE: f64 = 6.0;
-/// Clear space about a name, in drawing units.
-const CLEAR: f64 = 2.5;
+/// Clear space beside a name and above it, in drawing units.
+const CLEAR: [f64; 2] = [9.0, 1.5];
 /// The lightest events are named only where a day has this many drawing units.
-const ROOMY: f64 = 8.0;
+const ROOMY: f64 = 20.0;
 
 /// How much an event matters to who plans a night, the weightiest first.
 pub fn rank(kind: EventKind) -> u8 {
@@ -133,12 +133,18 @@ fn free(from: Point, center: Point, half: [f64; 2], page: &Rect, flags: &[Flag],
         return None;
     }
     let leader = [from, [from[0].clamp(area.left + 2.0, area.right - 2.0), area.bottom]];
-    let roomy = area.grown(CLEAR * unit);
+    let roomy = near(&area, unit);
     let hindered = flags.iter().any(|other| {
         roomy.overlaps(&other.area)
             || roomy.cuts(other.leader[0], other.leader[1])
-            || other.area.grown(CLEAR * unit).cuts(leader[0], leader[1])
+            || near(&other.area, unit).cuts(leader[0], leader[1])
             || cross(&leader, &other.leader)
     });
     (!hindered).then_some(Flag { area, leader })
+}
+
+/// A name's box with the clear space about it.
+fn near(area: &Rect, unit: f64) -> Rect {
+    let [across, down] = CLEAR.map(|clear| clear * unit);
+    Rect { left: area.left - across, top: area.top - down, right: area.right + across, bottom: area.bottom + down }
 }

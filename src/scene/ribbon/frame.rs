@@ -9,9 +9,11 @@ use crate::season::series::Curve;
 /// Size of letters, in drawing units.
 const SIZE: f64 = 12.0;
 /// Narrower than this, labels have rows of their own, in drawing units.
-const BESIDE: f64 = 640.0;
-/// Height of the plot, in drawing units: as it should be, and below which labels give way to it.
-const PLOT: f64 = 96.0;
+const BESIDE: f64 = 860.0;
+/// Height of the plot, in drawing units: as it should be on an ordinary width, its part of a greater one, and below
+/// which labels give way to it.
+const PLOT: f64 = 92.0;
+const PLOT_SHARE: f64 = 0.055;
 const LEAST_PLOT: f64 = 40.0;
 /// Between the edge of the drawing and the plot where no label stands, in drawing units.
 const SIDE: f64 = 10.0;
@@ -60,7 +62,7 @@ impl Frame {
             .collect();
         // A ribbon too high has everything; what it has, plus the plot as it should be, is the height.
         let tall = Frame::of(strip, &scales, width_px, 1e4, unit);
-        1e4 - tall.plot.height() + PLOT * unit
+        1e4 - tall.plot.height() + (PLOT * unit).max(PLOT_SHARE * width_px)
     }
 
     pub fn of(strip: &Strip, scales: &[(Curve, Scale)], width: f64, height: f64, unit: f64) -> Frame {
@@ -77,7 +79,7 @@ impl Frame {
             let names = lane::NAMES.iter().map(|(_, words)| width_px(words, size, false)).fold(0.0, f64::max);
             let ends =
                 scales.iter().map(|(curve, scale)| width_px(&label(*curve, scale), size, false)).fold(0.0, f64::max);
-            (numbers_px.max(names + 9.0 * unit) + 0.3 * side, ends + 40.0 * unit)
+            (numbers_px.max(names + 9.0 * unit) + 0.3 * side, ends + 43.0 * unit)
         } else {
             (numbers_px.max(side), side)
         };
@@ -91,7 +93,7 @@ impl Frame {
             marks: 9.0 * unit,
             lanes: lane_step * lanes as f64 + 4.0 * unit,
             dates: 1.35 * size,
-            legend: row * legend_rows as f64,
+            legend: row * legend_rows as f64 + if legend_rows > 0 { 3.0 * unit } else { 0.0 },
         };
         let margin = 3.0 * unit;
         let plot = |h: &Heights| height - 2.0 * margin - h.flags - h.marks - h.lanes - h.dates - h.legend;
@@ -133,10 +135,12 @@ pub fn label(curve: Curve, scale: &Scale) -> String {
 
 /// Width of a legend's piece of line, in drawing units.
 pub const SAMPLE: f64 = 30.0;
+/// From there to the words: half an end mark and a little, in drawing units.
+pub const SAMPLE_GAP: f64 = 11.0;
 
 /// The width that a curve's entry takes in a legend.
 pub fn entry_px(curve: Curve, scale: &Scale, size: f64, unit: f64) -> f64 {
-    (SAMPLE + 6.0) * unit + width_px(&label(curve, scale), size, false) + 12.0 * unit
+    (SAMPLE + SAMPLE_GAP + 12.0) * unit + width_px(&label(curve, scale), size, false)
 }
 
 fn legend_rows(scales: &[(Curve, Scale)], room: f64, size: f64, unit: f64) -> usize {

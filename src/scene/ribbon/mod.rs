@@ -15,7 +15,7 @@ pub mod dates;
 mod ending;
 pub mod flag;
 mod frame;
-mod lane;
+pub mod lane;
 pub mod scale;
 pub mod under;
 
@@ -125,7 +125,7 @@ impl Ribbon {
         if (plot.left - 0.5..=plot.right + 0.5).contains(&x) {
             scene.add(Role::Handle, Shape::Polyline(vec![[x, plot.top], [x, self.frame.foot]]));
             let (half, tall) = (5.0 * unit_px, 9.0 * unit_px);
-            let top = 0.5 * (plot.top + plot.bottom) - tall;
+            let top = plot.bottom - 2.0 * tall - 2.0 * unit_px;
             let corner = |side: f64, down: f64| [x + side * half, top + down];
             let grip = vec![corner(-1.0, 0.0), corner(1.0, 0.0), corner(1.0, 2.0 * tall), corner(-1.0, 2.0 * tall)];
             scene.add(Role::HandleGrip, Shape::Polygon(grip));
@@ -155,6 +155,9 @@ impl Ribbon {
         let level = |y: f64| vec![[plot.left, y], [plot.right, y]];
         self.scene.add(Role::TrackEdge, Shape::Lines(vec![level(plot.top), level(plot.bottom)]));
         let Some(&(first, scale)) = self.scales.first() else { return };
+        if !scale.has_values() {
+            return;
+        }
         if first == Curve::OrbitPlane {
             self.scene.add(Role::TrackZero, Shape::Polyline(level(0.5 * (plot.top + plot.bottom))));
         }

@@ -18,7 +18,7 @@ enum Kind {
     Magnitude,
 }
 
-/// Where values lie between the foot and the head of the plot.
+/// The values at the foot and at the head of the plot; not numbers where there is nothing to scale.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Scale {
     pub foot: f64,
@@ -99,7 +99,7 @@ impl Scale {
             }
         }
         if least > most {
-            return Scale { foot: 0.0, head: 1.0 };
+            return Scale { foot: f64::NAN, head: f64::NAN };
         }
         match kind {
             Kind::Plane => {
@@ -121,6 +121,11 @@ impl Scale {
         }
     }
 
+    /// Whether there was any value to make a scale for.
+    pub fn has_values(&self) -> bool {
+        self.foot.is_finite()
+    }
+
     /// 0 at the foot, 1 at the head; `value` as a series holds it.
     pub fn share(&self, curve: Curve, value: f64) -> f64 {
         (shown(curve, value) - self.foot) / (self.head - self.foot)
@@ -130,6 +135,7 @@ impl Scale {
     pub fn range(&self, curve: Curve) -> String {
         let Scale { foot, head } = *self;
         match kind(curve) {
+            _ if !self.has_values() => "not known".to_owned(),
             Kind::Plane => format!("±{}°", figures(head)),
             // More than a turn cannot be told from its ends.
             Kind::PositionAngle if head - foot > 360.0 => {
@@ -144,6 +150,9 @@ impl Scale {
 
     /// Numbers beside the foot, the middle and the head of the scale.
     pub fn numbers(&self, curve: Curve) -> [String; 3] {
+        if !self.has_values() {
+            return [const { String::new() }; 3];
+        }
         let middle = 0.5 * (self.foot + self.head);
         [self.foot, middle, self.head].map(|value| match kind(curve) {
             Kind::Plane | Kind::Angle => short(value) + "°",
