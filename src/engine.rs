@@ -4,6 +4,7 @@
 //! [`Watch`].
 
 pub mod easel;
+mod night;
 pub mod outlook;
 pub mod season;
 
@@ -91,11 +92,17 @@ impl Engine {
     /// A time outside the span of the ephemeris.
     pub fn view_at(&mut self, time: Instant) -> Result<View, Error> {
         let sky = self.sky_at(time)?;
-        let mut cautions = self.cautions_of_elements(time);
-        cautions.extend(sky.cautions.iter().cloned());
-        cautions.extend(avoidance::cautions(&sky, |time| self.watch.sun_altitude_deg(time)));
-        cautions.sort_by_key(|caution| std::cmp::Reverse(caution.weight()));
+        let cautions = self.cautions_of(&sky);
         Ok(View { sky, cautions })
+    }
+
+    /// Everything doubtful about a sky, the heaviest first.
+    fn cautions_of(&mut self, sky: &Sky) -> Vec<Caution> {
+        let mut cautions = self.cautions_of_elements(sky.time);
+        cautions.extend(sky.cautions.iter().cloned());
+        cautions.extend(avoidance::cautions(sky, |time| self.watch.sun_altitude_deg(time)));
+        cautions.sort_by_key(|caution| std::cmp::Reverse(caution.weight()));
+        cautions
     }
 
     /// The comet of a sky, ready for its tails.
@@ -120,7 +127,8 @@ impl Engine {
     /// When the comet is up in a dark sky within half a day of `time`; None for the geocentre.
     pub fn dark_windows(&mut self, time: Instant) -> Option<Vec<Window>> {
         let day = self.day(time)?;
-        Some(dark::windows(time, |time| SPAN.contains(time).then(|| day.altitudes_deg(time))))
+        let limits = self.plan.night.limits();
+        Some(dark::windows(time, &limits, |time| SPAN.contains(time).then(|| day.altitudes_deg(time))))
     }
 
     /// Comet and Sun over the site's day about `time`; None for the geocentre. Nodes beyond the ephemeris repeat

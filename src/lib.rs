@@ -13,6 +13,7 @@
 //! | [`sky`] | what does the observer see: place, angles, directions, motion? |
 //! | [`tail`] | where does what leaves the nucleus lie on the sky? |
 //! | [`season`] | when does what happen: curves over dates, events, windows? |
+//! | [`night`] | what does one night hold for a comet and a site? |
 //! | [`plan`] | what did a person set up? |
 //! | [`say`] | what do the numbers mean, in words? |
 //! | [`scene`] | what is drawn, fully resolved? |
@@ -29,6 +30,7 @@ pub mod orbit;
 pub mod sky;
 pub mod tail;
 pub mod season;
+pub mod night;
 pub mod plan;
 pub mod say;
 pub mod scene;

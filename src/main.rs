@@ -24,6 +24,10 @@ tailvane: where a comet's tails lie on the sky
   tailvane dust PLAN [--at TIME ...] [--beta B,...] [--ages D,...] [--json]
       dust of each beta at each age (days), without ejection speed;
       what is left out is chosen within the plan's ranges
+  tailvane night PLAN [--date DATE] [--step 10m] [--json]
+      the night that begins on the evening of DATE (2031-03-20, local mean solar
+      date of the site; without one, the night of the plan's time): comet, Sun and
+      Moon over the horizon, twilights, dark time, the best window
   tailvane draw PLAN --view VIEW --out FILE.svg [--at TIME]
       [--width PX] [--height PX] [--theme THEME]
       the picture of the page; the views and themes are named when one is wrong

@@ -8,6 +8,7 @@ mod answer;
 mod bench;
 mod examples;
 mod season;
+mod share;
 mod tails;
 mod typed;
 
@@ -242,7 +243,7 @@ impl Desk {
     /// Everything the page shows beside the drawings.
     pub fn reading(&mut self) -> JsValue {
         let visibility = match self.engine.dark_windows(self.seen.sky.time) {
-            Some(windows) => say::when_up(&windows),
+            Some(windows) => say::when_up(&windows, &self.engine.plan().night.limits()),
             None => "Give a site under Observer to see when the comet is up in a dark sky.".to_owned(),
         };
         to_js(&answer::reading(&self.engine, &self.time, &self.seen, &self.tails, visibility))

@@ -14,7 +14,7 @@ fn quick() {
         let mut search = engine.season_search(stretch);
         search.advance(1e9);
         let season = search.season();
-        println!("{:?} {}", start.elapsed(), season.events.len());
+        println!("{:?} {} looks {}", start.elapsed(), season.events.len(), season.strengths.len());
     }
     let mut search = engine.season_search(stretch);
     search.advance(1e9);

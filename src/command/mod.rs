@@ -5,6 +5,7 @@ mod dust;
 mod elements;
 mod grains;
 mod ion;
+mod night;
 mod sky;
 mod table;
 
@@ -17,8 +18,14 @@ use tailvane::time::{Instant, Stamp};
 /// A command by its name.
 type Command = (&'static str, fn(lexopt::Parser) -> Result<(), Stop>);
 
-pub const COMMANDS: &[Command] =
-    &[("sky", sky::run), ("ion", ion::run), ("dust", dust::run), ("draw", draw::run), ("elements", elements::run)];
+pub const COMMANDS: &[Command] = &[
+    ("sky", sky::run),
+    ("ion", ion::run),
+    ("dust", dust::run),
+    ("night", night::run),
+    ("draw", draw::run),
+    ("elements", elements::run),
+];
 
 /// The names of the commands, as a list in words.
 pub fn names() -> String {

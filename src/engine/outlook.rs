@@ -9,7 +9,7 @@ use super::Engine;
 use crate::body::SPAN;
 use crate::error::{Error, Kind, Place};
 use crate::scene::ribbon::{self, DarkNight, Ribbon, Strip, flag, lane, scale};
-use crate::season::search::{Search, Season, Subject};
+use crate::season::search::{Search, Season};
 use crate::season::series::{Column, Curve, Series, unwrap};
 use crate::season::stretch::{LONGEST_DAYS, Stretch};
 use crate::sky::avoidance::NEAR_SUN_DEG;
@@ -93,16 +93,6 @@ impl Engine {
         far
     }
 
-    fn subject(&self) -> Subject {
-        let elements = &self.plan.comet.elements;
-        Subject {
-            orbit: self.orbit().clone(),
-            tails: self.plan.tails.clone(),
-            epoch: elements.epoch.as_ref().map(|epoch| epoch.instant()),
-            has_site: self.has_site(),
-        }
-    }
-
     /// Curves over a stretch, denser where a position angle turns fast, so that it never jumps.
     fn series(&mut self, stretch: &Stretch, count: usize, curves: &[Curve]) -> Result<Series, Error> {
         let branches = self.plan.comet.brightness.clone();
@@ -145,7 +135,7 @@ impl Outlook {
         let mut outlook = Outlook {
             season,
             view: season,
-            search: Search::new(engine.subject(), season),
+            search: engine.season_search(season),
             found: Season::default(),
             nights: Vec::new(),
             next_night: None,
@@ -162,7 +152,7 @@ impl Outlook {
         if season != self.season {
             (self.season, self.view) = (season, season);
         }
-        self.search.renew(engine.subject(), season);
+        self.search.renew(engine.season_subject(), season);
         self.found = self.search.season();
         self.begin_nights(engine);
         self.changed();

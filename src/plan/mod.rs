@@ -8,11 +8,13 @@
 //! | --- | --- | --- |
 //! | `tailvane_plan` | the version, 1 | no |
 //! | `comet` | [`Comet`]: `name`, `elements`, `brightness` | no |
+//! | `comets` | more comets | yes |
 //! | `observer` | a [`Site`]: `name`, `longitude_deg`, `latitude_deg`, `height_m` | yes: the geocentre |
 //! | `sites` | more sites | yes |
 //! | `time` | a date in any form of [`Stamp`] | yes |
 //! | `tails` | [`Tails`]: winds, dust, activity, ejection | yes, and any key in it |
 //! | `season` | [`season::Season`]: `from`, `to` of the season ribbon | yes: chosen from the orbit |
+//! | `night` | [`NightLaw`]: limits of the dark time, scale and trail of the pictures | yes, and any key in it |
 
 mod json;
 pub mod paste;
@@ -20,6 +22,7 @@ pub mod season;
 
 use crate::body::observer::{Observer, Site};
 use crate::error::{Error, Kind, Place};
+use crate::night::law::NightLaw;
 use crate::orbit::elements::Comet;
 use crate::tail::law::Tails;
 use crate::time::Stamp;
@@ -32,6 +35,8 @@ pub const VERSION: u32 = 1;
 #[derive(Clone, Debug, PartialEq)]
 pub struct Plan {
     pub comet: Comet,
+    /// More comets the person keeps.
+    pub comets: Vec<Comet>,
     pub observer: Observer,
     /// More observers the person keeps.
     pub sites: Vec<Site>,
@@ -40,6 +45,8 @@ pub struct Plan {
     pub tails: Tails,
     /// The stretch of time of the season ribbon, where a person chose one.
     pub season: Option<season::Season>,
+    /// What counts as dark, as up, as sharp.
+    pub night: NightLaw,
 }
 
 /// The plan as its JSON lies; later sections become fields here and in [`Plan`].
@@ -48,6 +55,8 @@ pub struct Plan {
 struct Text {
     tailvane_plan: u32,
     comet: Comet,
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    comets: Vec<Comet>,
     #[serde(default, skip_serializing_if = "Option::is_none")]
     observer: Option<Site>,
     #[serde(default, skip_serializing_if = "Vec::is_empty")]
@@ -58,6 +67,8 @@ struct Text {
     tails: Tails,
     #[serde(default, skip_serializing_if = "Option::is_none")]
     season: Option<season::Season>,
+    #[serde(default, skip_serializing_if = "NightLaw::is_default")]
+    night: NightLaw,
 }
 
 /// The version alone, so that a newer plan is refused as newer and not for its new keys.
@@ -72,11 +83,13 @@ impl From<Comet> for Plan {
     fn from(comet: Comet) -> Self {
         Plan {
             comet,
+            comets: Vec::new(),
             observer: Observer::Geocentre,
             sites: Vec::new(),
             time: None,
             tails: Tails::default(),
             season: None,
+            night: NightLaw::default(),
         }
     }
 }
@@ -98,11 +111,13 @@ impl Plan {
         let read: Text = json::read(text)?;
         let plan = Plan {
             comet: read.comet,
+            comets: read.comets,
             observer: read.observer.map_or(Observer::Geocentre, Observer::Site),
             sites: read.sites,
             time: read.time,
             tails: read.tails,
             season: read.season,
+            night: read.night,
         };
         plan.validate().map_err(|error| json::located(text, "", error))?;
         Ok(plan)
@@ -125,6 +140,7 @@ impl Plan {
         Text {
             tailvane_plan: VERSION,
             comet: self.comet.clone(),
+            comets: self.comets.clone(),
             observer: match &self.observer {
                 Observer::Geocentre => None,
                 Observer::Site(site) => Some(site.clone()),
@@ -133,6 +149,7 @@ impl Plan {
             time: self.time.clone(),
             tails: self.tails.clone(),
             season: self.season.clone(),
+            night: self.night.clone(),
         }
     }
 
@@ -140,6 +157,9 @@ impl Plan {
     /// The first value outside its range, at its path.
     pub fn validate(&self) -> Result<(), Error> {
         self.comet.validate()?;
+        for (index, comet) in self.comets.iter().enumerate() {
+            comet.validate().map_err(|error| kept(index, error))?;
+        }
         if let Observer::Site(site) = &self.observer {
             site.validate("observer")?;
         }
@@ -147,8 +167,18 @@ impl Plan {
             site.validate(&format!("sites[{index}]"))?;
         }
         self.tails.validate()?;
-        self.season.as_ref().map_or(Ok(()), |season| season.stretch().map(|_| ()))
+        self.season.as_ref().map_or(Ok(()), |season| season.stretch().map(|_| ()))?;
+        self.night.validate()
     }
+}
+
+/// An error of a kept comet, which names itself `comet`, at its own path.
+fn kept(index: usize, error: Error) -> Error {
+    let path = match &error.place {
+        Place::Field(path) => format!("comets[{index}]{}", path.strip_prefix("comet").unwrap_or(path)),
+        _ => format!("comets[{index}]"),
+    };
+    error.at(Place::Field(path))
 }
 
 fn check_version(version: Option<&serde_json::Value>) -> Result<(), Error> {

@@ -6,11 +6,13 @@
 
 mod dust;
 mod figure;
+pub mod night;
 pub mod stage;
+pub mod table;
 
 use crate::body::observer::Observer;
 use crate::plan::Plan;
-use crate::sky::dark::{COMET_ABOVE_DEG, SUN_BELOW_DEG, Window};
+use crate::sky::dark::{Limits, Window};
 use crate::sky::{Side, Sky};
 use crate::tail::ion::Wedge;
 use crate::tail::perspective::Perspective;
@@ -101,8 +103,8 @@ fn standing(plan: &Plan, sky: &Sky) -> String {
 }
 
 /// One line on when the comet is up in a dark sky around the chosen time.
-pub fn when_up(windows: &[Window]) -> String {
-    let rule = format!("Sun below {} deg, comet above {} deg", minus(SUN_BELOW_DEG), COMET_ABOVE_DEG);
+pub fn when_up(windows: &[Window], limits: &Limits) -> String {
+    let rule = rule(limits);
     if windows.is_empty() {
         return format!("Not up in a dark sky within half a day of this time ({rule}).");
     }
@@ -118,6 +120,11 @@ pub fn when_up(windows: &[Window]) -> String {
         })
         .collect();
     format!("Up in a dark sky {} ({rule}).", spans.join("; "))
+}
+
+/// What counts as dark time.
+fn rule(limits: &Limits) -> String {
+    format!("Sun below {} deg, comet above {} deg", minus(limits.sun_below_deg), minus(limits.comet_above_deg))
 }
 
 /// Hours and minutes of "2031-03-20 05:30 UTC"-like text.

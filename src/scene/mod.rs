@@ -11,12 +11,14 @@
 //! [`sheet_map::compose`], [`ribbon::compose`]. New drawings need new roles, not new shapes.
 
 pub mod clip;
+pub mod horizon;
 pub mod image;
 pub mod isophote;
 pub mod label;
 pub mod layer;
 pub mod lettering;
 pub mod mark;
+pub mod night_strip;
 pub mod note;
 pub mod orbit_view;
 pub mod panel;
@@ -117,6 +119,14 @@ pub enum Lane {
     NearSun,
 }
 
+/// What stands over the horizon.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
+pub enum Body {
+    Comet,
+    Sun,
+    Moon,
+}
+
 /// What a node means.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
 pub enum Role {
@@ -203,6 +213,19 @@ pub enum Role {
     Handle,
     HandleGrip,
     HandleRidge,
+    /// How light the sky is while the Sun stands so high: 0 for night to [`theme::LIGHTS`] - 1 for day.
+    SkyLight(u8),
+    /// What lies below the horizon, and the horizon itself.
+    BelowHorizon,
+    Horizon,
+    /// The altitude of a body through the night, and its name.
+    Course(Body),
+    CourseLabel(Body),
+    /// Dark time with the comet up, and the best of it.
+    DarkTime,
+    BestTime,
+    /// The chosen time.
+    Now,
     /// Name of what is drawn.
     Title,
     /// Scale, field and orientation in words.

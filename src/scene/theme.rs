@@ -8,8 +8,9 @@
 //! Contrast (tested): every text at least 4.5:1 and every control border at least 3:1 on its ground, by
 //! WCAG 2.2 relative luminance.
 
-use super::{Direction, Family, Lane, Role};
-use crate::season::series::Curve;
+mod season;
+
+use super::{Body, Direction, Family, Role};
 
 /// A colour scheme.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -59,6 +60,10 @@ pub struct Stop {
 
 /// Steps of brightness that a cell of a map may have ([`Role::Tone`]).
 pub const TONES: u8 = 12;
+/// Steps of the light of the sky ([`Role::SkyLight`]): night, three twilights, day.
+pub const LIGHTS: u8 = 5;
+/// How much one step of light changes the ground.
+const LIGHT_STEP: f64 = 0.09;
 /// Cells of a map use the tone map up to here, so that a hatch stands out on the brightest.
 const BRIGHTEST_CELL: f64 = 0.62;
 
@@ -237,19 +242,6 @@ const fn curve_dashes(family: Family) -> &'static [f64] {
     }
 }
 
-/// Line pattern of a curve on the season ribbon; the two directions keep those of their hands.
-const fn season_dashes(curve: Curve) -> &'static [f64] {
-    match curve {
-        Curve::OrbitPlane | Curve::Antisolar => &[],
-        Curve::NegativeVelocity => dashes(Direction::NegativeVelocity),
-        Curve::PhaseAngle => &[0.1, 4.5],
-        Curve::Elongation => &[6.0, 4.5],
-        Curve::SunDistance => &[10.0, 4.0, 0.1, 4.0],
-        Curve::ObserverDistance => &[3.0, 4.0],
-        Curve::Magnitude => &[8.0, 4.0, 0.1, 3.5, 0.1, 4.0],
-    }
-}
-
 impl Theme {
     pub const ALL: [Theme; 3] = [Theme::Dark, Theme::Red, Theme::Paper];
 
@@ -327,29 +319,6 @@ impl Theme {
             Family::Syndyne => p.syndyne,
             Family::Synchrone => p.synchrone,
             Family::NeckLine => p.neck_line,
-        }
-    }
-
-    fn season_curve(self, curve: Curve) -> Color {
-        let p = self.palette();
-        match curve {
-            Curve::OrbitPlane => p.text,
-            Curve::Antisolar => p.antisolar,
-            Curve::NegativeVelocity => p.negative_velocity,
-            Curve::PhaseAngle => p.phase_angle,
-            Curve::Elongation => p.elongation,
-            Curve::SunDistance => p.sun_distance,
-            Curve::ObserverDistance => p.observer_distance,
-            Curve::Magnitude => p.magnitude,
-        }
-    }
-
-    fn band(self, lane: Lane) -> Color {
-        let p = self.palette();
-        match lane {
-            Lane::SunwardDust => p.toward_sun,
-            Lane::DarkHours => p.dark_hours,
-            Lane::NearSun => p.near_sun,
         }
     }
 
@@ -434,29 +403,40 @@ impl Theme {
             Role::MapHatch => line(p.text, 1.0),
             Role::Axis => line(p.dial, 1.0),
             Role::ScaleBar => line(p.text, 1.4),
-            Role::SeasonCurve(curve) => {
-                let width = match curve {
-                    Curve::OrbitPlane => 2.2,
-                    Curve::PhaseAngle => 2.2,
-                    _ => 1.5,
-                };
-                pattern(self.season_curve(curve), width, season_dashes(curve))
+            Role::SeasonCurve(_)
+            | Role::CurveLeader(_)
+            | Role::CurveName(_)
+            | Role::CurveNumber(_)
+            | Role::TrackEdge
+            | Role::TrackZero
+            | Role::LaneRule
+            | Role::LaneName(_)
+            | Role::Band(_)
+            | Role::BandRim(_)
+            | Role::BandHatch(_)
+            | Role::EventMark
+            | Role::EventStroke
+            | Role::EventGuide
+            | Role::EventName
+            | Role::Handle
+            | Role::HandleGrip
+            | Role::HandleRidge => season::look(self, role),
+            Role::SkyLight(level) => {
+                // On paper day is the white of the page, elsewhere night is the ground.
+                let steps = if self == Theme::Paper { LIGHTS - 1 - level.min(LIGHTS - 1) } else { level };
+                fill(p.border, LIGHT_STEP * f64::from(steps))
             }
-            Role::CurveLeader(curve) => line(self.season_curve(curve), 0.8),
-            Role::CurveName(curve) | Role::CurveNumber(curve) => letters(self.season_curve(curve)),
-            Role::TrackEdge | Role::LaneRule => line(p.rule, 1.0),
-            Role::TrackZero => pattern(p.dial, 1.0, &[1.5, 4.0]),
-            Role::LaneName(_) => letters(p.quiet),
-            Role::Band(lane) => fill(self.band(lane), if lane == Lane::DarkHours { 0.75 } else { 0.3 }),
-            Role::BandRim(lane) => line(self.band(lane), 1.2),
-            Role::BandHatch(lane) => line(self.band(lane), 1.0),
-            Role::EventMark => fill(p.text, 1.0),
-            Role::EventStroke => line(p.quiet, 1.0),
-            Role::EventGuide => pattern(p.dial, 0.8, &[1.5, 3.5]),
-            Role::EventName => letters(p.text),
-            Role::Handle => line(p.text, 1.6),
-            Role::HandleGrip => Look { fill: Some(p.text), ..line(p.ground, 1.5) },
-            Role::HandleRidge => line(p.ground, 1.0),
+            Role::BelowHorizon => fill(p.panel, 0.75),
+            Role::Horizon => line(p.text, 1.4),
+            Role::Course(Body::Comet) => line(p.text, 2.4),
+            Role::Course(Body::Moon) => pattern(p.quiet, 1.6, &[7.0, 5.0]),
+            Role::Course(Body::Sun) => pattern(p.antisolar, 2.2, &[0.1, 5.0]),
+            Role::CourseLabel(Body::Comet) => letters(p.text),
+            Role::CourseLabel(Body::Moon) => letters(p.quiet),
+            Role::CourseLabel(Body::Sun) => letters(p.antisolar),
+            Role::DarkTime => Look { fill: Some(p.panel), ..line(p.border, 1.2) },
+            Role::BestTime => fill(p.zenith, 1.0),
+            Role::Now => line(p.focus, 1.6),
             Role::Title => letters(p.text),
             Role::Note => letters(p.quiet),
             Role::Caution => letters(p.caution),

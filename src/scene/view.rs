@@ -64,6 +64,13 @@ impl SkyView {
         SkyView { pixel_scale_rad, offset_px: [moved(0), moved(1)], ..*self }
     }
 
+    /// The same part of the sky on a drawing of another size; where the shapes differ, more of it.
+    pub fn sized(&self, width_px: f64, height_px: f64) -> Self {
+        let factor = (width_px / self.width_px).min(height_px / self.height_px);
+        let pixel_scale_rad = self.pixel_scale_rad / factor;
+        SkyView { width_px, height_px, pixel_scale_rad, offset_px: self.offset_px.map(|px| px * factor), ..*self }
+    }
+
     /// Middle of the drawing.
     pub fn middle(&self) -> Point {
         [self.width_px / 2.0, self.height_px / 2.0]

@@ -13,6 +13,7 @@
 pub mod event;
 mod fit;
 mod geometry;
+mod looks;
 pub mod search;
 pub mod series;
 pub mod stretch;

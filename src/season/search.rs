@@ -3,13 +3,15 @@
 //! First the geometry, cell by cell, then the sunward dust, date by date. Both lie on fixed grids, so what was found serves
 //! for any other stretch of the same comet, and nothing depends on how the work was sliced.
 
-use super::event::Event;
-use super::geometry::{CELL_DAYS, Cell, Survey, moments};
+use super::event::{Event, EventKind};
+use super::geometry::{CELL_DAYS, Cell, Quantity, Survey, moments};
+use super::looks::Looks;
 use super::stretch::Stretch;
-use super::sunward::{Strength, Window};
+use super::sunward::{self, Strength, Window};
 use super::tell::{self, Doubt};
 use crate::body::observer::Observer;
 use crate::orbit::conic::Orbit;
+use crate::sky::avoidance::NEAR_SUN_DEG;
 use crate::sky::watch::Watch;
 use crate::tail::law::Tails;
 use crate::time::Instant;
@@ -45,25 +47,46 @@ pub struct Search {
     stretch: Stretch,
     survey: Survey,
     cells: BTreeMap<i64, Cell>,
+    looks: Looks,
 }
+
+/// What a cell's geometry and its sunward dust cost, in days of a budget; together the length of a cell.
+const GEOMETRY_DAYS: f64 = 2.0;
+const SUNWARD_DAYS: f64 = CELL_DAYS - GEOMETRY_DAYS;
 
 impl Search {
     pub fn new(subject: Subject, stretch: Stretch) -> Self {
         let survey = Survey::new(Watch::new(subject.orbit.clone(), Observer::Geocentre));
-        Search { subject, stretch, survey, cells: BTreeMap::new() }
+        Search { subject, stretch, survey, cells: BTreeMap::new(), looks: Looks::default() }
     }
 
-    /// Works on for about so many days of the season, and returns which part is done, [0, 1].
+    /// Works on for about so many days of the season, at least one step, and returns which part is done, [0, 1]. All
+    /// of the geometry comes first.
     pub fn advance(&mut self, days: f64) -> f64 {
         let mut left = days;
         for number in self.cell_numbers() {
             if left <= 0.0 {
-                break;
+                return self.done();
             }
             if !self.cells.contains_key(&number) {
                 let cell = self.survey.cell(number);
                 self.cells.insert(number, cell);
-                left -= CELL_DAYS;
+                left -= GEOMETRY_DAYS;
+            }
+        }
+        for number in self.cell_numbers() {
+            if left <= 0.0 {
+                break;
+            }
+            if !self.looks.is_done(number) {
+                let near = number - 1..=number + 1;
+                let crossings: Vec<f64> = moments(self.cells.range(near).map(|(_, cell)| cell))
+                    .iter()
+                    .filter(|moment| moment.quantity == Quantity::Plane)
+                    .map(|moment| moment.days)
+                    .collect();
+                self.looks.cell(&mut self.survey, &self.subject.orbit, &self.subject.tails, number, &crossings);
+                left -= SUNWARD_DAYS;
             }
         }
         self.done()
@@ -75,21 +98,29 @@ impl Search {
             *self = Search::new(subject, stretch);
             return;
         }
+        if subject.tails != self.subject.tails {
+            self.looks = Looks::default();
+        }
         (self.subject, self.stretch) = (subject, stretch);
     }
 
     /// Which part is done, [0, 1].
     pub fn done(&self) -> f64 {
-        let numbers = self.cell_numbers();
-        let all = numbers.clone().count();
-        self.cells.range(numbers).count() as f64 / all as f64
+        let (mut done, mut all) = (0.0, 0.0);
+        for number in self.cell_numbers() {
+            all += CELL_DAYS;
+            done += if self.cells.contains_key(&number) { GEOMETRY_DAYS } else { 0.0 };
+            done += if self.looks.is_done(number) { SUNWARD_DAYS } else { 0.0 };
+        }
+        done / all
     }
 
     /// What is found; complete once [`Search::done`] is 1.
     pub fn season(&mut self) -> Season {
         let doubt = Doubt { epoch: self.subject.epoch, has_site: self.subject.has_site };
+        let numbers = self.cell_numbers();
         let mut events = Vec::new();
-        for moment in moments(self.cells.range(self.cell_numbers()).map(|(_, cell)| cell)) {
+        for moment in moments(self.cells.range(numbers.clone()).map(|(_, cell)| cell)) {
             if self.stretch.holds(Instant::from_tdb_days(moment.days)) {
                 events.extend(tell::event(&moment, &self.survey.sky(moment.days), &doubt));
             }
@@ -98,8 +129,12 @@ impl Search {
             let sky = self.survey.sky(time.tdb_days());
             events.push(tell::perihelion(&sky, self.subject.orbit.perihelion_distance_au(), &doubt));
         }
+        let sunward = sunward::windows(self.looks.between(*numbers.start(), *numbers.end()), &self.stretch);
+        events.extend(sunward::events(&sunward));
         events.sort_by(|a, b| a.time.tdb_days().total_cmp(&b.time.tdb_days()));
-        Season { events, ..Season::default() }
+        let near_sun = near_sun(&events, &self.stretch, self.survey.sky(self.stretch.from().tdb_days()).elongation_rad);
+        let strengths = self.looks.between(*numbers.start(), *numbers.end()).map(|look| look.strength).collect();
+        Season { events, sunward, strengths, near_sun }
     }
 
     fn cell_numbers(&self) -> std::ops::RangeInclusive<i64> {
@@ -117,4 +152,19 @@ impl Search {
         let (from, to) = (turns(self.stretch.from()).ceil() as i64, turns(self.stretch.to()).floor() as i64);
         (from..=to).map(|turn| first.plus_days(turn as f64 * period)).collect()
     }
+}
+
+/// The stretches within the solar-avoidance zone, from the elongation at the start and the entries and exits.
+fn near_sun(events: &[Event], stretch: &Stretch, elongation_rad: f64) -> Vec<[Instant; 2]> {
+    let mut open = (elongation_rad < NEAR_SUN_DEG.to_radians()).then_some(stretch.from());
+    let mut found = Vec::new();
+    for event in events {
+        match event.kind {
+            EventKind::NearSunBegins => open = Some(event.time),
+            EventKind::NearSunEnds => found.extend(open.take().map(|begin| [begin, event.time])),
+            _ => {}
+        }
+    }
+    found.extend(open.map(|begin| [begin, stretch.to()]));
+    found
 }

@@ -1,7 +1,7 @@
 //! When, around this time, does the comet stand up in a dark sky?
 //!
-//! Dark means the Sun below -9 degrees and the comet above 5 degrees: this project's default, chosen because
-//! nights with a sunward tail often fall in twilight. Windows are found on a five-minute grid and their ends
+//! Dark means the Sun below -9 degrees and the comet above 5 degrees unless [`Limits`] say otherwise: this project's
+//! default, chosen because nights with a sunward tail often fall in twilight. Windows are found on a five-minute grid and their ends
 //! by bisection to a second; one shorter than five minutes may be missed. Airless.
 
 use crate::frame::earth_rotation::TURNS_PER_UT1_DAY;
@@ -13,6 +13,28 @@ use std::f64::consts::TAU;
 pub const SUN_BELOW_DEG: f64 = -9.0;
 /// The comet must be above this, degrees.
 pub const COMET_ABOVE_DEG: f64 = 5.0;
+
+/// What counts as dark, and as up.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Limits {
+    /// The Sun's centre is below this altitude, degrees.
+    pub sun_below_deg: f64,
+    /// The comet is above this altitude, degrees.
+    pub comet_above_deg: f64,
+}
+
+impl Default for Limits {
+    fn default() -> Self {
+        Limits { sun_below_deg: SUN_BELOW_DEG, comet_above_deg: COMET_ABOVE_DEG }
+    }
+}
+
+impl Limits {
+    /// Whether altitudes of comet and Sun are those of a comet up in a dark sky.
+    pub fn hold(&self, [comet_deg, sun_deg]: [f64; 2]) -> bool {
+        comet_deg > self.comet_above_deg && sun_deg < self.sun_below_deg
+    }
+}
 
 /// Step of the search, days: five minutes.
 const STEP: f64 = 5.0 / 1440.0;
@@ -78,10 +100,12 @@ pub struct Window {
 
 /// Windows that touch the half day before or after `middle`, in order. `altitudes_deg` gives comet and Sun
 /// at a time; None where the ephemeris ends.
-pub fn windows(middle: Instant, mut altitudes_deg: impl FnMut(Instant) -> Option<[f64; 2]>) -> Vec<Window> {
-    let mut dark = |time: Instant| {
-        altitudes_deg(time).filter(|[comet, sun]| *comet > COMET_ABOVE_DEG && *sun < SUN_BELOW_DEG).map(|both| both[0])
-    };
+pub fn windows(
+    middle: Instant,
+    limits: &Limits,
+    mut altitudes_deg: impl FnMut(Instant) -> Option<[f64; 2]>,
+) -> Vec<Window> {
+    let mut dark = |time: Instant| altitudes_deg(time).filter(|&both| limits.hold(both)).map(|both| both[0]);
     let count = (2.0 * REACH / STEP).round() as i32;
     let mut found: Vec<Window> = Vec::new();
     let mut inside = false;
@@ -139,7 +163,7 @@ mod tests {
             let low = (t > -0.1 && t < 0.2) || t > 0.4;
             Some([30.0 - 90.0 * t * t, if low { -20.0 } else { 20.0 }])
         };
-        let found = windows(middle, altitudes);
+        let found = windows(middle, &Limits::default(), altitudes);
         assert_eq!(found.len(), 2);
         assert!((found[0].begin.tdb_days() + 0.1).abs() <= SECOND, "{found:?}");
         assert!((found[0].end.tdb_days() - 0.2).abs() <= SECOND, "{found:?}");

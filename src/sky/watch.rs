@@ -2,7 +2,7 @@
 //!
 //! A [`Watch`] holds what is the same for every date, and recomputes only what changed: the Earth's path once per 16 days
 //! ([`Track`]), the comet from the nearest of its anchors ([`Trail`]). None of that changes an answer by a single
-//! bit, whatever was asked before.
+//! bit, whatever was asked before. [`Lookout`] is the observer's half of it, whatever is looked at.
 
 use super::Sky;
 use super::trail::Trail;
@@ -20,15 +20,14 @@ use crate::time::Instant;
 #[derive(Clone, Debug)]
 pub struct Watch {
     orbit: Orbit,
-    observer: Observer,
-    track: Track,
+    lookout: Lookout,
     trail: Trail,
 }
 
 impl Watch {
     /// `observer` as validated with its plan.
     pub fn new(orbit: Orbit, observer: Observer) -> Self {
-        Watch { orbit, observer, track: Track::new(), trail: Trail::default() }
+        Watch { orbit, lookout: Lookout::new(observer), trail: Trail::default() }
     }
 
     pub fn orbit(&self) -> &Orbit {
@@ -36,7 +35,7 @@ impl Watch {
     }
 
     pub fn observer(&self) -> &Observer {
-        &self.observer
+        &self.lookout.observer
     }
 
     /// The sky at `time`.
@@ -44,8 +43,44 @@ impl Watch {
     /// # Errors
     /// A time outside the span of the ephemeris.
     pub fn sky_at(&mut self, time: Instant) -> Result<Sky, Error> {
+        Ok(self.seen_at(time)?.1)
+    }
+
+    /// The observer at `time`, and the sky.
+    ///
+    /// # Errors
+    /// A time outside the span of the ephemeris.
+    pub fn seen_at(&mut self, time: Instant) -> Result<(Viewpoint, Sky), Error> {
         let viewpoint = self.viewpoint(time)?;
-        Ok(Sky::of(&self.orbit, &viewpoint, &mut self.trail))
+        let sky = Sky::of(&self.orbit, &viewpoint, &mut self.trail);
+        Ok((viewpoint, sky))
+    }
+
+    /// See [`Lookout::viewpoint`].
+    ///
+    /// # Errors
+    /// A time outside the span of the ephemeris.
+    pub fn viewpoint(&mut self, time: Instant) -> Result<Viewpoint, Error> {
+        self.lookout.viewpoint(time)
+    }
+
+    /// See [`Lookout::sun_altitude_deg`].
+    pub fn sun_altitude_deg(&mut self, time: Instant) -> Option<f64> {
+        self.lookout.sun_altitude_deg(time)
+    }
+}
+
+/// An observer at any time.
+#[derive(Clone, Debug)]
+pub struct Lookout {
+    observer: Observer,
+    track: Track,
+}
+
+impl Lookout {
+    /// `observer` as validated with its plan.
+    pub fn new(observer: Observer) -> Self {
+        Lookout { observer, track: Track::new() }
     }
 
     /// The observer at a time: the Earth, and for a site its place on the turning globe, horizon and Moon.

@@ -6,6 +6,7 @@ use crate::caution::Weight;
 use crate::engine::{Engine, TailView, View};
 use crate::error::{Error, Place};
 use crate::orbit::notation::Entry;
+use crate::plan::Plan;
 use crate::scene::quantity;
 use crate::sky::Sky;
 use crate::sky::column::{COLUMNS, Column, Value};
@@ -134,17 +135,13 @@ pub fn reading(engine: &Engine, time: &Stamp, view: &View, tails: &TailView, vis
         Observer::Geocentre => None,
         Observer::Site(site) => Some(SiteFields::of(site)),
     };
-    let observer = match &site {
-        None => "seen from the centre of the Earth".to_owned(),
-        Some(site) => site.words(),
-    };
     Reading {
         tdb_days: sky.time.tdb_days(),
         time_iso: iso(time),
         time_words: sky.time.utc_minute(),
         time_decimal: sky.time.ut_decimal_day(2),
         comet: plan.comet.name.clone(),
-        observer,
+        observer: observer(plan),
         at_site: site.is_some(),
         site,
         elements: ElementFields::of(&plan.comet),
@@ -161,7 +158,15 @@ pub fn reading(engine: &Engine, time: &Stamp, view: &View, tails: &TailView, vis
     }
 }
 
-fn place(sky: &Sky) -> String {
+/// From where the comet is seen, in a few words.
+pub fn observer(plan: &Plan) -> String {
+    match &plan.observer {
+        Observer::Geocentre => "seen from the centre of the Earth".to_owned(),
+        Observer::Site(site) => SiteFields::of(site).words(),
+    }
+}
+
+pub fn place(sky: &Sky) -> String {
     quantity::place(sky.right_ascension_rad, sky.declination_rad) + " (J2000)"
 }
 
@@ -179,7 +184,7 @@ fn weight(weight: Weight) -> &'static str {
 }
 
 /// The columns that this sky has.
-fn shown(sky: &Sky) -> impl Iterator<Item = &'static Column> {
+pub fn shown(sky: &Sky) -> impl Iterator<Item = &'static Column> {
     let at_site = sky.site.is_some();
     COLUMNS.iter().filter(move |column| at_site || !column.site_only)
 }

@@ -3,6 +3,7 @@
 
 use proptest::prelude::*;
 use tailvane::body::observer::{Observer, Site};
+use tailvane::night::law::NightLaw;
 use tailvane::orbit::elements::{Brightness, Comet, Elements, Nongravitational};
 use tailvane::plan::Plan;
 use tailvane::time::Stamp;
@@ -76,13 +77,15 @@ prop_compose! {
 }
 
 prop_compose! {
-    fn branches()(absolute_magnitude in numbers(-9.0, 25.0), photometric_index_n in numbers(-5.0, 20.0),
+    fn branches()(absolute_magnitude in numbers(-9.0, 25.0), n in numbers(-5.0, 20.0), as_slope in any::<bool>(),
+                  dust_over_gas_at_90_deg in prop::option::of(numbers(0.0, 20.0)),
                   from in prop::option::of(stamps()), to in prop::option::of(stamps())) -> Brightness {
         let (from, to) = match (from, to) {
             (Some(from), Some(to)) if from.instant() > to.instant() => (Some(to), Some(from)),
             span => span,
         };
-        Brightness { absolute_magnitude, photometric_index_n, from, to }
+        let (photometric_index_n, slope_2_5n) = if as_slope { (None, Some(n)) } else { (Some(n), None) };
+        Brightness { absolute_magnitude, photometric_index_n, slope_2_5n, dust_over_gas_at_90_deg, from, to }
     }
 }
 
@@ -99,7 +102,13 @@ prop_compose! {
 }
 
 prop_compose! {
-    pub fn plans()(comet in comets(), observer in prop::option::of(sites()), sites in prop::collection::vec(sites(), 0..3), time in prop::option::of(stamps())) -> Plan {
-        Plan { observer: observer.map_or(Observer::Geocentre, Observer::Site), sites, time, ..Plan::from(comet) }
+    pub fn nights()(sun_below_deg in -20.0..0.0, comet_above_deg in 0.0..40.0, pixel_scale_arcsec in prop::option::of(0.1..50.0), longest_trail_px in 0.1..9.0) -> NightLaw {
+        NightLaw { sun_below_deg, comet_above_deg, pixel_scale_arcsec, longest_trail_px }
+    }
+}
+
+prop_compose! {
+    pub fn plans()(comet in comets(), comets in prop::collection::vec(comets(), 0..3), observer in prop::option::of(sites()), sites in prop::collection::vec(sites(), 0..3), time in prop::option::of(stamps()), night in nights()) -> Plan {
+        Plan { comets, observer: observer.map_or(Observer::Geocentre, Observer::Site), sites, time, night, ..Plan::from(comet) }
     }
 }
