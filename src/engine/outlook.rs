@@ -31,6 +31,8 @@ const MOST_DATES: usize = 1200;
 /// Between dates at which a position angle turns by more than this, radians, another is put in, so often at most.
 const LOOSE_TURN_RAD: f64 = 0.6;
 const MOST_HALVINGS: usize = 7;
+/// A long search shows what it found so far every so many days of its work.
+const SHOWN_EVERY_DAYS: f64 = 1500.0;
 /// A second, days: the present time is rounded to it.
 const SECOND: f64 = 1.0 / 86_400.0;
 
@@ -40,6 +42,8 @@ pub struct Outlook {
     view: Stretch,
     search: Search,
     found: Season,
+    /// Work done since `found` was taken.
+    unseen_days: f64,
     nights: Vec<DarkNight>,
     /// The night that is computed next, as a local day number; None for the geocentre.
     next_night: Option<i64>,
@@ -94,7 +98,10 @@ impl Engine {
     }
 
     /// Curves over a stretch, denser where a position angle turns fast, so that it never jumps.
-    fn series(&mut self, stretch: &Stretch, count: usize, curves: &[Curve]) -> Result<Series, Error> {
+    ///
+    /// # Errors
+    /// Those of [`Series::of`].
+    pub fn season_curves(&mut self, stretch: &Stretch, count: usize, curves: &[Curve]) -> Result<Series, Error> {
         let branches = self.plan.comet.brightness.clone();
         let row = |watch: &mut crate::sky::watch::Watch, stretch: &Stretch, count: usize| {
             Series::of(watch, stretch, count, curves, |sky| magnitude::total(&branches, sky))
@@ -137,6 +144,7 @@ impl Outlook {
             view: season,
             search: engine.season_search(season),
             found: Season::default(),
+            unseen_days: 0.0,
             nights: Vec::new(),
             next_night: None,
             version: 0,
@@ -186,7 +194,11 @@ impl Outlook {
     /// Works on for about so many days of the season, and returns which part is done, [0, 1].
     pub fn advance(&mut self, engine: &mut Engine, days: f64) -> f64 {
         if self.search.done() < 1.0 {
-            if self.search.advance(days) >= 1.0 {
+            let done = self.search.advance(days);
+            self.unseen_days += days;
+            // What is found is shown from time to time, since sorting it out takes time too.
+            if done >= 1.0 || self.unseen_days >= SHOWN_EVERY_DAYS {
+                self.unseen_days = 0.0;
                 self.found = self.search.season();
                 self.changed();
             }
@@ -287,7 +299,7 @@ impl Outlook {
         });
         if stale {
             let count = ((width_px / PX_PER_DATE) as usize).clamp(FEWEST_DATES, MOST_DATES);
-            let series = engine.series(&self.view, count, curves)?;
+            let series = engine.season_curves(&self.view, count, curves)?;
             let strip = self.strip(&series);
             let height = height_px.unwrap_or_else(|| ribbon::natural_height_px(&strip, width_px).min(most_px));
             let ribbon = ribbon::compose(&strip, width_px, height);
@@ -373,13 +385,7 @@ impl Outlook {
 
     fn strip<'a>(&'a self, series: &'a Series) -> Strip<'a> {
         let nights = if self.next_night.is_none() && self.nights.is_empty() { None } else { Some(&self.nights[..]) };
-        Strip {
-            stretch: self.view,
-            series,
-            season: &self.found,
-            nights,
-            complete: self.search.done() >= 1.0 && self.next_night.is_none(),
-        }
+        Strip { stretch: self.view, series, season: &self.found, nights }
     }
 }
 

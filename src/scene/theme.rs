@@ -176,8 +176,8 @@ const RED: Palette = Palette {
     sun_distance: rgb(0xff0000),
     observer_distance: rgb(0xff0000),
     magnitude: rgb(0xff0000),
-    dark_hours: rgb(0xb00000),
-    near_sun: rgb(0xb00000),
+    dark_hours: rgb(0xc40000),
+    near_sun: rgb(0xc40000),
     dust: [stop(0.0, 0x000000), stop(0.1, 0x140000), stop(0.45, 0x4c0000), stop(0.8, 0xa60000), stop(1.0, 0xff0000)],
 };
 

@@ -46,8 +46,6 @@ pub struct Strip<'a> {
     pub season: &'a Season,
     /// The nights of this stretch; None for the geocentre, which has none.
     pub nights: Option<&'a [DarkNight]>,
-    /// Whether the search for events and windows is over.
-    pub complete: bool,
 }
 
 /// A ribbon, drawn but for its handle.
