@@ -108,6 +108,25 @@ Tailvane.almanac = (function () {
       event.preventDefault();
       range((desk) => desk.set_season(from.value, to.value));
     });
+    const told = (words) => Tailvane.write(done, words);
+    const save = (act, ending, type, make) =>
+      Tailvane.onAct(act, () => {
+        const text = Tailvane.desk.ask(make);
+        if (text) {
+          const name = Tailvane.plan.fileName("-season" + ending);
+          Tailvane.save(name, type, text);
+          told("Saved as " + name + ".");
+        }
+      });
+    save("season-calendar", ".ics", "text/calendar", (desk) => desk.season_text("calendar"));
+    save("season-csv", ".csv", "text/csv", (desk) => desk.season_text("csv"));
+    save("season-svg", ".svg", "image/svg+xml", (desk) => desk.season_svg(Tailvane.theme.name()));
+    Tailvane.onAct("season-copy", () => {
+      const text = Tailvane.desk.ask((desk) => desk.season_text(Tailvane.find("control", "season-form").value));
+      if (text) {
+        Tailvane.copy(text, told);
+      }
+    });
     months.addEventListener("change", () => {
       if (months.value === "orbit") {
         range((desk) => desk.set_season("", ""));
@@ -117,5 +136,5 @@ Tailvane.almanac = (function () {
     });
   }
 
-  return { start, curves: () => curves, say: (words) => Tailvane.write(done, words) };
+  return { start, curves: () => curves };
 })();

@@ -6,6 +6,7 @@ mod elements;
 mod grains;
 mod ion;
 mod night;
+mod season;
 mod sky;
 mod table;
 
@@ -22,6 +23,7 @@ pub const COMMANDS: &[Command] = &[
     ("sky", sky::run),
     ("ion", ion::run),
     ("dust", dust::run),
+    ("season", season::run),
     ("night", night::run),
     ("draw", draw::run),
     ("elements", elements::run),

@@ -235,6 +235,11 @@ impl Outlook {
         if search < 1.0 { 0.75 * search } else { 0.75 + 0.25 * nights }
     }
 
+    /// Whether all events and windows of sunward dust are found; nights may still be missing.
+    pub fn is_searched(&self) -> bool {
+        self.search.done() >= 1.0
+    }
+
     pub fn season(&self) -> &Stretch {
         &self.season
     }

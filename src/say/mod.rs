@@ -7,6 +7,7 @@
 mod dust;
 mod figure;
 pub mod night;
+pub mod season;
 pub mod stage;
 pub mod table;
 

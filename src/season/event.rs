@@ -4,6 +4,7 @@
 //! uncertainty that [`Event::uncertainty_days`] holds.
 
 use super::sunward::Origin;
+use crate::caution::Caution;
 use crate::time::Instant;
 
 /// What kind of moment it is.
@@ -49,6 +50,13 @@ pub struct Event {
     pub note: String,
     /// The event may lie this much earlier or later, days, > 0.
     pub uncertainty_days: f64,
+}
+
+/// An event with what is doubtful or dangerous about it.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Told {
+    pub event: Event,
+    pub cautions: Vec<Caution>,
 }
 
 impl EventKind {

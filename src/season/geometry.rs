@@ -6,12 +6,14 @@
 //! turning points; the Earth's table adds less than a second.
 
 use super::fit::{Coefficients, Fitter, NODES, derivative, value, zeros};
+use crate::body::earth::earth;
 use crate::body::{SPAN, moon};
 use crate::frame::equatorial_to_ecliptic;
 use crate::orbit::conic::Orbit;
 use crate::sky::Sky;
 use crate::sky::avoidance::NEAR_SUN_DEG;
-use crate::sky::watch::Watch;
+use crate::sky::trail::Trail;
+use crate::sky::viewpoint::Viewpoint;
 use crate::time::Instant;
 
 /// Length of a cell: that of the pieces of the Earth's track.
@@ -89,33 +91,38 @@ pub struct Cell {
 
 /// Finds cells.
 pub struct Survey {
-    watch: Watch,
+    orbit: Orbit,
+    trail: Trail,
     fitter: Fitter,
 }
 
 impl Survey {
-    /// `watch` is one of the geocentre.
-    pub fn new(watch: Watch) -> Self {
-        Survey { watch, fitter: Fitter::new() }
+    pub fn new(orbit: Orbit) -> Self {
+        Survey { orbit, trail: Trail::default(), fitter: Fitter::new() }
     }
 
-    /// The sky at an instant of a cell.
+    pub fn orbit(&self) -> &Orbit {
+        &self.orbit
+    }
+
+    /// The geocentric sky; beyond the span that of its end. The Earth is the exact one, not its track: a flat maximum of
+    /// the motion would follow the last digits of the velocity.
     pub fn sky(&mut self, days: f64) -> Sky {
-        let within = days.clamp(SPAN.first.tdb_days(), SPAN.last.tdb_days());
-        self.watch.sky_at(Instant::from_tdb_days(within)).expect("a time clamped to the span")
+        let time = Instant::from_tdb_days(days.clamp(SPAN.first.tdb_days(), SPAN.last.tdb_days()));
+        let observer = earth(time).expect("a time clamped to the span");
+        Sky::of(&self.orbit, &Viewpoint { time, observer, ground: None }, &mut self.trail)
     }
 
     /// The cell of a number; the grid begins at J2000.0. Cut at the ends of the span.
     pub fn cell(&mut self, number: i64) -> Cell {
         let [begin, end] = [number, number + 1]
             .map(|edge| (edge as f64 * CELL_DAYS).clamp(SPAN.first.tdb_days(), SPAN.last.tdb_days()));
-        let Survey { watch, fitter } = self;
-        let orbit = watch.orbit().clone();
+        let fitter = std::mem::take(&mut self.fitter);
         let pieces = fitter.pieces([begin, end], &mut |days| {
-            let time = Instant::from_tdb_days(days.clamp(SPAN.first.tdb_days(), SPAN.last.tdb_days()));
-            let sky = watch.sky_at(time).expect("a time clamped to the span");
-            values(&orbit, &sky)
+            let sky = self.sky(days);
+            values(&self.orbit, &sky)
         });
+        self.fitter = fitter;
         let mut moments: [Vec<Moment>; SEARCHES] = std::array::from_fn(|_| Vec::new());
         let mut begins_above = [true; SEARCHES];
         let mut last: [Option<(bool, Moment)>; SEARCHES] = [None; SEARCHES];

@@ -9,7 +9,6 @@
 use super::geometry::{CELL_DAYS, Survey};
 use super::sunward::{Origin, Strength};
 use crate::frame::separation_rad;
-use crate::orbit::conic::Orbit;
 use crate::tail::grain::Vista;
 use crate::tail::law::Tails;
 use crate::tail::perspective::{self, Dust, GRADE_FLOORS, Grade, Verdict};
@@ -47,9 +46,9 @@ impl Look {
         self.strength.time.tdb_days()
     }
 
-    fn at(survey: &mut Survey, orbit: &Orbit, tails: &Tails, days: f64) -> Self {
+    fn at(survey: &mut Survey, tails: &Tails, days: f64) -> Self {
         let sky = survey.sky(days);
-        let found = perspective::assess(&Vista::of(orbit, &sky), &sky, tails);
+        let found = perspective::assess(&Vista::of(survey.orbit(), &sky), &sky, tails);
         let (origin, grade) = match found.verdict {
             Verdict::Perspective(grade) => (Some(Origin::Perspective), grade),
             Verdict::NeedsEjection(grade) => (Some(Origin::Ejection), grade),
@@ -120,11 +119,11 @@ pub struct Looks {
 
 impl Looks {
     /// Looks into a cell, crossings of the orbit plane at these days.
-    pub fn cell(&mut self, survey: &mut Survey, orbit: &Orbit, tails: &Tails, number: i64, crossings: &[f64]) {
+    pub fn cell(&mut self, survey: &mut Survey, tails: &Tails, number: i64, crossings: &[f64]) {
         let step = |days: f64| (days * STEPS_PER_DAY).round() as i64;
         let (begin, end) = (number as f64 * CELL_DAYS, (number + 1) as f64 * CELL_DAYS);
         let mut look = |step: i64| {
-            *self.by_step.entry(step).or_insert_with(|| Look::at(survey, orbit, tails, step as f64 / STEPS_PER_DAY))
+            *self.by_step.entry(step).or_insert_with(|| Look::at(survey, tails, step as f64 / STEPS_PER_DAY))
         };
         let mut dates: Vec<i64> =
             crossings.iter().filter(|days| begin < **days && **days < end).map(|d| step(*d)).collect();

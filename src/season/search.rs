@@ -9,10 +9,8 @@ use super::looks::Looks;
 use super::stretch::Stretch;
 use super::sunward::{self, Strength, Window};
 use super::tell::{self, Doubt};
-use crate::body::observer::Observer;
 use crate::orbit::conic::Orbit;
 use crate::sky::avoidance::NEAR_SUN_DEG;
-use crate::sky::watch::Watch;
 use crate::tail::law::Tails;
 use crate::time::Instant;
 use std::collections::BTreeMap;
@@ -56,7 +54,7 @@ const SUNWARD_DAYS: f64 = CELL_DAYS - GEOMETRY_DAYS;
 
 impl Search {
     pub fn new(subject: Subject, stretch: Stretch) -> Self {
-        let survey = Survey::new(Watch::new(subject.orbit.clone(), Observer::Geocentre));
+        let survey = Survey::new(subject.orbit.clone());
         Search { subject, stretch, survey, cells: BTreeMap::new(), looks: Looks::default() }
     }
 
@@ -85,7 +83,7 @@ impl Search {
                     .filter(|moment| moment.quantity == Quantity::Plane)
                     .map(|moment| moment.days)
                     .collect();
-                self.looks.cell(&mut self.survey, &self.subject.orbit, &self.subject.tails, number, &crossings);
+                self.looks.cell(&mut self.survey, &self.subject.tails, number, &crossings);
                 left -= SUNWARD_DAYS;
             }
         }

@@ -6,10 +6,13 @@
 
 use super::{Desk, named_theme, refusal, to_js};
 use crate::engine::outlook::{self, Outlook};
+use crate::error::{Error, Kind, Place};
 use crate::paint::canvas::CanvasPainter;
-use crate::paint::paint;
+use crate::paint::{paint, svg};
 use crate::plan::Plan;
 use crate::plan::season::Season;
+use crate::say;
+use crate::say::table::Form;
 use crate::scene::ribbon::{flag, scale};
 use crate::season::series::Curve;
 use crate::time::{Instant, Stamp};
@@ -100,6 +103,14 @@ impl Desk {
         }
     }
 
+    /// The ribbon as an SVG file, as it stands.
+    pub fn season_svg(&self, theme: &str) -> Option<String> {
+        let season = self.season.as_ref()?;
+        let scene = season.drawn()?.with_handle(self.seen.sky.time);
+        let title = format!("Season of {}", self.engine.plan().comet.name);
+        Some(svg::write(&scene, named_theme(theme), &title, &season.sentence()))
+    }
+
     /// What lies at an x of the ribbon, with points between the facts; nothing beside the track.
     pub fn season_under(&mut self, x_px: f64) -> Option<String> {
         let words = self.season.as_ref()?.under(&mut self.engine, x_px)?;
@@ -175,7 +186,7 @@ impl Desk {
             None
         } else {
             let read = |text: &str, key: &str| {
-                let place = crate::error::Place::Field(format!("season.{key}"));
+                let place = Place::Field(format!("season.{key}"));
                 text.trim().parse::<Stamp>().map_err(|error| refusal(error.at(place)))
             };
             Some(Season { from: read(from, "from")?, to: read(to, "to")? })
@@ -193,6 +204,23 @@ impl Desk {
         };
         let season = Some(Season { from: end(-1.0)?, to: end(1.0)? });
         self.take(Plan { season, ..self.plan() })
+    }
+
+    /// The events as a file or a table: `csv`, `calendar`, `plain`, `markdown` or `wiki`, byte for byte what the command
+    /// line gives for the same plan and range.
+    pub fn season_text(&mut self, form: &str) -> Result<String, JsValue> {
+        let Desk { season, engine, .. } = self;
+        let Some(season) = season.as_ref().filter(|season| season.is_searched()) else {
+            let allowed = "a season whose search is done; let it run on";
+            return Err(refusal(Error::new(Kind::Usage, Place::Whole, "events that are not complete", allowed)));
+        };
+        let told = engine.season_told(season.found()).map_err(refusal)?;
+        let comet = &engine.plan().comet.name;
+        Ok(match (form, Form::named(form)) {
+            ("calendar", _) => say::season::calendar(comet, &told),
+            (_, Some(form)) if form != Form::Csv => say::season::table(comet, &told, form),
+            _ => say::season::csv(&told),
+        })
     }
 
     /// Events and windows for people, and the ends of the season.
@@ -242,8 +270,8 @@ fn table(season: &Outlook, chosen: &Option<Season>) -> Table {
         days: event.time.tdb_days(),
         time: event.time.utc_minute(),
         words: event.kind.words(),
-        value: event.value.map_or(String::new(), |value| value_words(value, event.unit)),
-        note: event.note.clone(),
+        value: say::season::value_words(event),
+        note: say::season::note(event),
         weighty: flag::rank(event.kind) <= flag::WEIGHTY,
     });
     let windows = season.windows().into_iter().map(|window| WindowRow {
@@ -254,13 +282,4 @@ fn table(season: &Outlook, chosen: &Option<Season>) -> Table {
         note: window.note,
     });
     Table { from, to, chosen: chosen.is_some(), events: events.collect(), windows: windows.collect() }
-}
-
-fn value_words(value: f64, unit: &str) -> String {
-    match unit {
-        "deg" => format!("{value:.1}\u{b0}").replace('-', "\u{2212}"),
-        "au" => format!("{value:.4}\u{a0}au"),
-        "" => format!("{value:.2}"),
-        unit => format!("{value:.2}\u{a0}{unit}"),
-    }
 }

@@ -20,7 +20,7 @@ HERE = os.path.dirname(os.path.abspath(__file__))
 sys.path.insert(0, HERE)
 import table  # noqa: E402
 
-MAKERS = ["make_times", "make_days", "make_frames", "make_sky", "make_ion", "make_conic", "make_grain", "make_night"]
+MAKERS = ["make_times", "make_days", "make_frames", "make_sky", "make_ion", "make_conic", "make_grain", "make_season", "make_night"]
 
 # The ephemeris rows are JPL positions read back by another library: 1e-12 relative, 1e-13 au.
 EPHEMERIS = os.path.join(HERE, "ephemeris", "make_rows.py")
