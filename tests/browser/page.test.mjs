@@ -13,6 +13,7 @@ import layout from "./layout.mjs";
 import numbers from "./numbers.mjs";
 import tails from "./tails.mjs";
 import quiet from "./quiet.mjs";
+import season from "./season.mjs";
 import time from "./time.mjs";
 
 if (!existsSync(PAGE_FILE)) {
@@ -36,7 +37,7 @@ for (const name of wanted) {
         context.server.stop();
       }
     });
-    for (const part of [quiet, numbers, tails, time, input, access, layout, gallery]) {
+    for (const part of [quiet, numbers, tails, time, season, input, access, layout, gallery]) {
       part(context);
     }
   });
