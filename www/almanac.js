@@ -53,7 +53,7 @@ Tailvane.almanac = (function () {
     }
     months.value = table.chosen ? "typed" : "orbit";
     events.replaceChildren(...table.events.map((event) => row(event.days, event.time, event.words, event.value, event.note, event.weighty)));
-    windows.replaceChildren(...table.windows.map((span) => row(span.days, span.from + " to " + span.to, span.words, "", span.note, false)));
+    windows.replaceChildren(...table.windows.map((span) => row(span.days, span.from + " to\n" + span.to, span.words, "", span.note, false)));
   }
 
   function row(days, time, words, value, note, weighty) {
@@ -72,9 +72,10 @@ Tailvane.almanac = (function () {
     const what = document.createElement("th");
     what.scope = "row";
     what.textContent = words;
-    const more = document.createElement("td");
+    const more = document.createElement("small");
     more.textContent = [value, note].filter(Boolean).join("; ");
-    line.append(what, when, more);
+    what.append(more);
+    line.append(what, when);
     return line;
   }
 

@@ -26,6 +26,7 @@ Tailvane.season = (function () {
   const listeners = [];
   let season = null;
   let drawn = "";
+  let drawnOf = null;
   let size = { width: 0, height: 0, zoom: 1 };
   let pointer = NaN;
   let working = false;
@@ -52,12 +53,12 @@ Tailvane.season = (function () {
   function paint(desk) {
     const zoom = parseFloat(getComputedStyle(document.documentElement).fontSize) / ORDINARY_PX;
     const width = Math.max(box.clientWidth, 100) / zoom;
-    const low = matchMedia("(min-width: 47.51em) and (min-height: 38em)").matches;
+    const low = matchMedia("(min-width: 60em) and (min-height: 38em)").matches;
     season = desk.season(width, low ? Math.max(150, (0.24 * innerHeight) / zoom) : 1e4, Tailvane.almanac.curves());
     const ratio = window.devicePixelRatio || 1;
     const version = [season.version, Tailvane.theme.name(), ratio, zoom].join();
-    if (version !== drawn) {
-      drawn = version;
+    if (version !== drawn || desk !== drawnOf) {
+      [drawn, drawnOf] = [version, desk];
       size = { width, height: season.height_px, zoom };
       const [left, right, top, bottom] = season.track_px;
       box.style.height = season.height_px * zoom + "px";

@@ -429,11 +429,17 @@ fn holds(stretch: &Stretch, time: Instant) -> bool {
     stretch.from().plus_days(-SECOND) <= time && time <= stretch.to().plus_days(SECOND)
 }
 
-/// A stretch of about this length about a time, moved into the ephemeris; it begins and ends on whole hours of UTC.
+/// A stretch of about this length about a time, moved into the ephemeris; it begins and ends on whole days of UTC, or
+/// hours where it is short.
 fn around(middle: Instant, days: f64) -> Stretch {
-    let days = days.min(LONGEST_DAYS - 1.0);
-    let (first, last) = (SPAN.first.plus_days(1.0 / 24.0).tdb_days(), SPAN.last.plus_days(-1.0 / 24.0).tdb_days());
+    let days = days.min(LONGEST_DAYS - 2.0);
+    let (first, last) = (SPAN.first.plus_days(1.0).tdb_days(), SPAN.last.plus_days(-1.0).tdb_days());
     let from = (middle.tdb_days() - 0.5 * days).min(last - days).max(first);
-    let hour = |days: f64| Instant::from_ut1_days(libm::floor(Instant::from_tdb_days(days).ut1_days() * 24.0) / 24.0);
-    Stretch::new(hour(from), hour((from + days).min(last))).expect("a checked length within the span")
+    let per_day = if days > 30.0 { 1.0 } else { 24.0 };
+    // A day begins half a day off the whole numbers of this count.
+    let whole = |days: f64| {
+        let count = Instant::from_tdb_days(days).ut1_days() + 0.5;
+        Instant::from_ut1_days(libm::floor(count * per_day) / per_day - 0.5)
+    };
+    Stretch::new(whole(from), whole((from + days).min(last))).expect("a checked length within the span")
 }

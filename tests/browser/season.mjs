@@ -134,7 +134,7 @@ export default (context) =>
         }
       }
       const rows = await page.$$('[data-list="season-events"] tr');
-      const words = await Promise.all(rows.map((row) => row.$eval("th", (cell) => cell.textContent)));
+      const words = await Promise.all(rows.map((row) => row.$eval("th", (cell) => cell.firstChild.textContent)));
       const crossing = words.indexOf("orbit-plane crossing");
       assert.ok(crossing >= 0, words.join());
       await rows[crossing].$eval("button", (button) => button.click());

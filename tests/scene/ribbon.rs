@@ -312,7 +312,7 @@ fn under_the_pointer_stand_values_bands_and_events() {
     for words in [
         "orbit-plane angle −28.6°",
         "antisolar 354.3°",
-        "total magnitude does not exist",
+        "total magnitude not known",
         "dust toward the Sun by perspective: strong",
         "not up in a dark sky that night",
         "perihelion 20",

@@ -78,7 +78,7 @@ fn below(ribbon: &mut Ribbon) {
     let side = 10.0 * unit;
     let room = ribbon.scene.width_px - 2.0 * side;
     let row = frame::ROW * frame.size_px;
-    let (mut x, mut y) = (side, frame.foot + 1.35 * frame.size_px + 0.5 * row);
+    let (mut x, mut y) = (side, frame.foot + frame.dates_px + 0.5 * row);
     for (curve, scale) in ribbon.scales.clone() {
         let width = frame::entry_px(curve, &scale, frame.size_px, unit);
         if x > side && x - side + width > room {

@@ -38,7 +38,9 @@ pub struct Frame {
     pub lanes: usize,
     /// Foot of the last lane: here stand the dates.
     pub foot: f64,
+    /// Whether dates are written, and the height they take.
     pub dates: bool,
+    pub dates_px: f64,
     /// Rows for the names of curves below the dates, on a narrow ribbon.
     pub legend_rows: usize,
 }
@@ -92,7 +94,7 @@ impl Frame {
             flags: row * if beside { 2.0 } else { 3.0 },
             marks: 9.0 * unit,
             lanes: lane_step * lanes as f64 + 4.0 * unit,
-            dates: 1.35 * size,
+            dates: if beside { 1.35 } else { 1.65 } * size,
             legend: row * legend_rows as f64 + if legend_rows > 0 { 3.0 * unit } else { 0.0 },
         };
         let margin = 3.0 * unit;
@@ -123,6 +125,7 @@ impl Frame {
             lanes: if heights.lanes > 0.0 { lanes } else { 0 },
             foot: bottom + heights.lanes,
             dates: heights.dates > 0.0,
+            dates_px: heights.dates,
             legend_rows: if heights.legend > 0.0 { legend_rows } else { 0 },
         }
     }

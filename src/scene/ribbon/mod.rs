@@ -156,7 +156,7 @@ impl Ribbon {
         if !scale.has_values() {
             return;
         }
-        if first == Curve::OrbitPlane {
+        if first == Curve::OrbitPlane && scale.has_zero_in_the_middle() {
             self.scene.add(Role::TrackZero, Shape::Polyline(level(0.5 * (plot.top + plot.bottom))));
         }
         let numbers = scale.numbers(first);

@@ -28,6 +28,10 @@ pub struct Scale {
 /// Upper ends of scales.
 const ANGLE_ENDS_DEG: [f64; 12] = [0.5, 1.0, 2.0, 5.0, 10.0, 20.0, 30.0, 45.0, 60.0, 90.0, 120.0, 180.0];
 const DISTANCE_ENDS_AU: [f64; 10] = [0.01, 0.02, 0.05, 0.1, 0.2, 0.5, 1.0, 2.0, 3.0, 5.0];
+/// Values within this part of the greatest have a scale of their own ends.
+const NARROW: f64 = 0.3;
+/// But one that spans no less than this part of it, so that a constant looks constant.
+const LEAST_SPAN: f64 = 1e-3;
 /// A scale of position angles is no narrower than this, degrees, so that small wavering looks small.
 const LEAST_TURN_DEG: f64 = 40.0;
 
@@ -73,6 +77,7 @@ pub fn said(curve: Curve, value: f64) -> String {
     let words = words(curve);
     let value = shown(curve, value);
     match kind(curve) {
+        Kind::Magnitude if !value.is_finite() => format!("{words} not known"),
         _ if !value.is_finite() => format!("{words} does not exist"),
         Kind::Plane => format!("{words} {}°", signed(value, 1)),
         Kind::PositionAngle => {
@@ -102,6 +107,7 @@ impl Scale {
             return Scale { foot: f64::NAN, head: f64::NAN };
         }
         match kind {
+            Kind::Plane | Kind::Angle | Kind::Distance if is_narrow(least, most) => snug(least, most),
             Kind::Plane => {
                 let head = end(most.max(-least), &ANGLE_ENDS_DEG);
                 Scale { foot: -head, head }
@@ -121,6 +127,11 @@ impl Scale {
         }
     }
 
+    /// Whether the middle of the plot is zero.
+    pub fn has_zero_in_the_middle(&self) -> bool {
+        self.foot == -self.head
+    }
+
     /// Whether there was any value to make a scale for.
     pub fn has_values(&self) -> bool {
         self.foot.is_finite()
@@ -134,16 +145,18 @@ impl Scale {
     /// The ends of the scale, as a label says them.
     pub fn range(&self, curve: Curve) -> String {
         let Scale { foot, head } = *self;
+        let short = |value: f64| short(value, (head - foot).abs());
         match kind(curve) {
             _ if !self.has_values() => "not known".to_owned(),
-            Kind::Plane => format!("±{}°", figures(head)),
+            Kind::Plane if self.has_zero_in_the_middle() => format!("±{}°", short(head)),
+            Kind::Plane => format!("{} to {}°", short(foot), short(head)),
             // More than a turn cannot be told from its ends.
             Kind::PositionAngle if head - foot > 360.0 => {
                 format!("{} turns", figures(libm::round((head - foot) / 36.0) / 10.0))
             }
             Kind::PositionAngle => format!("{}–{}°", whole_turn(foot), whole_turn(head)),
-            Kind::Angle => format!("0–{}°", figures(head)),
-            Kind::Distance => format!("0–{}\u{a0}au", figures(head)),
+            Kind::Angle => format!("{}–{}°", short(foot), short(head)),
+            Kind::Distance => format!("{}–{}\u{a0}au", short(foot), short(head)),
             Kind::Magnitude => format!("{}–{}", short(foot), short(head)),
         }
     }
@@ -154,6 +167,7 @@ impl Scale {
             return [const { String::new() }; 3];
         }
         let middle = 0.5 * (self.foot + self.head);
+        let short = |value: f64| short(value, (self.head - self.foot).abs());
         [self.foot, middle, self.head].map(|value| match kind(curve) {
             Kind::Plane | Kind::Angle => short(value) + "°",
             Kind::PositionAngle => format!("{}°", whole_turn(value)),
@@ -181,6 +195,19 @@ pub fn brought_near(columns: &mut [Column]) {
     }
 }
 
+/// Whether values lie so close together, away from zero, that a scale from zero would show a flat line.
+fn is_narrow(least: f64, most: f64) -> bool {
+    (least > 0.0) == (most > 0.0) && most - least < NARROW * most.abs().max(least.abs())
+}
+
+/// A scale just around the values, in steps of 1, 2 or 5 times a power of ten, a few of them.
+fn snug(least: f64, most: f64) -> Scale {
+    let span = (most - least).max(LEAST_SPAN * most.abs().max(least.abs()));
+    let step = end(span / 4.0, &[]);
+    let (foot, head) = (libm::floor(least / step) * step, libm::ceil(most / step) * step);
+    Scale { foot, head: head.max(foot + step) }
+}
+
 /// The first of the ends that is no smaller than `most`; beyond the last, the next of 1, 2 and 5 times a power of ten.
 fn end(most: f64, ends: &[f64]) -> f64 {
     if let Some(&end) = ends.iter().find(|&&end| most <= end) {
@@ -194,9 +221,11 @@ fn whole_turn(degrees: f64) -> i64 {
     (libm::round(degrees) as i64).rem_euclid(360)
 }
 
-fn short(value: f64) -> String {
-    let text = figures(value.abs());
-    if value < 0.0 { format!("−{text}") } else { text }
+/// A value in as many digits as a scale of this span needs, without idle zeros.
+fn short(value: f64, span: f64) -> String {
+    let decimals = libm::ceil(2.0 - libm::log10(span)).clamp(0.0, 9.0) as usize;
+    let text = signed(value, decimals);
+    if text.contains('.') { text.trim_end_matches('0').trim_end_matches('.').to_owned() } else { text }
 }
 
 /// A number with a typographic minus sign, as wide as the digits.
