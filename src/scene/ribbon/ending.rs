@@ -49,7 +49,9 @@ fn beside(ribbon: &mut Ribbon, series: &Series) {
             ribbon.scene.add(Role::CurveLeader(curve), Shape::Polyline(leader));
             sample(ribbon, curve, [start, y], x);
         }
-        let text = frame::from_left(frame::label(curve, &scale), [x + frame::SAMPLE_GAP * unit, y], frame.size_px);
+        let left = x + frame::SAMPLE_GAP * unit;
+        let words = frame::label(curve, &scale, frame.size_px, ribbon.scene.width_px - left);
+        let text = frame::from_left(words, [left, y], frame.size_px);
         ribbon.scene.add(Role::CurveName(curve), Shape::Text(text));
     }
 }
@@ -80,13 +82,14 @@ fn below(ribbon: &mut Ribbon) {
     let row = frame::ROW * frame.size_px;
     let (mut x, mut y) = (side, frame.foot + frame.dates_px + 0.5 * row);
     for (curve, scale) in ribbon.scales.clone() {
-        let width = frame::entry_px(curve, &scale, frame.size_px, unit);
+        let width = frame::entry_px(curve, &scale, frame.size_px, unit, room);
         if x > side && x - side + width > room {
             (x, y) = (side, y + row);
         }
         sample(ribbon, curve, [x, y], x + SAMPLE * unit);
-        let text =
-            frame::from_left(frame::label(curve, &scale), [x + (SAMPLE + frame::SAMPLE_GAP) * unit, y], frame.size_px);
+        let before = (SAMPLE + frame::SAMPLE_GAP) * unit;
+        let words = frame::label(curve, &scale, frame.size_px, room - before);
+        let text = frame::from_left(words, [x + before, y], frame.size_px);
         ribbon.scene.add(Role::CurveName(curve), Shape::Text(text));
         x += width;
     }

@@ -131,9 +131,10 @@ impl Frame {
     }
 }
 
-/// The name of a curve with the ends of its scale.
-pub fn label(curve: Curve, scale: &Scale) -> String {
-    format!("{} {}", words(curve), scale.range(curve))
+/// The name of a curve with the ends of its scale; without them where that is wider than the room.
+pub fn label(curve: Curve, scale: &Scale, size: f64, room: f64) -> String {
+    let whole = format!("{} {}", words(curve), scale.range(curve));
+    if width_px(&whole, size, false) <= room { whole } else { words(curve).to_owned() }
 }
 
 /// Width of a legend's piece of line, in drawing units.
@@ -141,15 +142,16 @@ pub const SAMPLE: f64 = 30.0;
 /// From there to the words: half an end mark and a little, in drawing units.
 pub const SAMPLE_GAP: f64 = 11.0;
 
-/// The width that a curve's entry takes in a legend.
-pub fn entry_px(curve: Curve, scale: &Scale, size: f64, unit: f64) -> f64 {
-    (SAMPLE + SAMPLE_GAP + 12.0) * unit + width_px(&label(curve, scale), size, false)
+/// The width that a curve's entry takes in a legend of so much room.
+pub fn entry_px(curve: Curve, scale: &Scale, size: f64, unit: f64, room: f64) -> f64 {
+    (SAMPLE + SAMPLE_GAP + 12.0) * unit
+        + width_px(&label(curve, scale, size, room - (SAMPLE + SAMPLE_GAP) * unit), size, false)
 }
 
 fn legend_rows(scales: &[(Curve, Scale)], room: f64, size: f64, unit: f64) -> usize {
     let (mut rows, mut used) = (0, f64::INFINITY);
     for (curve, scale) in scales {
-        let width = entry_px(*curve, scale, size, unit);
+        let width = entry_px(*curve, scale, size, unit, room);
         if used + width > room {
             rows += 1;
             used = 0.0;
