@@ -79,8 +79,10 @@ impl Frame {
         let numbers_px = number_width + 9.0 * unit;
         let (left, right) = if beside {
             let names = lane::NAMES.iter().map(|(_, words)| width_px(words, size, false)).fold(0.0, f64::max);
-            let ends =
-                scales.iter().map(|(curve, scale)| width_px(&label(*curve, scale), size, false)).fold(0.0, f64::max);
+            let ends = scales
+                .iter()
+                .map(|(curve, scale)| width_px(&label(*curve, scale, size, f64::MAX), size, false))
+                .fold(0.0, f64::max);
             (numbers_px.max(names + 9.0 * unit) + 0.3 * side, ends + 43.0 * unit)
         } else {
             (numbers_px.max(side), side)
