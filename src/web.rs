@@ -7,6 +7,7 @@
 mod answer;
 mod bench;
 mod examples;
+mod night;
 mod season;
 mod share;
 mod tails;
@@ -120,6 +121,7 @@ pub struct Desk {
     view_chosen: bool,
     season: Option<Outlook>,
     read: Vec<Entry>,
+    night: night::Kept,
 }
 
 #[wasm_bindgen]
@@ -139,6 +141,7 @@ impl Desk {
             view_chosen: false,
             season: None,
             read: Vec::new(),
+            night: night::Kept::default(),
         })
     }
 
@@ -322,6 +325,7 @@ impl Desk {
         if let Some(season) = &mut self.season {
             season.renew(&engine, seen.sky.time);
         }
+        self.night.plan_changed();
         self.tails = engine.tails_at(&seen.sky);
         (self.engine, self.time, self.seen) = (engine, time, seen);
         Ok(JsValue::TRUE)

@@ -319,3 +319,65 @@ fn draw_writes_the_season_between_two_dates_with_its_events_and_the_plan_can_hol
     let other = draw("season-3.svg", &held, &["--curves", "phase_angle_deg,sun_distance_au"]);
     assert!(other.contains("distance to the Sun") && !other.contains("orbit-plane angle"));
 }
+
+/// The plan seen from an invented hill.
+fn from_hill() -> String {
+    PLAN.replacen(
+        "\"time\"",
+        "\"observer\": { \"name\": \"Invented hill\", \"longitude_deg\": 23.4, \"latitude_deg\": 37.1 }, \"time\"",
+        1,
+    )
+}
+
+#[test]
+fn a_night_is_rows_of_the_clock_with_events_among_them() {
+    let plan = from_hill();
+    let text = said(&["night", "-", "--date", "2031-03-20"], &plan);
+    let header = text.lines().next().expect("a header");
+    assert!(
+        header.starts_with("time,event,part_of_night,altitude_deg,azimuth_deg,air_mass,sun_altitude_deg,"),
+        "{header}"
+    );
+    assert!(header.ends_with(",caution"));
+    let found = rows(&text);
+    for event in ["sunset", "sunrise", "astronomical twilight ends", "astronomical twilight begins", "comet highest"] {
+        assert_eq!(found.iter().filter(|row| row["event"] == event).count(), 1, "{event}");
+    }
+    assert!(found.windows(2).all(|pair| pair[0]["time"] <= pair[1]["time"]));
+    let plain: Vec<_> = found.iter().filter(|row| row["event"].is_empty()).collect();
+    assert!(plain.len() > 60 && plain.iter().all(|row| row["time"].ends_with("0:00.000Z")));
+    // The same numbers as `sky` at a row's time, and the same in JSON.
+    let row = plain[30];
+    let sky = &rows(&said(&["sky", "-", "--at", &row["time"]], &plan))[0];
+    for key in [
+        "altitude_deg",
+        "azimuth_deg",
+        "sun_altitude_deg",
+        "moon_separation_deg",
+        "zenith_position_angle_deg",
+        "motion_arcsec_per_minute",
+    ] {
+        assert_eq!(number(row, key), number(sky, key), "{key}");
+    }
+    let json: serde_json::Value =
+        serde_json::from_str(&said(&["night", "-", "--date", "2031-03-20", "--json"], &plan)).expect("JSON");
+    assert_eq!(json.as_array().map(Vec::len), Some(found.len()));
+    assert!(json[0]["total_magnitude"].is_null() && json[0]["cautions"].is_array());
+    // The night of the plan's own time is the one that began the evening before.
+    assert_eq!(said(&["night", "-"], &plan), said(&["night", "-", "--date", "2031-03-19"], &plan));
+    let fine = rows(&said(&["night", "-", "--step", "1m"], &plan)).len();
+    assert!(fine > 8 * found.len(), "{fine}");
+}
+
+#[test]
+fn a_night_refuses_what_it_cannot_use() {
+    let plan = from_hill();
+    assert!(refused(&["night", "-"], PLAN, 1).contains("observer"));
+    assert!(refused(&["night", "-", "--date", "20.3.2031"], &plan, 1).contains("2031-03-20"));
+    assert!(refused(&["night", "-", "--date", "2150-01-01"], &plan, 1).contains("2100-12-31"));
+    assert!(refused(&["night", "-", "--at", "2031-03-20T00:00:00Z"], &plan, 2).contains("--date"));
+    assert!(refused(&["night", "-", "--step", "0.5s"], &plan, 2).contains("a second"));
+    let polar = plan.replace("37.1", "78.0");
+    let first = &rows(&said(&["night", "-", "--date", "2031-06-20"], &polar))[0];
+    assert!(first["caution"].contains("does not set"), "{}", first["caution"]);
+}

@@ -143,6 +143,45 @@ fn a_season_is_kept_as_typed_and_refused_by_its_ends() {
 }
 
 #[test]
+fn a_branch_of_the_brightness_takes_one_of_two_slopes() {
+    let slope =
+        PLAN.replace("\"photometric_index_n\": 4.0", "\"slope_2_5n\": 10.7,\n        \"dust_over_gas_at_90_deg\": 3.0");
+    let plan = Plan::parse(&slope).unwrap();
+    assert_eq!((plan.comet.brightness[0].slope(), plan.print()), (10.7, slope));
+    refuses(
+        "\"photometric_index_n\": 4.0",
+        "\"slope_2_5n\": 10, \"photometric_index_n\": 4",
+        &["both of them", "either"],
+    );
+    refuses("\"photometric_index_n\": 4.0", "\"dust_over_gas_at_90_deg\": 1", &["neither", "comet.brightness[0]"]);
+    refuses("\"photometric_index_n\": 4.0", "\"slope_2_5n\": 251", &["slope_2_5n", "-250 to 250"]);
+    refuses("4.0\n", "4.0, \"dust_over_gas_at_90_deg\": -1\n", &["dust_over_gas_at_90_deg", "0 to 1000"]);
+}
+
+#[test]
+fn the_night_section_is_read_printed_and_judged() {
+    let end = "\"time\": \"2031-03-20T05:30:00Z\"";
+    let with = |section: &str| format!("{end},\n  \"night\": {section}");
+    let plan =
+        Plan::parse(&PLAN.replace(end, &with("{ \"sun_below_deg\": -12, \"pixel_scale_arcsec\": 1.5 }"))).unwrap();
+    assert_eq!(
+        (plan.night.sun_below_deg, plan.night.comet_above_deg, plan.night.pixel_scale_arcsec),
+        (-12.0, 5.0, Some(1.5))
+    );
+    assert_eq!(Plan::parse(&plan.print()).unwrap(), plan);
+    let refused = |section: &str| refusal(&PLAN.replace(end, &with(section))).to_string();
+    assert!(refused("{ \"sun_below\": -9 }").contains("unknown key `sun_below`"));
+    for (section, key) in [
+        ("{ \"sun_below_deg\": 3 }", "night.sun_below_deg"),
+        ("{ \"comet_above_deg\": 95 }", "night.comet_above_deg"),
+        ("{ \"pixel_scale_arcsec\": 0 }", "night.pixel_scale_arcsec"),
+        ("{ \"longest_trail_px\": -1 }", "night.longest_trail_px"),
+    ] {
+        assert!(refused(section).contains(key), "{}", refused(section));
+    }
+}
+
+#[test]
 fn a_missing_key_is_named() {
     let error = refusal(&PLAN.replace("      \"eccentricity\": 1.0003,\n", ""));
     assert!(error.to_string().contains("no `eccentricity` at comet.elements"), "{error}");

@@ -6,6 +6,8 @@ mod contrast;
 mod gallery;
 #[path = "scene/labels.rs"]
 mod labels;
+#[path = "scene/night.rs"]
+mod night;
 #[path = "scene/painters.rs"]
 mod painters;
 #[path = "scene/place.rs"]

@@ -13,7 +13,7 @@
     return;
   }
   Tailvane.theme.start();
-  for (const part of ["sky", "almanac", "season", "clock", "say", "numbers", "tails", "drawings", "comet", "observer", "plan"]) {
+  for (const part of ["sky", "almanac", "season", "clock", "say", "numbers", "tails", "drawings", "comet", "observer", "plan", "night", "board"]) {
     Tailvane[part].start();
   }
   const invented = Tailvane.core.exports().examples()[0].plan;

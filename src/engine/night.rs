@@ -9,6 +9,7 @@ use crate::night::evening::Evening;
 use crate::night::moment::{Laws, Moment, no_site};
 use crate::night::table::{self, Row};
 use crate::say;
+use crate::sky::column::Value;
 use crate::time::Instant;
 use crate::time::civil::Date;
 
@@ -43,6 +44,32 @@ impl Engine {
         let plan = &self.plan;
         let laws = Laws { night: &plan.night, tails: &plan.tails, brightness: &plan.comet.brightness };
         Moment::at(&mut self.watch, time, &laws)
+    }
+
+    /// The rows of a night as CSV: the bytes that `tailvane night` writes.
+    ///
+    /// # Errors
+    /// As for [`Engine::evening`].
+    pub fn night_csv(&mut self, course: &Course, step_days: f64) -> Result<String, Error> {
+        let keys = ["time"].into_iter().chain(table::COLUMNS.iter().map(|column| column.key)).chain(["caution"]);
+        let mut text = keys.collect::<Vec<&str>>().join(",");
+        text.push('\n');
+        for row in self.night_rows(course, step_days)? {
+            text.push_str(&row.moment.sky.time.utc_iso_ms());
+            for column in table::COLUMNS {
+                text.push(',');
+                match (column.value)(&row) {
+                    Value::Number(number) => text.push_str(&number.to_string()),
+                    Value::Text(words) => text.push_str(words),
+                    Value::Absent => {}
+                }
+            }
+            // No name stands in a row; of its own words only cautions may hold a comma, and none a quote.
+            let words = row.cautions.join(" ");
+            let quote = if words.contains(',') { "\"" } else { "" };
+            text.push_str(&format!(",{quote}{words}{quote}\n"));
+        }
+        Ok(text)
     }
 
     /// The rows of a night, a step of the clock apart, with its events among them. What the night lacks stands among the

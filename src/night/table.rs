@@ -4,7 +4,7 @@
 
 use super::course::{Course, EventKind};
 use super::moment::Moment;
-use crate::sky::column::{Value, whole_turn_deg};
+use crate::sky::column::{Value, arcsec_per_minute, degrees, position_angle};
 use crate::time::Instant;
 
 /// A row: a plain step of the clock, or something that happens.
@@ -27,14 +27,6 @@ pub struct Column {
     /// Digits after the point for people.
     pub decimals: usize,
     pub value: fn(&Row) -> Value,
-}
-
-fn degrees(angle_rad: f64) -> Value {
-    Value::Number(angle_rad.to_degrees())
-}
-
-fn position_angle(angle_rad: Option<f64>) -> Value {
-    angle_rad.map_or(Value::Absent, |angle| Value::Number(whole_turn_deg(angle)))
 }
 
 fn maybe(number: Option<f64>) -> Value {
@@ -137,7 +129,7 @@ pub const COLUMNS: &[Column] = &[
         words: "Sky motion",
         unit: "arcsec/min",
         decimals: 3,
-        value: |row| Value::Number(row.moment.sky.motion_rad_d.to_degrees() * 3600.0 / 1440.0),
+        value: |row| arcsec_per_minute(row.moment.sky.motion_rad_d),
     },
     Column {
         key: "motion_position_angle_deg",

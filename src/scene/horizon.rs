@@ -15,9 +15,9 @@ use crate::say::night::compass;
 const SIZE: f64 = 11.0;
 /// Least and greatest length of a hand, as shares of the smaller side of the picture.
 const HAND_SHARES: [f64; 2] = [0.2, 0.34];
-/// Altitudes shown: at least so far below the horizon, so far above the comet, and up to here.
+/// Altitudes shown: at least so far below the horizon, so far about the comet, and up to here.
 const BELOW_DEG: f64 = 7.0;
-const ABOVE_COMET_DEG: f64 = 22.0;
+const ABOUT_COMET_DEG: f64 = 22.0;
 const LEAST_TOP_DEG: f64 = 45.0;
 
 /// Where azimuths and altitudes lie on the page.
@@ -57,8 +57,8 @@ pub fn compose(moment: &Moment, wide_px: f64, height_px: f64) -> Scene {
         return scene;
     }
     let altitude_deg = moment.altitude_rad.to_degrees();
-    let low_deg = (-BELOW_DEG).min(altitude_deg - 12.0);
-    let top_deg = LEAST_TOP_DEG.max(altitude_deg + ABOVE_COMET_DEG);
+    let low_deg = (-BELOW_DEG).min(altitude_deg - ABOUT_COMET_DEG);
+    let top_deg = LEAST_TOP_DEG.max(altitude_deg + ABOUT_COMET_DEG);
     let plane = Plane {
         area,
         px_per_deg: area.height() / (top_deg - low_deg),
@@ -121,7 +121,8 @@ fn draw_scales(scene: &mut Scene, plane: &Plane, level: f64, size_px: f64, top_d
     while altitude <= top_deg.min(90.0) {
         let y = plane.to_page(0.0, altitude)[1];
         axis.push(vec![[area.left - 4.0 * unit, y], [area.left, y]]);
-        let words = format!("{altitude:.0}\u{b0}").replace('-', "\u{2212}");
+        // Adding zero takes the sign off a zero.
+        let words = format!("{:.0}\u{b0}", altitude + 0.0).replace('-', "\u{2212}");
         text(Role::Note, words, [area.left - 7.0 * unit, y + (ABOVE - BELOW) / 2.0 * size_px], Anchor::End, false);
         altitude += step;
     }
@@ -172,19 +173,16 @@ fn draw_bodies(
         let length = libm::hypot(off[0], off[1]);
         let inside = length < 1e-9;
         let outward = if inside { [0.0, -1.0] } else { [off[0] / length, off[1] / length] };
-        let role = if body == Body::Sun { Direction::Sunward } else { Direction::Zenith };
         if !inside {
             // An arrow that points to where the body is.
             let across = [-outward[1], outward[0]];
             let point = |along: f64, aside: f64| {
                 [0, 1].map(|axis| at[axis] + unit * (along * outward[axis] + aside * across[axis]))
             };
-            scene.add(
-                Role::Course(body),
-                Shape::Lines(vec![vec![point(-4.0, -4.5), point(5.0, 0.0), point(-4.0, 4.5)]]),
-            );
+            let role = if body == Body::Sun { Role::Mark(Direction::Sunward) } else { Role::Observer };
+            scene.add(role, Shape::Polyline(vec![point(-4.0, -4.5), point(5.0, 0.0), point(-4.0, 4.5)]));
         } else if body == Body::Sun {
-            mark::draw(scene, role, at, outward);
+            mark::draw(scene, Direction::Sunward, at, outward);
         } else {
             scene.add(Role::Observer, Shape::Circle { center: at, radius_px: 6.0 * unit });
         }
@@ -216,7 +214,16 @@ fn draw_hands(
         let (left, up) = libm::sincos(angle);
         let outward = [-left, -up];
         let share = HAND_SHARES[1] - (HAND_SHARES[1] - HAND_SHARES[0]) * number as f64 / 2.0;
-        let length = side * share;
+        // No farther than the end mark stays on the picture.
+        let inner = area.grown(-10.0 * unit);
+        let room_px = |axis: usize, low: f64, high: f64| match outward[axis] {
+            step if step > 1e-9 => (high - comet[axis]) / step,
+            step if step < -1e-9 => (low - comet[axis]) / step,
+            _ => f64::INFINITY,
+        };
+        let edge = room_px(0, inner.left, inner.right).min(room_px(1, inner.top, inner.bottom));
+        // Shortened alike, so that marks of directions that fall together do not meet.
+        let length = (side * share).min(edge * share / HAND_SHARES[1]);
         let end = [comet[0] + outward[0] * length, comet[1] + outward[1] * length];
         scene.add(Role::Hand(direction), Shape::Polyline(vec![comet, end]));
         room.hands.push([comet, end]);

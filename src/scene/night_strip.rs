@@ -112,12 +112,12 @@ pub fn compose(course: &Course, site: &str, now: Instant, width_px: f64, height_
     }
     text(Role::Note, "air mass".to_owned(), [width_px - margin, margin + ABOVE * size_px], Anchor::End, false);
     let foot = height_px - margin - BELOW * size_px;
+    text(Role::Note, "UTC".to_owned(), [margin, foot], Anchor::Start, false);
     for (time, words) in hours(&plane, unit) {
         let x = plane.x(time);
         axis.push(vec![[x, area.bottom], [x, area.bottom + 4.0 * unit]]);
         text(Role::Note, words, [x, foot], Anchor::Middle, false);
     }
-    text(Role::Note, "UTC".to_owned(), [margin, foot], Anchor::Start, false);
     scene.add(Role::Axis, Shape::Lines(axis));
     scene.add(Role::Horizon, Shape::Polyline(vec![[area.left, plane.y(0.0)], [area.right, plane.y(0.0)]]));
 
@@ -239,7 +239,7 @@ fn write(
     let mut taken: Vec<Rect> = Vec::new();
     for (role, text) in texts {
         let box_px = text.area();
-        if page.contains(&box_px) && !taken.iter().any(|other| other.overlaps(&box_px.grown(1.5 * unit))) {
+        if page.contains(&box_px) && !taken.iter().any(|other| other.overlaps(&box_px.grown(3.0 * unit))) {
             taken.push(box_px);
             scene.add(role, Shape::Text(text));
         }
@@ -248,10 +248,12 @@ fn write(
         let points: Vec<Point> = pieces.iter().flatten().copied().collect();
         let spot = [0.5, 0.4, 0.6, 0.3, 0.7, 0.2, 0.8, 0.12, 0.88]
             .into_iter()
-            .flat_map(|share| [-1.0, 1.0].map(|side| (share, side)))
-            .filter_map(|(share, side)| {
+            .flat_map(|share| [[0.0, -1.0], [0.0, 1.0], [1.0, -0.4], [-1.0, -0.4]].map(|side| (share, side)))
+            .filter_map(|(share, [aside, along])| {
                 let at = *points.get((points.len() as f64 * share) as usize)?;
-                let text = Text::centered(*name, [at[0], at[1] + side * 12.0 * unit], size_px, true);
+                let half = 0.5 * super::lettering::width_px(name, size_px, true) + 8.0 * unit;
+                let center = [at[0] + aside * half, at[1] + along * 12.0 * unit];
+                let text = Text::centered(*name, center, size_px, true);
                 let clear = text.area().grown(2.0 * unit);
                 let cut = lines.iter().any(|(_, _, pieces)| {
                     pieces.iter().any(|piece| piece.windows(2).any(|pair| clear.cuts(pair[0], pair[1])))

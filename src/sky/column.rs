@@ -70,15 +70,15 @@ pub fn whole_turn_deg(angle_rad: f64) -> f64 {
     if degrees >= 360.0 { 0.0 } else { degrees }
 }
 
-fn position_angle(angle_rad: Option<f64>) -> Value {
+pub(crate) fn position_angle(angle_rad: Option<f64>) -> Value {
     angle_rad.map_or(Value::Absent, |angle| Value::Number(whole_turn_deg(angle)))
 }
 
-fn degrees(angle_rad: f64) -> Value {
+pub(crate) fn degrees(angle_rad: f64) -> Value {
     Value::Number(angle_rad.to_degrees())
 }
 
-fn arcsec_per_minute(rate_rad_d: f64) -> Value {
+pub(crate) fn arcsec_per_minute(rate_rad_d: f64) -> Value {
     Value::Number(rate_rad_d * (360.0 * 3600.0 / TAU) / MINUTES_PER_DAY)
 }
 

@@ -3,9 +3,9 @@
 //! Source of the formula: WCAG 2.2, relative luminance and contrast ratio.
 
 use std::collections::BTreeMap;
-use tailvane::scene::theme::TONES;
 use tailvane::scene::theme::{Color, Theme};
-use tailvane::scene::{Direction, Family, Lane, Role};
+use tailvane::scene::theme::{LIGHTS, TONES};
+use tailvane::scene::{Body, Direction, Family, Lane, Role};
 use tailvane::season::series::Curve;
 
 const DIRECTIONS: [Direction; 6] = [
@@ -16,6 +16,7 @@ const DIRECTIONS: [Direction; 6] = [
     Direction::Zenith,
     Direction::Sunward,
 ];
+const BODIES: [Body; 3] = [Body::Comet, Body::Sun, Body::Moon];
 const FAMILIES: [Family; 3] = [Family::Syndyne, Family::Synchrone, Family::NeckLine];
 
 fn luminance(css: &str) -> f64 {
@@ -62,7 +63,9 @@ fn every_text_of_a_drawing_stands_out_at_4_5_to_1() {
     let others = [Role::DialNumber, Role::Cardinal, Role::Title, Role::Note, Role::Caution, Role::PlaceLabel];
     for theme in Theme::ALL {
         let ground = theme.look(Role::Ground).fill.expect("a ground").css();
-        for role in labels.into_iter().chain(FAMILIES.map(Role::CurveLabel)).chain(others) {
+        for role in
+            labels.into_iter().chain(FAMILIES.map(Role::CurveLabel)).chain(BODIES.map(Role::CourseLabel)).chain(others)
+        {
             let look = theme.look(role);
             let ratio = contrast(&look.fill.expect("letters are filled").css(), &ground);
             assert!(ratio >= 4.5, "{} {role:?} {ratio:.2}", theme.name());
@@ -98,10 +101,39 @@ fn controls_and_what_a_drawing_must_show_stand_out_at_3_to_1() {
             Role::SheetEdgeOn,
             Role::Observer,
             Role::Axis,
+            Role::Horizon,
+            Role::Now,
+            Role::DarkTime,
         ];
-        for role in lines.chain(FAMILIES.map(Role::Curve)).chain(others) {
+        for role in lines.chain(FAMILIES.map(Role::Curve)).chain(BODIES.map(Role::Course)).chain(others) {
             let ratio = contrast(&theme.look(role).pen.expect("a line").color.css(), &colors["--ground"]);
             assert!(ratio >= 3.0, "{} {role:?} {ratio:.2}", theme.name());
+        }
+    }
+}
+
+/// Letters over the light of the sky have a halo; still the lightest step must leave them readable without it.
+#[test]
+fn the_light_of_the_sky_rises_in_steps_and_leaves_letters_readable() {
+    for theme in Theme::ALL {
+        let ground = theme.look(Role::Ground).fill.expect("a ground");
+        let mixed = |level: u8| {
+            let look = theme.look(Role::SkyLight(level));
+            let over = look.fill.expect("a fill");
+            let mix = |a: u8, b: u8| (f64::from(a) + (f64::from(b) - f64::from(a)) * look.fill_opacity).round() as u8;
+            let color = Color {
+                red: mix(ground.red, over.red),
+                green: mix(ground.green, over.green),
+                blue: mix(ground.blue, over.blue),
+            };
+            color.css()
+        };
+        for level in 0..LIGHTS {
+            let text = theme.look(Role::CourseLabel(Body::Comet)).fill.expect("letters").css();
+            assert!(contrast(&text, &mixed(level)) >= 3.0, "{} {level}", theme.name());
+            if level > 0 {
+                assert!(luminance(&mixed(level)) > luminance(&mixed(level - 1)), "{} {level}", theme.name());
+            }
         }
     }
 }

@@ -10,6 +10,8 @@
 //! How dust lies sunward takes longer than all the rest, so it is not part of an entry: [`sunward`] says it of one comet,
 //! for callers that spread the work.
 
+pub mod column;
+
 use super::evening::Evening;
 use super::law::NightLaw;
 use super::moment::no_site;
@@ -17,6 +19,7 @@ use crate::body::State;
 use crate::body::earth::Track;
 use crate::body::observer::Observer;
 use crate::error::Error;
+use crate::frame::horizon::Horizon;
 use crate::orbit::conic::Orbit;
 use crate::orbit::elements::Comet;
 use crate::sky::trail::Trail;
@@ -114,9 +117,9 @@ impl Board {
             let share = number as f64 / (LOOKS - 1) as f64;
             let time = at(share);
             let viewpoint = lookout.viewpoint(time)?;
-            let zenith = viewpoint.ground.map(|ground| ground.horizon.up);
-            let dark = lookout.sun_altitude_deg(time).is_some_and(|sun| sun < law.sun_below_deg);
-            let dark_zenith = zenith.filter(|_| dark);
+            let to_sun = -viewpoint.observer.position_au;
+            let dark = |horizon: &Horizon| horizon.altitude_rad(&to_sun).to_degrees() < law.sun_below_deg;
+            let dark_zenith = viewpoint.ground.map(|ground| ground.horizon).filter(dark).map(|horizon| horizon.up);
             looks.push(Look { time, weights: weights(share * (NODES - 1) as f64), dark_zenith });
         }
         let mut track = Track::new();
