@@ -112,7 +112,9 @@ pub(super) fn events(windows: &[Window]) -> Vec<Event> {
             Grade::Possible => "possible",
             Grade::Faint | Grade::None => "faint",
         };
-        let note = format!("at its best {grade}, looked at {}", best.time.utc_minute());
+        let minute = best.time.utc_minute();
+        let day = minute.split(' ').next().unwrap_or_default();
+        let note = format!("at its best {grade}, about {day}, with this share of the light");
         let mut push = |end: usize, kind: EventKind, time: Instant| {
             if !window.cut[end] {
                 found.push(Event {

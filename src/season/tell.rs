@@ -130,9 +130,9 @@ fn crossing(moment: &Moment, sky: &Sky) -> Told {
         (Some(antisolar), Some(back)) => {
             let opposite = libm::cos(antisolar - back) < 0.0;
             let note = if opposite {
-                "negative velocity opposite to the antisolar direction: old dust can lie sunward"
+                "antisolar direction there, negative velocity opposite: old dust can lie sunward"
             } else {
-                "negative velocity along the antisolar direction: dust stays antisolar unless it is old"
+                "antisolar direction there, negative velocity along it: dust stays antisolar unless it is old"
             };
             let kind = EventKind::OrbitPlaneCrossing { opposite };
             (kind, (Some(whole_turn_deg(antisolar)), "deg"), format!("{note}; {rate}"))
