@@ -53,7 +53,7 @@ Tailvane.almanac = (function () {
     }
     months.value = table.chosen ? "typed" : "orbit";
     events.replaceChildren(...table.events.map((event) => row(event.days, event.time, event.words, event.value, event.note, event.weighty)));
-    windows.replaceChildren(...table.windows.map((span) => row(span.days, span.from + " to\n" + span.to, span.words, "", span.note, false)));
+    windows.replaceChildren(...table.windows.map((span) => row(span.days, span.from + "\nto " + span.to, span.words, "", span.note, false)));
   }
 
   function row(days, time, words, value, note, weighty) {

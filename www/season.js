@@ -132,7 +132,8 @@ Tailvane.season = (function () {
     const busy = season.done < 1 && (long || stopped);
     stop.hidden = !busy;
     Tailvane.write(stop, stopped ? "Search on" : "Stop");
-    Tailvane.write(progress, !busy ? "" : stopped ? "Search stopped: events and windows are not complete." : "Searching the season: " + Math.floor(season.done * 100) + " %");
+    const outside = season.outside ? "The chosen time lies outside this range." : "";
+    Tailvane.write(progress, !busy ? outside : stopped ? "Search stopped: events and windows are not complete." : "Searching the season: " + Math.floor(season.done * 100) + " %");
   }
 
   /** Where on the drawing a pointer is, in the core's pixels. */

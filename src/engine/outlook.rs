@@ -72,14 +72,13 @@ pub struct WindowWords {
 }
 
 impl Engine {
-    /// The stretch that the plan names, or one from the orbit: months to each side of perihelion. Where that does not
-    /// hold `time`, the same length about it.
+    /// The stretch that the plan names, wherever `time` lies; else one from the orbit, months to each side of perihelion,
+    /// or, where that does not hold `time`, the same length about it.
     fn stretch(&self, time: Instant) -> Stretch {
-        let chosen = self.plan.season.as_ref().and_then(|season| season.stretch().ok());
-        let usual = chosen.unwrap_or_else(|| {
-            let half = self.half_season_days();
-            around(self.orbit().perihelion_time(), 2.0 * half)
-        });
+        if let Some(chosen) = self.plan.season.as_ref().and_then(|season| season.stretch().ok()) {
+            return chosen;
+        }
+        let usual = around(self.orbit().perihelion_time(), 2.0 * self.half_season_days());
         if holds(&usual, time) { usual } else { around(time, usual.days()) }
     }
 
@@ -166,11 +165,13 @@ impl Outlook {
         self.changed();
     }
 
-    /// Makes sure that the season holds a time; another season begins about it where it does not. The part in view
-    /// follows the time.
+    /// Makes sure that the season holds a time, unless a person chose the season: another begins about it where it does
+    /// not. The part in view follows the time.
     pub fn follow(&mut self, engine: &Engine, time: Instant) {
         if !holds(&self.season, time) {
-            self.renew(engine, time);
+            if engine.plan.season.is_none() {
+                self.renew(engine, time);
+            }
         } else if !holds(&self.view, time) {
             self.view = self.within(time, self.view.days(), 0.5);
             self.changed();
@@ -238,6 +239,11 @@ impl Outlook {
     /// Whether all events and windows of sunward dust are found; nights may still be missing.
     pub fn is_searched(&self) -> bool {
         self.search.done() >= 1.0
+    }
+
+    /// Whether a time lies outside the season, which only a chosen one leaves so.
+    pub fn misses(&self, time: Instant) -> bool {
+        !holds(&self.season, time)
     }
 
     pub fn season(&self) -> &Stretch {

@@ -39,6 +39,8 @@ struct Answer {
     step: f64,
     /// Whether all of the season is in view.
     whole: bool,
+    /// Whether the present time lies outside a chosen season.
+    outside: bool,
     done: f64,
     sentence: String,
 }
@@ -83,6 +85,7 @@ impl Desk {
             steps: (view.days() * per_day).round(),
             step: ((time.tdb_days() - view.from().tdb_days()) * per_day).round(),
             whole: view == *season.season(),
+            outside: season.misses(time),
             done: season.done(engine),
             sentence: season.sentence(),
         }))

@@ -76,7 +76,7 @@ impl Frame {
             let numbers = scale.numbers(*curve);
             numbers.iter().map(|words| width_px(words, 0.92 * size, false)).fold(0.0, f64::max)
         });
-        let numbers_px = number_width + 9.0 * unit;
+        let numbers_px = number_width + 14.0 * unit;
         let (left, right) = if beside {
             let names = lane::NAMES.iter().map(|(_, words)| width_px(words, size, false)).fold(0.0, f64::max);
             let ends = scales

@@ -165,7 +165,7 @@ impl Ribbon {
             // The ends stand inside the edges, so that they meet neither lanes nor events.
             let shift = (0.5 - at) * 0.9 * size_px;
             let middle = plot.bottom - at * plot.height() - shift;
-            let center = [plot.left - 5.0 * self.scene.unit_px, middle];
+            let center = [plot.left - 11.0 * self.scene.unit_px, middle];
             if at == 0.5 && plot.height() < 3.4 * size_px {
                 continue;
             }
