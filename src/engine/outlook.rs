@@ -348,7 +348,10 @@ impl Outlook {
     /// The season in a sentence: what a screen reader hears for the drawing.
     pub fn sentence(&self) -> String {
         let day = |time: Instant| time.utc_minute()[..10].to_owned();
-        let range = format!("From {} to {} UTC", day(self.view.from()), day(self.view.to()));
+        let curves = self.drawn.as_ref().map_or(&[][..], |drawn| &drawn.curves[..]);
+        let names: Vec<&str> = curves.iter().map(|&curve| scale::words(curve)).collect();
+        let [from, to] = [self.view.from(), self.view.to()].map(day);
+        let range = format!("From {from} to {to} UTC, with the curves of {}", names.join(", "));
         let events: Vec<String> = self
             .found
             .events
@@ -357,7 +360,7 @@ impl Outlook {
             .filter(|event| flag::rank(event.kind) <= flag::WEIGHTY)
             .map(|event| format!("{} on {}", event.kind.words(), day(event.time)))
             .collect();
-        if events.is_empty() { format!("{range}.") } else { format!("{range}: {}.", events.join(", ")) }
+        if events.is_empty() { format!("{range}.") } else { format!("{range}. Events: {}.", events.join(", ")) }
     }
 
     /// Every window of the season in words, kind by kind.
