@@ -94,7 +94,7 @@ Tailvane.board = (function () {
         const [name, ...cells] = Tailvane.cells(sheet, row);
         const button = Tailvane.element("button", name.textContent);
         button.type = "button";
-        button.className = "quantity";
+        button.className = "bare";
         button.dataset.comet = row.goal;
         button.addEventListener("click", () => pick(row.goal));
         const first = Tailvane.element("th", "", button);
@@ -112,7 +112,7 @@ Tailvane.board = (function () {
   function head([key, words, unit]) {
     const button = Tailvane.element("button", Tailvane.headed(words, unit));
     button.type = "button";
-    button.className = "quantity";
+    button.className = "bare";
     button.addEventListener("click", () => {
       descending = sort === key && !descending;
       sort = key;

@@ -23,6 +23,12 @@ Tailvane.night = (function () {
   let best = 0;
   let now = 0;
 
+  /** The text twins of the drawings, which are there whether the bench is open or not. */
+  function tell(night) {
+    Tailvane.write(document.getElementById("night-words"), night ? night.words : none.textContent);
+    Tailvane.write(document.getElementById("horizon-words"), night ? night.horizon : none.textContent);
+  }
+
   const go = (days) => Tailvane.desk.change((desk) => desk.scrub(days));
 
   function frame(reading, desk) {
@@ -35,8 +41,7 @@ Tailvane.night = (function () {
     const night = desk.night();
     best = night.best_days;
     Tailvane.write(Tailvane.find("say", "night-best"), night.best);
-    Tailvane.write(document.getElementById("night-words"), night.words);
-    Tailvane.write(document.getElementById("horizon-words"), night.horizon);
+    tell(night);
     Tailvane.write(Tailvane.find("show", "exposure"), night.exposure);
     Tailvane.write(Tailvane.find("show", "criterion"), night.criterion);
     Tailvane.write(Tailvane.find("show", "night-magnitude"), night.magnitude);
@@ -87,7 +92,9 @@ Tailvane.night = (function () {
       ...sheet.rows.map((row, at) => {
         const time = Tailvane.element("button", times[at].slice(11, 16));
         time.type = "button";
-        time.className = "quantity";
+        time.className = "bare";
+        // For pointers: by keys, the strip takes arrows and the field above any time.
+        time.tabIndex = -1;
         time.setAttribute("aria-label", "Go to " + times[at]);
         time.addEventListener("click", () => go(row.goal));
         return Tailvane.element("tr", "", Tailvane.element("td", "", time), ...Tailvane.cells(sheet, row));
@@ -120,6 +127,7 @@ Tailvane.night = (function () {
 
   function start() {
     Tailvane.desk.onFrame(frame);
+    Tailvane.desk.onRest(() => bench.open || tell(Tailvane.desk.ask((desk) => desk.night())));
     const observer = new ResizeObserver(Tailvane.desk.redraw);
     views.forEach(({ canvas }) => observer.observe(canvas.parentElement));
     bench.addEventListener("toggle", Tailvane.desk.redraw);
