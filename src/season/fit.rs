@@ -1,7 +1,7 @@
 //! Where between two dates does a smooth quantity, or its rate, pass zero?
 //!
 //! Quantities are fitted together by Chebyshev polynomials, on pieces halved until the last coefficients of each are
-//! negligible ([`NEGLIGIBLE`]). The zeros of a polynomial are then isolated with bounds on its second derivative, so
+//! negligible for that quantity. The zeros of a polynomial are then isolated with bounds on its second derivative, so
 //! that a pair inside one piece is found as surely as a single one, and none is missed between samples. Zeros
 //! that touch without crossing, or pairs closer than about 1e-9 of a piece, are none.
 
@@ -10,8 +10,7 @@ use std::f64::consts::PI;
 /// Nodes of a piece, and coefficients of its polynomials.
 pub const NODES: usize = 16;
 
-/// A piece is good where the last [`TAIL`] coefficients of each quantity are below this part of its greatest.
-pub const NEGLIGIBLE: f64 = 1e-11;
+/// A piece is good where so many last coefficients of each quantity are below a given part of its greatest.
 const TAIL: usize = 2;
 
 /// Pieces are halved at most so often: 16 days become 84 s.
@@ -58,10 +57,11 @@ impl Fitter {
         Fitter { nodes: std::array::from_fn(|node| libm::cos(angle(node))), weights }
     }
 
-    /// Pieces that cover a stretch of days, in order.
+    /// Pieces that cover a stretch of days, in order; `negligible` is the part of each quantity that may be left out.
     pub fn pieces<const COUNT: usize>(
         &self,
         [begin, end]: [f64; 2],
+        negligible: &[f64; COUNT],
         sample: &mut impl FnMut(f64) -> [f64; COUNT],
     ) -> Vec<Piece<COUNT>> {
         let mut done = Vec::new();
@@ -69,7 +69,7 @@ impl Fitter {
         let mut todo = vec![(begin, end, 0)];
         while let Some((begin, end, halvings)) = todo.pop() {
             let piece = self.piece(begin, end, sample);
-            if halvings >= MOST_HALVINGS || piece.quantities.iter().all(is_smooth) {
+            if halvings >= MOST_HALVINGS || piece.quantities.iter().zip(negligible).all(is_smooth) {
                 done.push(piece);
             } else {
                 let middle = 0.5 * (begin + end);
@@ -100,9 +100,9 @@ impl Fitter {
     }
 }
 
-fn is_smooth(coefficients: &Coefficients) -> bool {
+fn is_smooth((coefficients, negligible): (&Coefficients, &f64)) -> bool {
     let greatest = |part: &[f64]| part.iter().fold(0.0_f64, |most, c| most.max(c.abs()));
-    greatest(&coefficients[NODES - TAIL..]) <= NEGLIGIBLE * greatest(coefficients)
+    greatest(&coefficients[NODES - TAIL..]) <= negligible * greatest(coefficients)
 }
 
 /// The value of a polynomial (Clenshaw's recurrence).
@@ -189,7 +189,7 @@ mod tests {
     use super::*;
 
     fn found(function: impl Fn(f64) -> f64) -> Vec<(f64, bool)> {
-        let pieces = Fitter::new().pieces([0.0, 16.0], &mut |t| [function(t)]);
+        let pieces = Fitter::new().pieces([0.0, 16.0], &[1e-11], &mut |t| [function(t)]);
         pieces
             .iter()
             .flat_map(|piece| {
@@ -222,7 +222,7 @@ mod tests {
 
     #[test]
     fn the_derivative_of_a_polynomial_is_that_of_its_function() {
-        let pieces = Fitter::new().pieces([-1.0, 1.0], &mut |t| [libm::sin(2.0 * t)]);
+        let pieces = Fitter::new().pieces([-1.0, 1.0], &[1e-11], &mut |t| [libm::sin(2.0 * t)]);
         let rate = derivative(&pieces[0].quantities[0]);
         for x in [-1.0, -0.3, 0.0, 0.77, 1.0] {
             assert!((value(&rate, x) - 2.0 * libm::cos(2.0 * x)).abs() < 1e-9, "{x}");

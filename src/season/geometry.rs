@@ -40,6 +40,10 @@ pub enum Quantity {
 
 const QUANTITIES: usize = 7;
 
+/// Which part of each quantity a fit may leave out, in their order. What is left out moves a zero of a rate by some
+/// hundred times as much over the bend: under 3 s for a bend of 1e-4 per square day (motion) or 0.05 (Moon).
+const NEGLIGIBLE: [f64; QUANTITIES] = [1e-11, 1e-11, 1e-11, 1e-11, 1e-11, 1e-10, 1e-8];
+
 /// What is looked for: where a quantity reaches a level, or where its rate passes zero.
 #[derive(Clone, Copy, Debug, PartialEq)]
 enum Aim {
@@ -118,10 +122,14 @@ impl Survey {
         let [begin, end] = [number, number + 1]
             .map(|edge| (edge as f64 * CELL_DAYS).clamp(SPAN.first.tdb_days(), SPAN.last.tdb_days()));
         let fitter = std::mem::take(&mut self.fitter);
-        let pieces = fitter.pieces([begin, end], &mut |days| {
+        // Hardly any cell is good as a whole: the motion and the Moon ask for halves.
+        let middle = 0.5 * (begin + end);
+        let mut sample = |days| {
             let sky = self.sky(days);
             values(&self.orbit, &sky)
-        });
+        };
+        let mut pieces = fitter.pieces([begin, middle], &NEGLIGIBLE, &mut sample);
+        pieces.extend(fitter.pieces([middle, end], &NEGLIGIBLE, &mut sample));
         self.fitter = fitter;
         let mut moments: [Vec<Moment>; SEARCHES] = std::array::from_fn(|_| Vec::new());
         let mut begins_above = [true; SEARCHES];
