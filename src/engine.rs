@@ -6,6 +6,7 @@
 pub mod easel;
 pub mod sheet;
 mod night;
+pub mod outlook;
 pub mod season;
 
 use crate::body::SPAN;

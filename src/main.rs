@@ -38,6 +38,9 @@ tailvane: where a comet's tails lie on the sky
   tailvane draw PLAN --view VIEW --out FILE.svg [--at TIME]
       [--width PX] [--height PX] [--theme THEME]
       the picture of the page; the views and themes are named when one is wrong
+  tailvane draw PLAN --view season --out FILE.svg [--from TIME --to TIME]
+      [--at TIME] [--curves KEY,...] [--width PX] [--height PX] [--theme THEME]
+      the season ribbon; without a range, the plan's season or one from the orbit
   tailvane elements FILE
       published element notations to plans, one JSON object per line and comet
 

@@ -19,6 +19,7 @@ use crate::body::site_code;
 use crate::camera::Camera;
 use crate::camera::field::Field;
 use crate::engine::easel::{Easel, Wishes};
+use crate::engine::outlook::Outlook;
 use crate::engine::{Engine, TailView, View};
 use crate::error::{Error, Kind, Place};
 use crate::orbit::elements::Comet;
@@ -34,7 +35,6 @@ use crate::scene::view::{SkyView, Up};
 use crate::tail::cloud::Quality;
 use crate::time::{Instant, Stamp};
 use answer::Refusal;
-use season::Season;
 use serde::{Deserialize, Serialize};
 use std::rc::Rc;
 use std::sync::Mutex;
@@ -129,7 +129,7 @@ pub struct Desk {
     view_chosen: bool,
     /// How the view opens for the plan's camera; a camera that is only moved or turned keeps it.
     opening_tan: Option<f64>,
-    season: Option<Season>,
+    season: Option<Outlook>,
     read: Vec<Entry>,
     night: night::Kept,
 }
@@ -276,15 +276,6 @@ impl Desk {
         answer::table_text(&self.engine, &self.time, &self.seen.sky)
     }
 
-    /// The stretch of time that the slider covers, with ticks and events for a track of this width.
-    pub fn season(&mut self, months: f64, width_px: f64) -> JsValue {
-        let perihelion = self.engine.plan().comet.elements.perihelion_time.instant();
-        let season = Season::around(self.season.take(), perihelion, self.seen.sky.time, months);
-        let answer = season.answer(width_px, perihelion);
-        self.season = Some(season);
-        to_js(&answer)
-    }
-
     /// Gives the sky plane its size in CSS pixels. A chosen scale and place stay; others follow the size.
     pub fn resize(&mut self, width_px: f64, height_px: f64) {
         if self.view_chosen {
@@ -387,8 +378,10 @@ impl Desk {
 
     fn take(&mut self, plan: Plan) -> Result<JsValue, JsValue> {
         let (engine, time, seen) = prepared(plan).map_err(refusal)?;
-        self.season = None;
         (self.tails, self.tails_fresh) = (None, false);
+        if let Some(season) = &mut self.season {
+            season.renew(&engine, seen.sky.time);
+        }
         self.night.plan_changed();
         let size = |engine: &Engine| engine.plan().camera.as_ref().map(|camera| (camera.half_px(), camera.scale_tan()));
         let resized = size(&self.engine) != size(&engine);

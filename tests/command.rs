@@ -234,6 +234,14 @@ fn wrong_values_are_refused_and_wrong_calls_are_usage() {
         (vec!["ion", "-", "--at", "2250-01-01T00:00Z"], "1900-01-01 to 2100-12-31"),
         (vec!["draw", "-", "--view", "sky", "--out", "x.svg", "--width", "5"], "--width: found '5'"),
         (vec!["draw", "-", "--view", "sky", "--out", "no folder/x.svg"], "no folder/x.svg"),
+        (vec!["draw", "-", "--view", "season", "--out", "x.svg", "--curves", "beauty"], "curve 'beauty'"),
+        (
+            ["draw - --view season --out x.svg --from", "2031-03-02T00:00:00Z --to 2031-03-01T00:00:00Z"]
+                .iter()
+                .flat_map(|part| part.split(' '))
+                .collect(),
+            "season.to",
+        ),
     ] {
         let message = refused(&call, PLAN, 1);
         assert!(message.contains(words), "{call:?}: {message}");
@@ -246,6 +254,7 @@ fn wrong_values_are_refused_and_wrong_calls_are_usage() {
         vec!["draw", "-", "--out", "x.svg"],
         vec!["draw", "-", "--view", "sky"],
         vec!["draw", "-", "--view", "moon", "--out", "x.svg"],
+        vec!["draw", "-", "--view", "season", "--out", "x.svg", "--from", "2031-03-01T00:00:00Z"],
         vec!["draw", "-", "--view", "sky", "--out", "x.svg", "--theme", "beige"],
         vec!["tail", "-"],
     ] {
@@ -285,6 +294,30 @@ fn draw_writes_the_same_picture_each_time_in_the_size_and_theme_asked_for() {
         assert_eq!((svg.attribute("width"), svg.attribute("height")), (Some("900"), Some("700")));
         assert!(one.contains("Invented comet Alder"));
     }
+}
+
+#[test]
+fn draw_writes_the_season_between_two_dates_with_its_events_and_the_plan_can_hold_them() {
+    let draw = |name: &str, plan: &str, options: &[&str]| {
+        let path = file(name, "");
+        let path = path.to_str().expect("a plain path");
+        said(&[&["draw", "-", "--view", "season", "--out", path, "--width", "900"], options].concat(), plan);
+        std::fs::read_to_string(path).expect("a picture")
+    };
+    let ends = ["2031-02-10T00:00:00Z", "2031-03-05T00:00:00Z"];
+    let asked = draw("season-1.svg", PLAN, &["--from", ends[0], "--to", ends[1]]);
+    let document = roxmltree::Document::parse(&asked).expect("well-formed");
+    assert_eq!(document.root_element().attribute("width"), Some("900"));
+    for words in
+        ["Season of Invented comet Alder", ">perihelion<", "From 2031-02-10 to 2031-03-05 UTC", "orbit-plane angle"]
+    {
+        assert!(asked.contains(words), "{words}");
+    }
+    let season = format!("\"season\": {{\"from\": \"{}\", \"to\": \"{}\"}}, \"comet\"", ends[0], ends[1]);
+    let held = PLAN.replacen("\"comet\"", &season, 1);
+    assert_eq!(draw("season-2.svg", &held, &[]), asked);
+    let other = draw("season-3.svg", &held, &["--curves", "phase_angle_deg,sun_distance_au"]);
+    assert!(other.contains("distance to the Sun") && !other.contains("orbit-plane angle"));
 }
 
 /// The plan seen from an invented hill.

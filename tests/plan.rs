@@ -118,6 +118,31 @@ fn refusals_name_key_line_and_what_is_allowed() {
 }
 
 #[test]
+fn a_season_is_kept_as_typed_and_refused_by_its_ends() {
+    let with = |season: &str| PLAN.replacen("  \"time\"", &format!("  \"season\": {season},\n  \"time\""), 1);
+    let good = with(r#"{ "from": "2031-01-01.50 TT", "to": "2031-06-30T00:00:00Z" }"#);
+    let plan = Plan::parse(&good).unwrap();
+    assert!(plan.print().contains("\"2031-01-01.50 TT\"") && plan.print().contains("\"season\""));
+    assert_eq!(Plan::parse(&plan.print()).unwrap(), plan);
+    for (season, parts) in [
+        (r#"{ "from": "2031-06-30T00:00:00Z", "to": "2031-01-01T00:00:00Z" }"#, ["season.to", "after `from`"]),
+        (r#"{ "from": "1950-01-01T00:00:00Z", "to": "2031-01-01T00:00:00Z" }"#, ["season.to", "at most 40 years"]),
+        (r#"{ "from": "1650-01-01T00:00:00Z", "to": "2031-01-01T00:00:00Z" }"#, ["season.from", "1900"]),
+        (r#"{ "from": "2031-01-01T00:00:00Z" }"#, ["no `to`", "season"]),
+        (
+            r#"{ "from": "2031-01-01T00:00:00Z", "to": "2031-02-01T00:00:00Z", "step": 1 }"#,
+            ["unknown key `step`", "season"],
+        ),
+    ] {
+        let error = refusal(&with(season));
+        assert!(matches!(error.place, Place::Line { .. }), "{error}");
+        for part in parts {
+            assert!(error.to_string().contains(part), "{error}: wanted {part}");
+        }
+    }
+}
+
+#[test]
 fn a_branch_of_the_brightness_takes_one_of_two_slopes() {
     let slope =
         PLAN.replace("\"photometric_index_n\": 4.0", "\"slope_2_5n\": 10.7,\n        \"dust_over_gas_at_90_deg\": 3.0");

@@ -16,6 +16,8 @@ mod painters;
 mod place;
 #[path = "scene/pointer.rs"]
 mod pointer;
+#[path = "scene/ribbon.rs"]
+mod ribbon;
 #[path = "scene/skies.rs"]
 mod skies;
 #[path = "scene/small.rs"]

@@ -101,5 +101,5 @@ Tailvane.plan = (function () {
     });
   }
 
-  return { start, fromAddress };
+  return { start, fromAddress, fileName };
 })();

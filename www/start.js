@@ -24,7 +24,7 @@
   starting.remove();
   Tailvane.sky.drawDirections();
   await shown();
-  for (const part of ["sky", "season", "say", "numbers", "tails", "drawings", "camera", "comet", "observer", "plan", "night", "board"]) {
+  for (const part of ["sky", "almanac", "season", "clock", "say", "numbers", "tails", "drawings", "camera", "comet", "observer", "plan", "night", "board"]) {
     Tailvane[part].start();
   }
   if (refusal) {

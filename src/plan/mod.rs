@@ -15,10 +15,12 @@
 //! | `tails` | [`Tails`]: winds, dust, activity, ejection | yes, and any key in it |
 //! | `camera` | a [`Camera`], the one in use | yes |
 //! | `cameras` | more cameras | yes |
+//! | `season` | [`season::Season`]: `from`, `to` of the season ribbon | yes: chosen from the orbit |
 //! | `night` | [`NightLaw`]: limits of the dark time, scale and trail of the pictures | yes, and any key in it |
 
 mod json;
 pub mod paste;
+pub mod season;
 
 use crate::body::observer::{Observer, Site};
 use crate::camera::Camera;
@@ -48,6 +50,8 @@ pub struct Plan {
     pub camera: Option<Camera>,
     /// More cameras the person keeps.
     pub cameras: Vec<Camera>,
+    /// The stretch of time of the season ribbon, where a person chose one.
+    pub season: Option<season::Season>,
     /// What counts as dark, as up, as sharp.
     pub night: NightLaw,
 }
@@ -72,6 +76,7 @@ struct Text {
     camera: Option<Camera>,
     #[serde(default, skip_serializing_if = "Vec::is_empty")]
     cameras: Vec<Camera>,
+    season: Option<season::Season>,
     #[serde(default, skip_serializing_if = "NightLaw::is_default")]
     night: NightLaw,
 }
@@ -96,6 +101,7 @@ impl From<Comet> for Plan {
             tails: Tails::default(),
             camera: None,
             cameras: Vec::new(),
+            season: None,
             night: NightLaw::default(),
         }
     }
@@ -126,6 +132,7 @@ impl Plan {
             tails: read.tails,
             camera: read.camera,
             cameras: read.cameras,
+            season: read.season,
             night: read.night,
         };
         plan.validate().map_err(|error| json::located(text, "", error))?;
@@ -157,6 +164,7 @@ impl Plan {
             tails: self.tails.clone(),
             camera: self.camera.clone(),
             cameras: self.cameras.clone(),
+            season: self.season.clone(),
             night: self.night.clone(),
         }
     }
@@ -181,6 +189,7 @@ impl Plan {
         for (index, camera) in self.cameras.iter().enumerate() {
             camera.validate(&format!("cameras[{index}]"))?;
         }
+        self.season.as_ref().map_or(Ok(()), |season| season.stretch().map(|_| ()))?;
         self.night.validate()
     }
 }

@@ -8,7 +8,7 @@
 //! ([`image`]).
 //!
 //! A drawing is made by one function per view: [`sky_plane::compose`], [`orbit_view::compose`],
-//! [`sheet_map::compose`]. New drawings need new roles, not new shapes.
+//! [`sheet_map::compose`], [`ribbon::compose`]. New drawings need new roles, not new shapes.
 
 pub mod camera_field;
 pub mod camera_words;
@@ -27,6 +27,7 @@ pub mod orbit_view;
 pub mod panel;
 pub mod pointer;
 pub mod quantity;
+pub mod ribbon;
 pub mod sheet;
 pub mod sheet_map;
 pub mod sky_plane;
@@ -36,6 +37,7 @@ pub mod theme;
 pub mod vane;
 pub mod view;
 
+use crate::season::series::Curve;
 use image::Image;
 use lettering::Text;
 
@@ -110,6 +112,14 @@ pub enum Family {
     Syndyne,
     Synchrone,
     NeckLine,
+}
+
+/// A row of bands on the season ribbon.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
+pub enum Lane {
+    SunwardDust,
+    DarkHours,
+    NearSun,
 }
 
 /// What stands over the horizon.
@@ -188,6 +198,29 @@ pub enum Role {
     /// Frame and ticks of a map.
     Axis,
     ScaleBar,
+    /// A quantity over the season: its curve, from there to its name, its name, and numbers of its scale.
+    SeasonCurve(Curve),
+    CurveLeader(Curve),
+    CurveName(Curve),
+    CurveNumber(Curve),
+    /// Head and foot of the plot of curves, and its middle where that is zero.
+    TrackEdge,
+    TrackZero,
+    /// Ground line of a row of bands, its name, and its bands: area, outline, hatch.
+    LaneRule,
+    LaneName(Lane),
+    Band(Lane),
+    BandRim(Lane),
+    BandHatch(Lane),
+    /// An event: its mark, strokes (lighter marks, leaders), the line down the plot, and its name.
+    EventMark,
+    EventStroke,
+    EventGuide,
+    EventName,
+    /// The present time on the ribbon: its line, and what one grips.
+    Handle,
+    HandleGrip,
+    HandleRidge,
     /// How light the sky is while the Sun stands so high: 0 for night to [`theme::LIGHTS`] - 1 for day.
     SkyLight(u8),
     /// What lies below the horizon, and the horizon itself.

@@ -8,6 +8,8 @@
 //! Contrast (tested): every text at least 4.5:1 and every control border at least 3:1 on its ground, by
 //! WCAG 2.2 relative luminance.
 
+mod season;
+
 use super::{Body, Direction, Family, Role};
 
 /// A colour scheme.
@@ -91,6 +93,15 @@ struct Palette {
     toward_sun: Color,
     /// The dust sheet in the orbit view.
     sheet: Color,
+    /// Curves of the season ribbon that are no direction.
+    phase_angle: Color,
+    elongation: Color,
+    sun_distance: Color,
+    observer_distance: Color,
+    magnitude: Color,
+    /// Bands of the season ribbon.
+    dark_hours: Color,
+    near_sun: Color,
     dust: [Stop; 5],
 }
 
@@ -126,6 +137,13 @@ const DARK: Palette = Palette {
     isophote: rgb(0x8a7660),
     toward_sun: rgb(0xe0a860),
     sheet: rgb(0xd9b38c),
+    phase_angle: rgb(0xd58fd8),
+    elongation: rgb(0x86c5ea),
+    sun_distance: rgb(0xd8a08a),
+    observer_distance: rgb(0xb4bccb),
+    magnitude: rgb(0xc9d77e),
+    dark_hours: rgb(0x7186c9),
+    near_sun: rgb(0xc07a58),
     // The first stop is the ground: a sky without dust stays dark.
     dust: [stop(0.0, 0x0a0d12), stop(0.1, 0x1a130d), stop(0.45, 0x5e452e), stop(0.8, 0xcba478), stop(1.0, 0xfff1d6)],
 };
@@ -153,6 +171,13 @@ const RED: Palette = Palette {
     isophote: rgb(0x8c0000),
     toward_sun: rgb(0xd00000),
     sheet: rgb(0xff0000),
+    phase_angle: rgb(0xff0000),
+    elongation: rgb(0xff0000),
+    sun_distance: rgb(0xff0000),
+    observer_distance: rgb(0xff0000),
+    magnitude: rgb(0xff0000),
+    dark_hours: rgb(0xc40000),
+    near_sun: rgb(0xc40000),
     dust: [stop(0.0, 0x000000), stop(0.1, 0x140000), stop(0.45, 0x4c0000), stop(0.8, 0xa60000), stop(1.0, 0xff0000)],
 };
 
@@ -179,6 +204,13 @@ const PAPER: Palette = Palette {
     isophote: rgb(0xa08a6c),
     toward_sun: rgb(0xa86a1c),
     sheet: rgb(0x9a7040),
+    phase_angle: rgb(0x8a2f8f),
+    elongation: rgb(0x0b5f8f),
+    sun_distance: rgb(0x8a3f22),
+    observer_distance: rgb(0x4b5566),
+    magnitude: rgb(0x55620a),
+    dark_hours: rgb(0x5a6fb8),
+    near_sun: rgb(0xa4532c),
     dust: [stop(0.0, 0xffffff), stop(0.1, 0xf8f2e8), stop(0.45, 0xe3cfae), stop(0.8, 0xb28a5a), stop(1.0, 0x6e4d26)],
 };
 
@@ -375,6 +407,24 @@ impl Theme {
             Role::MapHatch => line(p.text, 1.0),
             Role::Axis => line(p.dial, 1.0),
             Role::ScaleBar => line(p.text, 1.4),
+            Role::SeasonCurve(_)
+            | Role::CurveLeader(_)
+            | Role::CurveName(_)
+            | Role::CurveNumber(_)
+            | Role::TrackEdge
+            | Role::TrackZero
+            | Role::LaneRule
+            | Role::LaneName(_)
+            | Role::Band(_)
+            | Role::BandRim(_)
+            | Role::BandHatch(_)
+            | Role::EventMark
+            | Role::EventStroke
+            | Role::EventGuide
+            | Role::EventName
+            | Role::Handle
+            | Role::HandleGrip
+            | Role::HandleRidge => season::look(self, role),
             Role::SkyLight(level) => {
                 // On paper day is the white of the page, elsewhere night is the ground.
                 let steps = if self == Theme::Paper { LIGHTS - 1 - level.min(LIGHTS - 1) } else { level };

@@ -8,7 +8,7 @@ use crate::time::Instant;
 use std::f64::consts::TAU;
 
 /// A quantity that is drawn over dates.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
 pub enum Curve {
     OrbitPlane,
     Antisolar,
@@ -47,7 +47,7 @@ impl Curve {
         }
     }
 
-    fn is_position_angle(self) -> bool {
+    pub fn is_position_angle(self) -> bool {
         matches!(self, Curve::Antisolar | Curve::NegativeVelocity)
     }
 
@@ -113,7 +113,7 @@ impl Series {
 }
 
 /// Adds whole turns so that an angle runs on; gaps are bridged.
-fn unwrap(values: &mut [f64]) {
+pub fn unwrap(values: &mut [f64]) {
     let mut last = f64::NAN;
     for value in values.iter_mut().filter(|value| !value.is_nan()) {
         if !last.is_nan() {

@@ -1,146 +1,288 @@
-//! Which stretch of time does the slider cover, and where do its ticks stand?
+//! What does the page show of the season: ribbon, handle, what lies under the pointer, events and windows?
 //!
-//! Months before to months after perihelion; where the chosen time lies outside, the same length about that time.
-//! The stretch stays put while one scrubs within it. It begins on a whole hour of UTC.
+//! The page asks once per frame for [`Desk::season`], which is cheap unless something changed, draws the ribbon only when
+//! its version grew, and the handle always. Events and windows are searched for in slices by
+//! [`Desk::season_advance`] whenever the page has time.
 
-use crate::body::SPAN;
-use crate::time::Instant;
-use crate::time::civil::{Date, MONTHS_SHORT};
+use super::{Desk, named_theme, refusal, to_js};
+use crate::engine::outlook::{self, Outlook};
+use crate::error::{Error, Kind, Place};
+use crate::paint::canvas::CanvasPainter;
+use crate::paint::{paint, svg};
+use crate::plan::Plan;
+use crate::plan::season::Season;
+use crate::say;
+use crate::say::table::Form;
+use crate::scene::ribbon::{flag, scale};
+use crate::season::series::Curve;
+use crate::time::{Instant, Stamp};
 use serde::Serialize;
+use wasm_bindgen::JsValue;
+use wasm_bindgen::prelude::wasm_bindgen;
+use web_sys::CanvasRenderingContext2d;
 
 /// Mean length of a month, days.
 const MONTH_DAYS: f64 = 365.25 / 12.0;
-/// A second, in days.
-const SECOND: f64 = 1.0 / 86_400.0;
-/// A label of a day or a year needs this room, pixels; one of a month less.
-const LABEL_PX: f64 = 64.0;
-const MONTH_LABEL_PX: f64 = 44.0;
+/// Longer views are scrubbed by the hour, shorter ones by the minute.
+const BY_THE_HOUR_DAYS: f64 = 20.0;
 
-/// The stretch of time of the slider.
-pub struct Season {
-    from: Instant,
-    to: Instant,
-    months: f64,
-}
-
-/// A place on the track.
+/// The ribbon as the page needs it.
 #[derive(Serialize)]
-struct Mark {
-    days: f64,
-    percent: f64,
-    words: String,
+struct Answer {
+    /// Differs whenever the ribbon is to be drawn anew.
+    version: String,
+    height_px: f64,
+    /// Left, right, top and bottom of the track.
+    track_px: [f64; 4],
+    /// Steps of the slider from one end of the track to the other, and which of them is now.
+    steps: f64,
+    step: f64,
+    /// Whether all of the season is in view.
+    whole: bool,
+    /// Whether the present time lies outside a chosen season.
+    outside: bool,
+    done: f64,
+    sentence: String,
 }
 
-/// The stretch as the page needs it.
+/// A curve that may be drawn.
 #[derive(Serialize)]
-pub struct Answer {
-    from_days: f64,
-    to_days: f64,
-    ticks: Vec<Mark>,
-    events: Vec<Mark>,
+struct CurveChoice {
+    key: &'static str,
+    words: &'static str,
+    usual: bool,
 }
 
-impl Season {
-    /// The season for a time: the present one where it still serves.
-    pub fn around(present: Option<Season>, perihelion: Instant, time: Instant, months: f64) -> Season {
-        if let Some(season) = present
-            && season.months == months
-            && season.holds(time)
-        {
-            return season;
-        }
-        let half = months * MONTH_DAYS;
-        let about = |middle: Instant| Season {
-            from: whole_hour(later(middle.plus_days(-half), SPAN.first)),
-            to: whole_hour(earlier(middle.plus_days(half), SPAN.last)),
-            months,
-        };
-        let usual = about(perihelion);
-        if usual.holds(time) { usual } else { about(time) }
-    }
-
-    /// Whether a time lies within, to a second: the ends themselves are reached in rounded seconds.
-    fn holds(&self, time: Instant) -> bool {
-        self.from.plus_days(-SECOND) <= time && time <= self.to.plus_days(SECOND)
-    }
-
-    pub fn answer(&self, width_px: f64, perihelion: Instant) -> Answer {
-        let events =
-            if self.holds(perihelion) { vec![self.mark(perihelion, "perihelion".to_owned())] } else { Vec::new() };
-        Answer { from_days: self.from.tdb_days(), to_days: self.to.tdb_days(), ticks: self.ticks(width_px), events }
-    }
-
-    fn mark(&self, time: Instant, words: String) -> Mark {
-        let length = self.to.tdb_days() - self.from.tdb_days();
-        Mark { days: time.tdb_days(), percent: (time.tdb_days() - self.from.tdb_days()) / length * 100.0, words }
-    }
-
-    /// Ticks at days, thirds of months, or months, whichever the width has room for; labels never meet.
-    fn ticks(&self, width_px: f64) -> Vec<Mark> {
-        let first = day_of(self.from);
-        let last = day_of(self.to);
-        let day_px = width_px / (last - first).max(1) as f64;
-        let mut marks = Vec::new();
-        for day in first..=last {
-            let Some(date) = Date::from_day_number(day) else { continue };
-            let time = Instant::from_ut1_days(day as f64 - 0.5);
-            if !self.holds(time) {
-                continue;
-            }
-            if let Some(words) = tick_words(date, day_px) {
-                let mut mark = self.mark(time, words);
-                // A label needs room to its right.
-                if (100.0 - mark.percent) / 100.0 * width_px < LABEL_PX {
-                    mark.words.clear();
-                }
-                marks.push(mark);
-            }
-        }
-        marks
-    }
-}
-
-/// What stands at a date on the track: nothing, a bare tick (empty words), or a named one.
-fn tick_words(date: Date, day_px: f64) -> Option<String> {
-    let Date { year, month, day } = date;
-    let name = MONTHS_SHORT[month as usize - 1].trim_end_matches('.');
-    let month_px = day_px * MONTH_DAYS;
-    if day_px * 5.0 >= LABEL_PX {
-        return Some(if day % 5 == 1 && day < 30 { format!("{day} {name}") } else { String::new() });
-    }
-    if day != 1 {
-        return ((day == 11 || day == 21) && month_px >= LABEL_PX).then(String::new);
-    }
-    let named = if month_px >= MONTH_LABEL_PX {
-        true
-    } else if month_px * 3.0 >= MONTH_LABEL_PX {
-        month % 3 == 1
-    } else {
-        month == 1
+/// Every curve that may be drawn.
+#[wasm_bindgen]
+pub fn season_curves() -> JsValue {
+    let choice = |curve: Curve| CurveChoice {
+        key: curve.key(),
+        words: scale::words(curve),
+        usual: scale::USUAL.contains(&curve),
     };
-    Some(match (named, month) {
-        (false, _) => String::new(),
-        (true, 1) if month_px >= LABEL_PX => format!("{name} {year}"),
-        (true, 1) => year.to_string(),
-        (true, _) => name.to_owned(),
-    })
+    to_js(&Curve::ALL.map(choice))
 }
 
-/// The UTC day of an instant, counted from 2000-01-01.
-fn day_of(time: Instant) -> i64 {
-    (time.ut1_days() + 0.5).floor() as i64
+#[wasm_bindgen]
+impl Desk {
+    /// The ribbon over a width, at most of a height, with the curves of these keys; drawn anew only where something changed.
+    pub fn season(&mut self, width_px: f64, most_px: f64, curves: &str) -> Result<JsValue, JsValue> {
+        let time = self.seen.sky.time;
+        let curves = outlook::curves(curves).unwrap_or_else(|_| scale::USUAL.to_vec());
+        let Desk { season, engine, .. } = self;
+        let season = season.get_or_insert_with(|| Outlook::new(engine, time));
+        season.follow(engine, time);
+        let ribbon = season.ribbon(engine, &curves, width_px, None, most_px).map_err(refusal)?;
+        let (height_px, track_px) = (ribbon.scene.height_px, ribbon.track_px());
+        let view = *season.view();
+        let per_day = if view.days() > BY_THE_HOUR_DAYS { 24.0 } else { 1440.0 };
+        let keys: Vec<&str> = curves.iter().map(|curve| curve.key()).collect();
+        Ok(to_js(&Answer {
+            version: format!("{} {width_px} {height_px} {}", season.version(), keys.join(",")),
+            height_px,
+            track_px,
+            steps: (view.days() * per_day).round(),
+            step: ((time.tdb_days() - view.from().tdb_days()) * per_day).round(),
+            whole: view == *season.season(),
+            outside: season.misses(time),
+            done: season.done(engine),
+            sentence: season.sentence(),
+        }))
+    }
+
+    /// Paints the ribbon, all but its handle.
+    pub fn draw_season(&self, context: &CanvasRenderingContext2d, theme: &str) {
+        if let Some(ribbon) = self.season.as_ref().and_then(Outlook::drawn) {
+            paint(&ribbon.scene, named_theme(theme), &mut CanvasPainter::new(context));
+        }
+    }
+
+    /// Paints the handle, and a thin line under the pointer; not a number for no pointer.
+    pub fn draw_season_handle(&self, context: &CanvasRenderingContext2d, theme: &str, pointer_px: f64) {
+        if let Some(ribbon) = self.season.as_ref().and_then(Outlook::drawn) {
+            let handle = ribbon.handle(self.seen.sky.time, Some(pointer_px));
+            paint(&handle, named_theme(theme), &mut CanvasPainter::new(context));
+        }
+    }
+
+    /// The ribbon as an SVG file, as it stands.
+    pub fn season_svg(&self, theme: &str) -> Option<String> {
+        let season = self.season.as_ref()?;
+        let scene = season.drawn()?.with_handle(self.seen.sky.time);
+        let title = format!("Season of {}", self.engine.plan().comet.name);
+        Some(svg::write(&scene, named_theme(theme), &title, &season.sentence()))
+    }
+
+    /// What lies at an x of the ribbon, with points between the facts; nothing beside the track.
+    pub fn season_under(&mut self, x_px: f64) -> Option<String> {
+        let words = self.season.as_ref()?.under(&mut self.engine, x_px)?;
+        Some(words.join(" \u{b7} "))
+    }
+
+    /// Goes to a share of the track: to a whole hour of UTC, or a minute where the view is short.
+    pub fn season_scrub(&mut self, share: f64) -> Result<f64, JsValue> {
+        let Some(season) = &self.season else { return Ok(self.seen.sky.time.tdb_days()) };
+        let view = season.view();
+        let time = view.from().plus_days(share.clamp(0.0, 1.0) * view.days());
+        let per_day = if view.days() > BY_THE_HOUR_DAYS { 24.0 } else { 1440.0 };
+        let whole = Instant::from_ut1_days((time.ut1_days() * per_day).round() / per_day);
+        let time = if season.season().holds(whole) { whole } else { time };
+        self.scrub(time.tdb_days())
+    }
+
+    /// Goes some days on, but not beyond the season; `None` steps from the present time. Gives the time it went to.
+    pub fn season_step(&mut self, days: f64) -> Result<f64, JsValue> {
+        let Some(season) = &self.season else { return Ok(self.seen.sky.time.tdb_days()) };
+        let [first, last] = [season.season().from(), season.season().to()].map(Instant::tdb_days);
+        let days = (self.seen.sky.time.tdb_days() + days).clamp(first, last);
+        self.scrub(days)
+    }
+
+    /// Goes to the next event in view or beyond (`sense` 1) or the one before (-1), else to the end of the season.
+    pub fn season_to_event(&mut self, sense: f64) -> Result<f64, JsValue> {
+        let Some(season) = &self.season else { return Ok(self.seen.sky.time.tdb_days()) };
+        let now = self.seen.sky.time.tdb_days();
+        // The present time is rounded to a second.
+        let ahead = |days: f64| (days - now) * sense > 1.5 / 86_400.0;
+        let events = season.found().events.iter().map(|event| event.time.tdb_days());
+        let next = events.filter(|&days| ahead(days)).min_by(|a, b| (a * sense).total_cmp(&(b * sense)));
+        match next {
+            Some(days) => self.scrub(days),
+            None => self.season_step(sense * 1e9),
+        }
+    }
+
+    /// Works on the search for about so many days of the season; gives the part that is done.
+    pub fn season_advance(&mut self, days: f64) -> f64 {
+        let Desk { season, engine, .. } = self;
+        season.as_mut().map_or(1.0, |season| season.advance(engine, days))
+    }
+
+    /// Shows `factor` times less time about an x of the ribbon.
+    pub fn season_zoom(&mut self, factor: f64, x_px: f64) {
+        if let Some(season) = &mut self.season
+            && let Some(about) = season.drawn().map(|ribbon| ribbon.time_at(x_px))
+        {
+            season.zoom(factor, about);
+        }
+    }
+
+    /// Shows `factor` times less time about the present.
+    pub fn season_zoom_now(&mut self, factor: f64) {
+        let now = self.seen.sky.time;
+        if let Some(season) = &mut self.season {
+            season.zoom(factor, now);
+        }
+    }
+
+    /// Moves the view by a share of its length.
+    pub fn season_pan(&mut self, share: f64) {
+        if let Some(season) = &mut self.season {
+            season.pan(share);
+        }
+    }
+
+    /// Typed ends of the season; empty texts leave it to the orbit.
+    pub fn set_season(&mut self, from: &str, to: &str) -> Result<JsValue, JsValue> {
+        let season = if from.trim().is_empty() && to.trim().is_empty() {
+            None
+        } else {
+            let read = |text: &str, key: &str| {
+                let place = Place::Field(format!("season.{key}"));
+                text.trim().parse::<Stamp>().map_err(|error| refusal(error.at(place)))
+            };
+            Some(Season { from: read(from, "from")?, to: read(to, "to")? })
+        };
+        self.take(Plan { season, ..self.plan() })
+    }
+
+    /// A season of so many months to each side of perihelion.
+    pub fn set_season_months(&mut self, months: f64) -> Result<JsValue, JsValue> {
+        let perihelion = self.engine.orbit().perihelion_time();
+        let end = |sense: f64| {
+            let time = perihelion.plus_days(sense * months * MONTH_DAYS);
+            let hour = Instant::from_ut1_days((time.ut1_days() * 24.0).floor() / 24.0);
+            Stamp::utc_seconds(hour).map_err(refusal)
+        };
+        let season = Some(Season { from: end(-1.0)?, to: end(1.0)? });
+        self.take(Plan { season, ..self.plan() })
+    }
+
+    /// The events as a file or a table: `csv`, `calendar`, `plain`, `markdown` or `wiki`, byte for byte what the command
+    /// line gives for the same plan and range.
+    pub fn season_text(&mut self, form: &str) -> Result<String, JsValue> {
+        let Desk { season, engine, .. } = self;
+        let Some(season) = season.as_ref().filter(|season| season.is_searched()) else {
+            let allowed = "a season whose search is done; let it run on";
+            return Err(refusal(Error::new(Kind::Usage, Place::Whole, "events that are not complete", allowed)));
+        };
+        let told = engine.season_told(season.found()).map_err(refusal)?;
+        let comet = &engine.plan().comet.name;
+        Ok(match (form, Form::named(form)) {
+            ("calendar", _) => say::season::calendar(comet, &told),
+            (_, Some(form)) if form != Form::Csv => say::season::table(comet, &told, form),
+            _ => say::season::csv(&told),
+        })
+    }
+
+    /// Events and windows for people, and the ends of the season.
+    pub fn season_table(&self) -> JsValue {
+        self.season.as_ref().map_or(JsValue::NULL, |season| to_js(&table(season, &self.engine.plan().season)))
+    }
 }
 
-/// The whole hour of UTC at or before a time, but not outside the span.
-fn whole_hour(time: Instant) -> Instant {
-    let hour = Instant::from_ut1_days((time.ut1_days() * 24.0).floor() / 24.0);
-    if hour < SPAN.first { time } else { hour }
+/// The text twin of the ribbon.
+#[derive(Serialize)]
+struct Table {
+    from: String,
+    to: String,
+    /// Whether a person chose the ends.
+    chosen: bool,
+    events: Vec<EventRow>,
+    windows: Vec<WindowRow>,
 }
 
-fn later(a: Instant, b: Instant) -> Instant {
-    if a > b { a } else { b }
+#[derive(Serialize)]
+struct EventRow {
+    days: f64,
+    time: String,
+    words: &'static str,
+    value: String,
+    note: String,
+    weighty: bool,
 }
 
-fn earlier(a: Instant, b: Instant) -> Instant {
-    if a < b { a } else { b }
+#[derive(Serialize)]
+struct WindowRow {
+    words: String,
+    from: String,
+    to: String,
+    days: f64,
+    note: String,
+}
+
+fn table(season: &Outlook, chosen: &Option<Season>) -> Table {
+    let iso = |time: Instant| time.utc_iso_ms().replace(".000Z", "Z");
+    let stretch = season.season();
+    let (from, to) = match chosen {
+        Some(chosen) => (chosen.from.to_string(), chosen.to.to_string()),
+        None => (iso(stretch.from()), iso(stretch.to())),
+    };
+    let events = season.found().events.iter().map(|event| EventRow {
+        days: event.time.tdb_days(),
+        time: event.time.utc_minute(),
+        words: event.kind.words(),
+        value: say::season::value_words(event),
+        note: say::season::note(event),
+        weighty: flag::rank(event.kind) <= flag::WEIGHTY,
+    });
+    let windows = season.windows().into_iter().map(|window| WindowRow {
+        words: window.words,
+        from: window.from.utc_minute(),
+        to: window.to.utc_minute(),
+        days: window.from.tdb_days(),
+        note: window.note,
+    });
+    Table { from, to, chosen: chosen.is_some(), events: events.collect(), windows: windows.collect() }
 }

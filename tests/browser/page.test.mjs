@@ -15,6 +15,7 @@ import night from "./night.mjs";
 import numbers from "./numbers.mjs";
 import tails from "./tails.mjs";
 import quiet from "./quiet.mjs";
+import season from "./season.mjs";
 import time from "./time.mjs";
 
 if (!existsSync(PAGE_FILE)) {
@@ -40,7 +41,7 @@ describe("the page", { concurrency: wanted.length }, () => {
           context.server.stop();
         }
       });
-      for (const part of [quiet, numbers, tails, night, camera, time, input, access, layout, gallery]) {
+      for (const part of [quiet, numbers, tails, night, camera, time, season, input, access, layout, gallery]) {
         part(context);
       }
     });

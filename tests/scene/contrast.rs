@@ -5,7 +5,8 @@
 use std::collections::BTreeMap;
 use tailvane::scene::theme::{Color, Theme};
 use tailvane::scene::theme::{LIGHTS, TONES};
-use tailvane::scene::{Body, Direction, Family, Role};
+use tailvane::scene::{Body, Direction, Family, Lane, Role};
+use tailvane::season::series::Curve;
 
 const DIRECTIONS: [Direction; 6] = [
     Direction::Antisolar,
@@ -231,4 +232,30 @@ fn a_theme_is_found_by_its_name() {
         assert_eq!(Theme::named(theme.name()), Some(theme));
     }
     assert_eq!(Theme::named("blue"), None);
+}
+
+#[test]
+fn the_ribbon_can_be_read_in_every_theme_and_without_colour() {
+    for theme in Theme::ALL {
+        let ground = theme.look(Role::Ground).fill.expect("a ground").css();
+        let lanes = [Lane::SunwardDust, Lane::DarkHours, Lane::NearSun];
+        let names = Curve::ALL.map(Role::CurveName).into_iter().chain(Curve::ALL.map(Role::CurveNumber));
+        for role in names.chain(lanes.map(Role::LaneName)).chain([Role::EventName]) {
+            let look = theme.look(role);
+            let ratio = contrast(&look.fill.expect("letters are filled").css(), &ground);
+            assert!(ratio >= 4.5, "{} {role:?} {ratio:.2}", theme.name());
+            assert_eq!(look.halo.expect("letters have a halo").color.css(), ground);
+        }
+        let rims = [Lane::SunwardDust, Lane::NearSun].map(Role::BandRim);
+        for role in Curve::ALL.map(Role::SeasonCurve).into_iter().chain(rims).chain([Role::Handle, Role::EventStroke]) {
+            let ratio = contrast(&theme.look(role).pen.expect("a line").color.css(), &ground);
+            assert!(ratio >= 3.0, "{} {role:?} {ratio:.2}", theme.name());
+        }
+        let patterns = Curve::ALL.map(|curve| theme.look(Role::SeasonCurve(curve)).pen.expect("a line"));
+        for (at, one) in patterns.iter().enumerate() {
+            for other in &patterns[at + 1..] {
+                assert!(one.dashes != other.dashes || one.width != other.width, "{one:?} {other:?}");
+            }
+        }
+    }
 }
