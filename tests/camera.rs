@@ -8,6 +8,8 @@ mod mounts;
 mod rows;
 #[path = "camera/sections.rs"]
 mod sections;
+#[path = "camera/subjects.rs"]
+mod subjects;
 
 use nalgebra::Vector3;
 use proptest::prelude::*;

@@ -380,4 +380,32 @@ fn a_night_refuses_what_it_cannot_use() {
     let polar = plan.replace("37.1", "78.0");
     let first = &rows(&said(&["night", "-", "--date", "2031-06-20"], &polar))[0];
     assert!(first["caution"].contains("does not set"), "{}", first["caution"]);
+fn camera_has_its_columns_and_its_angles_agree_with_those_of_the_sky() {
+    let with = |more: &str| {
+        PLAN.replace(
+            "\"time\"",
+            &format!("\"camera\": {{ \"pixels_wide\": 6000, \"pixels_high\": 4000, \"scale_arcsec_per_pixel\": 2{more} }}, \"time\""),
+        )
+    };
+    let plan = with(", \"image_up_position_angle_deg\": 40");
+    let text = said(&["camera", "-"], &plan);
+    assert!(
+        text.starts_with("time,image_up_position_angle_deg,long_side_position_angle_deg,field_width_deg,"),
+        "{text}"
+    );
+    let (row, sky) = (&rows(&text)[0], &rows(&said(&["sky", "-"], &plan))[0]);
+    // The nucleus in the middle, as on the sky: clockwise from image up is against the sense of position angle.
+    let sum = number(row, "antisolar_clockwise_from_up_deg") + number(sky, "antisolar_position_angle_deg") - 40.0;
+    assert!((sum / 360.0 - (sum / 360.0).round()).abs() < 1e-9, "{sum}");
+    assert_eq!(number(row, "long_side_position_angle_deg").round(), 130.0);
+    for (key, of_sky) in
+        [("middle_right_ascension_deg", "right_ascension_deg"), ("middle_declination_deg", "declination_deg")]
+    {
+        assert!((number(row, key) - number(sky, of_sky)).abs() < 1e-9);
+    }
+    assert!(refused(&["camera", "-"], PLAN, 1).contains("no camera"));
+    assert!(refused(&["camera", "-"], &with(", \"mount\": \"altazimuth\""), 1).contains("a site"));
+    assert!(refused(&["camera", "-"], &with(", \"nucleus_up_px\": 1e7"), 1).contains("camera.nucleus_up_px"));
+    let json: serde_json::Value = serde_json::from_str(&said(&["camera", "-", "--json"], &plan)).expect("JSON");
+    assert_eq!(json[0]["nucleus_right_px"], 0.0);
 }

@@ -150,15 +150,14 @@ impl Field {
 
     fn exit(&self, step: [f64; 2]) -> Option<Exit> {
         let (mut first, mut last) = (0.0_f64, f64::INFINITY);
-        for axis in 0..2 {
-            let (at, half) = (self.nucleus_px[axis], self.half_px[axis]);
-            if step[axis] == 0.0 {
+        for (step, (at, half)) in step.into_iter().zip(self.nucleus_px.into_iter().zip(self.half_px)) {
+            if step == 0.0 {
                 if at.abs() > half {
                     return None;
                 }
                 continue;
             }
-            let (one, two) = ((-half - at) / step[axis], (half - at) / step[axis]);
+            let (one, two) = ((-half - at) / step, (half - at) / step);
             first = first.max(one.min(two));
             last = last.min(one.max(two));
         }

@@ -55,11 +55,16 @@ impl SkyView {
         SkyView { width_px, height_px, pixel_scale_rad, offset_px: [0.0, 0.0], up: Up::North }
     }
 
-    /// The view that a drawing with a camera opens with: a place `reach_tan` (tangent) from the nucleus is still on it.
+    /// The view that a drawing with a camera opens with: a place `reach_tan` (tangent) from the nucleus is still on it. The
+    /// usual five degrees serve a field that fits them and is not lost in them.
     pub fn around(width_px: f64, height_px: f64, reach_tan: f64) -> Self {
+        let start = SkyView::start(width_px, height_px);
         let half_px = 0.5 * width_px.min(height_px).max(1.0);
-        let pixel_scale_rad = (reach_tan / half_px).clamp(FINEST_SCALE_RAD, COARSEST_SCALE_RAD);
-        SkyView { pixel_scale_rad, ..SkyView::start(width_px, height_px) }
+        let share = reach_tan / (half_px * start.pixel_scale_rad);
+        if (0.4..=1.0).contains(&share) {
+            return start;
+        }
+        SkyView { pixel_scale_rad: (reach_tan / half_px).clamp(FINEST_SCALE_RAD, COARSEST_SCALE_RAD), ..start }
     }
 
     /// The view with everything `factor` times larger about a point of the page, which stays where it is.

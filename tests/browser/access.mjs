@@ -63,7 +63,7 @@ export default (context) =>
       await page.$$eval("details", (all) => all.forEach((details) => (details.open = true)));
       const reached = new Set();
       let unseen = "";
-      for (let i = 0; i < 220; i += 1) {
+      for (let i = 0; i < 240; i += 1) {
         await page.keyboard.press("Tab");
         const at = await page.evaluate(() => {
           const element = document.activeElement;
