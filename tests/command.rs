@@ -380,6 +380,9 @@ fn a_night_refuses_what_it_cannot_use() {
     let polar = plan.replace("37.1", "78.0");
     let first = &rows(&said(&["night", "-", "--date", "2031-06-20"], &polar))[0];
     assert!(first["caution"].contains("does not set"), "{}", first["caution"]);
+}
+
+#[test]
 fn camera_has_its_columns_and_its_angles_agree_with_those_of_the_sky() {
     let with = |more: &str| {
         PLAN.replace(
