@@ -130,7 +130,7 @@ fn a_missing_key_is_named() {
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig { cases: 2000, failure_persistence: None, ..ProptestConfig::default() })]
+    #![proptest_config(ProptestConfig { cases: 10_000, failure_persistence: None, ..ProptestConfig::default() })]
 
     #[test]
     fn a_plan_printed_and_read_is_the_same_plan(plan in plans()) {

@@ -11,6 +11,7 @@ const Tailvane = {};
 Tailvane.core = (function () {
   let module = null;
   let sitesText = null;
+  let wordsRead = null;
   let exports = null;
 
   /** The bytes of a data block by name, or of the file of that name beside an unpacked page; null when there is neither. */
@@ -68,6 +69,15 @@ Tailvane.core = (function () {
     return sitesText;
   }
 
+  /** What the controls and the walk say, unpacked when first asked for. */
+  async function words() {
+    if (wordsRead === null) {
+      const bytes = await bytesOf("words.data");
+      wordsRead = bytes ? JSON.parse(new TextDecoder().decode(bytes)) : {};
+    }
+    return wordsRead;
+  }
+
   /** The table line by line again; it travels column by column, which packs smaller. */
   function linesOf(columns) {
     const [first, ...others] = columns.split("\n").map((column) => column.split("\t"));
@@ -83,5 +93,5 @@ Tailvane.core = (function () {
     }
   }
 
-  return { load, fresh, sites, lastWords, exports: () => exports };
+  return { load, fresh, sites, words, lastWords, exports: () => exports };
 })();

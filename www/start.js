@@ -1,8 +1,8 @@
 /*
  * In which order does the page come to life?
  *
- * The first picture comes first: an invented comet, or the plan in the address. A bad plan in the address is said, and the
- * invented comet is shown.
+ * The first picture comes first: the plan in the address, what this tab kept, or an invented comet. In a frame of another
+ * page only the few parts of the compact page start.
  */
 (async function () {
   const starting = Tailvane.find("show", "starting");
@@ -13,20 +13,11 @@
     return;
   }
   Tailvane.theme.start();
-  for (const part of ["sky", "season", "say", "numbers", "tails", "drawings", "comet", "observer", "plan"]) {
+  const everything = ["sky", "season", "say", "numbers", "tails", "drawings", "comet", "observer", "plan", "share", "walk", "explain", "undo", "keep"];
+  for (const part of Tailvane.embed.on() ? Tailvane.embed.PARTS : everything) {
     Tailvane[part].start();
   }
-  const invented = Tailvane.core.exports().examples()[0].plan;
-  let refusal = null;
-  try {
-    Tailvane.desk.start(Tailvane.plan.fromAddress() || invented);
-  } catch (failure) {
-    refusal = failure;
-    Tailvane.desk.start(invented);
-  }
-  if (refusal) {
-    Tailvane.say.error(refusal.message + ". An invented comet is shown instead.");
-  }
+  await Tailvane.plan.open(Tailvane.core.exports().examples()[0].plan);
   starting.remove();
   document.documentElement.dataset.ready = "yes";
 })();

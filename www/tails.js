@@ -199,5 +199,5 @@ Tailvane.tails = (function () {
     }
   }
 
-  return { start, layers };
+  return { start, layers, restoreLayers };
 })();

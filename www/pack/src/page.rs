@@ -4,13 +4,15 @@
 //! are put inline, the wasm and the site table become inert data blocks (deflate, base64), and a content
 //! security policy is written last that allows exactly these scripts and styles, and no network at all.
 
-use crate::wasm::Build;
+use crate::wasm::{Build, TARGET, cargo};
 use base64::Engine;
 use base64::engine::general_purpose::STANDARD;
 use sha2::{Digest, Sha256};
+use std::collections::BTreeSet;
 use std::fs;
 use std::num::NonZeroU64;
 use std::path::{Path, PathBuf};
+use std::process::Command;
 
 /// The packed page.
 pub struct Packed {
@@ -24,6 +26,59 @@ pub const GLUE: &str = "glue.js";
 pub const WASM: &str = "core.wasm";
 /// The site table of the unpacked page, and the name of its data block in the packed one.
 pub const SITES: &str = "sites.data";
+
+/// What controls and walk say, and the name of its data block.
+pub const WORDS: &str = "words.data";
+/// Where the packed software is listed, on a line of its own.
+const LICENCES: &str = "<!-- licences -->";
+
+/// The words of the controls and the walk with its plans inside, as one JSON text.
+///
+/// # Errors
+/// A file that cannot be read, or a list whose lines are not one `"plan": "NAME"` for each step.
+pub fn words(root: &Path) -> Result<Vec<u8>, String> {
+    let read = |name: &str| fs::read_to_string(root.join("www").join(name)).map_err(|e| format!("www/{name}: {e}"));
+    let explain = read("explain.json")?;
+    let mut walk = String::new();
+    for line in read("walk/list.walk.json")?.lines() {
+        match between(line.trim().trim_end_matches(','), "\"plan\": \"", "\"") {
+            Some(name) => walk.push_str(&format!("\"plan\":{}", read(&format!("walk/{name}"))?.trim())),
+            None => walk.push_str(line.trim()),
+        }
+    }
+    Ok(format!("{{\"explain\":{},\"walk\":{walk}}}", explain.trim()).into_bytes())
+}
+
+/// The crates in the page with their licences, as items of a list. What only builds the page is not in it.
+///
+/// # Errors
+/// Cargo, or an answer of another shape.
+fn licences(root: &Path) -> Result<String, String> {
+    let run = Command::new(cargo())
+        .current_dir(root)
+        .args(["tree", "--package", "tailvane", "--target", TARGET, "--edges", "normal,no-proc-macro"])
+        .args(["--prefix", "none", "--no-dedupe", "--format", "{p}|{l}"])
+        .output()
+        .map_err(|e| format!("cargo could not be started: {e}"))?;
+    let text = String::from_utf8_lossy(&run.stdout).into_owned();
+    let mut items = BTreeSet::new();
+    for line in text.lines().filter(|line| !line.trim().is_empty()) {
+        let (crate_, licence) = line.split_once('|').ok_or_else(|| format!("cargo tree: found {line}"))?;
+        let named: Vec<&str> = crate_.split(' ').take(2).collect();
+        let plain = |c: char| c.is_ascii_alphanumeric() || "-_. /()+".contains(c);
+        if named.len() != 2 || licence.is_empty() || !line.replace('|', "").chars().all(plain) {
+            return Err(format!("cargo tree: found {line}; expected a crate with its licence"));
+        }
+        if !named[0].starts_with("tailvane") {
+            items.insert(format!("<li>{} {}: {licence}</li>\n", named[0], named[1].trim_start_matches('v')));
+        }
+    }
+    if !run.status.success() || items.is_empty() {
+        return Err(format!("cargo tree: {}", String::from_utf8_lossy(&run.stderr)));
+    }
+    items.insert("<li>Rust standard library: MIT OR Apache-2.0</li>\n".into());
+    Ok(items.into_iter().collect())
+}
 
 /// The site table column by column, which packs a fifth smaller than line by line: each column on a line, its fields
 /// separated by tabs. Remarks are left out; the page puts the lines together again.
@@ -71,8 +126,10 @@ pub fn pack(root: &Path, build: &Build) -> Result<Packed, String> {
     if let Some(table) = site_columns(root)? {
         blocks.push_str(&data_block(SITES, &table)?);
     }
+    blocks.push_str(&data_block(WORDS, &words(root)?)?);
+    let index = read("index.html")?.replacen(LICENCES, licences(root)?.trim_end(), 1);
     let html =
-        assemble(&read("index.html")?, |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) }, &blocks)?;
+        assemble(&index, |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) }, &blocks)?;
     let path = root.join("target/page/tailvane.html");
     fs::create_dir_all(path.parent().expect("the page lies in a folder")).map_err(|e| format!("target/page: {e}"))?;
     fs::write(&path, &html).map_err(|e| format!("{}: {e}", path.display()))?;

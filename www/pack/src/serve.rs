@@ -5,7 +5,7 @@
 //! can read through it.
 
 use crate::open::open;
-use crate::page::{GLUE, SITES, WASM, site_columns};
+use crate::page::{GLUE, SITES, WASM, WORDS, site_columns, words};
 use crate::wasm::Build;
 use std::fs;
 use std::io::{BufRead, BufReader, Read, Write};
@@ -92,6 +92,7 @@ fn content(path: &str, root: &Path, build: &Build, page: &Path) -> Option<(&'sta
         GLUE => return Some(("text/javascript", build.glue.clone().into_bytes())),
         WASM => return Some(("application/wasm", build.wasm.clone())),
         SITES => return site_columns(root).ok()?.map(|table| ("application/octet-stream", table)),
+        WORDS => return words(root).ok().map(|text| ("application/octet-stream", text)),
         _ => {}
     }
     // Names without folders only, so that nothing outside www/ can be reached.
