@@ -55,7 +55,7 @@ Tailvane.share = (function () {
     return (
       address &&
       '<iframe src="' + html(address) + '" title="Tailvane: ' + html(titleOf(reading)) +
-      '" sandbox="allow-scripts allow-downloads" allow="clipboard-write" loading="lazy" width="100%" height="640"></iframe>'
+      '" sandbox="allow-scripts allow-downloads" allow="clipboard-write" loading="lazy" width="100%" height="760"></iframe>'
     );
   }
 
@@ -247,7 +247,7 @@ Tailvane.share = (function () {
 addEventListener("message", (event) => {
   for (const frame of document.querySelectorAll("iframe")) {
     if (event.source === frame.contentWindow && event.data && event.data.tailvane === "height") {
-      frame.height = Math.min(2000, Math.max(200, Number(event.data.height) || 640));
+      frame.height = Math.min(2000, Math.max(200, Number(event.data.height) || 760));
     }
   }
 });
