@@ -21,23 +21,26 @@ if (!existsSync(PAGE_FILE)) {
 
 const wanted = (process.env.TAILVANE_BROWSERS || "chromium,firefox").split(",");
 
-for (const name of wanted) {
-  describe(name, () => {
-    const context = { name, browser: null, server: null };
-    before(async () => {
-      context.server = await serve();
-      context.browser = await BROWSERS[name]();
-    });
-    after(async () => {
-      if (context.browser) {
-        await context.browser.close();
+// The browsers side by side, since most of a test is waiting; within a browser one test at a time.
+describe("the page", { concurrency: wanted.length }, () => {
+  for (const name of wanted) {
+    describe(name, { concurrency: 1 }, () => {
+      const context = { name, browser: null, server: null };
+      before(async () => {
+        context.server = await serve();
+        context.browser = await BROWSERS[name]();
+      });
+      after(async () => {
+        if (context.browser) {
+          await context.browser.close();
+        }
+        if (context.server) {
+          context.server.stop();
+        }
+      });
+      for (const part of [quiet, numbers, tails, time, input, access, layout, gallery]) {
+        part(context);
       }
-      if (context.server) {
-        context.server.stop();
-      }
     });
-    for (const part of [quiet, numbers, tails, time, input, access, layout, gallery]) {
-      part(context);
-    }
-  });
-}
+  }
+});
