@@ -51,7 +51,9 @@ fn table(words: &str) -> Table {
 fn line(words: &str) -> String {
     words
         .chars()
-        .filter(|c| !('\u{202a}'..='\u{202e}').contains(c) && !('\u{2066}'..='\u{2069}').contains(c) && *c != '\u{feff}')
+        .filter(|c| {
+            !('\u{202a}'..='\u{202e}').contains(c) && !('\u{2066}'..='\u{2069}').contains(c) && *c != '\u{feff}'
+        })
         .map(|c| if c.is_control() || c == '\u{2028}' || c == '\u{2029}' { ' ' } else { c })
         .collect()
 }

@@ -52,7 +52,7 @@ function hostilePlan(chance) {
   } else if (spoil === 3) {
     text = text.slice(0, chance.below(text.length));
   } else if (spoil === 4) {
-    const deep = 100 + chance.below(100000);
+    const deep = 100 + chance.below(3000);
     text = text.replace('"comets":[', '"comets":' + "[".repeat(deep));
   }
   return text;
@@ -110,7 +110,7 @@ async function feed(inputs) {
     if (said === "" && after !== before) {
       taken += 1;
       // Everything that shows or carries the name.
-      if (taken % 4 === 0) {
+      if (taken % 8 === 0) {
         await frame();
         const svg = new DOMParser().parseFromString(Tailvane.desk.ask((desk) => desk.svg_of("orbit", "dark", 400, 400)), "image/svg+xml");
         if (svg.querySelector("parsererror") || svg.querySelector("script, foreignObject, style, a")) {
@@ -149,7 +149,16 @@ export default (context) =>
         dialogs.push(dialog.message());
         dialog.dismiss();
       });
-      const { faults, taken } = await page.evaluate("(" + feed + ")(" + JSON.stringify(inputs).replace(/</g, "\\u003c") + ")");
+      // A small sky without dust: what is drawn there is not the question.
+      await page.setViewport({ width: 400, height: 500 });
+      await page.evaluate(() => document.querySelectorAll("[data-layer]:checked").forEach((box) => box.click()));
+      const faults = [];
+      let taken = 0;
+      for (let from = 0; from < inputs.length; from += 100) {
+        const part = await page.evaluate("(" + feed + ")(" + JSON.stringify(inputs.slice(from, from + 100)) + ")");
+        faults.push(...part.faults);
+        taken += part.taken;
+      }
       assert.deepEqual(faults.slice(0, 10), []);
       assert.ok(taken > 100, "enough of them are plans to test what shows names: " + taken);
       assert.deepEqual(dialogs, []);
@@ -170,7 +179,7 @@ export default (context) =>
       const { faults } = await page.evaluate("(" + feed + ")(" + JSON.stringify([]) + ")");
       assert.deepEqual(faults, []);
       const plan = JSON.parse(plans()[3].text);
-      const named = [0, 1, 2, 3].map((number) => ["plan", JSON.stringify({ ...plan, comet: { ...plan.comet, name: number + "<img src=x>" } })]);
+      const named = [...Array(9).keys()].map((number) => ["plan", JSON.stringify({ ...plan, comet: { ...plan.comet, name: number + "<img src=x>" } })]);
       const spoiled = "Tailvane.write = (element, text) => { element.innerHTML = text; };";
       const found = await page.evaluate(spoiled + "(" + feed + ")(" + JSON.stringify(named) + ")");
       assert.ok(found.faults.some((fault) => fault.startsWith("elements")), found.faults.join("|"));

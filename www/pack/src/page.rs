@@ -128,8 +128,7 @@ pub fn pack(root: &Path, build: &Build) -> Result<Packed, String> {
     }
     blocks.push_str(&data_block(WORDS, &words(root)?)?);
     let index = read("index.html")?.replacen(LICENCES, licences(root)?.trim_end(), 1);
-    let html =
-        assemble(&index, |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) }, &blocks)?;
+    let html = assemble(&index, |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) }, &blocks)?;
     let path = root.join("target/page/tailvane.html");
     fs::create_dir_all(path.parent().expect("the page lies in a folder")).map_err(|e| format!("target/page: {e}"))?;
     fs::write(&path, &html).map_err(|e| format!("{}: {e}", path.display()))?;
