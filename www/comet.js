@@ -15,6 +15,7 @@ Tailvane.comet = (function () {
   const readList = Tailvane.find("list", "read");
   const readSearch = Tailvane.find("input", "read-search");
   const handList = Tailvane.find("list", "comets");
+  const planList = Tailvane.find("list", "plan-comets");
   const storage = Tailvane.find("show", "storage");
   const fieldsForm = Tailvane.find("form", "elements");
   let lastRead = null;
@@ -139,6 +140,28 @@ Tailvane.comet = (function () {
     handList.replaceChildren(...items);
   }
 
+  /** The comets that the plan itself carries beside the one shown. */
+  function listInPlan(desk) {
+    const names = desk.comets();
+    const key = JSON.stringify(names);
+    if (planList.dataset.key === key) {
+      return;
+    }
+    planList.dataset.key = key;
+    Tailvane.find("box", "plan-comets").hidden = names.length === 0;
+    planList.replaceChildren(
+      ...names.map((name, number) =>
+        pick(name, "in this plan", () => Tailvane.desk.change((d) => d.show_kept(number, Date.now())), () => Tailvane.desk.change((d) => d.drop_kept(number)))
+      )
+    );
+  }
+
+  /** Text that was in the box before: put back, not read again. */
+  function putBack(text) {
+    box.value = text;
+    lastRead = text;
+  }
+
   function take(plan) {
     Tailvane.season.pause();
     return Tailvane.desk.change((desk) => desk.set_plan(plan));
@@ -162,7 +185,8 @@ Tailvane.comet = (function () {
     listAtHand();
   }
 
-  function frame(reading) {
+  function frame(reading, desk) {
+    listInPlan(desk);
     const key = JSON.stringify(reading.elements);
     if (key === shownFields) {
       return;
@@ -219,9 +243,13 @@ Tailvane.comet = (function () {
     Tailvane.onAct("open-elements", () => file.click());
     file.addEventListener("change", openFile);
     Tailvane.onAct("keep", keep);
+    Tailvane.onAct("keep-in-plan", () => {
+      const kept = Tailvane.desk.change((desk) => desk.keep_comet());
+      Tailvane.write(found, kept === undefined ? "" : kept ? "The plan carries this comet along." : "The plan carries this very comet already.");
+    });
     readSearch.addEventListener("input", listRead);
     fieldsForm.addEventListener("submit", useTyped);
   }
 
-  return { start, take };
+  return { start, take, pick, putBack };
 })();

@@ -11,6 +11,7 @@ const Tailvane = {};
 Tailvane.core = (function () {
   let module = null;
   let sitesText = null;
+  let wordsRead = null;
   let exports = null;
 
   /** The bytes of a part of the packed page, or of the file of that name beside an unpacked one; null when there is neither. */
@@ -55,6 +56,15 @@ Tailvane.core = (function () {
     return sitesText;
   }
 
+  /** What the controls and the walk say, unpacked when first asked for. */
+  async function words() {
+    if (wordsRead === null) {
+      const bytes = await bytesOf("words.data");
+      wordsRead = bytes ? JSON.parse(new TextDecoder().decode(bytes)) : {};
+    }
+    return wordsRead;
+  }
+
   /** The lines of the site table, which travels as www/pack/src/sites.rs says. */
   function linesOf(words, numbers) {
     const [codes, names] = words.split("\n").map((column) => column.split("\t"));
@@ -81,5 +91,5 @@ Tailvane.core = (function () {
     }
   }
 
-  return { load, fresh, sites, lastWords, exports: () => exports };
+  return { load, fresh, sites, words, lastWords, exports: () => exports };
 })();

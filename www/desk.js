@@ -14,6 +14,7 @@ Tailvane.desk = (function () {
   let desk = null;
   let lastPlan = null;
   let asked = false;
+  let hidden = false;
   let restTimer = 0;
   let moved = false;
   let summedAt = -SUMS_MS;
@@ -69,13 +70,21 @@ Tailvane.desk = (function () {
     }
   }
 
+  /** Draws nothing while out of sight, and once when back. */
+  function setSeen(seen) {
+    hidden = !seen;
+    if (seen) {
+      redraw();
+    }
+  }
+
   function redraw() {
     moved = true;
     askFrame();
   }
 
   function askFrame() {
-    if (!asked) {
+    if (!asked && !hidden) {
       asked = true;
       requestAnimationFrame(frame);
     }
@@ -123,6 +132,7 @@ Tailvane.desk = (function () {
     change,
     ask,
     redraw,
+    setSeen,
     refusal: () => refused,
     onFrame: (listener) => frameListeners.push(listener),
     onRest: (listener) => restListeners.push(listener),
@@ -152,25 +162,4 @@ Tailvane.save = (name, type, text) => {
   link.click();
   link.remove();
   setTimeout(() => URL.revokeObjectURL(address), 10000);
-};
-
-/** Copies `text` and tells `said` whether that worked; falls back to a selection where the clipboard is refused. */
-Tailvane.copy = async (text, said) => {
-  try {
-    await navigator.clipboard.writeText(text);
-    said("Copied.");
-  } catch (refused) {
-    const box = document.createElement("textarea");
-    box.value = text;
-    box.className = "unseen";
-    document.body.append(box);
-    const focused = document.activeElement;
-    box.select();
-    const copied = document.execCommand("copy");
-    box.remove();
-    if (focused) {
-      focused.focus();
-    }
-    said(copied ? "Copied." : "The browser does not allow copying here.");
-  }
 };

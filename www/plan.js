@@ -1,36 +1,68 @@
 /*
- * How does a plan leave the page and come back: file, link, drawing?
+ * With which plan does the page open, and how does a plan leave it: address, file?
  *
- * The fragment `#plan=` carries the plan's JSON, percent-encoded. It never leaves the machine: browsers do not
- * send fragments. Frames may refuse to change the address, so each way is tried and then given up quietly.
+ * A plan in the address comes first; where this tab itself wrote that address, what the tab kept is as new or newer. Then
+ * what the tab kept, then an invented comet. A plan that is passed over can be gone back to. Frames may refuse to change
+ * their address, so each way is tried and then given up quietly.
  */
 Tailvane.plan = (function () {
-  const KEY = "#plan=";
   const done = Tailvane.find("show", "plan-done");
   const file = Tailvane.find("file", "plan");
   let written = "";
+  let turn = 0;
 
-  /** The plan in the address, or null; throws a refusal for text that is not percent-encoded. */
-  function fromAddress() {
-    if (!location.hash.startsWith(KEY)) {
-      return null;
+  /** Puts a plan on the desk. Gives what is left for `tell` once the page is there to say it. */
+  async function open(invented) {
+    const kept = Tailvane.embed.on() ? null : Tailvane.keep.own();
+    const hash = location.hash;
+    let asked = null;
+    let refusal = null;
+    if (kept && kept.address === hash) {
+      written = hash;
+    } else {
+      try {
+        asked = await Tailvane.link.read(hash);
+      } catch (failure) {
+        refusal = failure;
+      }
     }
+    let shown = null;
+    for (const plan of [asked, kept && kept.plan, invented]) {
+      try {
+        if (plan !== null && shown === null) {
+          Tailvane.desk.start(plan);
+          shown = plan;
+        }
+      } catch (failure) {
+        refusal = refusal || failure;
+      }
+    }
+    return { refusal, instead: shown === invented ? "An invented comet" : "What this tab kept", passed: kept && bare(shown) !== bare(kept.plan) ? kept.plan : null };
+  }
+
+  /** Says why a plan that was asked for could not be had; makes one that was passed over a step to go back to. */
+  function tell({ refusal, instead, passed }) {
+    Tailvane.undo.note(passed);
+    if (refusal) {
+      Tailvane.say.error(refusal.message + ". " + instead + " is shown instead.");
+    }
+  }
+
+  /** A plan's text without its layout. */
+  function bare(plan) {
     try {
-      return decodeURIComponent(location.hash.slice(KEY.length));
+      return JSON.stringify(JSON.parse(plan));
     } catch (broken) {
-      throw { refused: true, message: "The plan in the address: found broken percent-encoding; expected the JSON of a plan, percent-encoded" };
+      return plan;
     }
   }
 
-  function fragmentOf(plan) {
-    // Parentheses and quotes end a link in many wikis and mails.
-    return KEY + encodeURIComponent(JSON.stringify(JSON.parse(plan))).replace(/[!'()*]/g, (c) => "%" + c.charCodeAt(0).toString(16).toUpperCase());
-  }
-
-  function toAddress(reading, plan) {
-    const fragment = fragmentOf(plan);
-    if (fragment === written || fragment === location.hash) {
-      written = fragment;
+  /** Writes the plan into the address, unless the desk has moved on before it was packed. */
+  async function toAddress(reading, plan) {
+    turn += 1;
+    const mine = turn;
+    const fragment = "#" + Tailvane.embed.prefix() + (await Tailvane.link.write(plan));
+    if (mine !== turn || fragment === written || fragment === location.hash) {
       return;
     }
     written = fragment;
@@ -43,25 +75,37 @@ Tailvane.plan = (function () {
         // A frame without an address of its own: the plan file and the copied link still work.
       }
     }
+    if (!Tailvane.embed.on()) {
+      Tailvane.keep.save();
+    }
   }
 
-  function onAddress() {
-    if (location.hash === written || !location.hash.startsWith(KEY)) {
+  async function onAddress() {
+    const hash = location.hash;
+    if (hash === written || Tailvane.link.parts(hash).plan === null) {
       return;
     }
-    written = location.hash;
-    Tailvane.desk.change((desk) => desk.set_plan(fromAddress()));
-  }
-
-  function link() {
-    const plan = Tailvane.desk.ask((desk) => desk.plan_json());
-    return plan && location.href.split("#")[0] + fragmentOf(plan);
+    written = hash;
+    try {
+      const plan = await Tailvane.link.read(hash);
+      Tailvane.desk.change((desk) => desk.set_plan(plan));
+    } catch (failure) {
+      Tailvane.say.error(failure.message + ". Nothing was changed.");
+    }
   }
 
   const fileName = (ending) => {
     const name = Tailvane.find("show", "comet").textContent.replace(/[^A-Za-z0-9]+/g, "-").replace(/^-|-$/g, "").toLowerCase();
-    return (name || "comet") + ending;
+    return (name.slice(0, 60) || "comet") + ending;
   };
+
+  function save() {
+    const plan = Tailvane.desk.ask((desk) => desk.plan_json());
+    if (plan) {
+      Tailvane.save(fileName(".plan.json"), "application/json", plan);
+      Tailvane.write(done, "Saved as " + fileName(".plan.json") + ".");
+    }
+  }
 
   async function openFile() {
     const chosen = file.files[0];
@@ -69,37 +113,22 @@ Tailvane.plan = (function () {
     if (!chosen) {
       return;
     }
-    const text = await chosen.text();
-    const took = Tailvane.comet.take(text);
+    if (chosen.size > Tailvane.link.MOST_IN_PLAN) {
+      Tailvane.say.error(chosen.name + ": found " + Math.round(chosen.size / 1000) + " kB; expected a plan of at most " + Tailvane.link.MOST_IN_PLAN / 1000 + " kB");
+      Tailvane.write(done, "The plan was not used; nothing was changed.");
+      return;
+    }
+    const took = Tailvane.comet.take(await chosen.text());
     Tailvane.write(done, took === undefined ? "The plan was not used; nothing was changed." : "Opened " + chosen.name + ".");
   }
 
   function start() {
     Tailvane.desk.onRest(toAddress);
     window.addEventListener("hashchange", onAddress);
-    Tailvane.onAct("save-plan", () => {
-      const plan = Tailvane.desk.ask((desk) => desk.plan_json());
-      if (plan) {
-        Tailvane.save(fileName(".plan.json"), "application/json", plan);
-        Tailvane.write(done, "Saved as " + fileName(".plan.json") + ".");
-      }
-    });
+    Tailvane.onAct("save-plan", save);
     Tailvane.onAct("open-plan", () => file.click());
     file.addEventListener("change", openFile);
-    Tailvane.onAct("copy-link", () => {
-      const address = link();
-      if (address) {
-        Tailvane.copy(address, (words) => Tailvane.write(done, words));
-      }
-    });
-    Tailvane.onAct("save-svg", () => {
-      const svg = Tailvane.desk.ask((desk) => desk.svg(Tailvane.theme.name()));
-      if (svg) {
-        Tailvane.save(fileName("-sky.svg"), "image/svg+xml", svg);
-        Tailvane.write(done, "Saved as " + fileName("-sky.svg") + ".");
-      }
-    });
   }
 
-  return { start, fromAddress, fileName };
+  return { start, open, tell, save, fileName, lastAddress: () => written };
 })();

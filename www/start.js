@@ -1,10 +1,15 @@
 /*
  * In which order does the page come to life?
  *
- * The first picture comes first, the directions alone: an invented comet, or the plan in the address. Dust, words and
- * benches follow with the next frame. A bad plan in the address is said, and the invented comet is shown.
+ * The first picture comes first, the directions alone: the plan in the address, what this tab kept, or an invented comet.
+ * Dust, words and benches follow with the next frame. A bad plan in the address is said. In a frame of another page
+ * only the few parts of the compact page start.
  */
 (async function () {
+  const EVERYTHING = [
+    "sky", "almanac", "season", "clock", "say", "numbers", "tails", "drawings", "camera", "comet", "observer",
+    "plan", "night", "board", "share", "walk", "explain", "undo", "keep",
+  ];
   const starting = Tailvane.find("show", "starting");
   try {
     await Tailvane.core.load();
@@ -13,23 +18,14 @@
     return;
   }
   Tailvane.theme.start();
-  const invented = Tailvane.core.exports().examples()[0].plan;
-  let refusal = null;
-  try {
-    Tailvane.desk.start(Tailvane.plan.fromAddress() || invented);
-  } catch (failure) {
-    refusal = failure;
-    Tailvane.desk.start(invented);
-  }
+  const found = await Tailvane.plan.open(Tailvane.core.exports().examples()[0].plan);
   starting.remove();
   Tailvane.sky.drawDirections();
   await shown();
-  for (const part of ["sky", "almanac", "season", "clock", "say", "numbers", "tails", "drawings", "camera", "comet", "observer", "plan", "night", "board"]) {
+  for (const part of Tailvane.embed.on() ? Tailvane.embed.PARTS : EVERYTHING) {
     Tailvane[part].start();
   }
-  if (refusal) {
-    Tailvane.say.error(refusal.message + ". An invented comet is shown instead.");
-  }
+  Tailvane.plan.tell(found);
   Tailvane.desk.redraw();
   document.documentElement.dataset.ready = "yes";
 

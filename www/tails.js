@@ -203,5 +203,5 @@ Tailvane.tails = (function () {
     }
   }
 
-  return { start, layers };
+  return { start, layers, restoreLayers };
 })();

@@ -132,6 +132,13 @@ pub struct Comet {
 /// Above this A1, A2 and A3 cannot be au/day^2: circulars print them in units of 1e-8 au/day^2.
 pub const LARGEST_NONGRAVITATIONAL_AU_D2: f64 = 1e-4;
 
+/// Perihelion distances that are taken, au: far wider than any comet's. Beyond them arithmetic runs out of digits.
+const PERIHELION_AU: [f64; 2] = [1e-4, 1e4];
+/// The interstellar comets known have up to 6; beyond 1000 nothing is a path about the Sun.
+const GREATEST_ECCENTRICITY: f64 = 1000.0;
+/// A body that goes round within days is no comet, and months of its dust are thousands of turns.
+const LEAST_SEMI_MAJOR_AXIS_AU: f64 = 0.2;
+
 /// The longest name kept, in characters.
 pub const LONGEST_NAME: usize = 200;
 
@@ -151,8 +158,10 @@ impl Elements {
             require(&format!("comet.elements.{key}"), value, holds, allowed)
         };
         let (q, e, i) = (self.perihelion_distance_au, self.eccentricity, self.inclination_deg);
-        check("perihelion_distance_au", q, q > 0.0, "a perihelion distance above 0 au")?;
-        check("eccentricity", e, e >= 0.0, "an eccentricity of 0 or more")?;
+        let [nearest, farthest] = PERIHELION_AU;
+        let allowed = "a perihelion distance above 0 au, from 0.0001 to 10000";
+        check("perihelion_distance_au", q, (nearest..=farthest).contains(&q), allowed)?;
+        check("eccentricity", e, (0.0..=GREATEST_ECCENTRICITY).contains(&e), "an eccentricity of 0 or more, to 1000")?;
         check("inclination_deg", i, (0.0..=180.0).contains(&i), "an inclination from 0 to 180 degrees")?;
         let angle = "an angle from -360 to 360 degrees";
         let (node, peri) = (self.ascending_node_deg, self.argument_of_perihelion_deg);
@@ -184,6 +193,9 @@ impl Comet {
             return Err(Error::new(Kind::Range, Place::Field("comet.name".into()), format!("{found:?}"), allowed));
         }
         self.elements.validate()?;
+        let (q, e) = (self.elements.perihelion_distance_au, self.elements.eccentricity);
+        let allowed = "an orbit of a month or longer: q of at least 0.2 au times 1 - e";
+        require("comet.elements.perihelion_distance_au", q, q >= LEAST_SEMI_MAJOR_AXIS_AU * (1.0 - e), allowed)?;
         for (index, branch) in self.brightness.iter().enumerate() {
             branch.validate(|key| format!("comet.brightness[{index}].{key}"))?;
         }

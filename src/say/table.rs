@@ -185,7 +185,7 @@ fn unlinked(words: &str, out: &mut String, mut put: impl FnMut(char, &mut String
 /// Every ASCII sign that CommonMark could read as markup behind a backslash, which it takes away.
 fn markdown(words: &str) -> String {
     let mut out = String::new();
-    unlinked(words, &mut out, |letter, out| {
+    unlinked(words.trim(), &mut out, |letter, out| {
         if matches!(
             letter,
             '\\' | '`' | '*' | '_' | '{' | '}' | '[' | ']' | '<' | '>' | '#' | '|' | '~' | '!' | '&' | '$' | '@'
@@ -194,8 +194,12 @@ fn markdown(words: &str) -> String {
         }
         out.push(letter);
     });
-    // At the start of a line these would begin a list or a rule.
-    if out.starts_with(['+', '-', '=']) { format!("\\{out}") } else { out }
+    // At the start of a line these would begin a list, a rule, or after a number a numbered list.
+    let first = out.find(|c: char| !c.is_ascii_digit()).unwrap_or(out.len());
+    if out[first..].starts_with(if first == 0 { &['+', '-', '='][..] } else { &['.', ')'][..] }) {
+        out.insert(first, '\\');
+    }
+    out
 }
 
 fn wiki(words: &str) -> String {

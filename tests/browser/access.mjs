@@ -26,11 +26,27 @@ export default (context) =>
         await page.$$eval("details", (all) => all.forEach((details) => (details.open = true)));
         await page.click(".quantity");
         await paste(page, "no elements");
+        // Every part that comes and goes: walk, notice, refused copy, explanation.
+        await page.$eval('[data-act="walk"]', (button) => button.click());
+        await page.evaluate(() => {
+          Tailvane.notice("Something to know.", ["Do it", () => {}]);
+          document.querySelector('[data-box="copy"]').hidden = false;
+          document.querySelector('[data-act="explain"]').click();
+        });
+        await page.hover('[data-act="undo"]');
+        await paste(page, "no elements");
         await settled(page);
         assert.deepEqual(await violations(page), []);
         await page.close();
       });
     }
+
+    test("the checker finds nothing in a frame of another page", async () => {
+      const { page } = await open(context.browser, PAGE_ADDRESS + "#embed=paper");
+      await settled(page);
+      assert.deepEqual(await violations(page), []);
+      await page.close();
+    });
 
     test("a planted fault is found", async () => {
       const { page } = await open(context.browser, PAGE_ADDRESS);
@@ -63,7 +79,7 @@ export default (context) =>
       await page.$$eval("details", (all) => all.forEach((details) => (details.open = true)));
       const reached = new Set();
       let unseen = "";
-      for (let i = 0; i < 240; i += 1) {
+      for (let i = 0; i < 320; i += 1) {
         await page.keyboard.press("Tab");
         const at = await page.evaluate(() => {
           const element = document.activeElement;
@@ -85,7 +101,7 @@ export default (context) =>
         }
       }
       assert.equal(unseen, "");
-      for (const hook of ["play", "time", "theme", "sky", "season", "elements", "read", "keep", "copy-table", "save-plan", "eccentricity"]) {
+      for (const hook of ["play", "time", "theme", "sky", "season", "elements", "read", "keep", "copy-table", "save-plan", "eccentricity", "undo", "explain", "walk", "copy-figure"]) {
         assert.ok(reached.has(hook), hook + " was not reached; reached: " + [...reached].join(" "));
       }
       await page.close();

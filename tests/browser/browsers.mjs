@@ -8,6 +8,7 @@ import { spawn, spawnSync } from "node:child_process";
 import { existsSync } from "node:fs";
 import path from "node:path";
 import { fileURLToPath, pathToFileURL } from "node:url";
+import { inflateRawSync } from "node:zlib";
 import puppeteer from "puppeteer-core";
 
 export const ROOT = path.resolve(path.dirname(fileURLToPath(import.meta.url)), "../..");
@@ -34,13 +35,13 @@ export const BROWSERS = {
       args: process.getuid && process.getuid() === 0 ? ["--no-sandbox"] : [],
       defaultViewport: { width: 1280, height: 800 },
     }),
-  firefox: () =>
+  firefox: (prefs = {}) =>
     puppeteer.launch({
       browser: "firefox",
       executablePath: program(["/usr/bin/firefox-esr", "/usr/bin/firefox"]),
       headless: true,
       defaultViewport: { width: 1280, height: 800 },
-      extraPrefsFirefox: { "security.fileuri.strict_origin_policy": true },
+      extraPrefsFirefox: { "security.fileuri.strict_origin_policy": true, ...prefs },
     }),
 };
 
@@ -110,7 +111,7 @@ export function commandLineRows(plan, args = []) {
 }
 
 /** Rows of CSV (RFC 4180). */
-function parseCsv(text) {
+export function parseCsv(text) {
   const rows = [[]];
   const field = /("(?:[^"]|"")*"|[^,\r\n]*)(,|\r?\n|$)/y;
   while (field.lastIndex < text.length) {
@@ -127,7 +128,13 @@ function parseCsv(text) {
 export async function planOf(page) {
   await rested(page);
   const hash = await page.evaluate(() => location.hash);
-  return decodeURIComponent(hash.replace(/^#plan=/, ""));
+  return planIn(hash);
+}
+
+/** The plan in a fragment, readable or packed, as another program would read it. */
+export function planIn(fragment) {
+  const coded = fragment.replace(/^#(embed(=[a-z]+)?&)?plan=/, "");
+  return coded.startsWith("~1.") ? inflateRawSync(Buffer.from(coded.slice(3), "base64url")).toString() : decodeURIComponent(coded);
 }
 
 /** The numbers of the read-out table by quantity, in full precision. */

@@ -220,7 +220,7 @@ export default (context) =>
         // Nothing is to land in anyone's download folder.
         HTMLAnchorElement.prototype.click = () => {};
       });
-      await page.click('[data-bench="plan"] > summary');
+      await page.click('[data-bench="share"] > summary');
       await page.click('[data-act="save-plan"]');
       await page.click('[data-act="save-svg"]');
       const [plan, svg] = await page.evaluate(() => Promise.all(window.saved.map((blob) => blob.text())));

@@ -8,14 +8,18 @@ import { existsSync } from "node:fs";
 import { BROWSERS, PAGE_FILE, serve } from "./browsers.mjs";
 import access from "./access.mjs";
 import camera from "./camera.mjs";
+import embed from "./embed.mjs";
 import gallery from "./gallery.mjs";
+import hostile from "./hostile.mjs";
 import input from "./input.mjs";
+import keep from "./keep.mjs";
 import layout from "./layout.mjs";
 import night from "./night.mjs";
 import numbers from "./numbers.mjs";
 import tails from "./tails.mjs";
 import quiet from "./quiet.mjs";
 import season from "./season.mjs";
+import share from "./share.mjs";
 import time from "./time.mjs";
 
 if (!existsSync(PAGE_FILE)) {
@@ -41,7 +45,7 @@ describe("the page", { concurrency: wanted.length }, () => {
           context.server.stop();
         }
       });
-      for (const part of [quiet, numbers, tails, night, camera, time, season, input, access, layout, gallery]) {
+      for (const part of [quiet, numbers, tails, night, camera, time, season, input, access, layout, keep, share, embed, hostile, gallery]) {
         part(context);
       }
     });

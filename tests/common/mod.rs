@@ -60,7 +60,7 @@ prop_compose! {
 
 prop_compose! {
     pub fn elements()(
-        perihelion_distance_au in prop_oneof![numbers(0.0001, 50.0), 1e-12..1e12_f64],
+        perihelion_distance_au in prop_oneof![numbers(0.2, 50.0), 0.2..1e4_f64],
         eccentricity in prop_oneof![Just(0.0), Just(1.0), numbers(0.0, 10.0), 0.99999..1.00001_f64],
         inclination_deg in numbers(0.0, 180.0),
         ascending_node_deg in numbers(-360.0, 360.0),

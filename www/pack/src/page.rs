@@ -8,12 +8,14 @@
 
 use crate::block::block;
 use crate::sites;
-use crate::wasm::Build;
+use crate::wasm::{Build, TARGET, cargo};
 use base64::Engine;
 use base64::engine::general_purpose::STANDARD;
 use sha2::{Digest, Sha256};
+use std::collections::BTreeSet;
 use std::fs;
 use std::path::{Path, PathBuf};
+use std::process::Command;
 
 /// The packed page.
 pub struct Packed {
@@ -34,6 +36,59 @@ const BODY: &str = "body.html";
 const STYLES: &str = "styles.css";
 const SCRIPTS: &str = "scripts.js";
 
+/// What controls and walk say, and the name of its data block.
+pub const WORDS: &str = "words.data";
+/// Where the packed software is listed, on a line of its own.
+const LICENCES: &str = "<!-- licences -->";
+
+/// The words of the controls and the walk with its plans inside, as one JSON text.
+///
+/// # Errors
+/// A file that cannot be read, or a list whose lines are not one `"plan": "NAME"` for each step.
+pub fn words(root: &Path) -> Result<Vec<u8>, String> {
+    let read = |name: &str| fs::read_to_string(root.join("www").join(name)).map_err(|e| format!("www/{name}: {e}"));
+    let explain = read("explain.json")?;
+    let mut walk = String::new();
+    for line in read("walk/list.walk.json")?.lines() {
+        match between(line.trim().trim_end_matches(','), "\"plan\": \"", "\"") {
+            Some(name) => walk.push_str(&format!("\"plan\":{}", read(&format!("walk/{name}"))?.trim())),
+            None => walk.push_str(line.trim()),
+        }
+    }
+    Ok(format!("{{\"explain\":{},\"walk\":{walk}}}", explain.trim()).into_bytes())
+}
+
+/// The crates in the page with their licences, as items of a list. What only builds the page is not in it.
+///
+/// # Errors
+/// Cargo, or an answer of another shape.
+fn licences(root: &Path) -> Result<String, String> {
+    let run = Command::new(cargo())
+        .current_dir(root)
+        .args(["tree", "--package", "tailvane", "--target", TARGET, "--edges", "normal,no-proc-macro"])
+        .args(["--prefix", "none", "--no-dedupe", "--format", "{p}|{l}"])
+        .output()
+        .map_err(|e| format!("cargo could not be started: {e}"))?;
+    let text = String::from_utf8_lossy(&run.stdout).into_owned();
+    let mut items = BTreeSet::new();
+    for line in text.lines().filter(|line| !line.trim().is_empty()) {
+        let (crate_, licence) = line.split_once('|').ok_or_else(|| format!("cargo tree: found {line}"))?;
+        let named: Vec<&str> = crate_.split(' ').take(2).collect();
+        let plain = |c: char| c.is_ascii_alphanumeric() || "-_. /()+".contains(c);
+        if named.len() != 2 || licence.is_empty() || !line.replace('|', "").chars().all(plain) {
+            return Err(format!("cargo tree: found {line}; expected a crate with its licence"));
+        }
+        if !named[0].starts_with("tailvane") {
+            items.insert(format!("<li>{} {}: {licence}</li>\n", named[0], named[1].trim_start_matches('v')));
+        }
+    }
+    if !run.status.success() || items.is_empty() {
+        return Err(format!("cargo tree: {}", String::from_utf8_lossy(&run.stderr)));
+    }
+    items.insert("<li>Rust standard library: MIT OR Apache-2.0</li>\n".into());
+    Ok(items.into_iter().collect())
+}
+
 /// Packs www/ and the built core into target/page/tailvane.html.
 ///
 /// # Errors
@@ -43,15 +98,16 @@ pub fn pack(root: &Path, build: &Build) -> Result<Packed, String> {
     let read = |name: &str| fs::read_to_string(www.join(name)).map_err(|e| format!("www/{name}: {e}"));
     let sites = sites::read(root)?;
     let sites = block(&[(SITES, sites.words.as_bytes()), (SITE_NUMBERS, &sites.numbers)])?;
-    let parts =
-        taken_apart(&read("index.html")?, |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) })?;
+    let words = block(&[(WORDS, &words(root)?)])?;
+    let index = read("index.html")?.replacen(LICENCES, licences(root)?.trim_end(), 1);
+    let parts = taken_apart(&index, |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) })?;
     let start = block(&[
         (BODY, parts.body.as_bytes()),
         (STYLES, parts.styles.as_bytes()),
         (SCRIPTS, parts.scripts.as_bytes()),
         (WASM, &build.wasm),
     ])?;
-    let html = assembled(&parts, &read(UNPACK)?, &(start + &sites))?;
+    let html = assembled(&parts, &read(UNPACK)?, &(start + &sites + &words))?;
     let path = root.join("target/page/tailvane.html");
     fs::create_dir_all(path.parent().expect("the page lies in a folder")).map_err(|e| format!("target/page: {e}"))?;
     fs::write(&path, &html).map_err(|e| format!("{}: {e}", path.display()))?;

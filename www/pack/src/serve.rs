@@ -5,7 +5,7 @@
 //! can read through it.
 
 use crate::open::open;
-use crate::page::{GLUE, SITE_NUMBERS, SITES, WASM};
+use crate::page::{GLUE, SITE_NUMBERS, SITES, WASM, WORDS, words};
 use crate::sites;
 use crate::wasm::Build;
 use std::fs;
@@ -93,6 +93,7 @@ fn content(path: &str, root: &Path, build: &Build, page: &Path) -> Option<(&'sta
         GLUE => return Some(("text/javascript", build.glue.clone().into_bytes())),
         WASM => return Some(("application/wasm", build.wasm.clone())),
         SITES => return Some(("text/plain", sites::read(root).ok()?.words.into_bytes())),
+        WORDS => return words(root).ok().map(|text| ("application/octet-stream", text)),
         SITE_NUMBERS => return Some(("application/octet-stream", sites::read(root).ok()?.numbers)),
         _ => {}
     }

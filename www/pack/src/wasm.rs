@@ -7,7 +7,7 @@ use std::path::Path;
 use std::process::{Command, Stdio};
 use wasm_bindgen_cli_support::Bindgen;
 
-const TARGET: &str = "wasm32-unknown-unknown";
+pub const TARGET: &str = "wasm32-unknown-unknown";
 
 /// The core, ready for a browser.
 pub struct Build {
@@ -40,7 +40,7 @@ pub fn build(root: &Path) -> Result<Build, String> {
     bind(&input)
 }
 
-fn cargo() -> String {
+pub fn cargo() -> String {
     std::env::var("CARGO").unwrap_or_else(|_| "cargo".into())
 }
 
