@@ -253,7 +253,7 @@ fn comets() -> impl Strategy<Value = (Plan, f64)> {
     let laws = (-5.0..-1.0_f64, 0.05..2.5_f64, 5.0..600.0_f64);
     (orbit, angles, laws).prop_map(|((q, e, inclination), (node, peri, days), (log_beta, beta_greatest, age))| {
         let elements = Elements {
-            perihelion_distance_au: q,
+            perihelion_distance_au: q.max(0.2 * (1.0 - e)),
             eccentricity: e,
             inclination_deg: inclination,
             ascending_node_deg: node,
