@@ -255,7 +255,7 @@ fn comets() -> impl Strategy<Value = (Plan, f64)> {
     let orbit = orbit.prop_filter("a period below a month", |(q, e, _)| *q >= 0.2 * (1.0 - e));
     (orbit, angles, laws).prop_map(|((q, e, inclination), (node, peri, days), (log_beta, beta_greatest, age))| {
         let elements = Elements {
-            perihelion_distance_au: q,
+            perihelion_distance_au: q.max(0.2 * (1.0 - e)),
             eccentricity: e,
             inclination_deg: inclination,
             ascending_node_deg: node,
