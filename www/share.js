@@ -266,6 +266,10 @@ addEventListener("message", (event) => {
   function start() {
     offer("sky", "Sky plane", (desk, ...as) => desk.svg_of("sky", ...as));
     offer("orbit", "Orbit view", (desk, ...as) => desk.svg_of("orbit", ...as));
+    offer("season", "Season ribbon", (desk, theme) => desk.season_svg(theme));
+    offer("card", "Field card", (desk, theme) => desk.card_svg(theme));
+    offer("night", "Night", (desk, ...as) => desk.night_svg(...as));
+    offer("horizon", "Comet over the horizon", (desk, ...as) => desk.horizon_svg(...as));
     offer("map", "Dust by beta and age", (desk, ...as) => desk.svg_of("map", ...as));
     const address = choice("address");
     address.value = Tailvane.store.read(KEPT_ADDRESS) || "";
