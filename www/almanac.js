@@ -30,11 +30,13 @@ Tailvane.almanac = (function () {
         return label;
       })
     );
-    collect();
+    curves = checked();
   }
 
+  const checked = () => [...choices.querySelectorAll("input:checked")].map((check) => check.dataset.curve).join();
+
   function collect() {
-    curves = [...choices.querySelectorAll("input:checked")].map((check) => check.dataset.curve).join();
+    curves = checked();
     Tailvane.store.write("season-curves", curves);
   }
 
