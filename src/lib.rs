@@ -6,6 +6,7 @@
 //! | --- | --- |
 //! | [`error`] | what was refused, where, and what is allowed? |
 //! | [`order`] | in which order do things stand? |
+//! | [`decimal`] | which number does a decimal text mean? |
 //! | [`time`] | which instant does a typed date mean? |
 //! | [`caution`] | what was computed but is doubtful, and why? |
 //! | [`frame`] | how do directions turn into angles, and one frame into another? |
@@ -25,6 +26,7 @@
 
 pub mod error;
 pub mod order;
+pub mod decimal;
 pub mod time;
 pub mod caution;
 pub mod frame;

@@ -10,6 +10,7 @@
 
 use super::ellipsoid::from_parallax_constants;
 use super::observer::Site;
+use crate::decimal;
 
 /// The table, for shells that carry it in their own binary.
 #[cfg(not(target_arch = "wasm32"))]
@@ -72,9 +73,12 @@ fn rows(table: &str) -> impl Iterator<Item = Row<'_>> {
 impl Row<'_> {
     /// None if a number cannot be read. Rounded to 0.1 m, finer than any row is published.
     fn coded(&self) -> Option<Coded> {
-        let longitude_deg: f64 = self.longitude_deg.parse().ok()?;
-        let place =
-            from_parallax_constants(longitude_deg.to_radians(), self.rho_cos.parse().ok()?, self.rho_sin.parse().ok()?);
+        let longitude_deg: f64 = decimal::read(self.longitude_deg)?;
+        let place = from_parallax_constants(
+            longitude_deg.to_radians(),
+            decimal::read(self.rho_cos)?,
+            decimal::read(self.rho_sin)?,
+        );
         Some(Coded {
             code: self.code.to_owned(),
             site: Site {

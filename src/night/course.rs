@@ -169,7 +169,7 @@ impl Course {
             add(EventKind::BestBegins, Some(best.begin));
             add(EventKind::BestEnds, Some(best.end));
         }
-        events.sort_by(|a, b| a.time.tdb_days().total_cmp(&b.time.tdb_days()));
+        crate::order::by_number(&mut events, |event| event.time.tdb_days());
         Ok(Course { evening: *evening, samples, twilights, sun_lowest_deg, comet_highest_deg, dark, best, events })
     }
 

@@ -163,6 +163,6 @@ pub fn times(course: &Course, step_days: f64) -> Vec<(Instant, Option<EventKind>
     let mut times: Vec<(Instant, Option<EventKind>)> =
         (first..=last).map(|number| (Instant::from_ut1_days(number as f64 * step_days), None)).collect();
     times.extend(course.events.iter().map(|event| (event.time, Some(event.kind))));
-    times.sort_by(|a, b| a.0.tdb_days().total_cmp(&b.0.tdb_days()));
+    crate::order::by_number(&mut times, |time| time.0.tdb_days());
     times
 }

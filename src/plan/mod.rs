@@ -209,7 +209,7 @@ fn check_version(version: Option<&str>) -> Result<(), Error> {
     match version {
         None => refuse("no `tailvane_plan`".into(), format!("`\"tailvane_plan\": {VERSION}`, the version of the plan")),
         Some(version) if version == VERSION.to_string() => Ok(()),
-        Some(version) if version.parse::<f64>().is_ok_and(|version| version > f64::from(VERSION)) => refuse(
+        Some(version) if crate::decimal::read(version).is_some_and(|version| version > f64::from(VERSION)) => refuse(
             format!("a plan of version {version}"),
             format!("version {VERSION}, the newest that this Tailvane reads; a newer Tailvane wrote the plan"),
         ),

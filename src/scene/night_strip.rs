@@ -158,7 +158,7 @@ fn draw_light(
     let mut edges = vec![plane.from, plane.from.plus_days(plane.days)];
     edges.extend(course.twilights.iter().flat_map(|twilight| [twilight.evening, twilight.morning]).flatten());
     edges.retain(|time| (0.0..=plane.days).contains(&(time.tdb_days() - plane.from.tdb_days())));
-    edges.sort_by(|a, b| a.tdb_days().total_cmp(&b.tdb_days()));
+    crate::order::by_number(&mut edges, |edge| edge.tdb_days());
     for pair in edges.windows(2) {
         let middle = 0.5 * (pair[0].tdb_days() + pair[1].tdb_days());
         let level = light(sun_at(course, middle));

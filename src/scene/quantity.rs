@@ -152,7 +152,7 @@ pub fn round_arcs() -> impl DoubleEndedIterator<Item = RoundArc> {
     let degrees = SIXTIETHS.into_iter().chain(["45", "60"]).map(|words| (words, '°', 1.0));
     let all: Vec<_> = seconds.chain(minutes).chain(degrees).collect();
     all.into_iter().map(|(words, sign, parts): (&str, char, f64)| RoundArc {
-        angle_rad: (words.parse::<f64>().expect("a number in the list above") / parts).to_radians(),
+        angle_rad: (crate::decimal::read(words).expect("a number in the list above") / parts).to_radians(),
         words: format!("{words}{sign}"),
     })
 }

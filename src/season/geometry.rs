@@ -211,7 +211,7 @@ pub fn moments<'a>(cells: impl Iterator<Item = &'a Cell>) -> Vec<Moment> {
         before = Some(cell);
     }
     let mut all: Vec<Moment> = by_search.into_iter().flatten().collect();
-    all.sort_by(|a, b| a.days.total_cmp(&b.days));
+    crate::order::by_number(&mut all, |one| one.days);
     all
 }
 

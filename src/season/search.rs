@@ -129,7 +129,7 @@ impl Search {
         }
         let sunward = sunward::windows(self.looks.between(*numbers.start(), *numbers.end()), &self.stretch);
         events.extend(sunward::events(&sunward));
-        events.sort_by(|a, b| a.time.tdb_days().total_cmp(&b.time.tdb_days()));
+        crate::order::by_number(&mut events, |event| event.time.tdb_days());
         let near_sun = near_sun(&events, &self.stretch, self.survey.sky(self.stretch.from().tdb_days()).elongation_rad);
         let strengths = self.looks.between(*numbers.start(), *numbers.end()).map(|look| look.strength).collect();
         Season { events, sunward, strengths, near_sun }

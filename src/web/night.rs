@@ -410,8 +410,8 @@ impl Desk {
             let line = &roster.lines[number];
             let cell = |column: &crate::night::board::column::Column| {
                 let words = if csv { column.full(line) } else { column.printed(line) };
-                match words.parse::<f64>() {
-                    Ok(_) if column.key != "name" => Cell::Number(words),
+                match crate::decimal::read(&words) {
+                    Some(_) if column.key != "name" => Cell::Number(words),
                     _ => Cell::Text(words),
                 }
             };

@@ -98,7 +98,7 @@ impl SiteFields {
 pub fn number(text: &str, field: &str) -> Result<f64, Error> {
     // A typographic minus is what this page itself prints.
     let plain = text.trim().replace('\u{2212}', "-");
-    plain.parse::<f64>().ok().filter(|number| number.is_finite()).ok_or_else(|| {
+    crate::decimal::read(&plain).filter(|number| number.is_finite()).ok_or_else(|| {
         let found = if plain.is_empty() {
             "nothing".to_owned()
         } else {

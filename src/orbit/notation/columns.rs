@@ -17,6 +17,7 @@
 //! The reference is not kept.
 
 use super::{designation, label, quote, refusal};
+use crate::decimal;
 use crate::error::Error;
 use crate::orbit::elements::{Brightness, Comet, Elements};
 use crate::time::{Scale, Stamp};
@@ -238,8 +239,8 @@ impl Record {
         let (before, after) = (before.trim_start(), after.trim_end());
         let before = before.strip_prefix(['-', '+']).unwrap_or(before);
         let all_digits = |part: &str| !part.is_empty() && part.bytes().all(|byte| byte.is_ascii_digit());
-        match text.trim().parse() {
-            Ok(value) if all_digits(before) && all_digits(after) => Ok(value),
+        match decimal::read(text.trim()) {
+            Some(value) if all_digits(before) && all_digits(after) => Ok(value),
             _ => {
                 let is_digit = |column: &usize| {
                     let c = self.char(*column);

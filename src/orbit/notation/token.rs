@@ -4,6 +4,8 @@
 //! digit, as in `0.5200(12)`, are an uncertainty and dropped with them. A comma between digits stays in the word, so
 //! that a decimal comma is seen and refused.
 
+use crate::decimal;
+
 /// What a token is.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub(super) enum Sort {
@@ -109,9 +111,9 @@ pub(super) fn number(text: &str) -> Option<Number> {
     if !digits(whole) || !digits(decimals) || whole.len() + decimals.len() == 0 {
         return None;
     }
-    let value = plain.parse::<f64>().ok().filter(|value| value.is_finite())?;
+    let value = decimal::read(&plain).filter(|value| value.is_finite())?;
     let places = exponent.saturating_sub(i32::try_from(decimals.len()).ok()?);
-    let half_unit = format!("5e{}", places.saturating_sub(1)).parse().unwrap_or(0.0);
+    let half_unit = decimal::read(&format!("5e{}", places.saturating_sub(1))).unwrap_or(0.0);
     Some(Number { value, half_unit })
 }
 

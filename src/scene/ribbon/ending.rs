@@ -37,7 +37,7 @@ fn beside(ribbon: &mut Ribbon, series: &Series) {
         let y = plot.bottom - share * plot.height();
         ends.push((curve, scale, y, y));
     }
-    ends.sort_by(|a, b| a.2.total_cmp(&b.2));
+    crate::order::by_number(&mut ends, |end| end.2);
     let room = libm::floor((frame.foot - plot.top) / row) as usize;
     ends.truncate(room.max(1));
     spread(&mut ends, plot.top + 0.5 * row, frame.foot - 0.5 * row, row);

@@ -61,7 +61,7 @@ pub fn draw(ribbon: &mut Ribbon, strip: &Strip) {
     let unit = ribbon.scene.unit_px;
     let head = frame.plot.top;
     let mut events: Vec<&Event> = strip.season.events.iter().filter(|event| ribbon.stretch.holds(event.time)).collect();
-    events.sort_by_key(|event| rank(event.kind));
+    crate::order::by_rank(&mut events, |event| rank(event.kind).into());
     let roomy = frame.plot.width() / ribbon.stretch.days() >= ROOMY * unit;
     let mut flags: Vec<Flag> = Vec::new();
     let mut texts = Vec::new();

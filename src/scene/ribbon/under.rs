@@ -33,7 +33,7 @@ pub fn words(strip: &Strip, time: Instant, values: &[(Curve, f64)], reach_days: 
         });
     }
     let mut near: Vec<_> = season.events.iter().filter(|event| away(event.time, time) <= reach_days).collect();
-    near.sort_by_key(|event| flag::rank(event.kind));
+    crate::order::by_rank(&mut near, |event| flag::rank(event.kind).into());
     said.extend(near.iter().take(2).map(|event| format!("{} {}", event.kind.words(), event.time.utc_minute())));
     said
 }
