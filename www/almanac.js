@@ -63,6 +63,7 @@ Tailvane.almanac = (function () {
     const go = document.createElement("button");
     go.type = "button";
     go.className = "quantity";
+    go.title = "Goes to this time.";
     go.textContent = time;
     go.addEventListener("click", () => {
       Tailvane.season.pause();

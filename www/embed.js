@@ -54,7 +54,12 @@ Tailvane.embed = (function () {
   async function openWhole(event) {
     event.preventDefault();
     const address = whole.href;
-    const opened = window.open(address, "_blank");
+    let opened = null;
+    try {
+      opened = window.open(address, "_blank");
+    } catch (refused) {
+      // Some browsers give nothing, some throw.
+    }
     if (opened) {
       opened.opener = null;
     } else {
