@@ -117,6 +117,7 @@ impl Falls {
     fn rest(&mut self, line: &[f32], weights: &[f64], subcells: usize) {
         let stride = line.len() / NODE;
         let (mut place, mut light, mut count) = ([[0.0; 8]; 3], [0.0; 8], 0);
+        let last = weights.iter().rposition(|weight| *weight > 0.0);
         for (column, weight) in weights.iter().enumerate().filter(|(_, weight)| **weight > 0.0) {
             for step in 0..subcells {
                 let part = (step as f32 + 0.5) / subcells as f32;
@@ -125,15 +126,12 @@ impl Falls {
                 }
                 light[count] = *weight;
                 count += 1;
-                if count == 8 {
-                    self.add(place.map(f32x8::from), &light, count);
+                if count == 8 || (Some(column) == last && step + 1 == subcells) {
+                    light[count..].fill(0.0);
+                    self.add(&place.map(f32x8::from), &light, count);
                     count = 0;
                 }
             }
-        }
-        if count > 0 {
-            light[count..].fill(0.0);
-            self.add(place.map(f32x8::from), &light, count);
         }
     }
 
@@ -164,15 +162,15 @@ impl Falls {
                         + node[6 + axis] * velocity[1]
                         + node[9 + axis] * velocity[2]
                 });
-                self.add(place, &[*weight; THROWS], THROWS);
+                self.add(&place, &[*weight; THROWS], THROWS);
                 *number += 1;
             }
         }
     }
 
-    /// Adds the first `count` of eight grains; the light of the others is 0.
-    #[inline(always)]
-    fn add(&mut self, [along, away, aside]: [f32x8; 3], light: &[f64; 8], count: usize) {
+    /// Adds the first `count` of eight grains; the light of the others is 0. One copy of it: the page is small.
+    #[inline(never)]
+    fn add(&mut self, &[along, away, aside]: &[f32x8; 3], light: &[f64; 8], count: usize) {
         let rule = &self.rule;
         let across = away * away + aside * aside;
         let length = across.sqrt();
@@ -204,7 +202,8 @@ impl Falls {
             self.light[bins[k] as usize] += light[k];
         }
         if self.keeps {
-            self.keep(&bins[..count], &rings[..count]);
+            self.bins.extend_from_slice(&bins[..count]);
+            self.rings.extend_from_slice(&rings[..count]);
             let inverse = f32x8::ONE / length;
             let (cosine, sine) = ((away * inverse).to_array(), (aside * inverse).to_array());
             for k in 0..count {
@@ -218,11 +217,6 @@ impl Falls {
                 }
             }
         }
-    }
-
-    fn keep(&mut self, bins: &[u16], rings: &[u8]) {
-        self.bins.extend_from_slice(bins);
-        self.rings.extend_from_slice(rings);
     }
 
     /// The same light by cell and by fine ring, each grain of it times the part that is seen of its bin (coarse ring by

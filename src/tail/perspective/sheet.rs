@@ -89,10 +89,10 @@ impl<'a> Sheet<'a> {
                 }
                 let start = &places[node / stride].state;
                 let (end, exact) = propagate_with_response(block.mu[node], start, block.time[node]);
-                for axis in 0..3 {
+                for (axis, answers) in response.iter_mut().enumerate() {
                     block.end[axis][node] = end.position_au[axis];
-                    for by in 0..3 {
-                        response[axis][by][node] = exact.position[(axis, by)];
+                    for (by, answer) in answers.iter_mut().enumerate() {
+                        answer[node] = exact.position[(axis, by)];
                     }
                 }
             }
