@@ -136,7 +136,7 @@ impl Engine {
         Vista::of(self.watch.orbit(), sky)
     }
 
-    /// Where the plan's tails lie in a sky of its comet; takes half a millisecond.
+    /// Where the plan's tails lie in a sky of its comet; takes about a millisecond.
     pub fn tails_at(&self, sky: &Sky) -> TailView {
         let vista = self.vista(sky);
         TailView { perspective: self.recipe.assess(&vista, sky), ion: Wedge::of(&vista, &self.plan.tails) }
