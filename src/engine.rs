@@ -26,7 +26,7 @@ use crate::sky::dark::{self, Day, NODE_DAYS, NODES, Window};
 use crate::sky::watch::Watch;
 use crate::tail::grain::Vista;
 use crate::tail::ion::Wedge;
-use crate::tail::perspective::{self, Perspective};
+use crate::tail::perspective::{Perspective, Recipe};
 use crate::time::Instant;
 use nalgebra::Vector3;
 
@@ -37,6 +37,8 @@ const OLD_ELEMENTS_DAYS: f64 = 100.0;
 pub struct Engine {
     plan: Plan,
     watch: Watch,
+    /// The laws of the plan's dust, made ready.
+    recipe: Recipe,
 }
 
 /// A sky and all that is doubtful about it.
@@ -61,7 +63,8 @@ impl Engine {
         plan.validate()?;
         let orbit = Orbit::new(&plan.comet.elements)?;
         let watch = Watch::new(orbit, plan.observer.clone());
-        Ok(Engine { plan, watch })
+        let recipe = Recipe::of(&plan.tails);
+        Ok(Engine { plan, watch, recipe })
     }
 
     pub fn plan(&self) -> &Plan {
@@ -133,13 +136,10 @@ impl Engine {
         Vista::of(self.watch.orbit(), sky)
     }
 
-    /// Where the plan's tails lie in a sky of its comet; takes about a millisecond.
+    /// Where the plan's tails lie in a sky of its comet; takes half a millisecond.
     pub fn tails_at(&self, sky: &Sky) -> TailView {
         let vista = self.vista(sky);
-        TailView {
-            perspective: perspective::assess(&vista, sky, &self.plan.tails),
-            ion: Wedge::of(&vista, &self.plan.tails),
-        }
+        TailView { perspective: self.recipe.assess(&vista, sky), ion: Wedge::of(&vista, &self.plan.tails) }
     }
 
     /// A sky and its tails in words.

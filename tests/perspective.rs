@@ -10,7 +10,7 @@ use tailvane::plan::Plan;
 use tailvane::sky::Sky;
 use tailvane::tail::grain::{Grain, Vista};
 use tailvane::tail::law::Tails;
-use tailvane::tail::perspective::{Grade, Map, Perspective, Side, Verdict};
+use tailvane::tail::perspective::{Grade, Map, Perspective, Recipe, Side, Verdict};
 use tailvane::tail::weight::Weights;
 use tailvane::time::Stamp;
 
@@ -347,6 +347,34 @@ fn every_nasty_sky_is_told_in_three_sentences_without_a_made_up_number() {
         }
     }
     assert!(in_line >= 1, "no sky of the gallery has comet, Sun and observer in line");
+}
+
+/// The season's search looks with a glance; what it finds must be what the sentence says.
+#[test]
+fn a_glance_sees_to_the_last_bit_what_the_sums_see() {
+    let mut grades = Vec::new();
+    let mut check = |name: &str, engine: &Engine, sky: &Sky| {
+        let whole = engine.tails_at(sky).perspective;
+        let glance = Recipe::of(&engine.plan().tails).glance(&engine.vista(sky), sky);
+        assert_eq!(glance.verdict, whole.verdict, "{name}");
+        for (seen, dust) in [(glance.at_rest, whole.at_rest), (glance.ejected, whole.ejected)] {
+            let bits = |share: f64, beside_tail: f64| [share.to_bits(), beside_tail.to_bits()];
+            assert_eq!(
+                seen.map(|seen| bits(seen.share, seen.beside_tail)),
+                dust.anti_tail.map(|part| bits(part.share, part.beside_tail)),
+                "{name}"
+            );
+            grades.push(dust.grade);
+        }
+    };
+    for night in nights() {
+        check(&night.name(), &night.engine, &night.sky);
+    }
+    for (name, plan) in gallery() {
+        let (engine, sky, _) = seen(plan);
+        check(&name, &engine, &sky);
+    }
+    assert!(grades.contains(&Grade::None) && grades.contains(&Grade::Strong), "{grades:?}");
 }
 
 #[test]

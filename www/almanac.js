@@ -30,11 +30,13 @@ Tailvane.almanac = (function () {
         return label;
       })
     );
-    collect();
+    curves = checked();
   }
 
+  const checked = () => [...choices.querySelectorAll("input:checked")].map((check) => check.dataset.curve).join();
+
   function collect() {
-    curves = [...choices.querySelectorAll("input:checked")].map((check) => check.dataset.curve).join();
+    curves = checked();
     Tailvane.store.write("season-curves", curves);
   }
 
@@ -63,6 +65,7 @@ Tailvane.almanac = (function () {
     const go = document.createElement("button");
     go.type = "button";
     go.className = "quantity";
+    go.title = "Goes to this time.";
     go.textContent = time;
     go.addEventListener("click", () => {
       Tailvane.season.pause();

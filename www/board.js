@@ -95,6 +95,7 @@ Tailvane.board = (function () {
         const button = Tailvane.element("button", name.textContent);
         button.type = "button";
         button.className = "bare";
+        button.title = "Shows this comet on the sky.";
         button.dataset.comet = row.goal;
         button.addEventListener("click", () => pick(row.goal));
         const first = Tailvane.element("th", "", button);
@@ -113,6 +114,7 @@ Tailvane.board = (function () {
     const button = Tailvane.element("button", Tailvane.headed(words, unit));
     button.type = "button";
     button.className = "bare";
+    button.title = "Sorts by this column; once more, the other way round.";
     button.addEventListener("click", () => {
       descending = sort === key && !descending;
       sort = key;

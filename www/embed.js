@@ -12,7 +12,7 @@
  * Anything else that comes in is ignored. What goes out holds nothing of the plan, so it may go to any host.
  */
 Tailvane.embed = (function () {
-  const PARTS = ["sky", "season", "say", "plan", "embed"];
+  const PARTS = ["sky", "almanac", "season", "clock", "say", "plan", "embed"];
   const asked = Tailvane.link.parts(location.hash);
   // A frame made from text has no address to carry a plan; it waits for one from its host.
   const embedded = asked.embed || location.protocol === "about:";
@@ -54,7 +54,12 @@ Tailvane.embed = (function () {
   async function openWhole(event) {
     event.preventDefault();
     const address = whole.href;
-    const opened = window.open(address, "_blank");
+    let opened = null;
+    try {
+      opened = window.open(address, "_blank");
+    } catch (refused) {
+      // Some browsers give nothing, some throw.
+    }
     if (opened) {
       opened.opener = null;
     } else {

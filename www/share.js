@@ -47,16 +47,25 @@ Tailvane.share = (function () {
 
   const html = (words) => words.replace(/[&<>"']/g, (c) => "&#" + c.charCodeAt(0) + ";");
 
+  /** The start of an element, its attributes unable to be anything else. */
+  const tag = (name, attributes) =>
+    "<" + name + Object.entries(attributes).map(([key, value]) => " " + key + '="' + html(String(value)) + '"').join("") + ">";
+
   const titleOf = (reading) => reading.comet + ", " + reading.time_words;
 
   async function snippet() {
     const address = await link("embed=" + Tailvane.theme.name() + "&");
     const reading = Tailvane.desk.ask((desk) => desk.reading());
-    return (
-      address &&
-      '<iframe src="' + html(address) + '" title="Tailvane: ' + html(titleOf(reading)) +
-      '" sandbox="allow-scripts allow-downloads" allow="clipboard-write" loading="lazy" width="100%" height="760"></iframe>'
-    );
+    const frame = {
+      src: address,
+      title: "Tailvane: " + titleOf(reading),
+      sandbox: "allow-scripts allow-downloads",
+      allow: "clipboard-write",
+      loading: "lazy",
+      width: "100%",
+      height: 760,
+    };
+    return address && tag("iframe", frame) + "</iframe>";
   }
 
   /* ---- Pictures ---- */
@@ -233,9 +242,10 @@ Tailvane.share = (function () {
       plain: () => title + "\n" + caption + "\n(" + name + ")\n\n" + numbers + "\n" + open + ":\n" + address + "\n",
       markdown: () => "![" + title + "](" + name + ")\n\n" + caption + "\n\n" + numbers + "\n[" + open + "](<" + address + ">)\n",
       wiki: () => "[[File:" + name + "|thumb|" + title + "]]\n" + caption + "\n\n" + numbers + "\n[" + address + " " + open + "]\n",
-      html: () =>
-        '<figure>\n<img src="' + carried + '" alt="' + title + '" width="' + size[0] + '" height="' + size[1] + '">\n<figcaption>' + caption +
-        "</figcaption>\n</figure>\n" + numbers + '<p><a href="' + html(address) + '">' + open + "</a></p>\n",
+      html: () => {
+        const image = tag("img", { src: carried, alt: Title, width: size[0], height: size[1] });
+        return "<figure>\n" + image + "\n<figcaption>" + caption + "</figcaption>\n</figure>\n" + numbers + "<p>" + tag("a", { href: address }) + open + "</a></p>\n";
+      },
     }[form()]();
     await Tailvane.copy(text, (said) => say(said + (form() === "html" ? "" : " The figure is saved as " + name + ": put it beside.")), form() === "html" ? text : "");
     if (form() !== "html") {
@@ -256,6 +266,10 @@ addEventListener("message", (event) => {
   function start() {
     offer("sky", "Sky plane", (desk, ...as) => desk.svg_of("sky", ...as));
     offer("orbit", "Orbit view", (desk, ...as) => desk.svg_of("orbit", ...as));
+    offer("season", "Season ribbon", (desk, theme) => desk.season_svg(theme));
+    offer("card", "Field card", (desk, theme) => desk.card_svg(theme));
+    offer("night", "Night", (desk, ...as) => desk.night_svg(...as));
+    offer("horizon", "Comet over the horizon", (desk, ...as) => desk.horizon_svg(...as));
     offer("map", "Dust by beta and age", (desk, ...as) => desk.svg_of("map", ...as));
     const address = choice("address");
     address.value = Tailvane.store.read(KEPT_ADDRESS) || "";

@@ -7,7 +7,9 @@
 #![forbid(unsafe_code)]
 
 pub mod grid;
+pub mod lay;
 pub mod row;
 pub mod solve;
 pub mod respond;
+pub mod strew;
 pub mod tone;

@@ -86,6 +86,11 @@ pub struct Sight {
 }
 
 impl Block {
+    /// Whether a grain is for the slow solver.
+    pub fn is_doubtful(&self, grain: usize) -> bool {
+        self.doubtful[grain / 64] >> (grain % 64) & 1 == 1
+    }
+
     /// Finds the ends.
     pub fn solve(&mut self) {
         self.prepare();

@@ -76,6 +76,7 @@ struct Text {
     camera: Option<Camera>,
     #[serde(default, skip_serializing_if = "Vec::is_empty")]
     cameras: Vec<Camera>,
+    #[serde(default, skip_serializing_if = "Option::is_none")]
     season: Option<season::Season>,
     #[serde(default, skip_serializing_if = "NightLaw::is_default")]
     night: NightLaw,

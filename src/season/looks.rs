@@ -1,6 +1,6 @@
 //! On which dates is the dust laid on the sky, so that no window of sunward dust is passed over?
 //!
-//! Each look costs a whole [`perspective::assess`], so they are few: the ends of each cell of [`CELL_DAYS`] and the
+//! Each look lays all of the dust on the sky ([`Recipe::glance`]), so they are few: the ends of each cell of [`CELL_DAYS`] and the
 //! moments at which the Earth crosses the orbit plane; then halves of every gap whose ends differ, or stand so near a limit
 //! that something could lie between, down to [`GAP_DAYS`]; finer where the aspect turns fast; and where the verdict
 //! changes, down to [`EDGE_DAYS`]. A window, or a gap in one, shorter than [`GAP_DAYS`] may be missed away from a
@@ -11,7 +11,7 @@ use super::sunward::{Origin, Strength};
 use crate::frame::separation_rad;
 use crate::tail::grain::Vista;
 use crate::tail::law::Tails;
-use crate::tail::perspective::{self, Dust, GRADE_FLOORS, Grade, Verdict};
+use crate::tail::perspective::{GRADE_FLOORS, Grade, Recipe, Standing, Verdict};
 use crate::time::Instant;
 use nalgebra::Vector3;
 use std::collections::BTreeMap;
@@ -46,9 +46,9 @@ impl Look {
         self.strength.time.tdb_days()
     }
 
-    fn at(survey: &mut Survey, tails: &Tails, days: f64) -> Self {
+    fn at(survey: &mut Survey, recipe: &Recipe, days: f64) -> Self {
         let sky = survey.sky(days);
-        let found = perspective::assess(&Vista::of(survey.orbit(), &sky), &sky, tails);
+        let found = recipe.glance(&Vista::of(survey.orbit(), &sky), &sky);
         let (origin, grade) = match found.verdict {
             Verdict::Perspective(grade) => (Some(Origin::Perspective), grade),
             Verdict::NeedsEjection(grade) => (Some(Origin::Ejection), grade),
@@ -59,11 +59,11 @@ impl Look {
                 time: Instant::from_tdb_days(days),
                 origin,
                 grade,
-                share: share(&found.ejected),
-                share_at_rest: share(&found.at_rest),
+                share: share(found.ejected),
+                share_at_rest: share(found.at_rest),
             },
-            level: level(&found.ejected),
-            level_at_rest: level(&found.at_rest),
+            level: level(found.ejected),
+            level_at_rest: level(found.at_rest),
             sight: sky.axes.sight,
             out: sky.comet.position_au,
         }
@@ -100,18 +100,20 @@ impl Look {
     }
 }
 
-fn share(dust: &Dust) -> f64 {
-    dust.anti_tail.map_or(0.0, |part| part.share)
+fn share(anti_tail: Option<Standing>) -> f64 {
+    anti_tail.map_or(0.0, |part| part.share)
 }
 
-fn level(dust: &Dust) -> f64 {
+fn level(anti_tail: Option<Standing>) -> f64 {
     let (_, beside_tail, share) = GRADE_FLOORS[GRADE_FLOORS.len() - 1];
-    dust.anti_tail.map_or(0.0, |part| (part.beside_tail / beside_tail).min(part.share / share))
+    anti_tail.map_or(0.0, |part| (part.beside_tail / beside_tail).min(part.share / share))
 }
 
 /// Every look made for one comet and its tails.
 #[derive(Default)]
 pub struct Looks {
+    /// The laws made ready, at the first look.
+    recipe: Option<Recipe>,
     by_step: BTreeMap<i64, Look>,
     /// Cells that are done, by number.
     done: BTreeMap<i64, ()>,
@@ -122,8 +124,9 @@ impl Looks {
     pub fn cell(&mut self, survey: &mut Survey, tails: &Tails, number: i64, crossings: &[f64]) {
         let step = |days: f64| (days * STEPS_PER_DAY).round() as i64;
         let (begin, end) = (number as f64 * CELL_DAYS, (number + 1) as f64 * CELL_DAYS);
+        let recipe = self.recipe.get_or_insert_with(|| Recipe::of(tails));
         let mut look = |step: i64| {
-            *self.by_step.entry(step).or_insert_with(|| Look::at(survey, tails, step as f64 / STEPS_PER_DAY))
+            *self.by_step.entry(step).or_insert_with(|| Look::at(survey, recipe, step as f64 / STEPS_PER_DAY))
         };
         let mut dates: Vec<i64> =
             crossings.iter().filter(|days| begin < **days && **days < end).map(|d| step(*d)).collect();

@@ -91,9 +91,12 @@ impl Weights {
     /// Centre of the ejection speeds at release, km/s.
     pub fn mean_speed_km_s(&self, beta: f64, sun_distance_au: f64) -> f64 {
         let laws = &self.laws;
-        laws.ejection_speed_km_s
-            * libm::pow(beta, laws.ejection_beta_exponent)
-            * libm::pow(sun_distance_au, -laws.ejection_distance_exponent)
+        laws.ejection_speed_km_s * libm::pow(beta, laws.ejection_beta_exponent) * self.slowing(sun_distance_au)
+    }
+
+    /// What the distance at release makes of the centre of the speeds: 1 at 1 au.
+    pub fn slowing(&self, sun_distance_au: f64) -> f64 {
+        libm::pow(sun_distance_au, -self.laws.ejection_distance_exponent)
     }
 
     /// The ejection velocity that a point of the unit cube stands for, over the centre of the speeds: radial away

@@ -14,11 +14,11 @@ use crate::night::table::{self, Row};
 use crate::orbit::conic::Orbit;
 use crate::orbit::elements::Comet;
 use crate::paint::canvas::CanvasPainter;
-use crate::paint::paint;
+use crate::paint::{paint, svg};
 use crate::plan::Plan;
 use crate::say;
 use crate::say::table::{Cell, Form, Table};
-use crate::scene::{horizon, night_strip};
+use crate::scene::{Scene, horizon, night_strip};
 use crate::sky::column::Value;
 use crate::sky::magnitude;
 
@@ -227,13 +227,19 @@ impl Desk {
 
     /// Draws the night strip.
     pub fn draw_night(&mut self, context: &CanvasRenderingContext2d, theme: &str, width_px: f64, height_px: f64) {
-        let Some((course, _)) = &self.night.course else { return };
-        let site = match &self.engine.plan().observer {
-            Observer::Site(site) => site.name.as_str(),
-            Observer::Geocentre => "",
-        };
-        let scene = night_strip::compose(course, site, self.seen.sky.time, width_px, height_px);
+        let Some(scene) = self.night_scene(width_px, height_px) else { return };
         paint(&scene, named_theme(theme), &mut CanvasPainter::new(context));
+    }
+
+    /// The night strip as an SVG file.
+    pub fn night_svg(&mut self, theme: &str, width_px: f64, height_px: f64) -> Result<String, JsValue> {
+        self.hold_night().map_err(refusal)?;
+        let (Some(scene), Some((course, _))) = (self.night_scene(width_px, height_px), &self.night.course) else {
+            return Ok(String::new());
+        };
+        let plan = self.engine.plan();
+        let title = format!("{}, night of {}", plan.comet.name, course.evening.date);
+        Ok(svg::write(&scene, named_theme(theme), &title, &say::night::course(course, &plan.night)))
     }
 
     /// The time under a place of the night strip, days of TDB.
@@ -249,6 +255,14 @@ impl Desk {
         let Ok(moment) = self.moment() else { return };
         let scene = horizon::compose(&moment, width_px, height_px);
         paint(&scene, named_theme(theme), &mut CanvasPainter::new(context));
+    }
+
+    /// The comet over the horizon as an SVG file.
+    pub fn horizon_svg(&mut self, theme: &str, width_px: f64, height_px: f64) -> Result<String, JsValue> {
+        let moment = self.moment().map_err(refusal)?;
+        let scene = horizon::compose(&moment, width_px, height_px);
+        let title = format!("{}, {}", self.engine.plan().comet.name, self.seen.sky.time.utc_minute());
+        Ok(svg::write(&scene, named_theme(theme), &title, &say::night::horizon(&moment)))
     }
 
     /// The night as CSV: the bytes of `tailvane night`.
@@ -433,6 +447,16 @@ impl Desk {
         self.night.course = Some((course, rows));
         self.night.number += 1;
         Ok(())
+    }
+
+    /// The night strip, where a night is at hand.
+    fn night_scene(&self, width_px: f64, height_px: f64) -> Option<Scene> {
+        let (course, _) = self.night.course.as_ref()?;
+        let site = match &self.engine.plan().observer {
+            Observer::Site(site) => site.name.as_str(),
+            Observer::Geocentre => "",
+        };
+        Some(night_strip::compose(course, site, self.seen.sky.time, width_px, height_px))
     }
 
     fn moment(&mut self) -> Result<Moment, Error> {

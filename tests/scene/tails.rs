@@ -251,9 +251,11 @@ fn comets() -> impl Strategy<Value = (Plan, f64)> {
     let orbit = (0.05..3.0_f64, prop::sample::select(vec![0.5, 0.95, 0.9999, 1.0, 1.0004, 3.0]), 0.0..180.0_f64);
     let angles = (0.0..360.0_f64, 0.0..360.0_f64, -150.0..300.0_f64);
     let laws = (-5.0..-1.0_f64, 0.05..2.5_f64, 5.0..600.0_f64);
+    // Shorter periods than a month are refused.
+    let orbit = orbit.prop_filter("a period below a month", |(q, e, _)| *q >= 0.2 * (1.0 - e));
     (orbit, angles, laws).prop_map(|((q, e, inclination), (node, peri, days), (log_beta, beta_greatest, age))| {
         let elements = Elements {
-            perihelion_distance_au: q,
+            perihelion_distance_au: q.max(0.2 * (1.0 - e)),
             eccentricity: e,
             inclination_deg: inclination,
             ascending_node_deg: node,

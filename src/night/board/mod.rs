@@ -28,7 +28,7 @@ use crate::sky::watch::Lookout;
 use crate::sky::{Sky, magnitude};
 use crate::tail::grain::Vista;
 use crate::tail::law::Tails;
-use crate::tail::perspective::{self, Verdict};
+use crate::tail::perspective::{Recipe, Verdict};
 use crate::time::Instant;
 use nalgebra::Vector3;
 
@@ -201,10 +201,10 @@ impl Board {
     }
 }
 
-/// How dust lies sunward of the comet of an entry, by the laws of the plan; takes a millisecond.
+/// How dust lies sunward of the comet of an entry, by the laws of the plan; takes half a millisecond.
 pub fn sunward(orbit: &Orbit, entry: &Entry, tails: &Tails) -> Sunward {
-    let found = perspective::assess(&Vista::of(orbit, &entry.sky), &entry.sky, tails);
-    Sunward { verdict: found.verdict, share: found.ejected.anti_tail.map_or(0.0, |part| part.share) }
+    let found = Recipe::of(tails).glance(&Vista::of(orbit, &entry.sky), &entry.sky);
+    Sunward { verdict: found.verdict, share: found.ejected.map_or(0.0, |part| part.share) }
 }
 
 /// Lagrange's weights of values at 0, 1, 2, 3, 4, at `x`.

@@ -2,7 +2,7 @@
 
 use super::sheet::Sheet;
 use super::sums::{Light, Rule, Sums};
-use super::tally::{Coma, Fallen};
+use super::tally::Coma;
 
 /// On which side of the nucleus a grain lies.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -60,31 +60,29 @@ impl Map {
 
 /// The map of a sheet whose dust was summed at rest and ejected.
 pub fn map(sheet: &Sheet, light: &Light, rule: &Rule, coma: &Coma, [at_rest, ejected]: [&Sums; 2]) -> Map {
-    let columns = sheet.betas.len() - 1;
+    let columns = sheet.columns();
     let cells = light
         .cells
         .iter()
+        .zip(light.densities(sheet))
         .enumerate()
-        .map(|(index, own)| {
-            let (row, column) = (index / columns, index % columns);
-            let part = |sums: &[f64]| if *own > 0.0 { sums[index] / own } else { 0.0 };
+        .map(|(index, (own, brightness))| {
+            let part = |sum: f64| if *own > 0.0 { sum / own } else { 0.0 };
             Cell {
-                side: rule.has_side.then(|| side(sheet, row, column, rule, coma)),
-                brightness: light.densities[index],
-                sunward_at_rest: part(&at_rest.sunward_cells),
-                sunward_ejected: part(&ejected.sunward_cells),
-                seen: part(&ejected.seen_cells),
+                side: rule.has_side.then(|| side(&sheet.middle(index / columns, index % columns), rule, coma)),
+                brightness,
+                sunward_at_rest: part(at_rest.sunward(index)),
+                sunward_ejected: part(ejected.sunward(index)),
+                seen: part(ejected.seen(index)),
             }
         })
         .collect();
-    Map { beta_edges: sheet.betas.clone(), age_edges_days: sheet.ages_days.clone(), cells }
+    Map { beta_edges: sheet.betas.to_vec(), age_edges_days: sheet.ages_days.clone(), cells }
 }
 
-/// The side of the middle of a cell, without ejection.
-fn side(sheet: &Sheet, row: usize, column: usize, rule: &Rule, coma: &Coma) -> Side {
-    let across = |column: usize| sheet.node(row, column).toward(sheet.node(row + 1, column), 0.5);
-    let place = across(column).toward(&across(column + 1), 0.5).place_au;
-    match Fallen::of(&place, coma, column, row, 0.0).map(|fallen| fallen.cos_offset) {
+/// The side of a place.
+fn side(place: &[f64; 3], rule: &Rule, coma: &Coma) -> Side {
+    match coma.cos_outside(*place) {
         None => Side::Coma,
         Some(cos) if cos >= 0.0 => Side::Tail,
         Some(cos) if -cos >= rule.sector_cos => Side::AntiTail,

@@ -4,17 +4,20 @@
 //! dust, so that neither a fast perihelion nor the inner tail is stepped over. Each node holds the exact place of
 //! its grain and how that place answers to the ejection velocity, both in axes at the nucleus: along the sight
 //! line, toward the Sun's opposite on the sky, and a quarter turn on in position angle. Inside a cell all of that is
-//! interpolated between its corners, before any division by distance, so grains behind the observer do no harm.
+//! interpolated between its corners, before any division by distance, so grains behind the observer do no harm. The
+//! nodes are solved by the block ([`tailvane_lanes::solve`]), as many whole rows as fit, and held in single precision.
 //!
 //! Accuracy: a cell spans a factor of 1.3 in beta and a few percent of the orbit; places inside are good to about
 //! 1 percent of the distance from the nucleus.
 
-use crate::body::KM_S_PER_AU_D;
-use crate::orbit::conic::{SUN_GM_AU3_D2, propagate_with_response};
+use crate::body::{KM_S_PER_AU_D, State};
+use crate::orbit::conic::{Place, SUN_GM_AU3_D2, propagate_with_response};
 use crate::order;
 use crate::tail::grain::Vista;
 use crate::tail::law::Tails;
 use nalgebra::Vector3;
+use tailvane_lanes::solve::{BLOCK, Block, Sight};
+use tailvane_lanes::strew::{NODE, Nodes};
 
 /// Ratio of neighbouring betas, at most; number of columns, at least and at most.
 const BETA_STEP: f64 = 1.33;
@@ -37,91 +40,110 @@ pub struct Frame {
     pub aside: Vector3<f64>,
 }
 
-/// A grain that left without ejection velocity, and how its place answers to one.
-#[derive(Clone, Copy, Debug)]
-pub struct Node {
-    /// From the observer: along the sight line, away, aside, au.
-    pub place_au: [f64; 3],
-    /// Change of each of these for 1 km/s of radial, transverse and normal ejection, au.
-    pub answer_au: [[f64; 3]; 3],
-}
-
 /// The nodes of the (beta, age) plane, row by row of equal age.
 #[derive(Clone, Debug)]
-pub struct Sheet {
-    pub betas: Vec<f64>,
+pub struct Sheet<'a> {
+    pub betas: &'a [f64],
     pub ages_days: Vec<f64>,
     /// Distance of the nucleus from the Sun at release, au, for each age.
     pub release_au: Vec<f64>,
-    pub nodes: Vec<Node>,
+    /// Numbers of one function in a row: the betas, and what fills the lanes.
+    stride: usize,
+    /// Places, au: from the observer along the sight line, away, aside; then their changes for 1 km/s of radial, transverse
+    /// and normal ejection.
+    nodes: Vec<f32>,
 }
 
-impl Sheet {
-    /// The sheet of a vista over the ranges of `tails`; one exact solve for each node.
-    pub fn of(vista: &Vista, frame: &Frame, tails: &Tails) -> Self {
-        let betas = columns(tails.beta_least, tails.beta_greatest);
-        let ages_days = row_ages(vista, tails);
-        let mut release_au = Vec::with_capacity(ages_days.len());
-        let mut nodes = Vec::with_capacity(ages_days.len() * betas.len());
-        for age in &ages_days {
-            let start = vista.release(*age);
-            release_au.push(start.position_au.norm());
-            let out = start.position_au.normalize();
-            let up = start.position_au.cross(&start.velocity_au_d).normalize();
-            let along = up.cross(&out);
-            for beta in &betas {
-                let (end, response) = propagate_with_response(SUN_GM_AU3_D2 * (1.0 - beta), &start, *age);
-                let answer = |axis: &Vector3<f64>| frame.split(&(response.position * axis / KM_S_PER_AU_D));
-                nodes.push(Node {
-                    place_au: frame.split(&(end.position_au - vista.observer_au)),
-                    answer_au: [answer(&out), answer(&along), answer(&up)],
-                });
-            }
-        }
-        Sheet { betas, ages_days, release_au, nodes }
-    }
-
-    /// The node of a row and a column.
-    pub fn node(&self, row: usize, column: usize) -> &Node {
-        &self.nodes[row * self.betas.len() + column]
-    }
-}
-
-impl Frame {
-    fn split(&self, v: &Vector3<f64>) -> [f64; 3] {
-        [v.dot(&self.sight), v.dot(&self.away), v.dot(&self.aside)]
-    }
-}
-
-impl Node {
-    /// Between this node (at 0) and `other` (at 1).
-    pub fn toward(&self, other: &Node, part: f64) -> Node {
-        let mix = |a: &[f64; 3], b: &[f64; 3]| {
-            [a[0] + (b[0] - a[0]) * part, a[1] + (b[1] - a[1]) * part, a[2] + (b[2] - a[2]) * part]
+impl<'a> Sheet<'a> {
+    /// The sheet of a vista over some betas and the ages of `tails`; one exact solve for each node.
+    pub fn of(vista: &Vista, frame: &Frame, betas: &'a [f64], tails: &Tails) -> Self {
+        let mut block = Block::default();
+        let mut response = [[[0.0; BLOCK]; 3]; 3];
+        let ages_days = row_ages(vista, tails, &mut block);
+        let stride = betas.len().next_multiple_of(4);
+        let rows_at_once = BLOCK / stride;
+        let sight = Sight {
+            observer: vista.observer_au.into(),
+            axes: [frame.away.into(), frame.aside.into(), frame.sight.into()],
         };
-        Node {
-            place_au: mix(&self.place_au, &other.place_au),
-            answer_au: [
-                mix(&self.answer_au[0], &other.answer_au[0]),
-                mix(&self.answer_au[1], &other.answer_au[1]),
-                mix(&self.answer_au[2], &other.answer_au[2]),
-            ],
-        }
-    }
-
-    /// Where a grain with this ejection velocity (radial, transverse, normal) lies, to first order.
-    pub fn thrown(&self, velocity_km_s: &[f64; 3]) -> [f64; 3] {
-        let mut place = self.place_au;
-        for (answer, speed) in self.answer_au.iter().zip(velocity_km_s) {
-            for (coordinate, change) in place.iter_mut().zip(answer) {
-                *coordinate += change * speed;
+        let anomaly = |place: &Place| vista.orbit.whole_anomaly(&place.anomaly);
+        let now = anomaly(&vista.orbit.place_at(vista.seen));
+        let mut release_au = Vec::with_capacity(ages_days.len());
+        let mut nodes = vec![0.0; ages_days.len() * stride * NODE];
+        for (ages, lines) in ages_days.chunks(rows_at_once).zip(nodes.chunks_mut(rows_at_once * stride * NODE)) {
+            let places: Vec<Place> = ages.iter().map(|age| vista.orbit.place_at(vista.released_at(*age))).collect();
+            for (row, (place, age)) in places.iter().zip(ages).enumerate() {
+                let guess = now - anomaly(place);
+                for k in 0..stride {
+                    // Lanes without a column of their own repeat the last.
+                    let beta = betas[k.min(betas.len() - 1)];
+                    set(&mut block, row * stride + k, &place.state, SUN_GM_AU3_D2 * (1.0 - beta), *age, guess);
+                }
+            }
+            block.count = ages.len() * stride;
+            block.solve();
+            block.respond(&mut response);
+            for node in 0..block.count {
+                if !block.is_doubtful(node) {
+                    continue;
+                }
+                let start = &places[node / stride].state;
+                let (end, exact) = propagate_with_response(block.mu[node], start, block.time[node]);
+                for (axis, answers) in response.iter_mut().enumerate() {
+                    block.end[axis][node] = end.position_au[axis];
+                    for (by, answer) in answers.iter_mut().enumerate() {
+                        answer[node] = exact.position[(axis, by)];
+                    }
+                }
+            }
+            for (row, (place, line)) in places.iter().zip(lines.chunks_exact_mut(stride * NODE)).enumerate() {
+                let state = &place.state;
+                release_au.push(state.position_au.norm());
+                let out = state.position_au.normalize();
+                let up = state.position_au.cross(&state.velocity_au_d).normalize();
+                let throws = [out, up.cross(&out), up].map(|axis| (axis / KM_S_PER_AU_D).into());
+                block.lay(row * stride, &response, &sight, &throws, line);
             }
         }
-        place
+        Sheet { betas, ages_days, release_au, stride, nodes }
+    }
+
+    pub fn nodes(&self) -> Nodes<'_> {
+        Nodes { numbers: &self.nodes, stride: self.stride }
+    }
+
+    pub fn columns(&self) -> usize {
+        self.betas.len() - 1
+    }
+
+    pub fn rows(&self) -> usize {
+        self.ages_days.len() - 1
+    }
+
+    /// Where the middle of a cell lies, without ejection: along, away, aside, au.
+    pub fn middle(&self, row: usize, column: usize) -> [f64; 3] {
+        std::array::from_fn(|axis| {
+            let at = |row: usize| {
+                let node = &self.nodes[(row * NODE + axis) * self.stride + column..];
+                0.5 * (f64::from(node[0]) + f64::from(node[1]))
+            };
+            0.5 * (at(row) + at(row + 1))
+        })
     }
 }
 
-fn columns(least: f64, greatest: f64) -> Vec<f64> {
+fn set(block: &mut Block, node: usize, start: &State, mu: f64, days: f64, guess: f64) {
+    for axis in 0..3 {
+        block.place[axis][node] = start.position_au[axis];
+        block.velocity[axis][node] = start.velocity_au_d[axis];
+    }
+    block.mu[node] = mu;
+    block.time[node] = days;
+    block.guess[node] = guess;
+}
+
+/// The betas between which the columns lie.
+pub fn beta_edges(least: f64, greatest: f64) -> Vec<f64> {
     let span = libm::log(greatest / least);
     let cells = ((span / libm::log(BETA_STEP)).ceil() as usize).clamp(COLUMNS[0], COLUMNS[1]);
     (0..=cells).map(|i| least * libm::exp(span * i as f64 / cells as f64)).collect()
@@ -129,19 +151,35 @@ fn columns(least: f64, greatest: f64) -> Vec<f64> {
 
 /// Ages of the rows, youngest first: even in the sum of k dt / r^1.5 (the comet's motion) and dt / (t + 3 d) (the
 /// growth of the inner tail).
-fn row_ages(vista: &Vista, tails: &Tails) -> Vec<f64> {
+fn row_ages(vista: &Vista, tails: &Tails, block: &mut Block) -> Vec<f64> {
     let (youngest, oldest) = (tails.age_least_days, tails.age_greatest_days);
     let gm_root = SUN_GM_AU3_D2.sqrt();
     let (from, to) = (youngest.sqrt(), oldest.sqrt());
+    let step_age = |i: usize| {
+        let root = from + (to - from) * i as f64 / MEASURE_STEPS as f64;
+        root * root
+    };
+    let middle = |i: usize| 0.5 * (step_age(i) + if i == 1 { youngest } else { step_age(i - 1) });
+    // Back in time is forward with the velocity turned round.
+    let back = State { position_au: vista.nucleus.position_au, velocity_au_d: -vista.nucleus.velocity_au_d };
+    for i in 1..=MEASURE_STEPS {
+        set(block, i - 1, &back, SUN_GM_AU3_D2, middle(i), f64::INFINITY);
+    }
+    block.count = MEASURE_STEPS;
+    block.solve();
+    let distance = |i: usize| {
+        if block.is_doubtful(i - 1) {
+            return vista.release(middle(i)).position_au.norm();
+        }
+        let [x, y, z] = block.end.each_ref().map(|numbers| numbers[i - 1]);
+        (x * x + y * y + z * z).sqrt()
+    };
     let mut fine = Vec::with_capacity(MEASURE_STEPS + 1);
     let mut sum = 0.0;
     let mut last_age = youngest;
     fine.push((youngest, 0.0));
     for i in 1..=MEASURE_STEPS {
-        let root = from + (to - from) * i as f64 / MEASURE_STEPS as f64;
-        let age = root * root;
-        let middle = 0.5 * (age + last_age);
-        let r = vista.release(middle).position_au.norm();
+        let (age, middle, r) = (step_age(i), middle(i), distance(i));
         sum += (age - last_age) * (gm_root / (r * r.sqrt()) + 0.4 / (middle + YOUNG_DAYS));
         fine.push((age, sum));
         last_age = age;
