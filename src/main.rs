@@ -31,10 +31,11 @@ tailvane: where a comet's tails lie on the sky
       the night that begins on the evening of DATE (2031-03-20, local mean solar
       date of the site; without one, the night of the plan's time): comet, Sun and
       Moon over the horizon, twilights, dark time, the best window
-  tailvane season PLAN --from TIME --to TIME [--json | --calendar | --table FORM]
-      events seen from the Earth's centre: crossings of the orbit plane, greatest
-      and least angles, windows of sunward dust and more; as CSV, JSON, an
-      iCalendar file, or a table in the form plain, markdown or wiki
+  tailvane season PLAN [--from TIME --to TIME] [--json | --calendar | --table FORM]
+      events seen from the Earth's centre between two times, or in the plan's own
+      season: crossings of the orbit plane, greatest and least angles, windows of
+      sunward dust and more; as CSV, JSON, an iCalendar file, or a table in the
+      form plain, markdown or wiki
   tailvane draw PLAN --view VIEW --out FILE.svg [--at TIME]
       [--width PX] [--height PX] [--theme THEME]
       the picture of the page; the views and themes are named when one is wrong

@@ -111,6 +111,15 @@ fn tables_for_people_round_to_the_minute_and_hold_no_markup_of_a_name() {
 }
 
 #[test]
+fn a_plan_with_a_season_needs_no_times() {
+    let [_, from, _, to] = RANGE;
+    let season = format!("\"season\": {{ \"from\": \"{from}\", \"to\": \"{to}\" }}, \"comet\"");
+    let output = run(&[], &plan("Invented comet").replacen("\"comet\"", &season, 1));
+    assert_eq!(String::from_utf8(output.stdout).expect("UTF-8"), said(&[], &plan("Invented comet")));
+    assert!(refused(&[], 2).contains("a plan with a season"));
+}
+
+#[test]
 fn wrong_ranges_and_forms_are_refused() {
     let [_, from, _, to] = RANGE;
     assert!(refused(&["--from", to, "--to", from], 1).contains("--to: "));

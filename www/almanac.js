@@ -65,7 +65,7 @@ Tailvane.almanac = (function () {
     const go = document.createElement("button");
     go.type = "button";
     go.className = "quantity";
-    go.title = "Goes to this time.";
+    go.title = "Goes to the time of this event.";
     go.textContent = time;
     go.addEventListener("click", () => {
       Tailvane.season.pause();

@@ -61,11 +61,16 @@ Tailvane.explain = (function () {
     }
     document.addEventListener("keydown", (event) => event.key === "Escape" && on && set(false));
     const { explain } = await Tailvane.core.words();
-    for (const [selector, words] of Object.entries(explain || {})) {
-      for (const element of document.querySelectorAll(selector)) {
-        element.title = element.title || words;
+    const name = () => {
+      for (const [selector, words] of Object.entries(explain || {})) {
+        for (const element of document.querySelectorAll(selector)) {
+          element.title = element.title || words;
+        }
       }
-    }
+    };
+    name();
+    // Tables and lists grow controls later.
+    Tailvane.desk.onRest(name);
   }
 
   return { start };

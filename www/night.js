@@ -93,7 +93,7 @@ Tailvane.night = (function () {
         const time = Tailvane.element("button", times[at].slice(11, 16));
         time.type = "button";
         time.className = "bare";
-        time.title = "Goes to this time.";
+        time.title = "Goes to this time of the night.";
         // For pointers: by keys, the strip takes arrows and the field above any time.
         time.tabIndex = -1;
         time.setAttribute("aria-label", "Go to " + times[at]);

@@ -26,14 +26,16 @@ pub fn run(arguments: lexopt::Parser) -> Result<(), Stop> {
     if usize::from(calendar) + usize::from(form.is_some()) + usize::from(call.json) > 1 {
         return Err(Stop::Usage("give one of --json, --calendar and --table".to_owned()));
     }
-    let (Some(from), Some(to)) = (&call.from, &call.to) else {
-        return Err(Stop::Usage("season takes --from and --to".to_owned()));
-    };
     if !call.at.is_empty() || call.step_days.is_some() {
         return Err(Stop::Usage("season takes --from and --to only; it finds its times itself".to_owned()));
     }
-    let stretch = Stretch::new(from.instant(), to.instant()).map_err(as_option)?;
-    let mut engine = Engine::new(call.read_plan()?)?;
+    let plan = call.read_plan()?;
+    let stretch = match (&call.from, &call.to, &plan.season) {
+        (Some(from), Some(to), _) => Stretch::new(from.instant(), to.instant()).map_err(as_option)?,
+        (None, None, Some(season)) => season.stretch()?,
+        _ => return Err(Stop::Usage("season takes --from and --to, or a plan with a season and neither".to_owned())),
+    };
+    let mut engine = Engine::new(plan)?;
     let mut search = engine.season_search(stretch);
     while search.advance(stretch.days()) < 1.0 {}
     let told = engine.season_told(&search.season())?;

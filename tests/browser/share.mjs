@@ -364,8 +364,8 @@ export default (context) =>
       const { page, noise } = await open(context.browser, PAGE_ADDRESS);
       await page.$$eval("details", (all) => all.forEach((details) => (details.open = true)));
       await page.evaluate(() => Tailvane.core.words());
-      await settled(page);
-      const silent = await page.$$eval("button, input:not([type=file]), select, textarea, summary, canvas", (all) =>
+      await rested(page);
+      const silent = await page.$$eval("button, input:not([type=file]), select, textarea, summary, canvas:not([aria-hidden])", (all) =>
         all
           .filter((control) => control.checkVisibility())
           .filter((control) => {
