@@ -373,9 +373,9 @@ impl<S: Side> Model<S> {
                 out.push(out[out.len() - self.latest[0] as usize - 1]);
             }
         }
-        for place in at..out.len() {
+        for (place, &byte) in out.iter().enumerate().skip(at) {
             if self.kinds && self.code.contains(&place) {
-                self.kind.step(out[place]);
+                self.kind.step(byte);
             }
         }
         choice
