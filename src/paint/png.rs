@@ -5,7 +5,6 @@
 //! differences. Same pixels, same bytes. Source: PNG specification, third edition (W3C 2025).
 
 use miniz_oxide::deflate::compress_to_vec_zlib;
-use std::collections::BTreeMap;
 
 /// Deflate level: 6 of 10; higher ones take twice the time for some percent.
 const LEVEL: u8 = 6;
@@ -17,10 +16,10 @@ pub fn write(width: usize, height: usize, rgba: &[u8]) -> Vec<u8> {
     let pixel = |i: usize| rgba.get(4 * i..4 * i + 3).map_or([0; 3], |p| [p[0], p[1], p[2]]);
     let count = width * height;
     let (palette, rows) = match palette((0..count).map(pixel)) {
-        Some(numbers) => {
+        Some(colors) => {
             // In rising order of colour, so that a smooth picture has smooth numbers.
-            let bytes: Vec<u8> = (0..count).map(|i| numbers[&pixel(i)]).collect();
-            (Some(numbers), filtered(&bytes, width, 1))
+            let bytes: Vec<u8> = (0..count).map(|i| colors.binary_search(&pixel(i)).unwrap_or(0) as u8).collect();
+            (Some(colors), filtered(&bytes, width, 1))
         }
         None => (None, filtered(&(0..count).flat_map(pixel).collect::<Vec<u8>>(), 3 * width, 3)),
     };
@@ -31,32 +30,30 @@ pub fn write(width: usize, height: usize, rgba: &[u8]) -> Vec<u8> {
     head.extend([8, kind, 0, 0, 0]);
     let mut file = SIGNATURE.to_vec();
     chunk(&mut file, b"IHDR", &head);
-    if let Some(numbers) = palette {
-        let colors: Vec<u8> = numbers.into_keys().flatten().collect();
-        chunk(&mut file, b"PLTE", &colors);
+    if let Some(colors) = palette {
+        chunk(&mut file, b"PLTE", colors.as_flattened());
     }
     chunk(&mut file, b"IDAT", &compress_to_vec_zlib(&rows, LEVEL));
     chunk(&mut file, b"IEND", &[]);
     file
 }
 
-/// The colours in order with their numbers; None where there are more than 256.
-fn palette(pixels: impl Iterator<Item = [u8; 3]>) -> Option<BTreeMap<[u8; 3], u8>> {
-    let mut numbers: BTreeMap<[u8; 3], u8> = BTreeMap::new();
+/// The colours in order; None where there are more than 256.
+fn palette(pixels: impl Iterator<Item = [u8; 3]>) -> Option<Vec<[u8; 3]>> {
+    let mut colors = Vec::new();
     let mut last = None;
     for pixel in pixels {
-        if last != Some(pixel) && !numbers.contains_key(&pixel) {
-            if numbers.len() == 256 {
+        if last != Some(pixel)
+            && let Err(place) = colors.binary_search(&pixel)
+        {
+            if colors.len() == 256 {
                 return None;
             }
-            numbers.insert(pixel, 0);
+            colors.insert(place, pixel);
         }
         last = Some(pixel);
     }
-    for (number, value) in numbers.values_mut().enumerate() {
-        *value = number as u8;
-    }
-    Some(numbers)
+    Some(colors)
 }
 
 /// Rows of bytes, each behind the number of its filter. `step` is the bytes of a pixel.

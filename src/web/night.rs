@@ -23,7 +23,7 @@ use crate::sky::column::Value;
 use crate::sky::magnitude;
 
 use serde::{Deserialize, Serialize};
-use std::collections::BTreeSet;
+use std::collections::BTreeMap;
 use wasm_bindgen::JsValue;
 use wasm_bindgen::prelude::wasm_bindgen;
 use web_sys::CanvasRenderingContext2d;
@@ -307,12 +307,13 @@ impl Desk {
             return Ok(JsValue::NULL);
         }
         let mut comets: Vec<Comet> = Vec::new();
-        let mut names = BTreeSet::new();
+        // A map like the notation's, which is in the page anyway.
+        let mut names: BTreeMap<String, usize> = BTreeMap::new();
         let kept = kept.iter().filter_map(|plan| Plan::parse(plan).ok()).map(|plan| plan.comet);
         let read = self.read.iter().map(|entry| entry.comet.clone());
         for comet in [plan.comet.clone()].into_iter().chain(read).chain(plan.comets.iter().cloned()).chain(kept) {
             // Only a name that was seen before can be the same comet again.
-            if names.insert(comet.name.clone()) || !comets.contains(&comet) {
+            if names.insert(comet.name.clone(), 0).is_none() || !comets.contains(&comet) {
                 comets.push(comet);
             }
         }

@@ -8,6 +8,7 @@
 //! | --- | --- |
 //! | [`wasm`] | how do the Rust sources become wasm and bindings? |
 //! | [`block`] | how do bytes lie in an HTML file? |
+//! | [`stream`] | how is a stream of LZMA choices written in fewer bits? |
 //! | [`page`] | how do the parts become one file under a strict policy? |
 //! | [`sites`] | how does the table of sites travel? |
 //! | [`serve`] | how is the page served on loopback? |
@@ -19,6 +20,7 @@ mod open;
 mod page;
 mod serve;
 mod sites;
+mod stream;
 mod wasm;
 
 use std::path::{Path, PathBuf};

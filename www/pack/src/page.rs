@@ -98,16 +98,17 @@ pub fn pack(root: &Path, build: &Build) -> Result<Packed, String> {
     let read = |name: &str| fs::read_to_string(www.join(name)).map_err(|e| format!("www/{name}: {e}"));
     let sites = sites::read(root)?;
     let sites = block(&[(SITES, sites.words.as_bytes()), (SITE_NUMBERS, &sites.numbers)])?;
-    let words = block(&[(WORDS, &words(root)?)])?;
+    let words = words(root)?;
     let index = read("index.html")?.replacen(LICENCES, licences(root)?.trim_end(), 1);
     let parts = taken_apart(&index, |name| if name == GLUE { Ok(build.glue.clone()) } else { read(name) })?;
     let start = block(&[
         (BODY, parts.body.as_bytes()),
         (STYLES, parts.styles.as_bytes()),
         (SCRIPTS, parts.scripts.as_bytes()),
+        (WORDS, &words),
         (WASM, &build.wasm),
     ])?;
-    let html = assembled(&parts, &read(UNPACK)?, &(start + &sites + &words))?;
+    let html = assembled(&parts, &read(UNPACK)?, &(start + &sites))?;
     let path = root.join("target/page/tailvane.html");
     fs::create_dir_all(path.parent().expect("the page lies in a folder")).map_err(|e| format!("target/page: {e}"))?;
     fs::write(&path, &html).map_err(|e| format!("{}: {e}", path.display()))?;

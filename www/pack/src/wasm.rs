@@ -28,7 +28,7 @@ pub fn build(root: &Path) -> Result<Build, String> {
         .current_dir(root)
         .args(["build", "--lib", "--release", "--package", "tailvane", "--target", TARGET])
         .args(["--target-dir".as_ref(), root.join("target").as_os_str()])
-        // Measured: a fifth less code than level 3; "z" saves another 2 % and takes a fifth longer for a frame.
+        // Measured: 7 % less page than "s". What runs for every grain and pixel is a crate of its own, at level 3.
         .args(["--config", "profile.release.opt-level=\"z\""])
         // Panic messages hold source paths: the same bytes wherever the registry and the project lie.
         .args(["--config", &remapped_paths(root)]);
