@@ -1,7 +1,49 @@
-//! In which order do things stand?
+//! In which order do things stand, and which stands under a number?
 //!
 //! Stable, by a rank or a number. Every kind of thing is put in order by the same few lines over plain numbers: the
-//! standard library's sort is compiled anew for each kind, which costs the page 2 kB each time.
+//! standard library's sort is compiled anew for each kind, which costs the page 2 kB each time. A [`Shelf`] does the
+//! same for its tree.
+
+use std::collections::BTreeMap;
+use std::ops::RangeInclusive;
+
+/// Things by number.
+#[derive(Clone, Debug)]
+pub struct Shelf<T> {
+    places: BTreeMap<i64, usize>,
+    things: Vec<T>,
+}
+
+impl<T> Default for Shelf<T> {
+    fn default() -> Self {
+        Shelf { places: BTreeMap::new(), things: Vec::new() }
+    }
+}
+
+impl<T> Shelf<T> {
+    pub fn at(&self, number: i64) -> Option<&T> {
+        self.places.get(&number).map(|&place| &self.things[place])
+    }
+
+    pub fn at_mut(&mut self, number: i64) -> Option<&mut T> {
+        self.places.get(&number).map(|&place| &mut self.things[place])
+    }
+
+    /// What stands under a number, made where nothing does yet.
+    pub fn at_or(&mut self, number: i64, make: impl FnOnce() -> T) -> &mut T {
+        let next = self.things.len();
+        let place = *self.places.entry(number).or_insert(next);
+        if place == next {
+            self.things.push(make());
+        }
+        &mut self.things[place]
+    }
+
+    /// Everything in a range, the lowest number first.
+    pub fn between(&self, numbers: RangeInclusive<i64>) -> impl Iterator<Item = (i64, &T)> {
+        self.places.range(numbers).map(|(number, &place)| (*number, &self.things[place]))
+    }
+}
 
 /// Puts the lowest rank first; equal ranks keep their order.
 pub fn by_rank<T>(items: &mut [T], rank: impl Fn(&T) -> u64) {

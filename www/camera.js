@@ -109,7 +109,7 @@ Tailvane.camera = (function () {
 
   function use(event) {
     event.preventDefault();
-    const typed = Object.fromEntries(fields.map((field) => [field.dataset.camera, field.value]));
+    const typed = fields.map((field) => [field.dataset.camera, field.value]);
     const took = change((desk) => desk.set_camera(typed));
     const wrong = took === undefined ? (Tailvane.desk.refusal().field || "").replace("camera.", "") : "";
     for (const field of fields) {
@@ -131,9 +131,7 @@ Tailvane.camera = (function () {
 
   function fit(event) {
     event.preventDefault();
-    const choice = Object.fromEntries(
-      choices.map((part) => [part.dataset.fit, part.type === "checkbox" ? (part.checked ? "yes" : "no") : part.value])
-    );
+    const choice = choices.map((part) => [part.dataset.fit, part.type === "checkbox" ? (part.checked ? "yes" : "no") : part.value]);
     const said = change((desk) => desk.camera_fit(choice));
     Tailvane.write(fitDone, said === undefined ? Tailvane.say.lastError() : said);
   }

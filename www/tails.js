@@ -119,7 +119,7 @@ Tailvane.tails = (function () {
   }
 
   function typed() {
-    return Object.fromEntries([...fields].map(([key, { input }]) => [key, input.value]));
+    return [...fields].map(([key, { input }]) => [key, input.value]);
   }
 
   function use(values) {

@@ -11,7 +11,7 @@
 use super::Point;
 use super::lettering::Rect;
 use crate::frame::norm;
-use std::collections::BTreeMap;
+use crate::order::Shelf;
 
 /// Lines of equal brightness on the page, the brightest first.
 #[derive(Clone, Debug, Default, PartialEq)]
@@ -121,12 +121,13 @@ impl Field {
         let above = corners.map(|value| value >= level);
         let share = |a: usize, b: usize| (level - corners[a]) / (corners[b] - corners[a]);
         let (left, top) = (x as f64, y as f64);
-        // Edges: upper, right, lower, left. The key is the edge's upper or left end, and whether it stands upright.
+        // Edges: upper, right, lower, left. The number tells the edge's upper or left end, and whether it stands upright.
+        let number = |x: usize, y: usize, upright: bool| ((x as Edge) << 32) | ((y as Edge) << 1) | Edge::from(upright);
         let edge = |side: usize| match side {
-            0 => ((x, y, false), [left + share(0, 1), top]),
-            1 => ((x + 1, y, true), [left + 1.0, top + share(1, 2)]),
-            2 => ((x, y + 1, false), [left + share(3, 2), top + 1.0]),
-            _ => ((x, y, true), [left, top + share(0, 3)]),
+            0 => (number(x, y, false), [left + share(0, 1), top]),
+            1 => (number(x + 1, y, true), [left + 1.0, top + share(1, 2)]),
+            2 => (number(x, y + 1, false), [left + share(3, 2), top + 1.0]),
+            _ => (number(x, y, true), [left, top + share(0, 3)]),
         };
         let crossed: Vec<usize> = (0..4).filter(|&side| above[side] != above[(side + 1) % 4]).collect();
         match crossed[..] {
@@ -143,38 +144,41 @@ impl Field {
     }
 }
 
-/// An edge of the grid: its upper or left end, and whether it stands upright.
-type Edge = (usize, usize, bool);
+/// An edge of the grid, by its number.
+type Edge = i64;
+
+/// Where a line crosses an edge, and the edges it goes on to.
+struct Crossing {
+    at: Point,
+    neighbours: Vec<Edge>,
+}
 
 /// Segments by the edges at which they end.
 #[derive(Default)]
-struct Chains {
-    places: BTreeMap<Edge, Point>,
-    neighbours: BTreeMap<Edge, Vec<Edge>>,
-}
+struct Chains(Shelf<Crossing>);
 
 impl Chains {
     fn add(&mut self, (a, at_a): (Edge, Point), (b, at_b): (Edge, Point)) {
-        self.places.insert(a, at_a);
-        self.places.insert(b, at_b);
-        self.neighbours.entry(a).or_default().push(b);
-        self.neighbours.entry(b).or_default().push(a);
+        for (edge, at, other) in [(a, at_a, b), (b, at_b, a)] {
+            self.0.at_or(edge, || Crossing { at, neighbours: Vec::new() }).neighbours.push(other);
+        }
     }
 
     /// Lines from end to end, then rings.
     fn joined(mut self) -> Vec<Vec<Point>> {
-        let ends: Vec<Edge> =
-            self.neighbours.iter().filter(|(_, others)| others.len() == 1).map(|(edge, _)| *edge).collect();
-        let all: Vec<Edge> = self.neighbours.keys().copied().collect();
+        let all: Vec<(Edge, bool)> =
+            self.0.between(0..=Edge::MAX).map(|(edge, crossing)| (edge, crossing.neighbours.len() == 1)).collect();
+        let ends = all.iter().filter(|(_, is_end)| *is_end);
         let mut lines = Vec::new();
-        for start in ends.into_iter().chain(all) {
-            let mut line = vec![self.places[&start]];
+        for &(start, _) in ends.chain(&all) {
+            let mut line = Vec::new();
             let mut here = start;
-            while let Some(next) = self.neighbours.get_mut(&here).and_then(Vec::pop) {
-                if let Some(back) = self.neighbours.get_mut(&next) {
-                    back.retain(|edge| *edge != here);
+            while let Some(crossing) = self.0.at_mut(here) {
+                line.push(crossing.at);
+                let Some(next) = crossing.neighbours.pop() else { break };
+                if let Some(crossing) = self.0.at_mut(next) {
+                    crossing.neighbours.retain(|edge| *edge != here);
                 }
-                line.push(self.places[&next]);
                 here = next;
             }
             if line.len() > 1 {

@@ -9,12 +9,12 @@
 use super::geometry::{CELL_DAYS, Survey};
 use super::sunward::{Origin, Strength};
 use crate::frame::separation_rad;
+use crate::order::Shelf;
 use crate::tail::grain::Vista;
 use crate::tail::law::Tails;
 use crate::tail::perspective::{GRADE_FLOORS, Grade, Recipe, Standing, Verdict};
 use crate::time::Instant;
 use nalgebra::Vector3;
-use std::collections::BTreeMap;
 
 /// Gaps in which something might happen are halved until they are no longer than this.
 pub const GAP_DAYS: f64 = 4.0;
@@ -114,9 +114,9 @@ fn level(anti_tail: Option<Standing>) -> f64 {
 pub struct Looks {
     /// The laws made ready, at the first look.
     recipe: Option<Recipe>,
-    by_step: BTreeMap<i64, Look>,
+    by_step: Shelf<Look>,
     /// Cells that are done, by number.
-    done: BTreeMap<i64, ()>,
+    done: Shelf<()>,
 }
 
 impl Looks {
@@ -125,9 +125,7 @@ impl Looks {
         let step = |days: f64| (days * STEPS_PER_DAY).round() as i64;
         let (begin, end) = (number as f64 * CELL_DAYS, (number + 1) as f64 * CELL_DAYS);
         let recipe = self.recipe.get_or_insert_with(|| Recipe::of(tails));
-        let mut look = |step: i64| {
-            *self.by_step.entry(step).or_insert_with(|| Look::at(survey, recipe, step as f64 / STEPS_PER_DAY))
-        };
+        let mut look = |step: i64| *self.by_step.at_or(step, || Look::at(survey, recipe, step as f64 / STEPS_PER_DAY));
         let mut dates: Vec<i64> =
             crossings.iter().filter(|days| begin < **days && **days < end).map(|d| step(*d)).collect();
         dates.extend([step(begin), step(end)]);
@@ -140,16 +138,16 @@ impl Looks {
                 gaps.extend([[first, middle], [middle, last]]);
             }
         }
-        self.done.insert(number, ());
+        self.done.at_or(number, || ());
     }
 
     pub fn is_done(&self, number: i64) -> bool {
-        self.done.contains_key(&number)
+        self.done.at(number).is_some()
     }
 
     /// The looks of some neighbouring cells, in order of time.
     pub fn between(&self, first: i64, last: i64) -> impl Iterator<Item = &Look> {
         let step = |number: i64| (number as f64 * CELL_DAYS * STEPS_PER_DAY) as i64;
-        self.by_step.range(step(first)..=step(last + 1)).map(|(_, look)| look)
+        self.by_step.between(step(first)..=step(last + 1)).map(|(_, look)| look)
     }
 }

@@ -10,10 +10,10 @@ use super::stretch::Stretch;
 use super::sunward::{self, Strength, Window};
 use super::tell::{self, Doubt};
 use crate::orbit::conic::Orbit;
+use crate::order::Shelf;
 use crate::sky::avoidance::NEAR_SUN_DEG;
 use crate::tail::law::Tails;
 use crate::time::Instant;
-use std::collections::BTreeMap;
 
 /// Whose season it is.
 #[derive(Clone, Debug, PartialEq)]
@@ -44,7 +44,7 @@ pub struct Search {
     subject: Subject,
     stretch: Stretch,
     survey: Survey,
-    cells: BTreeMap<i64, Cell>,
+    cells: Shelf<Cell>,
     looks: Looks,
 }
 
@@ -55,7 +55,7 @@ const SUNWARD_DAYS: f64 = CELL_DAYS - GEOMETRY_DAYS;
 impl Search {
     pub fn new(subject: Subject, stretch: Stretch) -> Self {
         let survey = Survey::new(subject.orbit.clone());
-        Search { subject, stretch, survey, cells: BTreeMap::new(), looks: Looks::default() }
+        Search { subject, stretch, survey, cells: Shelf::default(), looks: Looks::default() }
     }
 
     /// Works on for about so many days of the season, at least one step, and returns which part is done, [0, 1]. All
@@ -66,9 +66,8 @@ impl Search {
             if left <= 0.0 {
                 return self.done();
             }
-            if !self.cells.contains_key(&number) {
-                let cell = self.survey.cell(number);
-                self.cells.insert(number, cell);
+            if self.cells.at(number).is_none() {
+                self.cells.at_or(number, || self.survey.cell(number));
                 left -= GEOMETRY_DAYS;
             }
         }
@@ -78,7 +77,7 @@ impl Search {
             }
             if !self.looks.is_done(number) {
                 let near = number - 1..=number + 1;
-                let crossings: Vec<f64> = moments(self.cells.range(near).map(|(_, cell)| cell))
+                let crossings: Vec<f64> = moments(self.cells.between(near).map(|(_, cell)| cell))
                     .iter()
                     .filter(|moment| moment.quantity == Quantity::Plane)
                     .map(|moment| moment.days)
@@ -107,7 +106,7 @@ impl Search {
         let (mut done, mut all) = (0.0, 0.0);
         for number in self.cell_numbers() {
             all += CELL_DAYS;
-            done += if self.cells.contains_key(&number) { GEOMETRY_DAYS } else { 0.0 };
+            done += if self.cells.at(number).is_some() { GEOMETRY_DAYS } else { 0.0 };
             done += if self.looks.is_done(number) { SUNWARD_DAYS } else { 0.0 };
         }
         done / all
@@ -118,7 +117,7 @@ impl Search {
         let doubt = Doubt { epoch: self.subject.epoch, has_site: self.subject.has_site };
         let numbers = self.cell_numbers();
         let mut events = Vec::new();
-        for moment in moments(self.cells.range(numbers.clone()).map(|(_, cell)| cell)) {
+        for moment in moments(self.cells.between(numbers.clone()).map(|(_, cell)| cell)) {
             if self.stretch.holds(Instant::from_tdb_days(moment.days)) {
                 events.extend(tell::event(&moment, &self.survey.sky(moment.days), &doubt));
             }

@@ -14,8 +14,8 @@ use super::viewpoint::Viewpoint;
 use crate::body::State;
 use crate::body::piece::{Fit, Piece};
 use crate::orbit::conic::{Orbit, SUN_GM_AU3_D2};
+use crate::order::Shelf;
 use crate::time::Instant;
-use std::collections::BTreeMap;
 
 /// Light time of one au, days.
 const DAYS_PER_AU: f64 = 1.0 / LIGHT_AU_D;
@@ -38,8 +38,8 @@ const RATE: f64 = 15.0;
 pub struct Trail {
     fit: Fit,
     stretches: Vec<Stretch>,
-    /// By halvings and number: where the stretch stands, or that it is too long for one piece.
-    known: BTreeMap<(u32, i64), Option<usize>>,
+    /// By number and halvings: where the stretch stands, or that it is too long for one piece.
+    known: Shelf<Option<usize>>,
     /// The one used last, so that a run of near dates looks nothing up.
     last: usize,
 }
@@ -116,18 +116,12 @@ impl Trail {
         let mut length_days = LONGEST_DAYS;
         for halvings in 0..=MOST_HALVINGS {
             let number = (days / length_days).floor();
-            let known = match self.known.get(&(halvings, number as i64)) {
-                Some(known) => *known,
-                None => {
-                    let made = stretch(&self.fit, orbit, number * length_days, length_days);
-                    let known = made.map(|stretch| {
-                        self.stretches.push(stretch);
-                        self.stretches.len() - 1
-                    });
-                    self.known.insert((halvings, number as i64), known);
-                    known
-                }
-            };
+            let key = number as i64 * (i64::from(MOST_HALVINGS) + 1) + i64::from(halvings);
+            let known = *self.known.at_or(key, || {
+                let made = stretch(&self.fit, orbit, number * length_days, length_days)?;
+                self.stretches.push(made);
+                Some(self.stretches.len() - 1)
+            });
             if known.is_some() {
                 return known;
             }

@@ -7,9 +7,8 @@ use crate::error::{Error, Kind, Place};
 use crate::scene::quantity;
 use crate::tail::law::{Outburst, Tails};
 use crate::tail::size::Material;
-use crate::web::typed::number;
+use crate::web::typed::{Pairs, number, text_of};
 use serde::Serialize;
-use std::collections::BTreeMap;
 
 /// Key, name, unit, effect.
 type Words = (&'static str, &'static str, &'static str, &'static str);
@@ -124,7 +123,10 @@ pub fn form() -> Vec<Group> {
     let range = |key: &str| {
         let (least, greatest) =
             bounds.iter().find(|bound| bound.0 == key).map_or((0.0, 0.0), |bound| (bound.2, bound.3));
-        let default = defaults.get(key).map_or("empty", String::as_str);
+        let default = match text_of(&defaults, key) {
+            "" => "empty",
+            set => set,
+        };
         format!("{} to {}, default {default}", plain(least), plain(greatest))
     };
     let field = |&(key, words, unit, effect): &Words| Field {
@@ -134,7 +136,7 @@ pub fn form() -> Vec<Group> {
         effect,
         range: range(key),
         radius: key.starts_with("beta_"),
-        optional: !defaults.contains_key(key),
+        optional: text_of(&defaults, key).is_empty(),
     };
     GROUPS.into_iter().map(|(words, fields)| Group { words, fields: fields.iter().map(field).collect() }).collect()
 }
@@ -144,25 +146,21 @@ fn plain(value: f64) -> String {
 }
 
 /// The laws as texts by key; what is not set has none.
-pub fn texts(tails: &Tails) -> BTreeMap<String, String> {
-    let mut found = BTreeMap::new();
-    for (key, value, _, _) in tails.bounds() {
-        found.insert(key.to_owned(), value.to_string());
-    }
-    found
+pub fn texts(tails: &Tails) -> Pairs {
+    tails.bounds().into_iter().map(|(key, value, _, _)| (key.to_owned(), value.to_string())).collect()
 }
 
 /// The laws that typed fields name. An empty field without a default is not set; an outburst is set as a whole.
 ///
 /// # Errors
 /// A field that is no number, by its place in the plan. Ranges are the plan's to judge.
-pub fn tails(typed: &BTreeMap<String, String>) -> Result<Tails, Error> {
+pub fn tails(typed: &Pairs) -> Result<Tails, Error> {
     let mut laws = Vec::new();
     let mut outburst = Vec::new();
     let defaults = texts(&Tails::default());
     for (key, text) in typed {
         let place = format!("tails.{key}");
-        if text.trim().is_empty() && !defaults.contains_key(key) {
+        if text.trim().is_empty() && text_of(&defaults, key).is_empty() {
             continue;
         }
         let value = number(text, &place)?;
@@ -205,7 +203,7 @@ pub fn radius(beta: &str, density: &str, efficiency: &str) -> String {
 pub struct Preset {
     name: &'static str,
     about: String,
-    fields: BTreeMap<String, String>,
+    fields: Pairs,
 }
 
 /// Sets of laws by name. They are starting points of ours, not types of comets.

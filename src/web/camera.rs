@@ -11,14 +11,10 @@ use crate::scene::camera_field::{self, Grip};
 use crate::scene::camera_words;
 use crate::scene::view::Up;
 use crate::time::Instant;
-use crate::web::typed::number;
+use crate::web::typed::{Pairs, number, text_of};
 use serde::Serialize;
-use std::collections::BTreeMap;
 use wasm_bindgen::JsValue;
 use wasm_bindgen::prelude::wasm_bindgen;
-
-/// Typed fields by key.
-type Typed = BTreeMap<String, String>;
 
 /// Everything the bench shows.
 #[derive(Serialize)]
@@ -115,13 +111,13 @@ impl Desk {
     /// Turns and moves the camera so that it holds what is chosen; says in words what came of it. `choice`: `subject` (ion,
     /// dust, picture, brightness), its numbers, `margin_percent` of the shorter side, `nucleus` ("yes" to hold it too).
     pub fn camera_fit(&mut self, choice: JsValue) -> Result<String, JsValue> {
-        let choice: Typed = from_js(choice)?;
+        let choice: Pairs = from_js(choice)?;
         let Some(camera) = self.engine.plan().camera.clone() else { return Ok(String::new()) };
         let (subject, task_margin) = chosen(&choice).map_err(refusal)?;
         let sky = &self.seen.sky;
         let vista = self.engine.vista(sky);
         let points = subject.points(&vista, &self.engine.plan().tails, &camera).map_err(refusal)?;
-        let with_nucleus = choice.get("nucleus").is_some_and(|answer| answer == "yes");
+        let with_nucleus = text_of(&choice, "nucleus") == "yes";
         let task = Task { points, margin_px: task_margin * camera.shorter_side_px(), with_nucleus };
         let found = fit::fit(&camera, &sky.axes, &task);
         let words = camera_words::fit(&found, &camera);
@@ -215,8 +211,8 @@ const NUMBERS: [(&str, bool); 7] = [
     ("rotator_offset_deg", false),
 ];
 
-fn camera_of(typed: &Typed) -> Result<Camera, Error> {
-    let text = |key: &str| typed.get(key).map_or("", |text| text.trim());
+fn camera_of(typed: &Pairs) -> Result<Camera, Error> {
+    let text = |key: &str| text_of(typed, key);
     let place = |key: &str| format!("camera.{key}");
     let pixels = |key: &str| {
         let value = number(text(key), &place(key))?;
@@ -278,14 +274,14 @@ fn texts(camera: &Camera) -> Vec<(&'static str, String)> {
 }
 
 /// The subject of a fit, and the margin as a share of the shorter side.
-fn chosen(choice: &Typed) -> Result<(Subject, f64), Error> {
-    let value = |key: &str| number(choice.get(key).map_or("", String::as_str), &format!("fit.{key}"));
+fn chosen(choice: &Pairs) -> Result<(Subject, f64), Error> {
+    let value = |key: &str| number(text_of(choice, key), &format!("fit.{key}"));
     let margin = value("margin_percent")? / 100.0;
     if !(0.0..=0.45).contains(&margin) {
         let place = Place::Field("fit.margin_percent".to_owned());
         return Err(Error::new(Kind::Range, place, format!("{} percent", 100.0 * margin), "0 to 45 percent"));
     }
-    let subject = match choice.get("subject").map_or("", String::as_str) {
+    let subject = match text_of(choice, "subject") {
         "dust" => Subject::Dust { length_rad: value("dust_length_deg")?.to_radians() },
         "picture" => Subject::Picture { share: value("share_percent")? / 100.0 },
         "brightness" => Subject::to_brightness(value("limit_mag")?, value("peak_mag")?),

@@ -11,7 +11,6 @@ use crate::sky::column::whole_turn_deg;
 use crate::tail::cloud::Quality;
 use crate::tail::inverse;
 use crate::tail::law::Tails;
-use std::collections::BTreeMap;
 use wasm_bindgen::JsValue;
 use wasm_bindgen::prelude::wasm_bindgen;
 use web_sys::CanvasRenderingContext2d;
@@ -41,7 +40,7 @@ pub fn grain_radius(beta: &str, density: &str, efficiency: &str) -> String {
 impl Desk {
     /// Takes typed laws, by key.
     pub fn set_tails(&mut self, fields: JsValue) -> Result<JsValue, JsValue> {
-        let fields: BTreeMap<String, String> = from_js(fields)?;
+        let fields: typed::Pairs = from_js(fields)?;
         let tails = bench::tails(&fields).map_err(refusal)?;
         self.take(Plan { tails, ..self.plan() })
     }
@@ -53,9 +52,7 @@ impl Desk {
 
     /// The laws as texts by key; null for an optional one that is not set.
     pub fn tails_fields(&self) -> JsValue {
-        let texts = bench::texts(&self.engine.plan().tails);
-        let pairs: Vec<(String, String)> = texts.into_iter().collect();
-        to_js(&pairs)
+        to_js(&bench::texts(&self.engine.plan().tails))
     }
 
     /// Chooses what is drawn of the tails, and how.

@@ -95,6 +95,14 @@ impl SiteFields {
     }
 }
 
+/// Typed fields, each a key and its text.
+pub type Pairs = Vec<(String, String)>;
+
+/// The text of a field without blanks around it; nothing where there is none.
+pub fn text_of<'a>(pairs: &'a Pairs, key: &str) -> &'a str {
+    pairs.iter().find(|(found, _)| found == key).map_or("", |(_, text)| text.trim())
+}
+
 pub fn number(text: &str, field: &str) -> Result<f64, Error> {
     // A typographic minus is what this page itself prints.
     let plain = text.trim().replace('\u{2212}', "-");

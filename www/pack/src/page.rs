@@ -169,7 +169,7 @@ fn tag<'a>(html: &'a str, name: &str) -> Option<&'a str> {
 
 /// The one file: the policy on top of the head; in the body the blocks and the script that opens them.
 fn assembled(parts: &Parts, unpack: &str, blocks: &str) -> Result<String, String> {
-    let unpack = bare(unpack);
+    let unpack = tight(&bare(unpack));
     if unpack.to_ascii_lowercase().contains("</script") {
         return Err(format!("www/{UNPACK}: holds </script, which would end its block"));
     }
@@ -207,6 +207,32 @@ fn bare(text: &str) -> String {
     kept
 }
 
+/// A bare script without blanks around its signs, but for those between two pluses or minuses, and without line ends
+/// where a statement ends or goes on. Texts in quotes stay; the
+/// script has neither patterns nor templates.
+fn tight(script: &str) -> String {
+    let mut kept = String::with_capacity(script.len());
+    let mut quote = None;
+    let mut letters = script.chars().peekable();
+    while let Some(letter) = letters.next() {
+        if quote.is_some() {
+            quote = quote.filter(|open| *open != letter);
+        } else if letter == '"' || letter == '\'' {
+            quote = Some(letter);
+        } else if letter == ' ' {
+            let (before, after) = (kept.chars().next_back().unwrap_or(' '), letters.peek().copied().unwrap_or(' '));
+            let sign = |c: char| c.is_ascii_punctuation() && !matches!(c, '_' | '$' | '"' | '\'');
+            if (sign(before) || sign(after)) && !(before == after && matches!(before, '+' | '-')) {
+                continue;
+            }
+        } else if letter == '\n' && kept.ends_with(['{', ';', ',', '(', '[']) {
+            continue;
+        }
+        kept.push(letter);
+    }
+    kept
+}
+
 fn between<'a>(line: &'a str, open: &str, close: &str) -> Option<&'a str> {
     line.strip_prefix(open)?.strip_suffix(close).filter(|name| !name.contains('"'))
 }
@@ -218,7 +244,7 @@ fn hash(text: &str) -> String {
 
 #[cfg(test)]
 mod tests {
-    use super::{assembled, bare, hash, taken_apart};
+    use super::{assembled, bare, hash, taken_apart, tight};
 
     const INDEX: &str = "<!DOCTYPE html>\n<html lang=\"en\">\n<head>\n<meta charset=\"utf-8\">\n<link rel=\"stylesheet\" href=\"a.css\">\n</head>\n\
         <body>\n<main>\n  <p>Shown</p>\n</main>\n<noscript>Not shown</noscript>\n<script src=\"a.js\"></script>\n<script src=\"b.js\"></script>\n</body>\n</html>\n";
@@ -241,12 +267,10 @@ mod tests {
     fn styles_and_scripts_are_named_in_the_policy_by_their_hashes() {
         let parts = taken_apart(INDEX, text_of).unwrap();
         let html = assembled(&parts, "open();", "BLOCKS\n").unwrap();
-        assert!(
-            html.ends_with("<noscript>Not shown</noscript>\nBLOCKS\n<script>open();\n</script>\n</body>\n</html>\n")
-        );
+        assert!(html.ends_with("<noscript>Not shown</noscript>\nBLOCKS\n<script>open();</script>\n</body>\n</html>\n"));
         assert!(html.contains(&format!(
             "script-src {} {} 'wasm-unsafe-eval'; style-src {};",
-            hash("open();\n"),
+            hash("open();"),
             hash("{a.js}\n{b.js}\n"),
             hash("{a.css}\n")
         )));
@@ -257,6 +281,14 @@ mod tests {
         let text =
             "/*\n * Words.\n */\n  let a = 1; // kept\n\n  // gone\n  /** gone */\n  let b = a /* kept */ * 2;\n";
         assert_eq!(bare(text), "let a = 1; // kept\nlet b = a /* kept */ * 2;\n");
+    }
+
+    #[test]
+    fn blanks_go_where_no_word_and_no_sign_could_run_together() {
+        assert_eq!(
+            tight("let a = b - -c + +d;\nreturn a ? \"x + y\" : 'a = b';\n"),
+            "let a=b- -c+ +d;return a?\"x + y\":'a = b';"
+        );
     }
 
     #[test]
