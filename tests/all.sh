@@ -140,7 +140,14 @@ lint() {
 
 rust_tests() { cargo test --workspace --no-fail-fast 2>&1 | tee target/cargo-test.log; return "${PIPESTATUS[0]}"; }
 
-truth() { "$VENV/bin/python" tests/truth/make_all.py --check; }
+# Runs beside the builds: it is Python on one core, and most of a release build is one compiler on another.
+begin_truth() { "$VENV/bin/python" tests/truth/make_all.py --check >target/truth.log 2>&1 & truth_job=$!; }
+end_truth() {
+    wait "$truth_job"
+    local code=$?
+    cat target/truth.log
+    return $code
+}
 
 browser_tests() { (cd tests/browser && node --test --test-reporter=spec page.test.mjs 2>&1) | tee target/browser-test.log; return "${PIPESTATUS[0]}"; }
 
@@ -148,13 +155,15 @@ mkdir -p target
 part "Layout of the sources (cargo fmt)" format
 part "Lints (cargo clippy)" lint
 part "Core, notations, rules, scene (cargo test)" rust_tests
-if [ -x "$VENV/bin/python" ]; then
-    part "Outside truth made anew and compared" truth
+truth_job=""
+if [ -x "$VENV/bin/python" ]; then begin_truth; fi
+part "The command line (release build)" cargo build --release --bin tailvane
+part "The page (cargo page)" cargo page
+if [ -n "$truth_job" ]; then
+    part "Outside truth made anew and compared" end_truth
 else
     skip "Outside truth made anew and compared" "no Python environment"
 fi
-part "The command line (release build)" cargo build --release --bin tailvane
-part "The page (cargo page)" cargo page
 if [ -d tests/browser/node_modules ] && have node; then
     part "The page in real browsers" browser_tests
 else
