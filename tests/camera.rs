@@ -112,7 +112,7 @@ proptest! {
 
     #[test]
     fn a_random_camera_has_its_nucleus_on_its_pixel_and_keeps_its_angles(
-        camera in sections::cameras(), lon in 0.0..360.0_f64, lat in -80.0..80.0_f64, angle in 0.0..6.28_f64,
+        camera in sections::cameras(), lon in 0.0..360.0_f64, lat in -80.0..80.0_f64, angle in 0.0..std::f64::consts::TAU,
         part in (-0.5..0.5_f64, -0.5..0.5_f64),
     ) {
         let nucleus = toward(lon, lat);

@@ -28,7 +28,7 @@ fn random(chance: &mut Chance) -> (Camera, Axes, Task) {
     let size = 10.0_f64.powf(chance.between(-2.5, -0.35));
     let mut points = Vec::new();
     for _ in 0..1 + (3.0 * chance.even()) as usize {
-        let (middle, half) = (chance.between(0.0, 6.28), chance.between(0.0, 0.6));
+        let (middle, half) = (chance.between(0.0, std::f64::consts::TAU), chance.between(0.0, 0.6));
         let length = size * chance.between(0.3, 1.0);
         for _ in 0..12 {
             let (angle, radius) = (middle + chance.between(-half, half), length * chance.even().sqrt());
