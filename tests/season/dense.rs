@@ -130,7 +130,8 @@ pub fn orbits(count: usize) -> Vec<Elements> {
             let e = match chance() {
                 c if c < 0.4 => 1.0,
                 c if c < 0.6 => 1.0 + 0.2 * chance(),
-                _ => chance(),
+                // Shorter periods than a month are refused.
+                _ => chance().max(1.0 - 4.9 * q),
             };
             let inclination = libm::acos(2.0 * chance() - 1.0).to_degrees();
             let (peri, node) = (360.0 * chance(), 360.0 * chance());
