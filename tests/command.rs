@@ -1,28 +1,17 @@
 //! The command line as a script meets it: columns, forms, cautions, refusals and exit codes.
 
+#[path = "common/command.rs"]
+mod command;
+
+use command::tailvane as run;
 use std::collections::BTreeMap;
-use std::io::Write;
 use std::path::PathBuf;
-use std::process::{Command, Output, Stdio};
 
 /// An invented comet, seen from the geocentre.
 const PLAN: &str = r#"{ "tailvane_plan": 1, "comet": { "name": "Invented comet Alder", "elements": {
     "perihelion_distance_au": 0.52, "eccentricity": 1.0003, "inclination_deg": 61.2, "ascending_node_deg": 201.9,
     "argument_of_perihelion_deg": 33.4, "perihelion_time": "2031-03-04.51732 TT", "epoch": "2031-02-20.0 TT" } },
     "time": "2031-03-20T05:30:00Z" }"#;
-
-fn run(arguments: &[&str], input: &str) -> Output {
-    let mut child = Command::new(env!("CARGO_BIN_EXE_tailvane"))
-        .args(arguments)
-        .stdin(Stdio::piped())
-        .stdout(Stdio::piped())
-        .stderr(Stdio::piped())
-        .spawn()
-        .expect("the command starts");
-    // A call that is refused may end before it has read its input.
-    let _ = child.stdin.take().expect("a pipe").write_all(input.as_bytes());
-    child.wait_with_output().expect("the command ends")
-}
 
 /// Standard output of a call that must succeed.
 fn said(arguments: &[&str], input: &str) -> String {

@@ -1,7 +1,10 @@
 //! `tailvane season` as a script and a calendar meet it: columns, forms, escapes, the same bytes again, refusals.
 
-use std::io::Write;
-use std::process::{Command, Output, Stdio};
+#[path = "common/command.rs"]
+mod command;
+
+use command::tailvane;
+use std::process::Output;
 
 /// An invented comet that crosses its plane; its name is as nasty as a name may be.
 fn plan(name: &str) -> String {
@@ -16,17 +19,7 @@ fn plan(name: &str) -> String {
 const RANGE: [&str; 4] = ["--from", "2031-02-20T00:00:00Z", "--to", "2031-11-01T00:00:00Z"];
 
 fn run(arguments: &[&str], input: &str) -> Output {
-    let mut child = Command::new(env!("CARGO_BIN_EXE_tailvane"))
-        .args(["season", "-"])
-        .args(arguments)
-        .stdin(Stdio::piped())
-        .stdout(Stdio::piped())
-        .stderr(Stdio::piped())
-        .spawn()
-        .expect("the command starts");
-    // A call that is refused may end before it has read its input.
-    let _ = child.stdin.take().expect("a pipe").write_all(input.as_bytes());
-    child.wait_with_output().expect("the command ends")
+    tailvane(&[&["season", "-"], arguments].concat(), input)
 }
 
 fn said(more: &[&str], input: &str) -> String {

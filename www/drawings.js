@@ -20,16 +20,20 @@ Tailvane.drawings = (function () {
         continue;
       }
       Tailvane.write(twin, desk[say]());
-      const { width, height } = size;
-      const ratio = window.devicePixelRatio || 1;
-      const [across, down] = [Math.round(width * ratio), Math.round(height * ratio)];
-      if (canvas.width !== across || canvas.height !== down) {
-        canvas.width = across;
-        canvas.height = down;
-      }
-      context.setTransform(across / width, 0, 0, down / height, 0, 0);
-      desk[draw](context, Tailvane.theme.name(), width, height);
+      fit(canvas, context, size);
+      desk[draw](context, Tailvane.theme.name(), size.width, size.height);
     }
+  }
+
+  /** Gives a canvas the pixels of its size on this screen, and its context the scale of the page. */
+  function fit(canvas, context, { width, height }) {
+    const ratio = window.devicePixelRatio || 1;
+    const [across, down] = [Math.round(width * ratio), Math.round(height * ratio)];
+    if (canvas.width !== across || canvas.height !== down) {
+      canvas.width = across;
+      canvas.height = down;
+    }
+    context.setTransform(across / width, 0, 0, down / height, 0, 0);
   }
 
   function start() {
@@ -47,5 +51,5 @@ Tailvane.drawings = (function () {
     }
   }
 
-  return { start };
+  return { start, fit };
 })();

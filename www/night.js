@@ -73,13 +73,7 @@ Tailvane.night = (function () {
     if (width < 1 || height < 1) {
       return;
     }
-    const ratio = window.devicePixelRatio || 1;
-    const [across, down] = [Math.round(width * ratio), Math.round(height * ratio)];
-    if (canvas.width !== across || canvas.height !== down) {
-      canvas.width = across;
-      canvas.height = down;
-    }
-    context.setTransform(across / width, 0, 0, down / height, 0, 0);
+    Tailvane.drawings.fit(canvas, context, { width, height });
     desk["draw_" + name](context, Tailvane.theme.name(), width, height);
   }
 

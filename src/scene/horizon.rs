@@ -139,15 +139,7 @@ fn draw_scales(scene: &mut Scene, plane: &Plane, level: f64, size_px: f64, top_d
         }
     }
     scene.add(Role::Axis, Shape::Lines(axis));
-    let page = Rect { left: 0.0, top: 0.0, right: scene.width_px, bottom: scene.height_px };
-    let mut taken: Vec<Rect> = Vec::new();
-    for (role, text) in texts {
-        let box_px = text.area();
-        if page.contains(&box_px) && !taken.iter().any(|other| other.overlaps(&box_px.grown(3.0 * unit))) {
-            taken.push(box_px);
-            scene.add(role, Shape::Text(text));
-        }
-    }
+    scene.write_apart(texts);
 }
 
 /// Sun and Moon at their places, or as arrows at the edge; the Moon only while it is up.

@@ -3,7 +3,6 @@
 //! [`TailLayers`] is all that a drawing of the sky takes from [`crate::tail`]: points, angles, words to be made of them.
 //! Nothing here is on the page yet. Made anew for each moment seen; what is switched off is not computed.
 
-use super::Point;
 use super::image::Image;
 use super::isophote::Isophotes;
 use super::sheet::Sheet;
@@ -80,9 +79,6 @@ pub struct TailLayers {
     /// The dust, in the colours of the theme that will paint it.
     pub picture: Option<Image>,
     pub isophotes: Option<Isophotes>,
-    /// Where labels stood in the drawing before ([`super::spot::spots_of`]): each keeps to its spot while that is free, so that
-    /// none dances while a date is scrubbed. Empty for a drawing that must not depend on what came before.
-    pub spots_before: Vec<(String, Point)>,
 }
 
 impl TailLayers {
@@ -111,7 +107,6 @@ impl TailLayers {
             anti_tail_half_width_rad: laws.anti_tail_half_width_deg.to_radians(),
             picture: None,
             isophotes: None,
-            spots_before: Vec::new(),
         }
     }
 }

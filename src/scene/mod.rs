@@ -39,7 +39,7 @@ pub mod view;
 
 use crate::season::series::Curve;
 use image::Image;
-use lettering::Text;
+use lettering::{Rect, Text};
 
 /// A place on the page: x to the right, y down, pixels.
 pub type Point = [f64; 2];
@@ -254,6 +254,21 @@ impl Scene {
 
     pub fn add(&mut self, role: Role, shape: Shape) {
         self.nodes.push(Node { role, shape });
+    }
+
+    /// Writes those of the texts that fit on the page and keep clear of the ones written before, in this order.
+    /// Returns the room they take.
+    pub fn write_apart(&mut self, texts: Vec<(Role, Text)>) -> Vec<Rect> {
+        let page = Rect { left: 0.0, top: 0.0, right: self.width_px, bottom: self.height_px };
+        let mut taken: Vec<Rect> = Vec::new();
+        for (role, text) in texts {
+            let area = text.area();
+            if page.contains(&area) && !taken.iter().any(|other| other.overlaps(&area.grown(3.0 * self.unit_px))) {
+                taken.push(area);
+                self.add(role, Shape::Text(text));
+            }
+        }
+        taken
     }
 
     /// The texts of the scene with their roles, in painting order.

@@ -235,15 +235,7 @@ fn write(
     size_px: f64,
 ) {
     let unit = scene.unit_px;
-    let page = Rect { left: 0.0, top: 0.0, right: scene.width_px, bottom: scene.height_px };
-    let mut taken: Vec<Rect> = Vec::new();
-    for (role, text) in texts {
-        let box_px = text.area();
-        if page.contains(&box_px) && !taken.iter().any(|other| other.overlaps(&box_px.grown(3.0 * unit))) {
-            taken.push(box_px);
-            scene.add(role, Shape::Text(text));
-        }
-    }
+    let mut taken = scene.write_apart(texts);
     for (body, name, pieces) in lines {
         let points: Vec<Point> = pieces.iter().flatten().copied().collect();
         let spot = [0.5, 0.4, 0.6, 0.3, 0.7, 0.2, 0.8, 0.12, 0.88]

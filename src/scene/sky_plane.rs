@@ -67,14 +67,7 @@ pub fn compose(plan: &Plan, sky: &Sky, tails: &TailLayers, view: &SkyView) -> Sc
     tail_plane::part(&mut curves, vane.center, vane.radius_px, scene.unit_px);
     let wedge_px = vane.radius_px * mark::reach(Direction::IonAxis);
     let wedge = tail_plane::wedge_ends(tails, &facing, vane.center, wedge_px);
-    let lines = Lines {
-        vane: &vane,
-        hands: &hands,
-        wedge: &wedge,
-        curves: &curves,
-        before: &tails.spots_before,
-        frame: frame.as_ref(),
-    };
+    let lines = Lines { vane: &vane, hands: &hands, wedge: &wedge, curves: &curves, frame: frame.as_ref() };
     let writing = Writing::of(&scene, &facing, notes, &lines);
 
     if let Some(image) = &tails.picture {
@@ -214,8 +207,6 @@ struct Lines<'a> {
     /// Where the edges of the ion wedge end.
     wedge: &'a [Point],
     curves: &'a [PageCurve],
-    /// Where labels of curves stood before.
-    before: &'a [(String, Point)],
     frame: Option<&'a Frame>,
 }
 
@@ -229,7 +220,7 @@ struct Writing {
 
 impl Writing {
     fn of(scene: &Scene, facing: &Facing, notes: Notes, lines: &Lines) -> Self {
-        let Lines { vane, hands, wedge, curves, before, frame } = *lines;
+        let Lines { vane, hands, wedge, curves, frame } = *lines;
         let unit = scene.unit_px;
         let page = page(scene);
         let mut room = Room::new(page.grown(-0.5 * MARGIN * unit), vane.center, vane.radius_px, unit);
@@ -260,7 +251,7 @@ impl Writing {
         }
         let label = frame.and_then(|frame| frame.label(&mut room));
         writing.texts.extend(label.map(|text| (Role::CameraLabel, text)));
-        let spots = spot::find(&mut room, curves, before);
+        let spots = spot::find(&mut room, curves);
         writing.texts.extend(tail_plane::labels(curves, &spots, unit));
         writing.texts.extend(letters.into_iter().map(|letter| (Role::Cardinal, letter)));
         let numbers: Vec<Text> = if in_sight { vane.numbers(scene, facing) } else { Vec::new() };

@@ -6,13 +6,13 @@
 //! the cheapest wins: three quarters out along the curve, outside the ring, off curves of other kinds. A curve without a free spot has no label: a bundle
 //! seen edge-on names its outermost curves and not each. The outer curves of a kind choose first, then those between.
 //!
-//! Spots are shares of the visible length, so a label slides with its curve while the date is scrubbed; and a spot near
-//! that of the drawing before is cheaper than any other.
+//! Spots are shares of the visible length, so a label slides with its curve while the date is scrubbed. Nothing is kept
+//! from one drawing to the next: the same plan gives the same picture.
 //! Which curve runs where is kept in a mesh of cells, so that a frame costs no search through segments.
 
 use super::label::{Room, cross};
 use super::lettering::{ABOVE, BELOW, Rect, width_px};
-use super::{Family, Point, Role, Scene};
+use super::{Family, Point};
 use crate::frame::norm;
 
 /// A curve as it lies on the page.
@@ -52,32 +52,16 @@ const BEYOND: f64 = 6.0;
 const SHORT_WORDS: f64 = 28.0;
 const MEETS_OTHER_KIND: f64 = 9.0;
 const INSIDE_RING: f64 = 30.0;
-/// For each drawing unit away from where the label stood before, up to so many of them.
-const MOVED: f64 = 2.0;
-const FARTHEST_MOVE: f64 = 40.0;
 
-/// The labels of curves in a drawing: the name of the curve (its beta or age), and the middle of the label.
-pub fn spots_of(scene: &Scene) -> Vec<(String, Point)> {
-    let labels = scene.texts().filter(|(role, _)| matches!(role, Role::CurveLabel(_)));
-    labels.map(|(_, text)| (name(&text.words).to_string(), text.area().center())).collect()
-}
-
-/// What of a label's words stays the same from one drawing to the next.
-fn name(words: &str) -> &str {
-    words.split(" · ").next().unwrap_or(words)
-}
-
-/// A spot for each curve that has one; each takes its room. `before` holds those of the drawing before.
-pub fn find(room: &mut Room, curves: &[PageCurve], before: &[(String, Point)]) -> Vec<Option<Spot>> {
+/// A spot for each curve that has one; each takes its room.
+pub fn find(room: &mut Room, curves: &[PageCurve]) -> Vec<Option<Spot>> {
     let mesh = Mesh::of(room, curves);
     let mut spots = vec![None; curves.len()];
     for family in [Family::NeckLine, Family::Syndyne, Family::Synchrone] {
         let members: Vec<usize> = (0..curves.len()).filter(|&i| curves[i].family == family).collect();
         for member in outer_first(members.len()) {
             let index = members[member];
-            let name = name(&curves[index].words[0]);
-            let was = before.iter().find(|(other, _)| other == name).map(|(_, at)| *at);
-            let spot = cheapest(room, &mesh, curves, index, was);
+            let spot = cheapest(room, &mesh, curves, index);
             room.taken.extend(spot.map(|spot: Spot| spot.area));
             spots[index] = spot;
         }
@@ -101,7 +85,7 @@ pub fn outer_first(count: usize) -> Vec<usize> {
     order
 }
 
-fn cheapest(room: &Room, mesh: &Mesh, curves: &[PageCurve], index: usize, was: Option<Point>) -> Option<Spot> {
+fn cheapest(room: &Room, mesh: &Mesh, curves: &[PageCurve], index: usize) -> Option<Spot> {
     let curve = &curves[index];
     let unit = room.unit_px;
     let (piece, long) = curve.pieces.iter().map(|piece| (piece, length(piece))).max_by(|a, b| a.1.total_cmp(&b.1))?;
@@ -116,8 +100,7 @@ fn cheapest(room: &Room, mesh: &Mesh, curves: &[PageCurve], index: usize, was: O
         let half = [width_px(text, size_px, false) / 2.0, size_px * (ABOVE + BELOW) / 2.0];
         let mut consider = |from: Point, center: Point, cost: f64| {
             let area = Rect::around(center, half[0], half[1]);
-            let moved = was.map_or(0.0, |[x, y]| (norm([center[0] - x, center[1] - y]) / unit).min(FARTHEST_MOVE));
-            let cost = cost + SHORT_WORDS * words as f64 + MOVED * moved;
+            let cost = cost + SHORT_WORDS * words as f64;
             if best.is_some_and(|(least, _)| cost >= least) {
                 return;
             }

@@ -51,6 +51,23 @@ pub struct Look {
 /// Nothing at all.
 const BARE: Look = Look { fill: None, fill_opacity: 1.0, pen: None, halo: None };
 
+fn pattern(color: Color, width: f64, dashes: &'static [f64]) -> Look {
+    Look { pen: Some(Pen { color, width, dashes }), ..BARE }
+}
+
+fn line(color: Color, width: f64) -> Look {
+    pattern(color, width, &[])
+}
+
+fn fill(color: Color, fill_opacity: f64) -> Look {
+    Look { fill: Some(color), fill_opacity, ..BARE }
+}
+
+/// Letters that keep clear of what lies under them by a rim of the ground.
+fn written(color: Color, ground: Color) -> Look {
+    Look { fill: Some(color), halo: Some(Pen { color: ground, width: 4.0, dashes: &[] }), ..BARE }
+}
+
 /// A colour of the tone map, and the brightness from 0 to 1 that it stands for; in between runs a straight line.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Stop {
@@ -344,11 +361,7 @@ impl Theme {
     /// The look of a role.
     pub fn look(self, role: Role) -> Look {
         let p = self.palette();
-        let pattern = |color, width, dashes| Look { pen: Some(Pen { color, width, dashes }), ..BARE };
-        let line = |color, width| pattern(color, width, &[]);
-        let fill = |color, fill_opacity| Look { fill: Some(color), fill_opacity, ..BARE };
-        let halo = Some(Pen { color: p.ground, width: 4.0, dashes: &[] });
-        let letters = |color| Look { fill: Some(color), halo, ..BARE };
+        let letters = |color| written(color, p.ground);
         match role {
             Role::Ground => fill(p.ground, 1.0),
             // Its pixels have their colours already.

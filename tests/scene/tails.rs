@@ -10,7 +10,6 @@ use tailvane::plan::Plan;
 use tailvane::scene::layer::{Layers, TailLayers};
 use tailvane::scene::lettering::Rect;
 use tailvane::scene::sky_plane::compose;
-use tailvane::scene::spot;
 use tailvane::scene::view::{SkyView, Up};
 use tailvane::scene::{Direction, Family, Point, Role, Scene, Shape};
 use tailvane::sky::Sky;
@@ -221,29 +220,6 @@ fn synchrones_of_one_line_are_drawn_once_and_a_bundle_keeps_few_labels() {
     assert!(drawn <= 4, "{drawn} synchrones in a line");
     let labels = scene.texts().filter(|(role, _)| matches!(role, Role::CurveLabel(_))).count();
     assert!((1..=8).contains(&labels), "{labels}");
-}
-
-#[test]
-fn a_label_keeps_its_spot_from_hour_to_hour() {
-    let (plan, sky) = (skies::plan(), skies::sky());
-    let mut engine = Engine::new(plan.clone()).expect("allowed");
-    let view = SkyView::start(1440.0, 900.0);
-    let (mut jumps, mut steps) = (0, 0);
-    let mut before = Vec::new();
-    for hour in 0..=72 {
-        let sky = engine.sky_at(sky.time.plus_days(f64::from(hour) / 24.0)).expect("within the span");
-        let layers = TailLayers { spots_before: before, ..tails(&plan, &sky, &view, &Layers::default()) };
-        let scene = compose(&plan, &sky, &layers, &view);
-        let now = spot::spots_of(&scene);
-        for (words, at) in &now {
-            let Some((_, was)) = layers.spots_before.iter().find(|(other, _)| other == words) else { continue };
-            steps += 1;
-            jumps += usize::from((at[0] - was[0]).hypot(at[1] - was[1]) > 12.0);
-        }
-        before = now;
-    }
-    assert!(steps > 500, "{steps}");
-    assert!(jumps * 100 < steps, "{jumps} of {steps} labels jumped");
 }
 
 /// A comet, a time near its perihelion, and laws for its dust.

@@ -1,17 +1,13 @@
 //! What do the parts of the season ribbon look like?
 
 use super::super::{Direction, Lane, Role};
-use super::{BARE, Color, Look, Pen, Theme, dashes};
+use super::{BARE, Color, Look, Theme, dashes, fill, line, pattern, written};
 use crate::season::series::Curve;
 
 /// The look of a role of the ribbon; bare for any other.
 pub(super) fn look(theme: Theme, role: Role) -> Look {
     let p = theme.palette();
-    let pattern = |color, width, dashes| Look { pen: Some(Pen { color, width, dashes }), ..BARE };
-    let line = |color, width| pattern(color, width, &[]);
-    let fill = |color, fill_opacity| Look { fill: Some(color), fill_opacity, ..BARE };
-    let halo = Some(Pen { color: p.ground, width: 4.0, dashes: &[] });
-    let letters = |color| Look { fill: Some(color), halo, ..BARE };
+    let letters = |color| written(color, p.ground);
     match role {
         Role::SeasonCurve(curve) => pattern(curve_color(theme, curve), width(curve), curve_dashes(curve)),
         Role::CurveLeader(curve) => line(curve_color(theme, curve), 0.8),
